@@ -1,0 +1,5 @@
+"""`python -m advisor` is `gudgeon`."""
+
+from advisor.cli import main
+
+main()

@@ -1,0 +1,198 @@
+"""Answers as people type them, and saved cases: typed by the declared facts, kept with the text that was typed."""
+
+from collections.abc import Mapping as Map
+from dataclasses import dataclass, field
+from pathlib import Path
+
+from advisor.case import Answer, Case
+from advisor.conditions import Value
+from advisor.documents import Mapping, Node, Problem, Problems, Scalar, Sequence, nearest, read_document
+from advisor.knowledge import Declaration, Knowledge
+from advisor.quantities import Unreadable, parse, show
+
+DONT_KNOW = "dont_know"
+UNANSWERED = "unanswered"
+
+
+class Unsuitable(ValueError):
+    """An answer that does not suit its question; the message says what was seen and the mend."""
+
+
+def answer(declaration: Declaration, typed: str, *, strict: bool = True) -> Answer:
+    """The answer that a text gives to a question.
+
+    Raises:
+        Unsuitable: in one plain sentence.
+    """
+    text = typed.strip()
+    if text in {"?", DONT_KNOW, "don't know"}:
+        return Answer(None, DONT_KNOW)
+    domain = declaration.domain
+    if domain.kind == "number":
+        return _number(declaration, text, strict=strict)
+    if domain.kind == "text":
+        return Answer(text, text)
+    if domain.kind == "several":
+        return Answer(_ticks(declaration, text), text)
+    return Answer(_choice(declaration, text), text)
+
+
+def _number(declaration: Declaration, text: str, *, strict: bool) -> Answer:
+    domain = declaration.domain
+    if text in domain.named:
+        return Answer(domain.named[text], text, estimate=True)
+    try:
+        value = parse(text, domain.unit, strict=strict).value
+    except Unreadable as fault:
+        words = f" Known words: {', '.join(domain.named)}." if domain.named and not any(c.isdigit() for c in text) else ""
+        raise Unsuitable(f"{fault}{words}") from None
+    if not domain.low <= value <= domain.high:
+        raise Unsuitable(
+            f"{show(value, domain.unit)} lies outside {show(domain.low, domain.unit)} to {show(domain.high, domain.unit)}. "
+            "Check the unit and the decimal point.")
+    if domain.places and value not in domain.places:
+        raise Unsuitable(f"{value:g} is none of the grades " + ", ".join(f"{place:g}" for place in domain.places) + ".")
+    return Answer(value, text)
+
+
+def _choice(declaration: Declaration, text: str) -> str:
+    choices = declaration.domain.choices
+    wanted = {"true": "yes", "false": "no", "y": "yes", "n": "no"}.get(text, text) if declaration.domain.kind == "yes_no" else text
+    if wanted in choices:
+        return wanted
+    folded = wanted.casefold()
+    for one, label in choices.items():
+        if folded in {one.casefold(), label.casefold()}:
+            return one
+    near = nearest(wanted, choices)
+    known = near or f" Choose one of {', '.join(list(choices)[:12])}{' ...' if len(choices) > 12 else ''}."  # noqa: PLR2004 - a dozen fits a line
+    raise Unsuitable(f"'{text}' is not one of the choices of {declaration.title}.{known}")
+
+
+def _ticks(declaration: Declaration, text: str) -> tuple[str, ...]:
+    if text in {"", "none", "[]"} and "none" not in declaration.domain.choices:
+        return ()
+    ticked = {_choice(declaration, part.strip()) for part in text.split(",") if part.strip()}
+    return tuple(choice for choice in declaration.domain.choices if choice in ticked)
+
+
+def show_answer(declaration: Declaration, value: Value) -> str:
+    """A canonical value as a person reads it."""
+    if isinstance(value, float):
+        return show(value, declaration.domain.unit)
+    return declaration.domain.label(value)
+
+
+@dataclass(frozen=True, slots=True)
+class Saved:
+    """A saved case: the case itself, how gaps count, which products count, and the whole document."""
+
+    path: Path
+    case: Case
+    assume_gaps: bool
+    only: frozenset[str] | None
+    tree: Mapping
+    taken_away: frozenset[str] = field(default_factory=frozenset)
+
+
+_KEYS = ("format", "title", "point_kind", "guards", "status", "like", "answers", "gaps", "shelf", "expect", "knowledge", "history")
+
+
+def point_kind_of(path: Path) -> str:
+    """The kind of point that a saved case speaks of; rolling_bearing where the file cannot say."""
+    tree = read_document(path, Problems())
+    kind = tree.get("point_kind") if isinstance(tree, Mapping) else None
+    return str(kind) if isinstance(kind, Scalar) else "rolling_bearing"
+
+
+def read_case(path: Path, knowledge: Knowledge, problems: Problems, _above: tuple[Path, ...] = ()) -> Saved | None:
+    """Read a saved case or scenario; every fault is collected, and then there is none."""
+    tree = read_document(path, problems)
+    if tree is None:
+        return None
+    if not isinstance(tree, Mapping):
+        _fault(problems, tree, (), "a saved case is a mapping", "format: 1, answers: {...}")
+        return None
+    before = len(problems)
+    for key in tree:
+        if key not in _KEYS:
+            _fault(problems, tree.key_marks[key], (), f"'{key}' is not known in a saved case", nearest(key, _KEYS).strip())
+    if str(tree.get("format", "")) != "1":
+        _fault(problems, tree.get("format", tree), (), "the format of the case is missing or unknown", "format: 1")
+    kind = str(tree.get("point_kind", ""))
+    base = _base(path, tree, knowledge, problems, _above)
+    if kind != knowledge.point_kind.id and not (base and not kind):
+        _fault(problems, tree.get("point_kind", tree), (), f"'{kind}' is no kind of point here", f"point_kind: {knowledge.point_kind.id}")
+    answers = dict(base.case.answers) if base else {}
+    taken = _read_answers(tree.get("answers"), answers, knowledge, problems)
+    only = _only(tree.get("shelf"), knowledge, problems)
+    gaps = str(tree.get("gaps", "open"))
+    if gaps not in {"open", DONT_KNOW}:
+        _fault(problems, tree["gaps"], ("gaps",), f"'{gaps}' is not known here", f"gaps: open, or gaps: {DONT_KNOW}")
+    if len(problems) > before:
+        return None
+    ordered = {name: answers[name] for name in knowledge.facts if name in answers}
+    case = Case(knowledge.point_kind.id, str(tree.get("title", path.stem)), ordered)
+    return Saved(path, case, gaps == DONT_KNOW, only, tree, frozenset(taken))
+
+
+def _base(path: Path, tree: Mapping, knowledge: Knowledge, problems: Problems, above: tuple[Path, ...]) -> Saved | None:
+    """The scenario whose answers this one takes over."""
+    like = tree.get("like")
+    if like is None:
+        return None
+    other = path.parent / f"{like}.yaml"
+    if other in (*above, path):
+        _fault(problems, like, ("like",), f"'{like}' leads back to this file", "break the circle")
+        return None
+    if not isinstance(like, Scalar) or "/" in like or not other.is_file():
+        _fault(problems, like, ("like",), f"there is no scenario '{like}' beside this file",
+               nearest(str(like), [each.stem for each in path.parent.glob("*.yaml")]).strip())
+        return None
+    return read_case(other, knowledge, problems, (*above, path))
+
+
+def _read_answers(node: Node | None, answers: dict[str, Answer], knowledge: Knowledge, problems: Problems) -> list[str]:
+    if node is None:
+        return []
+    if not isinstance(node, Mapping):
+        _fault(problems, node, ("answers",), "answers are written 'fact: value'")
+        return []
+    asked: Map[str, Declaration] = {name: each for name, each in knowledge.facts.items() if each.question is not None}
+    taken: list[str] = []
+    for name, child in node.items():
+        if name not in asked:
+            hint = "it is computed or concluded, not asked" if name in knowledge.facts or name in knowledge.computations else nearest(name, asked).strip()
+            _fault(problems, node.key_marks[name], ("answers",), f"'{name}' is no question of this kind of point", hint)
+            continue
+        if isinstance(child, Scalar) and str(child) == UNANSWERED:
+            answers.pop(name, None)
+            taken.append(name)
+            continue
+        text = ", ".join(map(str, child)) if isinstance(child, Sequence) else str(child)
+        if isinstance(child, Mapping):
+            _fault(problems, child, ("answers", name), "an answer is a value or a list of ticks")
+            continue
+        try:
+            answers[name] = answer(asked[name], text or "none", strict=False)
+        except Unsuitable as fault:
+            _fault(problems, child, ("answers", name), str(fault))
+    return taken
+
+
+def _only(node: Node | None, knowledge: Knowledge, problems: Problems) -> frozenset[str] | None:
+    if node is None:
+        return None
+    if not isinstance(node, Sequence):
+        _fault(problems, node, ("shelf",), "the products are a list of item codes", "shelf: [GR-101]")
+        return None
+    known = [product.item for product in knowledge.shelf]
+    for each in node:
+        if str(each) not in known:
+            _fault(problems, each, ("shelf",), f"'{each}' is no product of the shelf", nearest(str(each), known).strip())
+    return frozenset(str(each) for each in node)
+
+
+def _fault(problems: Problems, at: object, trail: tuple[str, ...], message: str, hint: str = "") -> None:
+    mark = getattr(at, "mark", at)
+    problems.add(Problem(mark.file, mark.line, mark.column, trail, message.rstrip("."), hint))  # type: ignore[attr-defined]  # marks and nodes

@@ -1,0 +1,120 @@
+"""The command line: parses, calls one room, prints. Heavy rooms are imported inside their commands."""
+
+import sys
+from collections.abc import Callable
+from pathlib import Path
+from typing import Any
+
+import click
+
+from advisor import __version__
+
+knowledge_option = click.option(
+    "--knowledge", "knowledge", type=click.Path(path_type=Path), envvar="GUDGEON_KNOWLEDGE",
+    help="Folder of the knowledge; without it the one that is shipped.")
+shelf_option = click.option(
+    "--shelf", type=click.Path(path_type=Path), envvar="GUDGEON_SHELF",
+    help="File of the products that the site can use; without it the shelf of the knowledge.")
+
+
+@click.group(invoke_without_command=True, context_settings={"help_option_names": ["-h", "--help"]})
+@click.version_option(__version__, prog_name="gudgeon")
+@click.pass_context
+def gudgeon(context: click.Context) -> None:
+    """Choose a lubricant for a lubrication point, with the reasoning behind it.
+
+    Without a command: on a terminal the interview, otherwise the advice for the bundled demonstration case.
+    """
+    if context.invoked_subcommand is None:
+        from advisor import commands
+
+        context.exit(commands.start())
+
+
+@gudgeon.command()
+@click.argument("file", type=click.Path(path_type=Path), required=False)
+@click.option("--plain", is_flag=True, help="Question by question, line by line: for screen readers and plain terminals.")
+@click.option("--ascii", "plain_glyphs", is_flag=True, help="Only ASCII signs on the sheet.")
+@knowledge_option
+@shelf_option
+def interview(**options: Any) -> None:
+    """Start an interview, or go on with the one kept in FILE."""
+    _run("interview", options)
+
+
+@gudgeon.command()
+@click.argument("file", type=click.Path(path_type=Path))
+@click.option("--assume", is_flag=True, help="Treat every question without an answer as a don't know.")
+@click.option("--json", "as_json", is_flag=True, help="The whole advice as JSON.")
+@click.option("--markdown", is_flag=True, help="The explanation as Markdown.")
+@click.option("--html", type=click.Path(path_type=Path), help="Write a report as an HTML file.")
+@knowledge_option
+@shelf_option
+def advise(**options: Any) -> None:
+    """Advice for a saved case."""
+    _run("advise", options)
+
+
+@gudgeon.command()
+@click.argument("folder", type=click.Path(path_type=Path), required=False)
+@shelf_option
+def check(**options: Any) -> None:
+    """Everything that is wrong with a knowledge folder, at once."""
+    _run("check", options)
+
+
+@gudgeon.command()
+@click.argument("files", type=click.Path(path_type=Path), nargs=-1)
+@click.option("--json", "as_json", is_flag=True, help="The outcome as JSON.")
+@click.option("--junit", type=click.Path(path_type=Path), help="Write the outcome as JUnit XML.")
+@click.option("--coverage", is_flag=True, help="Also list rules that no scenario fires.")
+@knowledge_option
+@shelf_option
+def replay(**options: Any) -> None:
+    """Replay scenarios and compare with what is expected of them."""
+    _run("replay", options)
+
+
+@gudgeon.command()
+@click.argument("words", nargs=-1)
+@click.option("--json", "as_json", is_flag=True, help="The list as JSON.")
+@knowledge_option
+def facts(**options: Any) -> None:
+    """List the facts; WORDS filter."""
+    _run("facts", options)
+
+
+@gudgeon.command()
+@click.argument("words", nargs=-1)
+@click.option("--json", "as_json", is_flag=True, help="The list as JSON.")
+@knowledge_option
+def rules(**options: Any) -> None:
+    """List the rules; WORDS filter."""
+    _run("rules", options)
+
+
+@gudgeon.command()
+@click.argument("name", required=False)
+@click.argument("inputs", nargs=-1, metavar="[INPUT=VALUE]...")
+@click.option("--json", "as_json", is_flag=True, help="The result as JSON.")
+def compute(**options: Any) -> None:
+    """List the formulas, or work one out: gudgeon compute reference_viscosity speed_rpm='1450 rpm' mean_diameter_mm=80."""
+    _run("compute", options)
+
+
+def _run(command: str, options: dict[str, Any]) -> None:
+    from advisor import commands
+
+    work: Callable[..., int] = getattr(commands, command)
+    sys.exit(work(**options))
+
+
+def main() -> None:
+    """The entry point: usage and files at fault end with 2, our own faults with 3 and the path of a log."""
+    from advisor.mishaps import guarded
+
+    guarded(gudgeon)
+
+
+if __name__ == "__main__":
+    main()

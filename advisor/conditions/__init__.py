@@ -1,0 +1,46 @@
+"""What a value may be, and conditions on values: thresholds and set memberships with three outcomes."""
+
+from advisor.conditions.domains import Coded, Domain, Step, Value
+from advisor.conditions.terms import (
+    ALWAYS,
+    VOID,
+    Bound,
+    Condition,
+    Either,
+    Every,
+    FactRef,
+    Member,
+    Record,
+    Stated,
+    Ticked,
+    branches,
+    failures,
+    holds,
+    leaves,
+    negated,
+    waits_for,
+)
+
+__all__ = [
+    "ALWAYS",
+    "VOID",
+    "Bound",
+    "Coded",
+    "Condition",
+    "Domain",
+    "Either",
+    "Every",
+    "FactRef",
+    "Member",
+    "Record",
+    "Stated",
+    "Step",
+    "Ticked",
+    "Value",
+    "branches",
+    "failures",
+    "holds",
+    "leaves",
+    "negated",
+    "waits_for",
+]

@@ -1,0 +1,114 @@
+"""What a formula is: a function on plain numbers, with equation, ranges, directions and source beside it as data."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass
+from math import inf, isfinite
+from typing import Literal
+
+Direction = Literal["up", "down", "none"]
+Checked = Literal["yes", "from memory", "common practice"]
+
+
+class OutOfRange(ValueError):  # noqa: N818 -- it names what happened to the value, and is shown to the user
+    """The physics of a formula ends here; the message names the range in a plain sentence."""
+
+
+@dataclass(frozen=True, slots=True)
+class Input:
+    """One input of a formula: its range, and how the result moves when the input rises.
+
+    `joints` are the values of the input at which the formula changes branch.
+    """
+
+    name: str
+    symbol: str
+    unit: str
+    low: float
+    high: float
+    direction: Direction
+    text: str
+    joints: tuple[float, ...] = ()
+
+    @property
+    def range(self) -> str:
+        """The inclusive range as it is printed, such as "10 to 500 mm" or "ISO VG 2 to 3200"."""
+        if self.unit == "ISO VG":
+            return f"{with_unit(self.low, self.unit)} to {plain(self.high)}"
+        return f"{plain(self.low)} to {with_unit(self.high, self.unit)}"
+
+    def holds(self, value: float) -> bool:
+        """Whether the value lies in the inclusive range; a value that is no number does not."""
+        return self.low <= value <= self.high
+
+
+@dataclass(frozen=True, slots=True)
+class Formula:
+    """A named engineering formula: the function together with what a reader must know to trust it."""
+
+    name: str
+    subject: str
+    title: str
+    function: Callable[..., float]
+    inputs: tuple[Input, ...]
+    result: str
+    result_symbol: str
+    result_unit: str
+    equation: str
+    source: str
+    checked: Checked
+    note: str = ""
+    unit_follows: str = ""
+    """The input whose unit the result takes, for formulas that hold in any unit."""
+
+    def __call__(self, *values: float, **named: float) -> float:
+        """The result, finite; OutOfRange where the arithmetic itself breaks down."""
+        try:
+            result = self.function(*values, **named)
+        except (ArithmeticError, OutOfRange) as fault:
+            if isinstance(fault, OutOfRange):
+                raise
+            raise OutOfRange(self._breakdown()) from fault
+        if not isfinite(result):
+            raise OutOfRange(self._breakdown())
+        return result
+
+    def outside(self, values: Mapping[str, float]) -> tuple[str, ...]:
+        """One sentence for each value outside the inclusive range of its input."""
+        return tuple(
+            f"{each.text[:1].upper()}{each.text[1:]} ({each.symbol}) is {with_unit(values[each.name], each.unit)}; "
+            f"the formula is stated for {each.range}."
+            for each in self.inputs
+            if each.name in values and not each.holds(values[each.name])
+        )
+
+    def _breakdown(self) -> str:
+        ranges = ", ".join(f"{each.symbol} {each.range}" for each in self.inputs)
+        return f"{self.title} has no finite value here; it is stated for {ranges}."
+
+
+def plain(value: float) -> str:
+    """A number as it is printed in a sentence, with spaces between the thousands from five digits on.
+
+    >>> plain(20_000_000), plain(1500), plain(-2.2)
+    ('20 000 000', '1500', '-2.2')
+    """
+    return f"{value:,.10g}".replace(",", " ") if abs(value) >= 10_000 else f"{value:.10g}"
+
+
+def with_unit(value: float, unit: str) -> str:
+    """A number with its unit; the viscosity grade carries its unit in front.
+
+    >>> with_unit(46, "ISO VG"), with_unit(1500, "1/min"), with_unit(0.5, "")
+    ('ISO VG 46', '1500 1/min', '0.5')
+    """
+    if unit == "ISO VG":
+        return f"{unit} {plain(value)}"
+    return f"{plain(value)} {unit}".rstrip()
+
+
+def demand_positive(value: float, text: str, unit: str = "") -> None:
+    """Refuse a value that is not a finite number above zero."""
+    if not 0 < value < inf:
+        raise OutOfRange(f"The {text} must be more than 0 {unit}".rstrip() + f", but it is {with_unit(value, unit)}.")

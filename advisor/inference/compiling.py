@@ -1,0 +1,228 @@
+"""From conditions to the engine's rule sets: conjunctions of tests, dealt out so that no limit of the engine is met."""
+
+import math
+from collections.abc import Iterator, Mapping, Sequence
+from dataclasses import dataclass
+from typing import Final, NamedTuple
+
+from advisor.conditions import Bound, Condition, Domain, Either, Every, FactRef, Member, Stated, Ticked
+from advisor.inference.attributes import Attributes, Spelling, number, text
+from advisor.inference.faults import TooManyBranches, UnfitCondition, Unsendable
+
+MOST_BRANCHES: Final = 40
+"""Per condition; more is a table that wants to be written as one."""
+
+MOST_IN_SET: Final = 60
+"""Branches per rule set; the engine overruns when 65 are pending, and hangs or dies at some hundreds."""
+
+MOST_ATTRIBUTES: Final = 200
+"""Attributes per rule set; the engine refuses a record of 255."""
+
+SENTINEL: Final = "zz"
+"""The rule that must fire in every case."""
+
+PROBE: Final = '{"$gt":{"probe":0.5}}'
+"""The first test of every rule, and the only one of the sentinel.
+
+It keeps rules that only ask for absence from firing on the engine's own messages, and it fails where a number
+is read with a decimal comma.
+"""
+
+HEAD: Final = '{"id":"c","sid":"1","probe":0.7'
+RETRACTION: Final = '{"id":"c","sid":"1"}'
+_SIGNS: Final = {"<": "$lt", "<=": "$lte", ">": "$gt", ">=": "$gte", "!=": "$neq"}
+
+
+class Test(NamedTuple):
+    """One test in the engine's words, and the attributes it looks at."""
+
+    words: str
+    attributes: tuple[int, ...]
+
+
+Branch = tuple[Test, ...]
+Branches = list[Branch]
+
+
+@dataclass(frozen=True, slots=True)
+class RuleSet:
+    """What the engine builds one rule set from; `owners` leads from the names of its rules to conditions."""
+
+    definition: str
+    owners: Mapping[str, int]
+    attributes: tuple[int, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Compiled:
+    """All rule sets of some conditions, how records are written for them, and what holds without looking."""
+
+    rule_sets: tuple[RuleSet, ...]
+    spellings: tuple[Spelling, ...]
+    always: frozenset[int]
+
+
+def compile_conditions(conditions: Sequence[Condition], domains: Mapping[str, Domain]) -> Compiled:
+    """Bring the conditions into the engine's form; raises `UnfitCondition` with the position of the first unfit one."""
+    attributes = Attributes(domains)
+    always: set[int] = set()
+    branches: list[tuple[int, Branch]] = []
+    for index, condition in enumerate(conditions):
+        own = _compiled(index, condition, domains, attributes)
+        # A conjunction of nothing always holds, and the engine fires an empty one twice: it never gets to see it.
+        if () in own:
+            always.add(index)
+        else:
+            branches += [(index, branch) for branch in own]
+    if attributes.clash():
+        raise UnfitCondition(0, "its attributes cannot be told apart by the engine; split the step.")
+    rule_sets = tuple(_rule_set(part) for part in _dealt_out(branches))
+    return Compiled(rule_sets, tuple(attributes.spellings), frozenset(always))
+
+
+def _compiled(index: int, condition: Condition, domains: Mapping[str, Domain], attributes: Attributes) -> Branches:
+    count = _count(condition)
+    if count > MOST_BRANCHES:
+        raise TooManyBranches(
+            index,
+            f"its alternatives multiply to {count} combinations, and {MOST_BRANCHES} is the most that one rule may "
+            "have; write several rules, or a table.",
+        )
+    try:
+        own = _Alternatives(domains, attributes).of(condition)
+    except (_UnfitTermError, Unsendable) as unfit:
+        raise UnfitCondition(index, str(unfit)) from None
+    if any(len(_attributes(branch)) > MOST_ATTRIBUTES for branch in own):
+        raise UnfitCondition(index, f"it looks at more than {MOST_ATTRIBUTES} values at once; write several rules.")
+    return own
+
+
+def _count(condition: Condition) -> int:
+    """How many branches the condition has, without building them."""
+    if isinstance(condition, Every):
+        return math.prod(_count(part) for part in condition.parts)
+    if isinstance(condition, Either):
+        return sum(_count(part) for part in condition.parts)
+    return len(condition.among) if isinstance(condition, Member | Ticked) and condition.wanted else 1
+
+
+class _UnfitTermError(ValueError):
+    """Why a term cannot be brought into the engine's form."""
+
+
+@dataclass(frozen=True, slots=True)
+class _Alternatives:
+    """Writes conditions as alternatives, each a conjunction of tests."""
+
+    domains: Mapping[str, Domain]
+    attributes: Attributes
+
+    def of(self, condition: Condition) -> Branches:
+        if isinstance(condition, Either):
+            return list(dict.fromkeys(branch for part in condition.parts for branch in self.of(part)))
+        if isinstance(condition, Every):
+            return self._every(condition)
+        if isinstance(condition, Bound):
+            return self._bound(condition)
+        if isinstance(condition, Member):
+            return self._member(condition)
+        if isinstance(condition, Ticked):
+            return self._ticked(condition)
+        return self._stated(condition)
+
+    def _every(self, condition: Every) -> Branches:
+        if _count(condition) == 0:
+            return []
+        product: Branches = [()]
+        for part in condition.parts:
+            alternatives = self.of(part)
+            product = [done + more for done in product for more in alternatives]
+        # A test said twice is said once: ("a > 1", "a > 1") would only cost time.
+        return list(dict.fromkeys(tuple(dict.fromkeys(branch)) for branch in product))
+
+    def _bound(self, term: Bound) -> Branches:
+        seen = self._number(term.name)
+        if not isinstance(term.limit, FactRef):
+            return [(_compare(seen, term.sign, number(term.limit)),)]
+        limit = self._number(term.limit.name)
+        # Against an absent attribute the engine's answer is left to chance, so its presence is tested first.
+        against = _compare(seen, term.sign, f'{{"$m":"a{limit}"}}', limit)
+        return [(_present(limit), against)]
+
+    def _member(self, term: Member) -> Branches:
+        domain = self._domain(term.name)
+        if domain.kind == "several":
+            raise _UnfitTermError(f"{term.name} is a list of ticks, and a membership needs one choice.")
+        seen = self.attributes.value(term.name)
+        spell = number if domain.ordered else text
+        spelled = sorted(spell(each) for each in term.among)
+        if term.wanted:
+            return [(_compare(seen, "=", each),) for each in spelled]
+        return [tuple(_compare(seen, "!=", each) for each in spelled) or (_present(seen),)]
+
+    def _ticked(self, term: Ticked) -> Branches:
+        if self._domain(term.name).kind != "several":
+            raise _UnfitTermError(f"{term.name} is no list of ticks.")
+        ticks = [self.attributes.tick(term.name, choice) for choice in sorted(term.among)]
+        if term.wanted:
+            return [(_compare(tick, "=", "true"),) for tick in ticks]
+        clear = tuple(_compare(tick, "=", "false") for tick in ticks)
+        return [clear or (_present(self.attributes.answered(term.name)),)]
+
+    def _stated(self, term: Stated) -> Branches:
+        several = self._domain(term.name).kind == "several"
+        seen = self.attributes.answered(term.name) if several else self.attributes.value(term.name)
+        return [(_present(seen) if term.wanted else _absent(seen),)]
+
+    def _number(self, name: str) -> int:
+        if not self._domain(name).ordered:
+            raise _UnfitTermError(f"{name} is neither a number nor a place on a scale, and a threshold needs one.")
+        return self.attributes.value(name)
+
+    def _domain(self, name: str) -> Domain:
+        if name not in self.domains:
+            raise _UnfitTermError(f"{name} is not declared.")
+        return self.domains[name]
+
+
+def _compare(attribute: int, sign: str, constant: str, *others: int) -> Test:
+    equal = f'{{"a{attribute}":{constant}}}'
+    return Test(equal if sign == "=" else f'{{"{_SIGNS[sign]}":{equal}}}', (attribute, *others))
+
+
+def _present(attribute: int) -> Test:
+    return Test(f'{{"$ex":{{"a{attribute}":1}}}}', (attribute,))
+
+
+def _absent(attribute: int) -> Test:
+    return Test(f'{{"$nex":{{"a{attribute}":1}}}}', (attribute,))
+
+
+def _attributes(branch: Branch) -> set[int]:
+    return {attribute for test in branch for attribute in test.attributes}
+
+
+def _dealt_out(branches: list[tuple[int, Branch]]) -> Iterator[list[tuple[int, Branch]]]:
+    part: list[tuple[int, Branch]] = []
+    seen: set[int] = set()
+    for owner, branch in branches:
+        together = seen | _attributes(branch)
+        if len(part) == MOST_IN_SET or len(together) > MOST_ATTRIBUTES:
+            yield part
+            part, together = [], _attributes(branch)
+        part.append((owner, branch))
+        seen = together
+    if part:
+        yield part
+
+
+def _rule_set(part: list[tuple[int, Branch]]) -> RuleSet:
+    rules = [_rule(f"{place:02}", [test.words for test in branch]) for place, (_, branch) in enumerate(part)]
+    rules.append(_rule(SENTINEL, []))
+    owners = {f"{place:02}": owner for place, (owner, _) in enumerate(part)}
+    attributes = sorted(set().union(*(_attributes(branch) for _, branch in part)))
+    return RuleSet("{" + ",".join(rules) + "}", owners, tuple(attributes))
+
+
+def _rule(name: str, tests: list[str]) -> str:
+    return f'"{name}":{{"all":[{{"m":{{"$and":[{",".join([PROBE, *tests])}]}}}}]}}'

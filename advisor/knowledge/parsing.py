@@ -1,0 +1,268 @@
+"""Typing of values and conditions by the declared kinds of the names they stand under."""
+
+from collections.abc import Callable
+from collections.abc import Mapping as Map
+from dataclasses import dataclass, field, replace
+
+from advisor.conditions import ALWAYS, Bound, Coded, Condition, Domain, Either, Every, FactRef, Member, Stated, Ticked, Value
+from advisor.documents import Mapping, Mark, Node, Problem, Problems, Scalar, Sequence, as_number, nearest
+from advisor.knowledge.model import Band, Cell, Row, Table
+
+_THRESHOLDS = {"above": ">", "at_least": ">=", "below": "<", "at_most": "<="}
+_OPERATORS = (*_THRESHOLDS, "any_of", "none_of", "fact", "row")
+
+
+class Blank(Exception):
+    """The row has no value in a cell that the rule names: the row does not apply."""
+
+
+class Mistyped(Exception):
+    """A problem was recorded; the part has no value."""
+
+
+@dataclass(frozen=True, slots=True)
+class Scope:
+    """What names mean in one place of the knowledge."""
+
+    problems: Problems
+    names: Map[str, Domain]
+    facts: Map[str, Domain] = field(default_factory=dict)
+    table: Table | None = None
+    row: Row | None = None
+    trail: tuple[str, ...] = ()
+    what: str = "fact"
+    may_ask_stated: bool = False
+    hints: Map[str, str] = field(default_factory=dict)
+
+    def at(self, *trail: str) -> "Scope":
+        """The same scope further down the trail."""
+        return replace(self, trail=self.trail + trail)
+
+    def fault(self, node: Node, message: str, hint: str = "") -> Mistyped:
+        """Record a problem at a node."""
+        self.problem(node.mark, message, hint)
+        return Mistyped()
+
+    def problem(self, mark: Mark, message: str, hint: str = "") -> None:
+        """Record a problem at a mark, once."""
+        problem = Problem(mark.file, mark.line, mark.column, self.trail, message, hint)
+        if problem not in set(self.problems):
+            self.problems.add(problem)
+
+    def domain(self, node: Node, name: str, mark: Mark) -> Domain:
+        """The domain of a name, or a problem at its mark."""
+        if name in self.names:
+            return self.names[name]
+        hint = self.hints.get(name) or nearest(name, self.names).strip() or f"declare it, or use another {self.what}"
+        self.problem(mark, f"'{name}' is no {self.what} that is known here", hint)
+        raise Mistyped
+
+
+def value(node: Node, domain: Domain, scope: Scope) -> Value:
+    """A constant of the domain."""
+    if domain.kind == "several":
+        return _ticks(node, domain, scope)
+    if not isinstance(node, Scalar):
+        raise scope.fault(node, "one value is expected here, not a list or a mapping")
+    if domain.kind == "number":
+        return _number(node, domain, scope)
+    text = str(node)
+    if domain.kind == "yes_no":
+        text = {"true": "yes", "false": "no"}.get(text, text)
+    if domain.kind == "text" or domain.accepts(text):
+        return text
+    known = list(domain.choices)
+    hint = nearest(text, known).strip() or f"known here: {', '.join(known[:12])}{' ...' if len(known) > 12 else ''}"
+    raise scope.fault(node, f"'{text}' is not one of the choices", hint)
+
+
+def _ticks(node: Node, domain: Domain, scope: Scope) -> Value:
+    if isinstance(node, Scalar) and str(node) == "none" and "none" not in domain.choices:
+        return ()
+    entries = list(node) if isinstance(node, Sequence) else [node]
+    single = replace(domain, kind="choice")
+    ticked = {str(value(entry, single, scope)) for entry in entries}
+    return tuple(choice for choice in domain.choices if choice in ticked)
+
+
+def _number(node: Scalar, domain: Domain, scope: Scope) -> float:
+    if str(node) in domain.named:
+        return domain.named[str(node)]
+    try:
+        number = as_number(node)
+    except ValueError as fault:
+        message, _, hint = str(fault).partition("; ")
+        raise scope.fault(node, message, hint) from None
+    if not domain.accepts(number):
+        if domain.places and domain.low <= number <= domain.high:
+            raise scope.fault(node, f"{number:g} is none of the grades", f"use one of {_series(domain.places)}")
+        raise scope.fault(
+            node, f"{number:g} {domain.unit}".strip() + f" lies outside {domain.low:g} to {domain.high:g} {domain.unit}".rstrip(),
+            "check the unit and the decimal point")
+    return number
+
+
+def _series(numbers: tuple[float, ...]) -> str:
+    return ", ".join(f"{number:g}" for number in numbers)
+
+
+def condition(node: Node, scope: Scope) -> Condition:
+    """A condition tree; raises Mistyped with every fault recorded, or Blank for a row that does not apply."""
+    if isinstance(node, Scalar) and str(node) == "always":
+        return ALWAYS
+    if not isinstance(node, Mapping):
+        raise scope.fault(node, "a condition is written as 'name: test'", "for instance {water_exposure: wash}")
+    return _all(
+        [lambda name=name, test=test: _entry(node, name, test, scope) for name, test in node.items()], Every)  # type: ignore[misc]
+
+
+def _all(parts: list[Callable[[], Condition]], kind: type[Every] | type[Either]) -> Condition:
+    """Parse all parts, so that all faults are told at once."""
+    done: list[Condition] = []
+    faulty = blank = False
+    for part in parts:
+        try:
+            done.append(part())
+        except Mistyped:
+            faulty = True
+        except Blank:
+            blank = True
+    if faulty:
+        raise Mistyped
+    if blank:
+        raise Blank
+    return done[0] if len(done) == 1 else kind(tuple(done))
+
+
+def _entry(parent: Mapping, name: str, test: Node, scope: Scope) -> Condition:
+    if name == "either":
+        if not isinstance(test, Sequence) or len(test) == 0:
+            raise scope.fault(test, "'either' holds a list of conditions", "either: [{a: 1}, {b: 2}]")
+        return _all([lambda each=each: condition(each, scope) for each in test], Either)  # type: ignore[misc]
+    domain = scope.domain(test, name, parent.key_marks[name])
+    if domain.kind == "text":
+        raise scope.fault(test, f"'{name}' is text, and no condition can be put on text")
+    return _test(name, test, domain, scope)
+
+
+def _test(name: str, test: Node, domain: Domain, scope: Scope) -> Condition:
+    if isinstance(test, Scalar) and str(test) in {"stated", "not_stated"} and scope.may_ask_stated:
+        return Stated(name, str(test) == "stated")
+    if isinstance(test, Mapping) and not {"fact", "row"} & set(test):
+        unknown = [key for key in test if key not in _OPERATORS]
+        for key in unknown:
+            scope.problem(test.key_marks[key], f"'{key}' is no operator",
+                          nearest(key, _OPERATORS).strip() or "known: " + ", ".join(_OPERATORS[:6]))
+        if unknown or not test:
+            raise Mistyped if unknown else scope.fault(test, "a test is missing here")
+        return _all([lambda op=op, operand=operand: _operation(name, op, operand, domain, scope)  # type: ignore[misc]
+                     for op, operand in test.items()], Every)
+    if isinstance(test, Sequence):
+        raise scope.fault(test, "a list is no test", "write {any_of: [...]} or {none_of: [...]}")
+    return _equals(name, operand(test, domain, scope), domain)
+
+
+def _operation(name: str, op: str, node: Node, domain: Domain, scope: Scope) -> Condition:
+    if op in _THRESHOLDS:
+        if not domain.ordered:
+            raise scope.fault(node, f"'{name}' has no order, so '{op}' means nothing", "use any_of or none_of")
+        limit = operand(node, domain, scope)
+        return Bound(name, _THRESHOLDS[op], limit)  # type: ignore[arg-type]  # ordered domains code to numbers
+    if domain.kind == "number" and not domain.places:
+        raise scope.fault(node, f"'{name}' is a number", "use above, at_least, below or at_most")
+    if not isinstance(node, Sequence) or not len(node):
+        raise scope.fault(node, f"'{op}' holds a list", f"{op}: [a, b]")
+    single = replace(domain, kind="choice") if domain.kind == "several" else domain
+    among: set[Coded] = set()
+    faulty = False
+    for entry in node:
+        try:
+            one = operand(entry, single, scope)
+        except Mistyped:
+            faulty = True
+            continue
+        if isinstance(one, FactRef):
+            raise scope.fault(entry, "a fact cannot stand in a list", "use {name: {fact: x}}")
+        among.add(one)
+    if faulty:
+        raise Mistyped
+    wanted = op == "any_of"
+    if domain.kind == "several":
+        return Ticked(name, frozenset(map(str, among)), wanted)
+    return Member(name, frozenset(among), wanted)  # type: ignore[arg-type]  # all of one kind by the domain
+
+
+def _equals(name: str, operand: Coded | FactRef, domain: Domain) -> Condition:
+    if domain.kind == "several":
+        if isinstance(operand, frozenset) and not operand:
+            return Ticked(name, frozenset(domain.choices), wanted=False)
+        return Ticked(name, operand if isinstance(operand, frozenset) else frozenset({str(operand)}))
+    if domain.ordered:
+        return Bound(name, "=", operand)  # type: ignore[arg-type]  # ordered domains code to numbers
+    if isinstance(operand, FactRef):
+        raise TypeError("equality with a fact is for numbers and scales")
+    return Member(name, frozenset({operand}))  # type: ignore[arg-type]  # a choice
+
+
+def operand(node: Node, domain: Domain, scope: Scope) -> Coded | FactRef:
+    """A constant, `{fact: x}` or `{row: column}`, coded for the domain."""
+    if isinstance(node, Mapping):
+        if len(node) != 1 or not {"fact", "row"} & set(node):
+            raise scope.fault(node, "a value, {fact: x} or {row: column} is expected here")
+        kind, name = next(iter(node.items()))
+        if not isinstance(name, Scalar):
+            raise scope.fault(name, "a name is expected here")
+        return _fact(name, domain, scope) if kind == "fact" else domain.code(_cell(name, domain, scope))
+    return domain.code(value(node, domain, scope))
+
+
+def _fact(node: Scalar, domain: Domain, scope: Scope) -> FactRef:
+    name = str(node)
+    if name not in scope.facts:
+        raise scope.fault(node, f"'{name}' is no fact", nearest(name, scope.facts).strip())
+    other = scope.facts[name]
+    same = domain.kind == other.kind and (
+        domain.unit == other.unit if domain.kind == "number" else list(domain.choices) == list(other.choices))
+    if not domain.ordered or not same:
+        raise scope.fault(
+            node, f"'{name}' ({_kind(other)}) cannot stand for a limit here ({_kind(domain)})",
+            "both sides need the same kind and unit")
+    return FactRef(name)
+
+
+def _kind(domain: Domain) -> str:
+    return f"{domain.kind} in {domain.unit}" if domain.unit else domain.kind
+
+
+def _cell(node: Scalar, domain: Domain, scope: Scope) -> Value:
+    name = str(node)
+    if scope.table is None or scope.row is None:
+        raise scope.fault(node, "{row: ...} needs 'each_row_of'", "name the table with each_row_of")
+    if name not in scope.table.columns:
+        raise scope.fault(node, f"'{name}' is no column of table {scope.table.id}", nearest(name, scope.table.columns).strip())
+    column = scope.table.columns[name]
+    if domain.kind == "number" and (column.kind != "number" or column.unit != domain.unit):
+        raise scope.fault(node, f"column '{name}' ({_kind(column)}) does not suit ({_kind(domain)})",
+                          "both sides need the same kind and unit")
+    cell = scope.row.cells.get(name)
+    if cell is None:
+        raise Blank
+    if isinstance(cell, Band):
+        raise scope.fault(node, f"column '{name}' holds bands, not values")
+    if domain.kind != "number" and not domain.accepts(cell):
+        raise scope.fault(
+            node, f"'{cell}' in row '{scope.row.id}' (line {scope.row.mark.line}) is not one of the choices here")
+    return cell
+
+
+def cell(node: Node, domain: Domain, scope: Scope, *, band: bool) -> Cell:
+    """A cell of a table."""
+    if not band:
+        return value(node, domain, scope)
+    if not isinstance(node, Mapping) or not set(node) <= {"from", "below"} or not node:
+        raise scope.fault(node, "a band is written {from: 1, below: 2}", "either end may be left out")
+    low = value(node["from"], domain, scope) if "from" in node else float("-inf")
+    high = value(node["below"], domain, scope) if "below" in node else float("inf")
+    if not low < high:  # type: ignore[operator]  # both are numbers by the domain
+        raise scope.fault(node, "the band is empty: 'from' is not below 'below'")
+    return Band(low, high)  # type: ignore[arg-type]  # both are numbers by the domain

@@ -1,0 +1,389 @@
+"""The shape of every knowledge file, as pydantic models: the structural stage of loading.
+
+Conditions, table cells and values stay trees here; they are typed by the declared kinds in the next stage.
+"""
+
+from typing import Annotated, Any, Literal
+
+from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, StringConstraints
+
+from advisor.documents import as_number, as_yes_no
+
+
+def _number(value: object) -> float:
+    if not isinstance(value, str):
+        raise ValueError("a number is expected here, not a list or a mapping")
+    return as_number(value)
+
+
+def _whole(value: object) -> int:
+    number = _number(value)
+    if number != int(number):
+        raise ValueError("a whole number is expected here")
+    return int(number)
+
+
+def _yes_no(value: object) -> bool:
+    if not isinstance(value, str):
+        raise ValueError("yes or no is expected here")
+    return as_yes_no(value)
+
+
+def _text(value: object) -> str:
+    if not isinstance(value, str):
+        raise ValueError("text is expected here, not a list or a mapping")
+    if not value.strip():
+        raise ValueError("text is missing here")
+    return str(value)
+
+
+Number = Annotated[float, BeforeValidator(_number)]
+Whole = Annotated[int, BeforeValidator(_whole)]
+YesNo = Annotated[bool, BeforeValidator(_yes_no)]
+Text = Annotated[str, BeforeValidator(_text)]
+Id = Annotated[str, BeforeValidator(_text), StringConstraints(pattern=r"^[A-Za-z0-9_][A-Za-z0-9_.\-]{0,79}$")]
+Name = Annotated[str, BeforeValidator(_text), StringConstraints(pattern=r"^[a-z][a-z0-9_]{0,63}$")]
+Tree = Any
+"""A part that is typed later by the kind of the name it stands under."""
+
+Unit = Literal["°C", "K", "mm", "1/min", "mm/min", "mm²/s", "mPa·s", "kg/m³", "N", "h", "g", "cm³", "kg", "%", "",
+               "ISO VG", "months"]
+SourceKind = Literal["standard", "handbook", "paper", "government", "common practice"]
+Checked = Literal["yes", "from memory", "no source"]
+Kind = Literal["number", "choice", "scale", "several", "item", "yes_no", "text"]
+
+
+class Shape(BaseModel):
+    """A mapping of which every key is known."""
+
+    model_config = ConfigDict(extra="forbid")
+
+
+class CitationShape(Shape):
+    """A place in a source."""
+
+    id: Id
+    where: Text = ""
+    checked: Checked | None = None
+
+
+Citations = list[CitationShape]
+
+
+class SourceShape(Shape):
+    """A publication."""
+
+    title: Text
+    publisher: Text = ""
+    year: Text = ""
+    kind: SourceKind
+    checked: Checked
+    note: Text = ""
+
+
+class StepShape(Shape):
+    """How a shortfall is counted."""
+
+    absolute: Number | None = None
+    ratio: Number | None = None
+    places: YesNo | None = None
+
+
+class DomainShape(Shape):
+    """A kind of value."""
+
+    title: Text = ""
+    kind: Kind
+    unit: Unit = ""
+    limits: Annotated[list[Number], Field(min_length=2, max_length=2)] | None = None
+    step: Tree = None
+    places: list[Number] | None = None
+    named: dict[Name, Number] | None = None
+    choices: Tree = None
+    choices_of: Id | None = None
+    note: Text = ""
+    source: Citations = []
+
+
+class QuestionShape(Shape):
+    """A question of the interview."""
+
+    ask: Text
+    help: Text = ""
+    section: Text = ""
+    decides: Literal["lubricant", "quantity"] = "lubricant"
+    when: Tree = None
+
+
+class AssumeShape(Shape):
+    """What stands for a don't know."""
+
+    value: Tree
+    because: Text
+    source: Citations = []
+    state: Literal["open"] | None = None
+
+
+class ConcludedShape(Shape):
+    """What a conclusion starts from and how several combine."""
+
+    otherwise: Tree
+    combine: Literal["highest", "lowest", "one"]
+
+
+class FactShape(DomainShape):
+    """A declared fact."""
+
+    title: Text
+    question: QuestionShape | None = None
+    assume: AssumeShape | None = None
+    unasked: Tree = None
+    concluded: ConcludedShape | None = None
+    tunable: AssumeShape | None = None
+
+
+class LookUpShape(Shape):
+    """A look-up in a table."""
+
+    table: Id
+    by: Tree
+    column: Id | None = None
+    combine: Literal["highest", "lowest"] | None = None
+    otherwise: Tree = None
+
+
+class WorstPartShape(Shape):
+    """One part of a worst-of."""
+
+    looked_up: LookUpShape
+
+
+class SameShape(Shape):
+    """The fact that names the product in use."""
+
+    item: Name
+
+
+class PropertyShape(DomainShape):
+    """A declared property of lubricants."""
+
+    title: Text
+    of: Literal["grease", "oil"] | None = None
+    test: Text = ""
+    hidden: YesNo = False
+    formula: Id | None = None
+    inputs: Tree = Field(default=None, alias="in")
+    looked_up: LookUpShape | None = None
+    worst_of: list[WorstPartShape] | None = None
+    same: SameShape | None = None
+    concluded: ConcludedShape | None = None
+
+
+class ComputationShape(Shape):
+    """A computed fact."""
+
+    fact: Name
+    title: Text
+    formula: Id | None = None
+    inputs: Tree = Field(default=None, alias="in")
+    looked_up: LookUpShape | None = None
+    limits: Annotated[list[Number], Field(min_length=2, max_length=2)] | None = None
+    note: Text = ""
+    source: Citations = []
+
+
+class ConclusionShape(Shape):
+    """One conclusion of a rule."""
+
+    must: Tree = None
+    should: Tree = None
+    level: Whole | None = Field(default=None, ge=1, le=4)
+    set: Tree = None
+    caution: Id | None = None
+    refer: Id | None = None
+    withhold: YesNo = False
+    for_: Tree = Field(default=None, alias="for")
+
+
+class MayConflictShape(Shape):
+    """A conflict that is real life."""
+
+    rule: Id
+    because: Text
+
+
+class RuleShape(Shape):
+    """A written rule."""
+
+    id: Name
+    title: Text
+    status: Literal["draft", "agreed", "retired"]
+    when: Tree
+    unless: Tree = None
+    each_row_of: Id | None = None
+    where: Tree = None
+    then: Annotated[list[ConclusionShape], Field(min_length=1)]
+    because: Text
+    limits: Text = ""
+    source: Annotated[Citations, Field(min_length=1)]
+    fires: Tree = None
+    silent: Tree = None
+    may_conflict: MayConflictShape | list[MayConflictShape] | None = None
+    note: Text = ""
+
+
+class TableShape(Shape):
+    """A table, or a symmetric matrix."""
+
+    title: Text
+    key: Id | None = None
+    policy: Literal["unique", "all"] | None = None
+    columns: dict[Id, Tree] | None = None
+    matrix: Literal["symmetric"] | None = None
+    of: Tree = None
+    values: Tree = None
+    source: Citations = []
+    note: Text = ""
+    rows: Tree
+
+
+class CautionShape(Shape):
+    """A caution."""
+
+    text: Text
+    source: Citations = []
+
+
+class ReferralShape(CautionShape):
+    """A referral."""
+
+    to: Text
+
+
+class ProcedureShape(Shape):
+    """Numbered steps."""
+
+    title: Text
+    steps: list[Text]
+    source: Citations = []
+
+
+class DocketRowShape(Shape):
+    """A row of the docket."""
+
+    id: Id
+    title: Text
+    recommends: Name | None = None
+    demands: list[Name] | None = None
+    facts: list[Name] | None = None
+    shown_if: Tree = None
+
+
+class UsualOilsShape(Shape):
+    """How the usual oils are made."""
+
+    table: Id
+    family: Name
+    low: Id = Field(alias="from")
+    high: Id = Field(alias="to")
+    index: Id
+    ordinary: Tree
+    source: Citations = []
+
+
+class PointKindShape(Shape):
+    """A kind of point."""
+
+    title: Text
+    folder: Id
+
+
+class PurposeShape(Shape):
+    """A selection step."""
+
+    title: Text
+    purpose: Text = Field(alias="for")
+
+
+class File(Shape):
+    """What every file begins with."""
+
+    format: Literal["1"]
+
+
+class SourcesFile(File):
+    """sources.yaml."""
+
+    sources: dict[Id, SourceShape]
+
+
+class PointKindsFile(File):
+    """point_kinds.yaml."""
+
+    kinds: dict[Name, PointKindShape]
+
+
+class StepsFile(File):
+    """steps.yaml."""
+
+    steps: dict[Name, PurposeShape]
+
+
+class FactsFile(File):
+    """facts.yaml."""
+
+    facts: dict[Name, FactShape] = {}
+
+
+class PropertiesFile(File):
+    """properties.yaml."""
+
+    properties: dict[Name, PropertyShape]
+
+
+class TablesFile(File):
+    """A file of tables."""
+
+    tables: dict[Id, TableShape]
+
+
+class StepFile(File):
+    """The computations and rules of a step."""
+
+    computations: list[ComputationShape] = []
+    rules: list[RuleShape] = []
+
+
+class CautionsFile(File):
+    """cautions.yaml."""
+
+    cautions: dict[Name, CautionShape]
+    referrals: dict[Name, ReferralShape]
+    change_over: dict[Name, ProcedureShape] = {}
+
+
+class DocketFile(File):
+    """docket.yaml."""
+
+    rows: list[DocketRowShape]
+    quantities: list[DocketRowShape] = []
+
+
+class UsualOilsFile(File):
+    """usual_oils.yaml."""
+
+    usual_oils: UsualOilsShape
+
+
+class DesignationsFile(File):
+    """designations.yaml."""
+
+    designations: dict[Id, Tree]
+
+
+class ShelfFile(File):
+    """A shelf."""
+
+    shelf: Text
+    note: Text = ""
+    products: list[Tree]

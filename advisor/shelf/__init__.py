@@ -1,0 +1,22 @@
+"""The shelf and the usual oils: judged and ranked column by column against a specification."""
+
+from advisor.shelf.catalogue import Catalogue, Item, Raise, choices, products, usual_oils
+from advisor.shelf.columns import Column, judge, places
+from advisor.shelf.judging import Judgement, Shortfall, Verdict, at_limit, steps_short
+
+__all__ = [
+    "Catalogue",
+    "Column",
+    "Item",
+    "Judgement",
+    "Raise",
+    "Shortfall",
+    "Verdict",
+    "at_limit",
+    "choices",
+    "judge",
+    "places",
+    "products",
+    "steps_short",
+    "usual_oils",
+]
