@@ -181,7 +181,7 @@ class Designer:
         if recommended.kappa is not None:
             known["kappa"] = recommended.kappa
         record = {name: self.knowledge.properties[name].domain.code(value) for name, value in known.items() if name in mentions(demand.for_)}
-        return holds(demand.for_, record) is True
+        return holds(demand.for_, record) is not False
 
     def read_din(self, text: str) -> DinCode:
         """Read a DIN 51825 code back."""

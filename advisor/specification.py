@@ -96,14 +96,15 @@ def combine(demands: Iterable[Demand], domains: Mapping[str, Domain]) -> Specifi
     conditional: list[Demand] = []
     for demand in demands:
         (plain if demand.for_ == ALWAYS else conditional).append(demand)
+    allowed = _allowed(plain, domains, {})
     while True:
-        allowed = _allowed(plain, domains)
         decided = [(demand, _for_holds(demand.for_, allowed, domains)) for demand in conditional]
         now_plain = [replace(demand, for_=ALWAYS) for demand, outcome in decided if outcome is True]
         conditional = [demand for demand, outcome in decided if outcome is None]
-        plain += now_plain
         if not now_plain:
             break
+        plain += now_plain
+        allowed = _allowed(now_plain, domains, allowed)
     return Specification(tuple(plain), tuple(conditional), tuple(_empty_intersections(plain, domains)), allowed)
 
 
@@ -115,17 +116,25 @@ def _finite(domain: Domain) -> list[Coded]:
     return []
 
 
-def _allowed(plain: list[Demand], domains: Mapping[str, Domain]) -> dict[str, frozenset[Coded]]:
+def _allowed(plain: list[Demand], domains: Mapping[str, Domain], before: Mapping[str, frozenset[Coded]]) -> dict[str, frozenset[Coded]]:
     """For each finite property with a plain must: the values that all of its musts allow."""
-    found: dict[str, frozenset[Coded]] = {}
+    found = dict(before)
     for demand in plain:
         if not demand.must or demand.void:
             continue
         name = demand.property
-        values = found.get(name, frozenset(_finite(domains[name])))
+        values = found[name] if name in found else frozenset(_finite(domains[name]))
         if values or name in found:
-            found[name] = frozenset(each for each in values if holds(demand.test, {name: each}))
+            found[name] = _kept(demand, values)
     return found
+
+
+def _kept(demand: Demand, values: frozenset[Coded]) -> frozenset[Coded]:
+    """Those of the values that meet the demand's test."""
+    test = demand.test
+    if isinstance(test, Member):
+        return values & test.among if test.wanted else values - test.among
+    return frozenset(each for each in values if holds(test, {demand.property: each}))
 
 
 def _for_holds(condition: Condition, allowed: Mapping[str, frozenset[Coded]], domains: Mapping[str, Domain]) -> bool | None:
@@ -156,8 +165,13 @@ def _smallest_empty(name: str, musts: list[Demand], domain: Domain) -> tuple[str
     values = _finite(domain) or _samples(name, musts, domain)
     if not values:
         return None
-    failing = [frozenset(each for each in values if not holds(demand.test, {name: each})) for demand in musts]
-    chosen = smallest_cover(failing, frozenset(values))
+    whole = frozenset(values)
+    left = whole
+    for demand in musts:
+        left = _kept(demand, left)
+    if left:
+        return None
+    chosen = smallest_cover([whole - _kept(demand, whole) for demand in musts], whole)
     return None if chosen is None else tuple(sorted({musts[each].rule for each in chosen}))
 
 

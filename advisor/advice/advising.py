@@ -21,7 +21,7 @@ from advisor.conditions import ALWAYS, VOID, Bound, Coded, Condition, FactRef, R
 from advisor.designations import CodesFound, Designer
 from advisor.inference import StepRules
 from advisor.knowledge import CLOSING_FACTS, Asks, Instance, Knowledge, Refers, Sets, Warns
-from advisor.shelf import Catalogue, Item, Judgement, Raise, Verdict, at_limit, choices, judge, places, products, usual_oils
+from advisor.shelf import Catalogue, Item, Judgement, Raise, Verdict, all_reads, at_limit, choices, judge, places, products, usual_oils
 from advisor.shelf.catalogue import reads
 from advisor.specification import Conflict, Demand, Specification, combine, mentions, with_limits
 
@@ -58,6 +58,8 @@ class Advisor:
         self._shelves: dict[frozenset[str] | None, Catalogue] = {}
         self._choices: dict[str, Catalogue] = {}
         self._setters = self._steps_of_setters()
+        self.always_needed = frozenset(
+            {row.recommends for row in knowledge.docket if row.recommends} | mentions(knowledge.usual_oils.ordinary) | {"kappa"})
 
     def _steps_of_setters(self) -> dict[str, list[str]]:
         """After which step each concluded fact is complete: the last one with a rule that sets it."""
@@ -178,7 +180,21 @@ class _Run:
                 found.append(Raise(each.name, value, for_, instance.id))
         return found
 
+    def _needed(self, specification: Specification, raises: Sequence[Raise]) -> frozenset[str]:
+        """The properties that something in this case looks at."""
+        names = set(self.advisor.always_needed)
+        for demand in specification.demands:
+            names.add(demand.property)
+            names |= mentions(demand.for_)
+        for each in raises:
+            names |= mentions(each.for_)
+        for _, warns in self.drawn.warns:
+            names |= mentions(warns.for_)
+        return all_reads(frozenset(names), self.knowledge.properties)
+
     def _note_waiting(self) -> None:
+        if not self.facts.basis:
+            return
         for instance, questions in self.undecided:
             names = {each.property for each in instance.then if isinstance(each, Asks)}
             names |= {each.name for each in instance.then if isinstance(each, Sets) and each.name in self.knowledge.properties}
@@ -196,6 +212,8 @@ class _Run:
 
     def _open_questions(self) -> tuple[OpenQuestion, ...]:
         """Questions without a value that rules, computations or product properties still wait for."""
+        if not self.facts.basis:
+            return ()
         waiting: dict[str, list[str]] = {}
         for instance, questions in self.undecided:
             for name in questions:
@@ -235,9 +253,11 @@ class _Run:
         raises = self._raises()
         self._note_waiting()
         facts = self.facts.facts
+        needed = self._needed(specification, raises)
         incumbent = str(facts["incumbent"].value) if "incumbent" in facts else ""
-        recommendation = self.advisor.recommender(incumbent).recommend(specification, facts, raises, self.waiting)
-        columns = self.shelf.for_case(facts, raises)
+        recommendation = self.advisor.recommender(incumbent).recommend(
+            specification, facts, raises, self.waiting, needed)
+        columns = self.shelf.for_case(facts, raises, needed=needed)
         judgement = Judgement(self.shelf, columns, specification.demands, self.advisor.property_domains, missing_counts=True)
         open_questions = self._open_questions()
         assumed, keeping = self._assumptions()
@@ -308,53 +328,59 @@ class _Run:
         return tuple(lines)
 
     def _cautions(self, recommendation: Recommendation | None, judgement: Judgement | None) -> tuple[Warning, ...]:
-        found: dict[str, list[str]] = {}
+        rules: dict[str, list[str]] = {}
+        concerned: dict[str, list[str]] = {}
+        general: set[str] = set()
         for instance, each in self.drawn.warns:
             for_, waits, void = with_limits(each.for_, self.facts.record)
-            if for_ == ALWAYS or (not waits and not void and self._concerns(for_, recommendation, judgement)):
-                found.setdefault(each.caution, []).append(instance.id)
-        return tuple(Warning(name, tuple(dict.fromkeys(found[name]))) for name in self.knowledge.cautions if name in found)
-
-    def _concerns(self, for_: Condition, recommendation: Recommendation | None, judgement: Judgement | None) -> bool:
-        """Whether a recommended class, or a product that no must rules out, meets the caution's `for`."""
-        if recommendation is None or judgement is None:
-            return False
-        alive = judgement.passing
-        holding, failing = judge(for_, judgement.columns, self.shelf.everything)
-        if alive & ~failing & self._says_something(for_, judgement):
-            return True
-        for one, winners in ((recommendation.oils, recommendation.oil_winners), (recommendation.choices, sum(recommendation.winners.values(), []))):
-            if one is None:
+            if for_ == ALWAYS:
+                general.add(each.caution)
+            elif waits or void or not (concerns := self._concerned(for_, recommendation, judgement)):
                 continue
-            _, failing = judge(for_, one.columns, one.catalogue.everything)
-            told = self._says_something(for_, one)
-            if any(not failing >> place & 1 and told >> place & 1 for place in winners):
-                return True
-        return bool(alive & holding)
+            else:
+                concerned.setdefault(each.caution, []).extend(concerns)
+            rules.setdefault(each.caution, []).append(instance.id)
+        return tuple(
+            Warning(name, tuple(dict.fromkeys(rules[name])), () if name in general else tuple(dict.fromkeys(concerned[name])))
+            for name in self.knowledge.cautions if name in rules)
 
-    def _says_something(self, for_: Condition, judgement: Judgement) -> int:
-        """The items that have at least one of the properties that the condition names."""
+    def _concerned(self, for_: Condition, recommendation: Recommendation | None, judgement: Judgement | None) -> list[str]:
+        """The recommended classes, and the products with no must against them, that meet the caution's `for`."""
+        if recommendation is None or judgement is None:
+            return []
+        found: list[str] = []
+        winners = sum(recommendation.winners.values(), [])
+        for one, chosen in ((recommendation.oils, recommendation.oil_winners), (recommendation.choices, winners)):
+            if one is not None:
+                found += [one.catalogue.items[place].title for place in chosen if self._meeting(for_, one) >> place & 1]
+        return found + [self.shelf.items[place].code for place in places(self._meeting(for_, judgement) & judgement.passing)]
+
+    def _meeting(self, for_: Condition, judgement: Judgement) -> int:
+        """The items that do not fail the condition and have at least one of the properties it names."""
+        _, failing = judge(for_, judgement.columns, judgement.catalogue.everything)
         told = 0
         for name in mentions(for_):
             column = judgement.columns.get(name)
             told |= column.present if column else 0
-        return told
+        return told & ~failing
 
     def _at_limit(self, recommendation: Recommendation, judgement: Judgement) -> tuple[AtLimit, ...]:
         """Musts met with nothing to spare: by products that no must rules out, and by recommended classes."""
         found: list[AtLimit] = []
-        for place in places(judgement.passing):
-            for demand in judgement.demands:
-                column = judgement.columns.get(demand.property)
-                value = column.values[place] if column else None
-                if demand.must and value is not None and isinstance(value, float) and at_limit(demand.test, value):
-                    found.append(AtLimit("product", self.shelf.items[place].code, demand.rule))
+        for place, demand in enumerate(judgement.demands):
+            if demand.must and self._is_measure(demand.property):
+                items = places(at_limit(judgement, place, judgement.passing))
+                found += [AtLimit("product", self.shelf.items[each].code, demand.rule) for each in items]
         recommended = {value for line in recommendation.lines.values() for value in line.values}
         for step in self.trace:
             for instance, outcome in zip(step.instances, step.outcomes, strict=True):
                 if outcome is False and instance.binds and instance.row is not None and instance.row.id in recommended and self._missed_by_nothing(instance):
                     found.append(AtLimit("class", instance.row.id, instance.id))
         return tuple(dict.fromkeys(found))
+
+    def _is_measure(self, name: str) -> bool:
+        domain = self.advisor.property_domains[name]
+        return domain.kind == "number" and not domain.places
 
     def _missed_by_nothing(self, instance: Instance) -> bool:
         if not any(isinstance(each, Asks) and each.level == 0 for each in instance.then):

@@ -35,10 +35,11 @@ class StepTrace:
 
 @dataclass(frozen=True, slots=True)
 class Warning:  # noqa: A001 - the trade's word; no builtin is needed here
-    """A caution with the rules that gave it."""
+    """A caution with the rules that gave it; `concerns` names the classes and products it is for, if not all."""
 
     caution: str
     rules: tuple[str, ...]
+    concerns: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

@@ -34,16 +34,20 @@ class Recommender:
     def __init__(self, knowledge: Knowledge, oils: Catalogue, choices: Catalogue, incumbent: int | None) -> None:
         self.knowledge, self.oils, self.choices, self.incumbent = knowledge, oils, choices, incumbent
         self.domains = {name: prop.domain for name, prop in knowledge.properties.items()}
+        self.needed: frozenset[str] = frozenset()
         self.of_row: dict[str, list[int]] = {}
         for place, item in enumerate(choices.items):
             self.of_row.setdefault(item.code.partition("=")[0], []).append(place)
 
     def recommend(self, specification: Specification, facts: Mapping[str, Fact], raises: Sequence[Raise],
-                  waiting: "Waiting") -> Recommendation:
+                  waiting: "Waiting", needed: frozenset[str]) -> Recommendation:
         """The recommended class of every row."""
         found = Recommendation()
         demands = specification.demands
-        first = self._judged(self.choices, demands, facts, raises, {})
+        self.needed = needed
+        own = self.incumbent is not None
+        about_form = [demand for demand in demands if own or demand.property == "form"]
+        first = self._judged(self.choices, about_form, facts, raises, {})
         form_row = next((row for row in self.knowledge.docket if row.recommends == "form"), None)
         if form_row is not None:
             line = self._choice_line(form_row, first, found, waiting)
@@ -62,7 +66,7 @@ class Recommender:
 
     def _judged(self, catalogue: Catalogue, demands: Sequence[Demand], facts: Mapping[str, Fact], raises: Sequence[Raise],
                 context: Mapping[str, Value]) -> Judgement:
-        columns = catalogue.for_case(facts, raises, lenient=True, context=context)
+        columns = catalogue.for_case(facts, raises, needed=self.needed, lenient=True, context=context)
         return Judgement(catalogue, columns, demands, self.domains, missing_counts=False)
 
     def _fewest(self, judgement: Judgement, among: int) -> tuple[list[int], dict[int, Steps]]:

@@ -2,7 +2,7 @@
 
 import json
 import math
-from collections.abc import Callable, Iterable, Mapping
+from collections.abc import Callable, Mapping, Sequence
 from typing import Final
 
 from advisor.conditions import VOID, Domain
@@ -71,12 +71,13 @@ class Spelling(dict[object, str]):
     Values known beforehand are looked up; all others are spelled, and refused with the fact's name if they cannot be.
     """
 
-    def __init__(self, fact: str, head: str, spell: Callable[[object], str], beforehand: Iterable[object] = ()) -> None:
+    def __init__(self, fact: str, head: str, spell: Callable[[object], str], beforehand: Sequence[object] = ()) -> None:
         super().__init__({each: head + spell(each) for each in beforehand})
         self[None] = self[VOID] = ""
         self.fact = fact
         self.head = head
-        self.plain_below = PLAIN_BELOW if spell is number and len(self) == 2 else 0.0
+        # Below it a float needs no look-up; nothing known beforehand means a number, not a place.
+        self.plain_below = PLAIN_BELOW if spell is number and not beforehand else 0.0
         self._spell = spell
 
     def __missing__(self, value: object) -> str:
@@ -101,8 +102,8 @@ class Attributes:
         """The attribute that holds a number, a place, a choice or a text."""
         domain = self._domains[fact]
         if domain.ordered:
-            return self._number((fact,), number, map(float, range(len(domain.choices))))
-        return self._number((fact,), text, domain.choices)
+            return self._number((fact,), number, [float(place) for place in range(len(domain.choices))])
+        return self._number((fact,), text, tuple(domain.choices))
 
     def tick(self, fact: str, choice: str) -> int:
         """The attribute that says whether a choice of a tick list is ticked."""
@@ -118,7 +119,7 @@ class Attributes:
         """The attribute that is there when a tick list has been answered at all."""
         return self._number((fact, "answered"), lambda _value: "true")
 
-    def _number(self, key: tuple[str, ...], spell: Callable[[object], str], known: Iterable[object] = ()) -> int:
+    def _number(self, key: tuple[str, ...], spell: Callable[[object], str], known: Sequence[object] = ()) -> int:
         found = self._numbers.get(key)
         if found is None:
             found = self._numbers[key] = len(self.spellings)

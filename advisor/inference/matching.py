@@ -79,7 +79,7 @@ class Matcher:
         self._check_owner()
         known = record.get
         written = [
-            head + repr(value) if type(value := known(fact)) is float and PLAIN_ABOVE < value < below else spelling[value]
+            head + repr(seen) if type(seen := known(fact)) is float and PLAIN_ABOVE < seen < below else spelling[seen]
             for fact, head, below, spelling in self._spellings
         ]
         fired = set(self._always)

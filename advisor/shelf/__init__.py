@@ -1,6 +1,6 @@
 """The shelf and the usual oils: judged and ranked column by column against a specification."""
 
-from advisor.shelf.catalogue import Catalogue, Item, Raise, choices, products, usual_oils
+from advisor.shelf.catalogue import Catalogue, Item, Raise, all_reads, choices, products, usual_oils
 from advisor.shelf.columns import Column, judge, places
 from advisor.shelf.judging import Judgement, Shortfall, Verdict, at_limit, steps_short
 
@@ -12,6 +12,7 @@ __all__ = [
     "Raise",
     "Shortfall",
     "Verdict",
+    "all_reads",
     "at_limit",
     "choices",
     "judge",

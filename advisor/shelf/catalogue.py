@@ -56,9 +56,9 @@ class Catalogue:
     def _depends(self, name: str) -> bool:
         return any(prop.name == name for prop in self._changing)
 
-    def for_case(self, facts: Mapping[str, Fact], raises: Sequence[Raise] = (), *, lenient: bool = False,
-                 context: Mapping[str, Value] | None = None) -> dict[str, Column]:
-        """All columns for the facts of a case.
+    def for_case(self, facts: Mapping[str, Fact], raises: Sequence[Raise] = (), *, needed: frozenset[str],
+                 lenient: bool = False, context: Mapping[str, Value] | None = None) -> dict[str, Column]:
+        """The columns for the facts of a case; those that are not needed and not fixed are left out.
 
         `raises` are conclusions on concluded properties: they apply where their `for` holds, and (unless lenient)
         where it is unknown. `context` gives properties that every item of this catalogue is taken to have.
@@ -68,6 +68,8 @@ class Catalogue:
         for name, coded in given.items():
             columns[name] = _filled(columns.get(name), coded, len(self.items))
         for prop in self._changing:
+            if prop.name not in needed:
+                continue
             if prop.concluded is not None:
                 columns[prop.name] = self._raised(prop, columns, raises, lenient=lenient)
                 continue
@@ -89,15 +91,19 @@ class Catalogue:
     def _raised(self, prop: Property, columns: Mapping[str, Column], raises: Sequence[Raise], *, lenient: bool) -> Column:
         assert prop.concluded is not None  # noqa: S101 - asked before
         start = prop.domain.code(prop.concluded.otherwise)
-        values: list[Coded | None] = [start] * len(self.items)
-        pick = max if prop.concluded.combine == "highest" else min
+        raising = prop.concluded.combine == "highest"
+        at: dict[Coded, int] = {start: self.everything}
         for each in raises:
             if each.property != prop.name:
                 continue
             holding, failing = judge(each.for_, columns, self.everything)
             applies = holding if lenient else self.everything & ~failing
-            values = [pick(value, each.value) if applies >> place & 1 else value for place, value in enumerate(values)]  # type: ignore[type-var]  # scales code to numbers
-        return Column(values)
+            for value in list(at):
+                if (value < each.value) is raising and value != each.value:  # type: ignore[operator]  # scales code to numbers
+                    moved = at[value] & applies
+                    at[value] &= ~moved
+                    at[each.value] = at.get(each.value, 0) | moved
+        return Column.from_masks(at, len(self.items))
 
     def _column(self, prop: Property, columns: Mapping[str, Column], facts: Mapping[str, Fact]) -> Column:
         how = prop.how
@@ -168,6 +174,18 @@ class Catalogue:
             if place is not None:
                 found[place] = prop.domain.code("same")
         return found
+
+
+def all_reads(names: frozenset[str], properties: Mapping[str, Property]) -> frozenset[str]:
+    """These properties and every property that they are found from."""
+    found: set[str] = set()
+    left = [name for name in names if name in properties]
+    while left:
+        name = left.pop()
+        if name not in found:
+            found.add(name)
+            left += [each for each in reads(properties[name]) if each in properties]
+    return frozenset(found)
 
 
 def _filled(column: Column | None, coded: Coded, size: int) -> Column:

@@ -31,6 +31,15 @@ class Column:
         self._edges: list[float] | None = None
         self._upto: list[int] = []
 
+    @classmethod
+    def from_masks(cls, masks: Mapping[Coded, int], size: int) -> "Column":
+        """The column in which each value stands at the places of its mask."""
+        values: list[Coded | None] = [None] * size
+        for value, mask in masks.items():
+            for place in places(mask):
+                values[place] = value
+        return cls(values)
+
     def below(self, limit: float, *, or_equal: bool) -> int:
         """The items whose value is below (or at) a limit."""
         if self._edges is None:

@@ -152,8 +152,25 @@ def _meets(test: Bound, value: float) -> bool:
     return isinstance(test.limit, float | int) and SIGNS[test.sign](value, test.limit)
 
 
-def at_limit(test: Condition, value: Coded) -> bool:
-    """Whether a value meets a threshold with nothing to spare."""
+def limits_of(test: Condition) -> list[float]:
+    """The inclusive limits of a test."""
     if isinstance(test, Every | Either):
-        return any(at_limit(part, value) for part in test.parts)
-    return isinstance(test, Bound) and test.sign in {"<=", ">="} and value == test.limit
+        return [limit for part in test.parts for limit in limits_of(part)]
+    if isinstance(test, Bound) and test.sign in {"<=", ">="} and isinstance(test.limit, float):
+        return [test.limit]
+    return []
+
+
+def at_limit(judgement: Judgement, place: int, among: int) -> int:
+    """Of these items, those that the demand at this place concerns and that meet it with nothing to spare."""
+    demand = judgement.demands[place]
+    column = judgement.columns.get(demand.property)
+    if column is None:
+        return 0
+    met = 0
+    for limit in limits_of(demand.test):
+        met |= column.by_value.get(limit, 0)
+    if not met & among:
+        return 0
+    _, not_for = judge(demand.for_, judgement.columns, judgement.catalogue.everything)
+    return met & among & ~not_for & ~judgement.failing[place]

@@ -4,14 +4,14 @@ import collections
 import collections.abc
 import inspect
 import json
-import operator
 from collections.abc import Callable, Iterable, Sequence
+from functools import partial
 from typing import Any
 
-from advisor.conditions import Bound, Condition, Domain, FactRef, Member, branches
+from advisor.conditions import Bound, Coded, Condition, Domain, FactRef, Member, branches
 from advisor.conditions.terms import SIGNS, Term, names
 from advisor.inference import Matcher, StepRules
-from tests.benchmarks.made_rules import Case
+from tests.benchmarks.made_rules import CHOICES, Case
 
 Fired = Callable[[Case], frozenset[int]]
 Build = Callable[[Sequence[Condition], dict[str, Domain]], Fired]
@@ -39,24 +39,52 @@ def looked_at(rules: Iterable[Condition]) -> list[str]:
 
 def clips_agenda(rules: Sequence[Condition], _domains: dict[str, Domain]) -> Fired:
     """CLIPS: one fact of one template, the agenda read, no action run."""
-    import clips  # type: ignore[import-untyped]  # noqa: PLC0415  # the package is optional
-
-    environment = clips.Environment()
-    used = looked_at(rules)
-    environment.build(f"(deftemplate case {' '.join(f'(slot {name})' for name in used)})")
-    for index, rule in enumerate(rules):
-        for place, branch in enumerate(branches(rule)):
-            environment.build(f"(defrule r{index}_{place} (case {_clips_pattern(branch)}) =>)")
+    environment, template, sent = _clips_step(rules, "")
     owners = {f"r{index}_{place}": index for index, rule in enumerate(rules) for place in range(len(branches(rule)))}
 
     def fired(case: Case) -> frozenset[int]:
-        slots = " ".join([f"({name} {case[name]})" for name in used if name in case])
-        fact = environment.assert_string(f"(case {slots})")
+        fact = template.assert_fact(**sent(case))
         found = frozenset([owners[activation.name] for activation in environment.activations()])
         fact.retract()
         return found
 
     return fired
+
+
+def clips_run(rules: Sequence[Condition], _domains: dict[str, Domain]) -> Fired:
+    """CLIPS: the same, but the rules run and note their number in a global text, which is read once."""
+    environment, template, sent = _clips_step(rules, '(bind ?*fired* (str-cat ?*fired* "{index} "))')
+    noted = environment.find_global("fired")
+
+    def fired(case: Case) -> frozenset[int]:
+        fact = template.assert_fact(**sent(case))
+        environment.run()
+        found = frozenset(map(int, noted.value.split()))
+        noted.value = ""
+        fact.retract()
+        return found
+
+    return fired
+
+
+def _clips_step(rules: Sequence[Condition], action: str) -> tuple[Any, Any, Callable[[Case], Case]]:
+    """An environment with the rules of a step, its template, and what is sent of a case."""
+    import clips  # type: ignore[import-untyped]  # noqa: PLC0415  # the package is optional
+
+    environment = clips.Environment()
+    used = looked_at(rules)
+    environment.build('(defglobal ?*fired* = "")')
+    environment.build(f"(deftemplate case {' '.join(f'(slot {name})' for name in used)})")
+    for index, rule in enumerate(rules):
+        for place, branch in enumerate(branches(rule)):
+            pattern = _clips_pattern(branch)
+            environment.build(f"(defrule r{index}_{place} (case {pattern}) => {action.format(index=index)})")
+    symbols: dict[object, Coded] = {choice: clips.Symbol(choice) for choice in CHOICES}
+
+    def sent(case: Case) -> Case:
+        return {name: symbols.get(value, value) for name in used if (value := case.get(name)) is not None}
+
+    return environment, environment.find_template("case"), sent
 
 
 def _clips_pattern(branch: Sequence[Term]) -> str:
@@ -161,27 +189,21 @@ def experta_agenda(rules: Sequence[Condition], _domains: dict[str, Domain]) -> F
 
 
 def _experta_rule(experta: Any, branch: Sequence[Term], name: str) -> object:
-    tests: dict[str, list[Callable[[object], bool]]] = {}
+    tests: dict[str, Callable[[float], bool]] = {}
     matched: set[str] = set()
     joins: list[object] = []
     for term in branch:
         if isinstance(term, Bound) and isinstance(term.limit, FactRef):
             matched |= {term.name, term.limit.name}
             joins.append(_experta_join(experta, term.name, term.limit.name, SIGNS[term.sign]))
-        elif isinstance(term, Bound):
-            tests.setdefault(term.name, []).append(lambda seen, sign=SIGNS[term.sign], limit=term.limit: sign(seen, limit))
+        elif isinstance(term, Bound) and not isinstance(term.limit, FactRef):
+            tests[term.name] = partial(_beyond, SIGNS[term.sign], term.limit)
         elif isinstance(term, Member):
-            tests.setdefault(term.name, []).append(
-                lambda seen, among=term.among, wanted=term.wanted: (seen in among) is wanted
-            )
-    fields = {
-        each: operator.and_(getattr(experta.MATCH, each), _experta_test(experta, tests[each]))
-        if each in tests and each in matched
-        else _experta_test(experta, tests[each])
-        if each in tests
-        else getattr(experta.MATCH, each)
-        for each in sorted({*tests, *matched})
-    }
+            tests[term.name] = partial(_among, term.among, term.wanted)
+    fields = {each: experta.P(test) for each, test in tests.items()}
+    for each in matched:
+        captured = getattr(experta.MATCH, each)
+        fields[each] = captured & fields[each] if each in fields else captured
 
     def method(_self: object, **_matched: object) -> None: ...
 
@@ -189,8 +211,12 @@ def _experta_rule(experta: Any, branch: Sequence[Term], name: str) -> object:
     return experta.Rule(experta.Fact(**fields), *joins)(method)
 
 
-def _experta_test(experta: Any, tests: Sequence[Callable[[object], bool]]) -> Any:
-    return experta.P(tests[0] if len(tests) == 1 else lambda seen: all(test(seen) for test in tests))
+def _beyond(sign: Callable[[float, float], bool], limit: float, seen: float) -> bool:
+    return sign(seen, limit)
+
+
+def _among(choices: frozenset[str] | frozenset[float], wanted: bool, seen: object) -> bool:
+    return (seen in choices) is wanted
 
 
 def _experta_join(experta: Any, first: str, second: str, sign: Callable[[float, float], bool]) -> object:
