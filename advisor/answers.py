@@ -44,12 +44,13 @@ def _number(declaration: Declaration, text: str, *, strict: bool) -> Answer:
     try:
         value = parse(text, domain.unit, strict=strict).value
     except Unreadable as fault:
-        words = f" Known words: {', '.join(domain.named)}." if domain.named and not any(c.isdigit() for c in text) else ""
+        words = (
+            f" Known words: {', '.join(domain.named)}." if domain.named and not any(c.isdigit() for c in text) else ""
+        )
         raise Unsuitable(f"{fault}{words}") from None
     if not domain.low <= value <= domain.high:
-        raise Unsuitable(
-            f"{show(value, domain.unit)} lies outside {show(domain.low, domain.unit)} to {show(domain.high, domain.unit)}. "
-            "Check the unit and the decimal point.")
+        ends = f"{show(domain.low, domain.unit)} to {show(domain.high, domain.unit)}"
+        raise Unsuitable(f"{show(value, domain.unit)} lies outside {ends}. Check the unit and the decimal point.")
     if domain.places and value not in domain.places:
         raise Unsuitable(f"{value:g} is none of the grades " + ", ".join(f"{place:g}" for place in domain.places) + ".")
     return Answer(value, text)
@@ -57,7 +58,11 @@ def _number(declaration: Declaration, text: str, *, strict: bool) -> Answer:
 
 def _choice(declaration: Declaration, text: str) -> str:
     choices = declaration.domain.choices
-    wanted = {"true": "yes", "false": "no", "y": "yes", "n": "no"}.get(text, text) if declaration.domain.kind == "yes_no" else text
+    wanted = (
+        {"true": "yes", "false": "no", "y": "yes", "n": "no"}.get(text, text)
+        if declaration.domain.kind == "yes_no"
+        else text
+    )
     if wanted in choices:
         return wanted
     folded = wanted.casefold()
@@ -65,7 +70,7 @@ def _choice(declaration: Declaration, text: str) -> str:
         if folded in {one.casefold(), label.casefold()}:
             return one
     near = nearest(wanted, choices)
-    known = near or f" Choose one of {', '.join(list(choices)[:12])}{' ...' if len(choices) > 12 else ''}."  # noqa: PLR2004 - a dozen fits a line
+    known = near or f" Choose one of {', '.join(list(choices)[:12])}{' ...' if len(choices) > 12 else ''}."
     raise Unsuitable(f"'{text}' is not one of the choices of {declaration.title}.{known}")
 
 
@@ -95,7 +100,20 @@ class Saved:
     taken_away: frozenset[str] = field(default_factory=frozenset)
 
 
-_KEYS = ("format", "title", "point_kind", "guards", "status", "like", "answers", "gaps", "shelf", "expect", "knowledge", "history")
+_KEYS = (
+    "format",
+    "title",
+    "point_kind",
+    "guards",
+    "status",
+    "like",
+    "answers",
+    "gaps",
+    "shelf",
+    "expect",
+    "knowledge",
+    "history",
+)
 
 
 def point_kind_of(path: Path) -> str:
@@ -116,13 +134,21 @@ def read_case(path: Path, knowledge: Knowledge, problems: Problems, _above: tupl
     before = len(problems)
     for key in tree:
         if key not in _KEYS:
-            _fault(problems, tree.key_marks[key], (), f"'{key}' is not known in a saved case", nearest(key, _KEYS).strip())
+            _fault(
+                problems, tree.key_marks[key], (), f"'{key}' is not known in a saved case", nearest(key, _KEYS).strip()
+            )
     if str(tree.get("format", "")) != "1":
         _fault(problems, tree.get("format", tree), (), "the format of the case is missing or unknown", "format: 1")
     kind = str(tree.get("point_kind", ""))
     base = _base(path, tree, knowledge, problems, _above)
     if kind != knowledge.point_kind.id and not (base and not kind):
-        _fault(problems, tree.get("point_kind", tree), (), f"'{kind}' is no kind of point here", f"point_kind: {knowledge.point_kind.id}")
+        _fault(
+            problems,
+            tree.get("point_kind", tree),
+            (),
+            f"'{kind}' is no kind of point here",
+            f"point_kind: {knowledge.point_kind.id}",
+        )
     answers = dict(base.case.answers) if base else {}
     taken = _read_answers(tree.get("answers"), answers, knowledge, problems)
     only = _only(tree.get("shelf"), knowledge, problems)
@@ -146,8 +172,13 @@ def _base(path: Path, tree: Mapping, knowledge: Knowledge, problems: Problems, a
         _fault(problems, like, ("like",), f"'{like}' leads back to this file", "break the circle")
         return None
     if not isinstance(like, Scalar) or "/" in like or not other.is_file():
-        _fault(problems, like, ("like",), f"there is no scenario '{like}' beside this file",
-               nearest(str(like), [each.stem for each in path.parent.glob("*.yaml")]).strip())
+        _fault(
+            problems,
+            like,
+            ("like",),
+            f"there is no scenario '{like}' beside this file",
+            nearest(str(like), [each.stem for each in path.parent.glob("*.yaml")]).strip(),
+        )
         return None
     return read_case(other, knowledge, problems, (*above, path))
 
@@ -162,7 +193,11 @@ def _read_answers(node: Node | None, answers: dict[str, Answer], knowledge: Know
     taken: list[str] = []
     for name, child in node.items():
         if name not in asked:
-            hint = "it is computed or concluded, not asked" if name in knowledge.facts or name in knowledge.computations else nearest(name, asked).strip()
+            hint = (
+                "it is computed or concluded, not asked"
+                if name in knowledge.facts or name in knowledge.computations
+                else nearest(name, asked).strip()
+            )
             _fault(problems, node.key_marks[name], ("answers",), f"'{name}' is no question of this kind of point", hint)
             continue
         if isinstance(child, Scalar) and str(child) == UNANSWERED:
@@ -189,7 +224,9 @@ def _only(node: Node | None, knowledge: Knowledge, problems: Problems) -> frozen
     known = [product.item for product in knowledge.shelf]
     for each in node:
         if str(each) not in known:
-            _fault(problems, each, ("shelf",), f"'{each}' is no product of the shelf", nearest(str(each), known).strip())
+            _fault(
+                problems, each, ("shelf",), f"'{each}' is no product of the shelf", nearest(str(each), known).strip()
+            )
     return frozenset(str(each) for each in node)
 
 

@@ -10,11 +10,18 @@ import click
 from advisor import __version__
 
 knowledge_option = click.option(
-    "--knowledge", "knowledge", type=click.Path(path_type=Path), envvar="GUDGEON_KNOWLEDGE",
-    help="Folder of the knowledge; without it the one that is shipped.")
+    "--knowledge",
+    "knowledge",
+    type=click.Path(path_type=Path),
+    envvar="GUDGEON_KNOWLEDGE",
+    help="Folder of the knowledge; without it the one that is shipped.",
+)
 shelf_option = click.option(
-    "--shelf", type=click.Path(path_type=Path), envvar="GUDGEON_SHELF",
-    help="File of the products that the site can use; without it the shelf of the knowledge.")
+    "--shelf",
+    type=click.Path(path_type=Path),
+    envvar="GUDGEON_SHELF",
+    help="File of the products that the site can use; without it the shelf of the knowledge.",
+)
 
 
 @click.group(invoke_without_command=True, context_settings={"help_option_names": ["-h", "--help"]})
@@ -33,7 +40,9 @@ def gudgeon(context: click.Context) -> None:
 
 @gudgeon.command()
 @click.argument("file", type=click.Path(path_type=Path), required=False)
-@click.option("--plain", is_flag=True, help="Question by question, line by line: for screen readers and plain terminals.")
+@click.option(
+    "--plain", is_flag=True, help="Question by question, line by line: for screen readers and plain terminals."
+)
 @click.option("--ascii", "plain_glyphs", is_flag=True, help="Only ASCII signs on the sheet.")
 @knowledge_option
 @shelf_option
@@ -98,7 +107,10 @@ def rules(**options: Any) -> None:
 @click.argument("inputs", nargs=-1, metavar="[INPUT=VALUE]...")
 @click.option("--json", "as_json", is_flag=True, help="The result as JSON.")
 def compute(**options: Any) -> None:
-    """List the formulas, or work one out: gudgeon compute reference_viscosity speed_rpm='1450 rpm' mean_diameter_mm=80."""
+    """List the formulas, or work one out.
+
+    For instance: gudgeon compute reference_viscosity speed_rpm='1450 rpm' mean_diameter_mm='80 mm'
+    """
     _run("compute", options)
 
 

@@ -5,7 +5,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from advisor.mishaps import DONE, NOT_SETTLED, USAGE, Refusal
-from advisor.places import demonstration_case, knowledge_folder
+from advisor.places import knowledge_folder
 
 if TYPE_CHECKING:
     from advisor.advice import Advice
@@ -34,6 +34,10 @@ def _saved(file: Path, knowledge: "Knowledge") -> "Saved":
     return saved
 
 
+def _print(text: str) -> None:
+    sys.stdout.write(text if text.endswith("\n") else text + "\n")
+
+
 def _count(faults: int) -> str:
     return "1 problem" if faults == 1 else f"{faults} problems"
 
@@ -49,14 +53,13 @@ def check(folder: Path | None, shelf: Path | None) -> int:
     for kind in _kinds(root):
         knowledge = examine(root, kind, shelf, problems)
     for problem in problems:
-        print(problem)  # noqa: T201 - the command's output
+        _print(str(problem))
     if len(problems):
-        print(f"{_count(len(problems))}.", file=sys.stderr)  # noqa: T201 - words beside the output
+        sys.stderr.write(f"{_count(len(problems))}.\n")
         return USAGE
     if knowledge is not None:
-        print(  # noqa: T201 - the command's output
-            f"{root}: no problems. {len(knowledge.rules)} rules, {len(knowledge.facts)} facts, {len(knowledge.tables)} tables, "
-            f"{len(knowledge.shelf)} products; fingerprint {knowledge.fingerprint}.")
+        counts = f"{len(knowledge.rules)} rules, {len(knowledge.facts)} facts, {len(knowledge.tables)} tables"
+        _print(f"{root}: no problems. {counts}, {len(knowledge.shelf)} products; fingerprint {knowledge.fingerprint}.")
     return DONE
 
 
@@ -69,7 +72,13 @@ def _kinds(root: Path) -> list[str]:
 
 
 def advise(
-    file: Path, assume: bool, as_json: bool, markdown: bool, html: Path | None, knowledge: Path | None, shelf: Path | None  # noqa: FBT001 - flags as click gives them
+    file: Path,
+    assume: bool,
+    as_json: bool,
+    markdown: bool,
+    html: Path | None,
+    knowledge: Path | None,
+    shelf: Path | None,
 ) -> int:
     """Print the advice for a saved case."""
     from advisor import explanation
@@ -82,8 +91,14 @@ def advise(
             write_text_safely(html, explanation.html(advice))
         except Unwritable as fault:
             raise Refusal(str(fault)) from None
-    text = explanation.as_json(advice) if as_json else explanation.markdown(advice) if markdown else explanation.text(advice)
-    sys.stdout.write(text if text.endswith("\n") else text + "\n")
+    text = (
+        explanation.as_json(advice)
+        if as_json
+        else explanation.markdown(advice)
+        if markdown
+        else explanation.text(advice)
+    )
+    _print(text)
     return _exit_code(advice)
 
 
@@ -98,3 +113,46 @@ def _exit_code(advice: "Advice") -> int:
     from advisor.advice import State
 
     return DONE if advice.state is State.SETTLED and advice.fits else NOT_SETTLED
+
+
+def facts(words: tuple[str, ...], as_json: bool, knowledge: Path | None) -> int:  # noqa: FBT001 - flags as click gives them
+    """List the facts."""
+    from advisor.listing import fact_rows, facts_text
+
+    rows = fact_rows(_loaded(knowledge, None), words)
+    _print(_json(rows) if as_json else facts_text(rows))
+    return DONE
+
+
+def rules(words: tuple[str, ...], as_json: bool, knowledge: Path | None) -> int:  # noqa: FBT001 - flags as click gives them
+    """List the rules."""
+    from advisor.listing import rule_rows, rules_text
+
+    rows = rule_rows(_loaded(knowledge, None), words)
+    _print(_json(rows) if as_json else rules_text(rows))
+    return DONE
+
+
+def compute(name: str | None, inputs: tuple[str, ...], as_json: bool) -> int:  # noqa: FBT001 - flags as click gives them
+    """List the formulas, or work one out."""
+    from advisor import computing
+
+    if name is None:
+        _print(computing.list_formulas())
+        return DONE
+    pairs = dict(each.partition("=")[::2] for each in inputs)
+    try:
+        computed = computing.compute(name, pairs)
+    except computing.ComputeFault as fault:
+        raise Refusal("\n".join(fault.messages)) from None
+    if as_json:
+        _print(_json(computing.as_data(computed)))
+    else:
+        _print(computing.render_text(computed))
+    return DONE
+
+
+def _json(data: object) -> str:
+    import json
+
+    return json.dumps(data, ensure_ascii=False, indent=1)

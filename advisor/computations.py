@@ -23,7 +23,11 @@ class Outcome:
 def compute(computation: Computation, facts: Mapping[str, Fact], tables: Mapping[str, Table]) -> Outcome:
     """The outcome of one computation on the facts known so far."""
     how = computation.how
-    needed = [each for each in how.inputs.values() if isinstance(each, str)] if isinstance(how, Formed) else [n for _, n in how.by]
+    needed = (
+        [each for each in how.inputs.values() if isinstance(each, str)]
+        if isinstance(how, Formed)
+        else [n for _, n in how.by]
+    )
     waits = frozenset(name for name in needed if name not in facts or facts[name].origin is Origin.UNANSWERED)
     if waits:
         return Outcome(waits=waits)
@@ -33,18 +37,25 @@ def compute(computation: Computation, facts: Mapping[str, Fact], tables: Mapping
     outcome = _formed(how, facts) if isinstance(how, Formed) else looked_up(how, lambda name: facts[name].value, tables)
     domain = computation.domain
     if isinstance(outcome.value, float) and not domain.low <= outcome.value <= domain.high:
-        return Outcome(void=f"{outcome.value:.4g} {domain.unit} lies outside {domain.low:g} to {domain.high:g} {domain.unit}".strip())
+        ends = f"{domain.low:g} to {domain.high:g} {domain.unit}".strip()
+        return Outcome(void=f"{outcome.value:.4g} lies outside {ends}")
     return outcome
 
 
 def _formed(how: Formed, facts: Mapping[str, Fact]) -> Outcome:
-    values = {name: facts[each].value if isinstance(each, str) else each for name, each in how.inputs.items()}
+    values = {name: _number(facts[each].value) if isinstance(each, str) else each for name, each in how.inputs.items()}
     formula = FORMULAS[how.formula]
     try:
         result = formula(**values)
     except OutOfRange as fault:
         return Outcome(void=str(fault))
     return Outcome(value=float(result))
+
+
+def _number(value: Value | None) -> float:
+    if not isinstance(value, float | int):
+        raise TypeError("the loader binds formulas to numbers only")
+    return value
 
 
 def looked_up(how: LookedUp, get: Get, tables: Mapping[str, Table]) -> Outcome:
@@ -61,7 +72,7 @@ def looked_up(how: LookedUp, get: Get, tables: Mapping[str, Table]) -> Outcome:
     if how.combine:
         pick = max if how.combine == "highest" else min
         domain = table.columns[how.column]
-        return Outcome(value=pick(values, key=domain.code))  # type: ignore[arg-type]  # ordered by the loader's check
+        return Outcome(value=pick(values, key=domain.code))
     if any(value != values[0] for value in values):
         return Outcome(void=f"table {table.id} has rows that disagree")
     return Outcome(value=values[0])

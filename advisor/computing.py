@@ -19,7 +19,7 @@ HOW_SURE = {
 }
 
 
-class ComputeFault(ValueError):  # noqa: N818 -- a fault of the request, told to the user
+class ComputeFault(ValueError):
     """What stands in the way of a result; `messages` holds all of it, one sentence or two each."""
 
     def __init__(self, messages: Iterable[str]) -> None:

@@ -1,4 +1,4 @@
-"""Grease designations after DIN 51825 and ISO 6743-9: the lowest code that suffices, written, read back and compared."""
+"""Grease designations after DIN 51825 and ISO 6743-9: the lowest code that suffices, written, read and compared."""
 
 import math
 import re
@@ -8,8 +8,8 @@ from typing import Any, Protocol
 
 from advisor.case import Fact, Origin
 from advisor.conditions import Record, Value, holds
-from advisor.knowledge import Knowledge, Row, Scope, condition
 from advisor.documents import Problems
+from advisor.knowledge import Knowledge, Row, Scope, condition
 from advisor.specification import Demand, Specification, mentions
 
 
@@ -71,11 +71,24 @@ class Designer:
         self.din: Mapping[str, Any] = knowledge.designations.get("din", {})  # type: ignore[assignment]  # trees of the file
         self.iso: Mapping[str, Any] = knowledge.designations.get("iso", {})  # type: ignore[assignment]  # trees of the file
 
-    def codes(self, facts: Mapping[str, Fact], record: Record, specification: Specification, recommended: Recommended,
-              *, incomplete: bool) -> "CodesFound":
+    def codes(
+        self,
+        facts: Mapping[str, Fact],
+        record: Record,
+        specification: Specification,
+        recommended: Recommended,
+        *,
+        incomplete: bool,
+    ) -> "CodesFound":
         """The codes asked for, one for each recommended NLGI grade; or the reasons why there are none."""
-        din, din_none = self._each(lambda nlgi: self.din_code(facts, specification, recommended, nlgi), recommended, incomplete=incomplete)
-        iso, iso_none = self._each(lambda nlgi: self.iso_code(facts, record, specification, recommended, nlgi), recommended, incomplete=incomplete)
+        din, din_none = self._each(
+            lambda nlgi: self.din_code(facts, specification, recommended, nlgi), recommended, incomplete=incomplete
+        )
+        iso, iso_none = self._each(
+            lambda nlgi: self.iso_code(facts, record, specification, recommended, nlgi),
+            recommended,
+            incomplete=incomplete,
+        )
         return CodesFound(tuple(map(str, din)), tuple(map(str, iso)), din_none, iso_none)
 
     def _each(self, write: Any, recommended: Recommended, *, incomplete: bool) -> tuple[list[Any], str]:
@@ -93,20 +106,29 @@ class Designer:
         except NoCode as fault:
             return [], str(fault)
 
-    def din_code(self, facts: Mapping[str, Fact], specification: Specification, recommended: Recommended, nlgi: str) -> DinCode:
+    def din_code(
+        self, facts: Mapping[str, Fact], specification: Specification, recommended: Recommended, nlgi: str
+    ) -> DinCode:
         """The lowest DIN 51825 code that suffices."""
         need, cold = _number(facts, self.din["need"]), _number(facts, self.din["cold"])
         water = _number(facts, self.din["water_test"])
-        letters = "".join(letter for letter, asks in self.din["additive"].items() if self._asked(asks, specification, recommended))
+        letters = "".join(
+            letter for letter, asks in self.din["additive"].items() if self._asked(asks, specification, recommended)
+        )
         for row in self.rows("din", "upper"):
             upper, test, rating = self._din_row(row)
             if upper >= need and self._water_serves(test, rating, water):
-                return DinCode(letters, "", nlgi, row.id, upper, test, rating, self._warmest("din", cold).cells["lower_c"])  # type: ignore[arg-type]  # a number column
+                lower = _cell(self._warmest("din", cold), "lower_c", -math.inf)
+                return DinCode(letters, "", nlgi, row.id, upper, test, rating, lower)
         raise NoCode(f"no letter reaches {need:g} °C")
 
     def _din_row(self, row: Row) -> tuple[float, float, float]:
         names = self.din["upper"]
-        return (_cell(row, names["upper"], math.inf), _cell(row, names["water_test"], math.nan), _cell(row, names["rating_to"], math.nan))
+        return (
+            _cell(row, names["upper"], math.inf),
+            _cell(row, names["water_test"], math.nan),
+            _cell(row, names["rating_to"], math.nan),
+        )
 
     def _water_serves(self, test_c: float, rating_to: float, asked_c: float) -> bool:
         """Whether a letter carries the water demand; where it leaves water to agreement, the sheet declares it."""
@@ -117,7 +139,14 @@ class Designer:
             return rating_to <= best
         return test_c >= asked_c and rating_to <= best
 
-    def iso_code(self, facts: Mapping[str, Fact], record: Record, specification: Specification, recommended: Recommended, nlgi: str) -> IsoCode:
+    def iso_code(
+        self,
+        facts: Mapping[str, Fact],
+        record: Record,
+        specification: Specification,
+        recommended: Recommended,
+        nlgi: str,
+    ) -> IsoCode:
         """The lowest ISO 6743-9 code that suffices."""
         if self._iso_excluded(record):
             raise NoCode("ISO 6743-9 does not speak of contact with food")
@@ -142,10 +171,17 @@ class Designer:
 
     def _iso(self, lower: str, upper: str, water: str, load: str, nlgi: str) -> IsoCode:
         grid = self._row("iso", "water_grid", water)
-        return IsoCode(lower, upper, water, load, nlgi,
-                       _cell(self._row("iso", "lower", lower), "lower_c", -math.inf),
-                       _cell(self._row("iso", "upper", upper), "upper_c", math.inf),
-                       _cell(grid, "environment", 0.0), _cell(grid, "rust", 0.0))
+        return IsoCode(
+            lower,
+            upper,
+            water,
+            load,
+            nlgi,
+            _cell(self._row("iso", "lower", lower), "lower_c", -math.inf),
+            _cell(self._row("iso", "upper", upper), "upper_c", math.inf),
+            _cell(grid, "environment", 0.0),
+            _cell(grid, "rust", 0.0),
+        )
 
     def _warmest(self, standard: str, cold: float) -> Row:
         rows = [row for row in self.rows(standard, "lower") if _cell(row, "lower_c", -math.inf) <= cold]
@@ -174,13 +210,18 @@ class Designer:
             and self._falls(demand, recommended)
             and not any(holds(demand.test, {name: each}) for each in others)
             and any(holds(demand.test, {name: each}) for each in wanted)
-            for demand in specification.demands)
+            for demand in specification.demands
+        )
 
     def _falls(self, demand: Demand, recommended: Recommended) -> bool:
         known: dict[str, Value] = {"form": recommended.form}
         if recommended.kappa is not None:
             known["kappa"] = recommended.kappa
-        record = {name: self.knowledge.properties[name].domain.code(value) for name, value in known.items() if name in mentions(demand.for_)}
+        record = {
+            name: self.knowledge.properties[name].domain.code(value)
+            for name, value in known.items()
+            if name in mentions(demand.for_)
+        }
         return holds(demand.for_, record) is not False
 
     def read_din(self, text: str) -> DinCode:
@@ -214,18 +255,30 @@ class CodesFound:
 
 def din_serves(offered: DinCode, asked: DinCode) -> bool:
     """Whether an offered code meets every part of the asked one."""
-    water = math.isnan(offered.water_test_c) or math.isnan(asked.water_test_c) or (
-        offered.water_test_c >= asked.water_test_c and offered.water_rating_to <= asked.water_rating_to)
+    water = (
+        math.isnan(offered.water_test_c)
+        or math.isnan(asked.water_test_c)
+        or (offered.water_test_c >= asked.water_test_c and offered.water_rating_to <= asked.water_rating_to)
+    )
     return (
-        offered.nlgi == asked.nlgi and offered.upper_c >= asked.upper_c and offered.lower_c <= asked.lower_c
-        and set(asked.additives) <= set(offered.additives) and water)
+        offered.nlgi == asked.nlgi
+        and offered.upper_c >= asked.upper_c
+        and offered.lower_c <= asked.lower_c
+        and set(asked.additives) <= set(offered.additives)
+        and water
+    )
 
 
 def iso_serves(offered: IsoCode, asked: IsoCode) -> bool:
     """Whether an offered code meets every part of the asked one."""
     return (
-        offered.nlgi == asked.nlgi and offered.upper_c >= asked.upper_c and offered.lower_c <= asked.lower_c
-        and offered.environment >= asked.environment and offered.rust >= asked.rust and offered.load >= asked.load)
+        offered.nlgi == asked.nlgi
+        and offered.upper_c >= asked.upper_c
+        and offered.lower_c <= asked.lower_c
+        and offered.environment >= asked.environment
+        and offered.rust >= asked.rust
+        and offered.load >= asked.load
+    )
 
 
 def _number(facts: Mapping[str, Fact], name: object) -> float:

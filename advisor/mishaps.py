@@ -1,4 +1,4 @@
-"""What happens when something goes wrong: expected faults are told in a sentence, our own leave a log and no traceback."""
+"""What happens when something goes wrong: faults of files are told in a sentence, our own leave a log."""
 
 import os
 import sys
@@ -31,8 +31,8 @@ def guarded(command: Callable[[], object]) -> None:
     except BrokenPipeError:
         os.dup2(os.open(os.devnull, os.O_WRONLY), 1)
         sys.exit(INTERRUPTED)
-    except Exception:  # noqa: BLE001 - the last resort: log it, say where, no traceback
-        _say(f"Something went wrong inside gudgeon. The details are in {write_log()}; please send that file with your case.")
+    except Exception:
+        _say(f"Something went wrong inside gudgeon. The details are in {write_log()}; send it with your case.")
         sys.exit(INTERNAL)
 
 

@@ -14,7 +14,11 @@ def knowledge_folder() -> Path:
 def demonstration_case() -> Path:
     """The bundled demonstration case."""
     bundled = _PACKAGE / "_bundled" / "demonstration.yaml"
-    return bundled if bundled.is_file() else _PACKAGE.parent / "scenarios" / "rolling_bearing" / "hot_wet_roller_table.yaml"
+    return (
+        bundled
+        if bundled.is_file()
+        else _PACKAGE.parent / "scenarios" / "rolling_bearing" / "hot_wet_roller_table.yaml"
+    )
 
 
 def scenario_folder() -> Path:

@@ -1,8 +1,9 @@
-"""The specification: demands on the lubricant, combined by intersection; conflicts are named, never resolved silently."""
+"""The specification: demands on the lubricant, combined by intersection; conflicts are named, never hidden."""
 
+import builtins
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field, replace
-from itertools import combinations
+from itertools import combinations, pairwise
 
 from advisor.conditions import (
     ALWAYS,
@@ -40,7 +41,7 @@ class Demand:
     rule: str
     void: frozenset[str] = frozenset()
 
-    @property
+    @builtins.property
     def must(self) -> bool:
         """Whether it decides."""
         return self.level == MUST
@@ -78,7 +79,11 @@ def with_limits(condition: Condition, record: Record) -> tuple[Condition, set[st
     if isinstance(condition, Every | Either):
         done = [with_limits(part, record) for part in condition.parts]
         kind = type(condition)
-        return kind(tuple(each[0] for each in done)), set().union(*(e[1] for e in done)), set().union(*(e[2] for e in done))
+        return (
+            kind(tuple(each[0] for each in done)),
+            set().union(*(e[1] for e in done)),
+            set().union(*(e[2] for e in done)),
+        )
     if isinstance(condition, Bound) and isinstance(condition.limit, FactRef):
         name = condition.limit.name
         limit = record.get(name)
@@ -116,7 +121,9 @@ def _finite(domain: Domain) -> list[Coded]:
     return []
 
 
-def _allowed(plain: list[Demand], domains: Mapping[str, Domain], before: Mapping[str, frozenset[Coded]]) -> dict[str, frozenset[Coded]]:
+def _allowed(
+    plain: list[Demand], domains: Mapping[str, Domain], before: Mapping[str, frozenset[Coded]]
+) -> dict[str, frozenset[Coded]]:
     """For each finite property with a plain must: the values that all of its musts allow."""
     found = dict(before)
     for demand in plain:
@@ -137,7 +144,9 @@ def _kept(demand: Demand, values: frozenset[Coded]) -> frozenset[Coded]:
     return frozenset(each for each in values if holds(test, {demand.property: each}))
 
 
-def _for_holds(condition: Condition, allowed: Mapping[str, frozenset[Coded]], domains: Mapping[str, Domain]) -> bool | None:
+def _for_holds(
+    condition: Condition, allowed: Mapping[str, frozenset[Coded]], domains: Mapping[str, Domain]
+) -> bool | None:
     """Whether the plain musts decide a `for`: all allowed values meet it, or none does."""
     if isinstance(condition, Every | Either):
         outcomes = [_for_holds(part, allowed, domains) for part in condition.parts]
@@ -177,12 +186,17 @@ def _smallest_empty(name: str, musts: list[Demand], domain: Domain) -> tuple[str
 
 def _samples(name: str, musts: list[Demand], domain: Domain) -> list[Coded]:
     """Numbers at, between and beyond all limits: enough to find whether thresholds leave anything."""
-    limits = sorted({
-        term.limit for demand in musts for term in leaves(demand.test)
-        if isinstance(term, Bound) and term.name == name and isinstance(term.limit, float)})
+    limits = sorted(
+        {
+            term.limit
+            for demand in musts
+            for term in leaves(demand.test)
+            if isinstance(term, Bound) and term.name == name and isinstance(term.limit, float)
+        }
+    )
     if not limits or domain.kind != "number":
         return []
-    between = [(low + high) / 2 for low, high in zip(limits, limits[1:], strict=False)]
+    between = [(low + high) / 2 for low, high in pairwise(limits)]
     ends = [max(domain.low, limits[0] - 1), min(domain.high, limits[-1] + 1)]
     return [*limits, *between, *ends]
 
@@ -211,4 +225,3 @@ def smallest_cover(parts: list[frozenset[Coded]], whole: frozenset[Coded]) -> tu
 def mentions(condition: Condition) -> set[str]:
     """The names that a condition looks at."""
     return set(names(condition))
-

@@ -6,15 +6,15 @@ from advisor.advice.model import (
     Advice,
     AtLimit,
     Candidate,
+    CautionGiven,
     Line,
     OpenQuestion,
     Ranked,
     Referral,
     State,
     StepTrace,
-    Warning,
 )
-from advisor.advice.recommending import falls_on
+from advisor.advice.waiting import falls_on
 
 __all__ = [
     "FORMAT",
@@ -22,12 +22,12 @@ __all__ = [
     "Advisor",
     "AtLimit",
     "Candidate",
+    "CautionGiven",
     "Line",
     "OpenQuestion",
     "Ranked",
     "Referral",
     "State",
     "StepTrace",
-    "Warning",
     "falls_on",
 ]

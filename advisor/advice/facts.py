@@ -10,7 +10,10 @@ from advisor.knowledge import Computation, Declaration, FromItem, Knowledge
 
 
 class Facts:
-    """Facts by name; `record` is what conditions see; `basis` leads from a fact without a value to the questions behind it."""
+    """Facts by name.
+
+    `record` is what conditions see; `basis` leads from a fact without a value to the questions behind it.
+    """
 
     def __init__(self, case: Case, knowledge: Knowledge, *, assume_gaps: bool = False) -> None:
         self.knowledge = knowledge
@@ -48,7 +51,10 @@ class Facts:
                 self.set_aside.append(name)
             self._stand_in(declaration)
         elif asked is None:
-            self.put(Fact(name, None, Origin.UNANSWERED), self.questions_behind(waits_for(declaration.question.when, self.record)))
+            self.put(
+                Fact(name, None, Origin.UNANSWERED),
+                self.questions_behind(waits_for(declaration.question.when, self.record)),
+            )
         elif answer is not None and answer.value is not None:
             self.put(Fact(name, answer.value, Origin.ANSWERED, "an estimate" if answer.estimate else ""))
         elif (answer is not None or assume_gaps) and declaration.assume is not None:
@@ -86,10 +92,12 @@ class Facts:
         else:
             self.put(Fact(name, None, Origin.VOID, outcome.void))
 
-    def conclude(self, declaration: Declaration, drawn: list[tuple[str, Coded | FactRef]], undecided: frozenset[str]) -> None:
+    def conclude(
+        self, declaration: Declaration, drawn: list[tuple[str, Coded | FactRef]], undecided: frozenset[str]
+    ) -> None:
         """Add a concluded fact from the conclusions of fired rules; `undecided` are questions that could add one."""
         assert declaration.concluded is not None  # noqa: S101 - concluded facts only
-        name, how = declaration.name, declaration.concluded
+        name = declaration.name
         values: list[tuple[str, Coded]] = []
         waits = set(undecided)
         for rule, value in drawn:
@@ -120,7 +128,7 @@ class Facts:
             chosen = values[0][1] if values else domain.code(how.otherwise)
         else:
             pick = max if how.combine == "highest" else min
-            chosen = pick([domain.code(how.otherwise), *(value for _, value in values)])  # type: ignore[type-var]  # ordered by the loader
+            chosen = pick([domain.code(how.otherwise), *(value for _, value in values)])
         rules = ", ".join(rule for rule, value in values if value == chosen)
         self.put(Fact(name, domain.decode(chosen), Origin.CONCLUDED, rules))
 
@@ -128,6 +136,7 @@ class Facts:
 def disagreeing(facts: Mapping[str, Fact], knowledge: Knowledge) -> list[str]:
     """Concluded facts for which rules gave different values where only one may be."""
     return [
-        name for name, each in knowledge.facts.items()
+        name
+        for name, each in knowledge.facts.items()
         if each.concluded and each.concluded.combine == "one" and name in facts and facts[name].origin is Origin.VOID
     ]

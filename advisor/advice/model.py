@@ -34,7 +34,7 @@ class StepTrace:
 
 
 @dataclass(frozen=True, slots=True)
-class Warning:  # noqa: A001 - the trade's word; no builtin is needed here
+class CautionGiven:
     """A caution with the rules that gave it; `concerns` names the classes and products it is for, if not all."""
 
     caution: str
@@ -119,10 +119,11 @@ class Advice:
     shelf: tuple[Ranked, ...]
     judgement: Judgement | None
     oils: Judgement | None
+    choices: Judgement | None
     oil_ranks: Mapping[str, tuple[int, int, int, int]]
     codes: CodesFound
     withheld: bool
-    cautions: tuple[Warning, ...]
+    cautions: tuple[CautionGiven, ...]
     referrals: tuple[Referral, ...]
     assumptions: tuple[str, ...]
     keeping_open: tuple[str, ...]

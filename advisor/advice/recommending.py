@@ -4,11 +4,12 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
 
 from advisor.advice.model import Candidate, Line
+from advisor.advice.waiting import Waiting
 from advisor.case import Fact
-from advisor.conditions import Value, holds
+from advisor.conditions import Value
 from advisor.knowledge import DocketRow, Knowledge
 from advisor.shelf import Catalogue, Judgement, Raise, judge, places
-from advisor.specification import Conflict, Demand, Specification, mentions, smallest_cover
+from advisor.specification import Conflict, Demand, Specification, smallest_cover
 
 Steps = tuple[int, int, int, int]
 
@@ -39,8 +40,14 @@ class Recommender:
         for place, item in enumerate(choices.items):
             self.of_row.setdefault(item.code.partition("=")[0], []).append(place)
 
-    def recommend(self, specification: Specification, facts: Mapping[str, Fact], raises: Sequence[Raise],
-                  waiting: "Waiting", needed: frozenset[str]) -> Recommendation:
+    def recommend(
+        self,
+        specification: Specification,
+        facts: Mapping[str, Fact],
+        raises: Sequence[Raise],
+        waiting: Waiting,
+        needed: frozenset[str],
+    ) -> Recommendation:
         """The recommended class of every row."""
         found = Recommendation()
         demands = specification.demands
@@ -64,8 +71,14 @@ class Recommender:
         self._change_over(found, waiting)
         return found
 
-    def _judged(self, catalogue: Catalogue, demands: Sequence[Demand], facts: Mapping[str, Fact], raises: Sequence[Raise],
-                context: Mapping[str, Value]) -> Judgement:
+    def _judged(
+        self,
+        catalogue: Catalogue,
+        demands: Sequence[Demand],
+        facts: Mapping[str, Fact],
+        raises: Sequence[Raise],
+        context: Mapping[str, Value],
+    ) -> Judgement:
         columns = catalogue.for_case(facts, raises, needed=self.needed, lenient=True, context=context)
         return Judgement(catalogue, columns, demands, self.domains, missing_counts=False)
 
@@ -74,7 +87,7 @@ class Recommender:
         best = min(steps.values(), default=(0, 0, 0, 0))
         return [place for place, each in steps.items() if each == best], steps
 
-    def _oil_rows(self, found: Recommendation, choices: Judgement, waiting: "Waiting") -> None:
+    def _oil_rows(self, found: Recommendation, choices: Judgement, waiting: Waiting) -> None:
         """The rows for base oil and grade: usual oils that pass, the ordinary ones before the special."""
         oils = found.oils
         assert oils is not None  # noqa: S101 - judged just before
@@ -89,15 +102,21 @@ class Recommender:
         winners = [place for place, each in steps.items() if each == best]
         found.oil_winners = winners
         found.oil_ranks = {self.oils.items[place].code: each for place, each in steps.items()}
-        kappas = [value for place in winners if "kappa" in oils.columns and (value := oils.columns["kappa"].values[place]) is not None]
+        kappas = [
+            value
+            for place in winners
+            if "kappa" in oils.columns and (value := oils.columns["kappa"].values[place]) is not None
+        ]
         for row in self.knowledge.docket:
             if row.recommends in {"vg", self.knowledge.usual_oils.family} and row.section == "docket":
                 values = self._values(oils, row.recommends, winners)
                 if own is not None and own == best:
                     values = self._with_own(values, choices, row.recommends)
-                found.lines[row.id] = self._line(row, values, oils, winners, steps, waiting, self._barred_oils(oils, row.recommends))
+                found.lines[row.id] = self._line(
+                    row, values, oils, steps, waiting, self._barred_oils(oils, row.recommends)
+                )
         if own is not None and own == best and self.incumbent is not None and "kappa" in choices.columns:
-            kappas.append(choices.columns["kappa"].values[self.incumbent])
+            kappas += [value for value in [choices.columns["kappa"].values[self.incumbent]] if value is not None]
         numbers = [value for value in kappas if isinstance(value, float)]
         found.kappa = min(numbers, default=None)
 
@@ -117,13 +136,19 @@ class Recommender:
         column = oils.columns.get("speciality")
         if column is None or not passing:
             return passing
-        least = min((value for place in places(passing) if (value := column.values[place]) is not None), default=None)  # type: ignore[type-var]  # numbers
+        least = min((value for place in places(passing) if (value := column.values[place]) is not None), default=None)
         return passing if least is None else passing & column.by_value[least]
 
     def _oil_conflict(self, oils: Judgement) -> Conflict:
-        musts = [(demand, failing) for demand, failing in zip(oils.demands, oils.failing, strict=True) if demand.must and failing]
-        chosen = smallest_cover([frozenset(map(float, places(failing))) for _, failing in musts],
-                                frozenset(map(float, places(self.oils.everything))))
+        musts = [
+            (demand, failing)
+            for demand, failing in zip(oils.demands, oils.failing, strict=True)
+            if demand.must and failing
+        ]
+        chosen = smallest_cover(
+            [frozenset(map(float, places(failing))) for _, failing in musts],
+            frozenset(map(float, places(self.oils.everything))),
+        )
         return Conflict("usual oils", tuple(sorted({musts[each][0].rule for each in chosen or ()})))
 
     def _barred_oils(self, oils: Judgement, name: str) -> dict[Value, tuple[str, ...]]:
@@ -133,11 +158,15 @@ class Recommender:
         for coded, items in column.by_value.items():
             if items & oils.passing:
                 continue
-            rules = {demand.rule for demand, failing in zip(oils.demands, oils.failing, strict=True) if demand.must and failing & items}
+            rules = {
+                demand.rule
+                for demand, failing in zip(oils.demands, oils.failing, strict=True)
+                if demand.must and failing & items
+            }
             barred[self.domains[name].decode(coded)] = tuple(sorted(rules))
         return barred
 
-    def _choice_row(self, row: DocketRow, found: Recommendation, waiting: "Waiting") -> None:
+    def _choice_row(self, row: DocketRow, found: Recommendation, waiting: Waiting) -> None:
         prop = self.knowledge.properties[row.recommends]
         if prop.concluded is not None:
             return
@@ -147,32 +176,49 @@ class Recommender:
         assert found.choices is not None  # noqa: S101 - judged before
         self._choice_line(row, found.choices, found, waiting)
 
-    def _choice_line(self, row: DocketRow, judgement: Judgement, found: Recommendation, waiting: "Waiting") -> Line:
+    def _choice_line(self, row: DocketRow, judgement: Judgement, found: Recommendation, waiting: Waiting) -> Line:
         name = row.recommends
         pool = 0
         for place in self.of_row.get(name, []):
             pool |= 1 << place
         family = pool
-        if self.incumbent is not None and judgement.columns.get(name) is not None and judgement.columns[name].values[self.incumbent] is not None:
+        if (
+            self.incumbent is not None
+            and judgement.columns.get(name) is not None
+            and judgement.columns[name].values[self.incumbent] is not None
+        ):
             pool |= 1 << self.incumbent
         passing = pool & judgement.passing
         winners, steps = self._fewest(judgement, passing)
         barred = {
-            judgement.catalogue.items[place].values[name]: tuple(sorted({
-                demand.rule for demand, failing in zip(judgement.demands, judgement.failing, strict=True) if demand.must and failing >> place & 1}))
+            judgement.catalogue.items[place].values[name]: tuple(
+                sorted(
+                    {
+                        demand.rule
+                        for demand, failing in zip(judgement.demands, judgement.failing, strict=True)
+                        if demand.must and failing >> place & 1
+                    }
+                )
+            )
             for place in places(family & judgement.fails_must)
         }
         if family and not family & judgement.passing:
             found.conflicts.append(self._choice_conflict(name, judgement, family))
         values = self._values(judgement, name, winners)
         found.winners[name] = winners
-        line = self._line(row, values, judgement, winners, steps, waiting, barred)
+        line = self._line(row, values, judgement, steps, waiting, barred)
         found.lines[row.id] = line
         return line
 
     def _choice_conflict(self, name: str, judgement: Judgement, family: int) -> Conflict:
-        musts = [(demand, failing & family) for demand, failing in zip(judgement.demands, judgement.failing, strict=True) if demand.must and failing & family]
-        chosen = smallest_cover([frozenset(map(float, places(failing))) for _, failing in musts], frozenset(map(float, places(family))))
+        musts = [
+            (demand, failing & family)
+            for demand, failing in zip(judgement.demands, judgement.failing, strict=True)
+            if demand.must and failing & family
+        ]
+        chosen = smallest_cover(
+            [frozenset(map(float, places(failing))) for _, failing in musts], frozenset(map(float, places(family)))
+        )
         return Conflict(name, tuple(sorted({musts[each][0].rule for each in chosen or ()})))
 
     def _values(self, judgement: Judgement, name: str, winners: Sequence[int]) -> list[Value]:
@@ -186,16 +232,40 @@ class Recommender:
 
     def _sorted(self, name: str, values: list[Value]) -> list[Value]:
         order = list(self.domains[name].choices)
-        return sorted(values, key=lambda each: (order.index(str(each)) if str(each) in order else 0, each if isinstance(each, float) else 0.0))
+        return sorted(
+            values,
+            key=lambda each: (
+                order.index(str(each)) if str(each) in order else 0,
+                each if isinstance(each, float) else 0.0,
+            ),
+        )
 
-    def _line(self, row: DocketRow, values: list[Value], judgement: Judgement, winners: Sequence[int], steps: Mapping[int, Steps],
-              waiting: "Waiting", barred: Mapping[Value, tuple[str, ...]]) -> Line:
+    def _line(
+        self,
+        row: DocketRow,
+        values: list[Value],
+        judgement: Judgement,
+        steps: Mapping[int, Steps],
+        waiting: Waiting,
+        barred: Mapping[Value, tuple[str, ...]],
+    ) -> Line:
         column = judgement.columns[row.recommends]
         candidates = tuple(
             Candidate(self.domains[row.recommends].decode(coded), judgement.catalogue.items[place].code, steps[place])
-            for place in sorted(steps, key=lambda each: (steps[each], each)) if (coded := column.values[place]) is not None)
+            for place in sorted(steps, key=lambda each: (steps[each], each))
+            if (coded := column.values[place]) is not None
+        )
         about = tuple(demand for demand in judgement.demands if demand.property == row.recommends)
-        return Line(row.id, row.title, tuple(values), candidates, about, (), waiting.for_properties(self._looked_at(row)), barred=barred)
+        return Line(
+            row.id,
+            row.title,
+            tuple(values),
+            candidates,
+            about,
+            (),
+            waiting.for_properties(self._looked_at(row)),
+            barred=barred,
+        )
 
     def _looked_at(self, row: DocketRow) -> frozenset[str]:
         """The properties on which this row's candidates are judged."""
@@ -203,20 +273,32 @@ class Recommender:
             return self.oils.names_with(row.recommends)
         return self.choices.names_with(row.recommends)
 
-    def _change_over(self, found: Recommendation, waiting: "Waiting") -> None:
+    def _change_over(self, found: Recommendation, waiting: Waiting) -> None:
         """Rows on a concluded property: its value over the recommended thickeners and base oils."""
         for row in self.knowledge.docket:
-            if row.section != "docket" or not row.recommends or self.knowledge.properties[row.recommends].concluded is None:
+            if (
+                row.section != "docket"
+                or not row.recommends
+                or self.knowledge.properties[row.recommends].concluded is None
+            ):
                 continue
             values = self._over_recommended(row.recommends, found)
             domain = self.domains[row.recommends]
             unique = sorted(set(values))
-            found.lines[row.id] = Line(row.id, row.title, tuple(domain.decode(each) for each in unique),
-                                       waits=waiting.for_properties(frozenset({row.recommends, "thickener", "base_oil", "pair"})))
+            found.lines[row.id] = Line(
+                row.id,
+                row.title,
+                tuple(domain.decode(each) for each in unique),
+                waits=waiting.for_properties(frozenset({row.recommends, "thickener", "base_oil", "pair"})),
+            )
 
     def _over_recommended(self, name: str, found: Recommendation) -> list[float]:
         assert found.choices is not None and found.oils is not None  # noqa: S101, PT018 - judged before
-        oils = [float(value) for place in found.oil_winners if isinstance(value := found.oils.columns[name].values[place], float)]
+        oils = [
+            float(value)
+            for place in found.oil_winners
+            if isinstance(value := found.oils.columns[name].values[place], float)
+        ]
         if found.form == "oil" or "thickener" not in found.winners:
             return oils
         values: list[float] = []
@@ -226,26 +308,3 @@ class Recommender:
                 continue
             values += [own] if place == self.incumbent or not oils else [max(own, oil) for oil in oils]
         return values
-
-
-class Waiting:
-    """Which questions still matter to demands on which properties."""
-
-    def __init__(self) -> None:
-        self.by_property: dict[str, set[str]] = {}
-        self.computed: set[str] = set()
-
-    def add(self, properties: set[str], questions: frozenset[str]) -> None:
-        """Demands on these properties wait for these questions."""
-        for name in properties:
-            self.by_property.setdefault(name, set()).update(questions)
-
-    def for_properties(self, names: frozenset[str]) -> tuple[str, ...]:
-        """The questions that demands on these properties wait for."""
-        return tuple(sorted(set().union(*(self.by_property.get(name, set()) for name in names))))
-
-
-def falls_on(demand: Demand, values: Mapping[str, Value], knowledge: Knowledge) -> bool | None:
-    """Whether a demand applies to a lubricant with these values; None where they do not say."""
-    record = {name: knowledge.properties[name].domain.code(value) for name, value in values.items() if name in mentions(demand.for_)}
-    return holds(demand.for_, record)

@@ -1,7 +1,8 @@
 """From conditions to the engine's rule sets: conjunctions of tests, dealt out so that no limit of the engine is met."""
 
 import math
-from collections.abc import Iterator, Mapping, Sequence
+from collections import Counter
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import Final, NamedTuple
 
@@ -12,13 +13,16 @@ from advisor.inference.faults import TooManyBranches, UnfitCondition, Unsendable
 MOST_BRANCHES: Final = 40
 """Per condition; more is a table that wants to be written as one."""
 
-MOST_IN_SET: Final = 60
-"""Branches per rule set; the engine overruns when 65 are pending, and hangs or dies at some hundreds."""
+MOST_PENDING: Final = 60
+"""Branches of a rule set that one record can leave pending together; the engine overruns at 65."""
+
+MOST_IN_SET: Final = 120
+"""Branches of a rule set altogether; the engine hangs or dies at some hundreds."""
 
 MOST_ATTRIBUTES: Final = 200
 """Attributes per rule set; the engine refuses a record of 255."""
 
-SENTINEL: Final = "zz"
+SENTINEL: Final = "zzz"
 """The rule that must fire in every case."""
 
 PROBE: Final = '{"$gt":{"probe":0.5}}'
@@ -34,10 +38,14 @@ _SIGNS: Final = {"<": "$lt", "<=": "$lte", ">": "$gt", ">=": "$gte", "!=": "$neq
 
 
 class Test(NamedTuple):
-    """One test in the engine's words, and the attributes it looks at."""
+    """One test in the engine's words, and the attributes it looks at.
+
+    Of the choosing tests on one attribute (it equals a text) no record passes two.
+    """
 
     words: str
     attributes: tuple[int, ...]
+    choosing: bool = False
 
 
 Branch = tuple[Test, ...]
@@ -76,7 +84,7 @@ def compile_conditions(conditions: Sequence[Condition], domains: Mapping[str, Do
             branches += [(index, branch) for branch in own]
     if attributes.clash():
         raise UnfitCondition(0, "its attributes cannot be told apart by the engine; split the step.")
-    rule_sets = tuple(_rule_set(part) for part in _dealt_out(branches))
+    rule_sets = tuple(_rule_set(part.branches, part.attributes) for part in _dealt_out(branches))
     return Compiled(rule_sets, tuple(attributes.spellings), frozenset(always))
 
 
@@ -137,8 +145,7 @@ class _Alternatives:
         for part in condition.parts:
             alternatives = self.of(part)
             product = [done + more for done in product for more in alternatives]
-        # A test said twice is said once: ("a > 1", "a > 1") would only cost time.
-        return list(dict.fromkeys(tuple(dict.fromkeys(branch)) for branch in product))
+        return list(dict.fromkeys(_choosing_first(branch) for branch in product))
 
     def _bound(self, term: Bound) -> Branches:
         seen = self._number(term.name)
@@ -157,7 +164,7 @@ class _Alternatives:
         spell = number if domain.ordered else text
         spelled = sorted(spell(each) for each in term.among)
         if term.wanted:
-            return [(_compare(seen, "=", each),) for each in spelled]
+            return [(_compare(seen, "=", each)._replace(choosing=not domain.ordered),) for each in spelled]
         return [tuple(_compare(seen, "!=", each) for each in spelled) or (_present(seen),)]
 
     def _ticked(self, term: Ticked) -> Branches:
@@ -202,26 +209,55 @@ def _attributes(branch: Branch) -> set[int]:
     return {attribute for test in branch for attribute in test.attributes}
 
 
-def _dealt_out(branches: list[tuple[int, Branch]]) -> Iterator[list[tuple[int, Branch]]]:
-    part: list[tuple[int, Branch]] = []
-    seen: set[int] = set()
+def _choosing_first(branch: Branch) -> Branch:
+    """The branch with its choosing tests in front, and every test said once.
+
+    The engine walks the tests in order, so most branches end at a choice, and alternatives of a choice never wait
+    together: `_Part` counts on that.
+    """
+    return tuple(sorted(dict.fromkeys(branch), key=lambda test: not test.choosing))
+
+
+class _Part:
+    """Branches that go into one rule set, and how many of them one record can leave pending."""
+
+    def __init__(self) -> None:
+        self.branches: list[tuple[int, Branch]] = []
+        self.attributes: set[int] = set()
+        self._open = 0
+        self._chosen: dict[int, Counter[Test]] = {}
+
+    def add(self, owner: int, branch: Branch) -> None:
+        self.branches.append((owner, branch))
+        self.attributes |= _attributes(branch)
+        first = branch[0]
+        if first.choosing:
+            self._chosen.setdefault(first.attributes[0], Counter())[first] += 1
+        else:
+            self._open += 1
+
+    def takes(self, branch: Branch) -> bool:
+        """Whether there is surely room for one more."""
+        pending = self._open + sum(max(counts.values()) for counts in self._chosen.values())
+        room = pending < MOST_PENDING and len(self.branches) < MOST_IN_SET
+        return room and len(self.attributes | _attributes(branch)) <= MOST_ATTRIBUTES
+
+
+def _dealt_out(branches: list[tuple[int, Branch]]) -> list[_Part]:
+    parts: list[_Part] = []
     for owner, branch in branches:
-        together = seen | _attributes(branch)
-        if len(part) == MOST_IN_SET or len(together) > MOST_ATTRIBUTES:
-            yield part
-            part, together = [], _attributes(branch)
-        part.append((owner, branch))
-        seen = together
-    if part:
-        yield part
+        if not parts or not parts[-1].takes(branch):
+            parts.append(_Part())
+        parts[-1].add(owner, branch)
+    return parts
 
 
-def _rule_set(part: list[tuple[int, Branch]]) -> RuleSet:
-    rules = [_rule(f"{place:02}", [test.words for test in branch]) for place, (_, branch) in enumerate(part)]
+def _rule_set(branches: list[tuple[int, Branch]], attributes: set[int]) -> RuleSet:
+    named = {f"{place:03}": owned for place, owned in enumerate(branches)}
+    rules = [_rule(name, [test.words for test in branch]) for name, (_, branch) in named.items()]
     rules.append(_rule(SENTINEL, []))
-    owners = {f"{place:02}": owner for place, (owner, _) in enumerate(part)}
-    attributes = sorted(set().union(*(_attributes(branch) for _, branch in part)))
-    return RuleSet("{" + ",".join(rules) + "}", owners, tuple(attributes))
+    owners = {name: owner for name, (owner, _) in named.items()}
+    return RuleSet("{" + ",".join(rules) + "}", owners, tuple(sorted(attributes)))
 
 
 def _rule(name: str, tests: list[str]) -> str:

@@ -3,7 +3,7 @@
 from collections.abc import Iterable
 
 
-class UnfitCondition(ValueError):  # noqa: N818  # says what it is
+class UnfitCondition(ValueError):
     """A condition that the engine cannot be given; `index` is its position, `reason` a sentence for its author."""
 
     def __init__(self, index: int, reason: str) -> None:
@@ -16,11 +16,11 @@ class TooManyBranches(UnfitCondition):
     """A condition whose alternatives multiply to more conjunctions than one rule may have."""
 
 
-class Unsendable(ValueError):  # noqa: N818  # says what it is
+class Unsendable(ValueError):
     """A value that cannot be written for the engine exactly."""
 
 
-class EngineFault(RuntimeError):  # noqa: N818  # says what it is
+class EngineFault(RuntimeError):
     """The engine cannot be trusted with this case; no advice may rest on it."""
 
 

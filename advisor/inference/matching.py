@@ -121,7 +121,7 @@ class Matcher:
         first = self._engine.start_action_for_state(handle, session) if outcome == _MATCHED else None
         firing = first[1] if first else None
         while firing is not None:
-            names.append(firing[2:4])  # it begins {"NN":
+            names.append(firing[2:5])  # it begins {"NNN":
             firing = following(handle, session)
         if names:
             self._engine.retract_fact(handle, RETRACTION)

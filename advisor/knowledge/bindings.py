@@ -20,7 +20,9 @@ class Bindings:
     properties: Map[str, Domain]
     problems: Problems
 
-    def of_computation(self, shape: ComputationShape, tree: Mapping, scope: Scope) -> tuple[Formed | LookedUp | None, Domain]:
+    def of_computation(
+        self, shape: ComputationShape, tree: Mapping, scope: Scope
+    ) -> tuple[Formed | LookedUp | None, Domain]:
         """What computes a fact, and the domain that follows from it."""
         if (shape.formula is None) == (shape.looked_up is None):
             scope.problem(tree.mark, "a computed fact has either a formula or a look-up")
@@ -32,7 +34,7 @@ class Bindings:
             return self._formed(shape.formula, tree, scope), domain
         node = tree["looked_up"]
         assert shape.looked_up is not None  # noqa: S101 - one of the two is there
-        domain = self._column(shape.looked_up, node, scope)
+        domain = self._column(shape.looked_up)
         return self._looked_up(shape.looked_up, node, domain, scope), domain
 
     def of_property(
@@ -52,7 +54,8 @@ class Bindings:
             assert isinstance(nodes, Sequence)  # noqa: S101 - by the shape
             parts = [
                 self._looked_up(part.looked_up, node["looked_up"], domain, scope)
-                for part, node in zip(shape.worst_of, nodes, strict=True) if isinstance(node, Mapping)
+                for part, node in zip(shape.worst_of, nodes, strict=True)
+                if isinstance(node, Mapping)
             ]
             return WorstOf(tuple(part for part in parts if part is not None))
         return None
@@ -60,7 +63,11 @@ class Bindings:
     def _formula_domain(self, name: str, tree: Mapping, scope: Scope) -> Domain:
         formula = FORMULAS.get(name)
         if formula is None:
-            scope.problem(tree["formula"].mark, f"'{name}' is no formula", nearest(name, FORMULAS).strip() or "gudgeon compute lists them")
+            scope.problem(
+                tree["formula"].mark,
+                f"'{name}' is no formula",
+                nearest(name, FORMULAS).strip() or "gudgeon compute lists them",
+            )
             return Domain("number")
         return Domain("number", self._unit(name, tree))
 
@@ -84,8 +91,11 @@ class Bindings:
         wanted = {each.name: each for each in formula.inputs}
         for key in node:
             if key not in wanted:
-                scope.problem(node.key_marks[key], f"'{key}' is no input of {name}", nearest(key, wanted).strip() or
-                              "its inputs: " + ", ".join(wanted))
+                scope.problem(
+                    node.key_marks[key],
+                    f"'{key}' is no input of {name}",
+                    nearest(key, wanted).strip() or "its inputs: " + ", ".join(wanted),
+                )
         for key in wanted:
             if key not in node:
                 scope.problem(node.mark, f"input '{key}' of {name} is missing", f"add '{key}: fact or number'")
@@ -105,8 +115,11 @@ class Bindings:
             try:
                 inputs[key] = as_number(node)
             except ValueError:
-                scope.problem(node.mark, f"'{name}' is neither a number nor a known fact or property",
-                              nearest(name, [*self.facts, *self.properties]).strip())
+                scope.problem(
+                    node.mark,
+                    f"'{name}' is neither a number nor a known fact or property",
+                    nearest(name, [*self.facts, *self.properties]).strip(),
+                )
             return
         if domain.kind != "number":
             scope.problem(node.mark, f"'{name}' is {domain.kind}, and a formula needs a number")
@@ -114,7 +127,7 @@ class Bindings:
             scope.problem(node.mark, f"'{name}' is in {domain.unit}, and input '{key}' is in {unit}")
         inputs[key] = name
 
-    def _column(self, shape: LookUpShape, node: Node, scope: Scope) -> Domain:
+    def _column(self, shape: LookUpShape) -> Domain:
         table = self.tables.get(shape.table)
         if table is None:
             return Domain("choice", open_choices=True)
@@ -134,8 +147,11 @@ class Bindings:
         column = shape.column or ""
         if not table.matrix and column not in table.columns:
             at = node["column"].mark if "column" in node else node.mark
-            scope.problem(at, f"'{column}' is no column of table {table.id}" if column else "the column to be read is missing",
-                          nearest(column, table.columns).strip())
+            scope.problem(
+                at,
+                f"'{column}' is no column of table {table.id}" if column else "the column to be read is missing",
+                nearest(column, table.columns).strip(),
+            )
             return None
         otherwise = self._otherwise(node, domain, scope)
         return LookedUp(shape.table, by, column, shape.combine or "", otherwise) if by else None
@@ -169,7 +185,10 @@ class Bindings:
             scope.problem(at, f"'{column}' is no column of table {table.id}", nearest(column, table.columns).strip())
             return False
         if str(name) not in self.facts and str(name) not in self.properties:
-            scope.problem(name.mark, f"'{name}' is no fact or property",
-                          nearest(str(name), [*self.facts, *self.properties]).strip())
+            scope.problem(
+                name.mark,
+                f"'{name}' is no fact or property",
+                nearest(str(name), [*self.facts, *self.properties]).strip(),
+            )
             return False
         return True

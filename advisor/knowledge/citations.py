@@ -40,12 +40,19 @@ class Citations:
     def _one(self, shape: CitationShape, node: Node, scope: Scope) -> Citation:
         source = self.sources.get(shape.id)
         if source is None:
-            scope.problem(node.mark, f"'{shape.id}' is no source", nearest(shape.id, self.sources).strip() or "add it to sources.yaml")
+            scope.problem(
+                node.mark,
+                f"'{shape.id}' is no source",
+                nearest(shape.id, self.sources).strip() or "add it to sources.yaml",
+            )
             return Citation(shape.id, shape.where, "no source")
         checked = shape.checked or source.checked
         if _STRENGTH[checked] > _STRENGTH[source.checked]:
-            scope.problem(node.mark, f"'{shape.id}' is marked '{source.checked}' in sources.yaml, and a citation cannot be surer",
-                          "read the source, then change its 'checked' there")
+            scope.problem(
+                node.mark,
+                f"'{shape.id}' is marked '{source.checked}' in sources.yaml, and a citation cannot be surer",
+                "read the source, then change its 'checked' there",
+            )
             checked = source.checked
         return Citation(shape.id, shape.where, checked)
 

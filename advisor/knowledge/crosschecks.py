@@ -25,9 +25,17 @@ def ordered(computations: Map[str, Computation], problems: Problems) -> dict[str
             return
         if name in above:
             mark = computations[name].mark
-            circle = " -> ".join((*above[above.index(name):], name))
-            problems.add(Problem(mark.file, mark.line, mark.column, ("computations", f"'{name}'"),
-                                 f"these computations need one another: {circle}", "break the circle"))
+            circle = " -> ".join((*above[above.index(name) :], name))
+            problems.add(
+                Problem(
+                    mark.file,
+                    mark.line,
+                    mark.column,
+                    ("computations", f"'{name}'"),
+                    f"these computations need one another: {circle}",
+                    "break the circle",
+                )
+            )
             return
         for needed in inputs_of(computations[name].how):
             place(needed, (*above, name))
@@ -56,8 +64,16 @@ def cross_check(knowledge: Knowledge, problems: Problems) -> None:
                     _late(problems, instance.rule.mark, ("rules", f"'{instance.rule.id}'"), name, step)
             if step == "closing" and any(isinstance(each, Asks | Sets) for each in instance.then):
                 mark = instance.rule.mark
-                problems.add(Problem(mark.file, mark.line, mark.column, ("rules", f"'{instance.rule.id}'"),
-                                     "a closing rule may only caution and refer", "move the rule to an earlier step"))
+                problems.add(
+                    Problem(
+                        mark.file,
+                        mark.line,
+                        mark.column,
+                        ("rules", f"'{instance.rule.id}'"),
+                        "a closing rule may only caution and refer",
+                        "move the rule to an earlier step",
+                    )
+                )
     _may_conflict(knowledge, problems)
 
 
@@ -80,16 +96,29 @@ def _named(instance: Instance) -> Iterator[str]:
 
 
 def _late(problems: Problems, mark: Mark, trail: tuple[str, ...], name: str, step: str) -> None:
-    problems.add(Problem(mark.file, mark.line, mark.column, trail, f"'{name}' is not known yet in step {step}",
-                         "concluded facts are visible from the next step on; move the rule, or what concludes the fact"))
+    problems.add(
+        Problem(
+            mark.file,
+            mark.line,
+            mark.column,
+            trail,
+            f"'{name}' is not known yet in step {step}",
+            "concluded facts are visible from the next step on; move the rule, or what concludes the fact",
+        )
+    )
 
 
 def _may_conflict(knowledge: Knowledge, problems: Problems) -> None:
     for rule in knowledge.rules.values():
         for other in rule.may_conflict:
             if other not in knowledge.rules:
-                problems.add(Problem(rule.mark.file, rule.mark.line, rule.mark.column, ("rules", f"'{rule.id}'", "may_conflict"),
-                                     f"'{other}' is no rule", "name a rule by its id"))
-
-
-
+                problems.add(
+                    Problem(
+                        rule.mark.file,
+                        rule.mark.line,
+                        rule.mark.column,
+                        ("rules", f"'{rule.id}'", "may_conflict"),
+                        f"'{other}' is no rule",
+                        "name a rule by its id",
+                    )
+                )

@@ -3,7 +3,7 @@
 from collections.abc import Mapping as Map
 from dataclasses import dataclass, replace
 
-from advisor.conditions import ALWAYS, Domain, FactRef, Step, Value
+from advisor.conditions import ALWAYS, Condition, Domain, FactRef, Step, Value
 from advisor.documents import Mapping, Node, Problems, Scalar, nearest
 from advisor.knowledge.bindings import Bindings
 from advisor.knowledge.citations import Citations
@@ -91,11 +91,17 @@ class FactReader:
         scope = Scope(self.problems, asked, trail=("facts", name), what="fact asked earlier")
         kinds = [kind for kind in ("question", "concluded", "tunable") if getattr(shape, kind) is not None]
         if len(kinds) != 1:
-            scope.problem(declared.parent.key_marks[name], "a fact has exactly one of question, concluded and tunable",
-                          f"this one has {' and '.join(kinds) or 'none'}")
+            scope.problem(
+                declared.parent.key_marks[name],
+                "a fact has exactly one of question, concluded and tunable",
+                f"this one has {' and '.join(kinds) or 'none'}",
+            )
         self.citations.read(shape.source, tree, scope)
         return Declaration(
-            name, shape.title, domain, declared.parent.key_marks[name],
+            name,
+            shape.title,
+            domain,
+            declared.parent.key_marks[name],
             question=self._question(shape, tree, scope),
             assume=self._assumption(shape.assume, tree.get("assume"), domain, scope.at("assume")),
             unasked=self._unasked(shape, tree, domain, asked, scope),
@@ -106,7 +112,7 @@ class FactReader:
     def _question(self, shape: FactShape, tree: Mapping, scope: Scope) -> Question | None:
         if shape.question is None:
             return None
-        when = ALWAYS
+        when: Condition = ALWAYS
         node = tree["question"]
         if isinstance(node, Mapping) and "when" in node:
             try:
@@ -114,11 +120,16 @@ class FactReader:
             except Mistyped:
                 when = ALWAYS
             if "unasked" not in tree:
-                scope.problem(node.key_marks["when"], "a question with 'when' needs the value that stands where it is not asked",
-                              "add 'unasked:' to the fact")
+                scope.problem(
+                    node.key_marks["when"],
+                    "a question with 'when' needs the value that stands where it is not asked",
+                    "add 'unasked:' to the fact",
+                )
         return Question(shape.question.ask, shape.question.help, shape.question.section, shape.question.decides, when)
 
-    def _assumption(self, shape: AssumeShape | None, node: Node | None, domain: Domain, scope: Scope) -> Assumption | None:
+    def _assumption(
+        self, shape: AssumeShape | None, node: Node | None, domain: Domain, scope: Scope
+    ) -> Assumption | None:
         if shape is None or not isinstance(node, Mapping):
             return None
         try:
@@ -181,7 +192,13 @@ def read_properties(
         scope = Scope(problems, domains, trail=("properties", name), what="property")
         citations.read(shape.source, tree, scope)
         found[name] = Property(
-            name, shape.title, domains[name], declared.parent.key_marks[name], shape.of or "", shape.test, shape.hidden,
+            name,
+            shape.title,
+            domains[name],
+            declared.parent.key_marks[name],
+            shape.of or "",
+            shape.test,
+            shape.hidden,
             bindings.of_property(shape, tree, domains[name], scope),
             concluded(shape.concluded, tree.get("concluded"), domains[name], scope),
             shape.same.item if shape.same else "",

@@ -6,15 +6,15 @@ from dataclasses import dataclass, field
 from pathlib import Path
 from typing import Generic, TypeVar
 
-from advisor.documents import Mapping, Problem, Problems, nearest
+from advisor.documents import Mapping, Node, Problem, Problems, nearest
 from advisor.knowledge.reading import read_file
 from advisor.knowledge.schema import (
     CautionsFile,
     ComputationShape,
     DesignationsFile,
     DocketFile,
-    FactShape,
     FactsFile,
+    FactShape,
     File,
     PointKindsFile,
     PointKindShape,
@@ -124,7 +124,9 @@ def _clash(folder: Folder, known: Map[str, object], name: str, parent: Mapping) 
     if name not in known:
         return False
     mark = parent.key_marks[name]
-    folder.problems.add(Problem(mark.file, mark.line, mark.column, (), f"'{name}' is declared twice", "give each its own id"))
+    folder.problems.add(
+        Problem(mark.file, mark.line, mark.column, (), f"'{name}' is declared twice", "give each its own id")
+    )
     return True
 
 
@@ -185,11 +187,16 @@ def _step(folder: Folder, name: str, step: str, kind: str) -> None:
     shape, tree = kept
     assert isinstance(shape, StepFile)  # noqa: S101 - just asked
     where = f"{step} {kind}"
-    for key, shapes, into in (("computations", shape.computations, folder.computations), ("rules", shape.rules, folder.rules)):
-        nodes = tree.get(key)
-        for one, node in zip(shapes, nodes if isinstance(nodes, list) else (), strict=True):
-            if isinstance(node, Mapping):
-                into.append(Placed(one, node, tree, where))  # type: ignore[attr-defined]  # the two lists of the pair agree
+    folder.computations += [
+        Placed(one, node, tree, where) for one, node in _entries(shape.computations, tree.get("computations"))
+    ]
+    folder.rules += [Placed(one, node, tree, where) for one, node in _entries(shape.rules, tree.get("rules"))]
+
+
+def _entries(shapes: list[T], nodes: Node | None) -> list[tuple[T, Mapping]]:
+    """Shapes beside the trees they were read from."""
+    pairs = zip(shapes, nodes if isinstance(nodes, list) else (), strict=True)
+    return [(shape, node) for shape, node in pairs if isinstance(node, Mapping)]
 
 
 def _shelf(folder: Folder, shelf: Path | None) -> None:
@@ -218,4 +225,6 @@ def _strays(folder: Folder) -> None:
         )
         if not known:
             near = nearest(path.stem, [*steps, "facts"]) if len(parts) == 2 and parts[0] in places else ""
-            folder.problems.add(Problem(str(path), 1, 1, (), "nothing reads this file", near.strip() or "rename it, or take it out"))
+            folder.problems.add(
+                Problem(str(path), 1, 1, (), "nothing reads this file", near.strip() or "rename it, or take it out")
+            )

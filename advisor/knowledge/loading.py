@@ -1,7 +1,7 @@
 """From a knowledge folder to knowledge: read, type, resolve, cross-check; every fault at once."""
 
 from collections.abc import Mapping as Map
-from collections.abc import Sequence as Seq
+from contextlib import suppress
 from pathlib import Path
 
 from advisor.conditions import ALWAYS, Condition, Domain, Value
@@ -14,6 +14,7 @@ from advisor.knowledge.declarations import Declared, FactReader, domains_of, rea
 from advisor.knowledge.folder import Folder, fingerprint, read_folder
 from advisor.knowledge.model import (
     Caution,
+    Citation,
     Computation,
     DocketRow,
     Instance,
@@ -21,22 +22,34 @@ from advisor.knowledge.model import (
     PointKind,
     Procedure,
     Product,
-    Property,
     Rule,
     Step,
     UsualOils,
 )
 from advisor.knowledge.parsing import Mistyped, Scope, condition, value
 from advisor.knowledge.rules import Names, RuleReader
-from advisor.knowledge.schema import CautionsFile, DesignationsFile, DocketFile, DocketRowShape, SourcesFile, StepsFile, UsualOilsFile
+from advisor.knowledge.schema import (
+    CautionsFile,
+    CitationShape,
+    DesignationsFile,
+    DocketFile,
+    DocketRowShape,
+    SourcesFile,
+    StepsFile,
+    UsualOilsFile,
+)
 from advisor.knowledge.tables import choices_of, read_tables
 
 CLOSING_FACTS: Map[str, Domain] = {
     "recommended_kappa": Domain("number"),
     "recommended_form": Domain("choice", choices={"grease": "grease", "oil": "oil"}),
-    "maker_verdict": Domain("choice", choices={
-        name: name.replace("_", " ")
-        for name in ("none_named", "not_on_the_shelf", "fits", "second_best", "falls_short", "unproven")}),
+    "maker_verdict": Domain(
+        "choice",
+        choices={
+            name: name.replace("_", " ")
+            for name in ("none_named", "not_on_the_shelf", "fits", "second_best", "falls_short", "unproven")
+        },
+    ),
     "shelf_fits": Domain("yes_no", choices={"no": "no", "yes": "yes"}),
 }
 
@@ -59,9 +72,25 @@ def examine(root: Path, point_kind: str, shelf: Path | None, problems: Problems)
     """Read a folder and collect every problem; no knowledge where the structure itself is damaged."""
     folder = read_folder(root, point_kind, shelf, problems)
     if folder.kinds and point_kind not in folder.kinds:
-        problems.add(Problem(str(root / "point_kinds.yaml"), 1, 1, (), f"'{point_kind}' is no kind of point here",
-                             nearest(point_kind, folder.kinds).strip()))
-    needed = {"sources.yaml", "steps.yaml", "properties.yaml", "cautions.yaml", "docket.yaml", "usual_oils.yaml", "designations.yaml"}
+        problems.add(
+            Problem(
+                str(root / "point_kinds.yaml"),
+                1,
+                1,
+                (),
+                f"'{point_kind}' is no kind of point here",
+                nearest(point_kind, folder.kinds).strip(),
+            )
+        )
+    needed = {
+        "sources.yaml",
+        "steps.yaml",
+        "properties.yaml",
+        "cautions.yaml",
+        "docket.yaml",
+        "usual_oils.yaml",
+        "designations.yaml",
+    }
     if not needed <= set(folder.files) or folder.shelf is None or point_kind not in folder.kinds:
         return None
     return _Loader(folder, point_kind, problems).knowledge()
@@ -79,7 +108,9 @@ class _Loader:
         labels = {name: choices_of(table) for name, table in self.tables.items()}
         items = self._items()
         facts = {name: Declared(placed.shape, placed.tree, placed.parent) for name, placed in folder.facts.items()}
-        properties = {name: Declared(placed.shape, placed.tree, placed.parent) for name, placed in folder.properties.items()}
+        properties = {
+            name: Declared(placed.shape, placed.tree, placed.parent) for name, placed in folder.properties.items()
+        }
         self.fact_domains = domains_of(facts, labels, items, problems, "facts")
         self.property_domains = domains_of(properties, labels, items, problems, "properties")
         self._both_kinds()
@@ -91,21 +122,38 @@ class _Loader:
     def _items(self) -> dict[str, str]:
         shelf = self.folder.shelf
         nodes = shelf[1].get("products") if shelf else None
-        return {str(node["item"]): f"{node['item']} {node.get('title', '')}".strip()
-                for node in nodes if isinstance(node, Mapping) and "item" in node} if isinstance(nodes, Listed) else {}
+        return (
+            {
+                str(node["item"]): f"{node['item']} {node.get('title', '')}".strip()
+                for node in nodes
+                if isinstance(node, Mapping) and "item" in node
+            }
+            if isinstance(nodes, Listed)
+            else {}
+        )
 
     def _both_kinds(self) -> None:
         for name in set(self.fact_domains) & set(self.property_domains):
             mark = self.folder.properties[name].parent.key_marks[name]
-            self.problems.add(Problem(mark.file, mark.line, mark.column, ("properties", name),
-                                      f"'{name}' is a fact already, and a name is one or the other", "rename one of them"))
+            self.problems.add(
+                Problem(
+                    mark.file,
+                    mark.line,
+                    mark.column,
+                    ("properties", name),
+                    f"'{name}' is a fact already, and a name is one or the other",
+                    "rename one of them",
+                )
+            )
 
     def _computations(self) -> dict[str, Computation]:
         """All computed facts; their domains are known only once their formulas and tables are."""
         for placed in self.folder.computations:
             scope = Scope(self.problems, {}, trail=("computations", f"'{placed.shape.fact}'"))
             if placed.shape.fact in self.fact_domains:
-                scope.problem(placed.tree["fact"].mark, f"'{placed.shape.fact}' is declared twice", "give each its own id")
+                scope.problem(
+                    placed.tree["fact"].mark, f"'{placed.shape.fact}' is declared twice", "give each its own id"
+                )
             self.fact_domains[placed.shape.fact] = Domain("number")
         self._infer_domains()
         found: dict[str, Computation] = {}
@@ -114,8 +162,15 @@ class _Loader:
             scope = Scope(self.problems, {}, trail=("computations", f"'{shape.fact}'"))
             how, domain = self.bindings.of_computation(shape, tree, scope)
             if how is not None:
-                found[shape.fact] = Computation(shape.fact, shape.title, domain, how, placed.where.split(" ")[0], tree.mark,
-                                                self.citations.read(shape.source, tree, scope))
+                found[shape.fact] = Computation(
+                    shape.fact,
+                    shape.title,
+                    domain,
+                    how,
+                    placed.where.split(" ")[0],
+                    tree.mark,
+                    self.citations.read(shape.source, tree, scope),
+                )
         return ordered(found, self.problems)
 
     def _infer_domains(self) -> None:
@@ -142,10 +197,20 @@ class _Loader:
             PointKind(self.point_kind, self.folder.kinds[self.point_kind].title),
             self.citations.sources,
             tuple(Step(name, step.title, step.purpose) for name, step in steps.steps.items()),
-            self.facts, self.computations, self.properties, self.tables, rules, instances,
-            self._cautions("cautions"), self._cautions("referrals"), self._procedures(),
-            self._docket(), self._usual_oils(), designations.designations,
-            self.folder.shelf[0].shelf if self.folder.shelf else "", tuple(self._products()),
+            self.facts,
+            self.computations,
+            self.properties,
+            self.tables,
+            rules,
+            instances,
+            self._cautions("cautions"),
+            self._cautions("referrals"),
+            self._procedures(),
+            self._docket(),
+            self._usual_oils(),
+            designations.designations,
+            self.folder.shelf[0].shelf if self.folder.shelf else "",
+            tuple(self._products()),
             fingerprint(self.folder.root),
         )
         cross_check(knowledge, self.problems)
@@ -154,9 +219,17 @@ class _Loader:
     def _rules(self, cautions: CautionsFile) -> tuple[dict[str, Rule], dict[str, tuple[Instance, ...]]]:
         concluded = {name: each.domain for name, each in self.facts.items() if each.concluded}
         concluded |= {name: each.domain for name, each in self.properties.items() if each.concluded}
-        names = Names(self.fact_domains, self.property_domains, concluded, self.tables,
-                      frozenset(cautions.cautions), frozenset(cautions.referrals))
-        closing = Names({**self.fact_domains, **CLOSING_FACTS}, names.properties, {}, names.tables, names.cautions, names.referrals)
+        names = Names(
+            self.fact_domains,
+            self.property_domains,
+            concluded,
+            self.tables,
+            frozenset(cautions.cautions),
+            frozenset(cautions.referrals),
+        )
+        closing = Names(
+            {**self.fact_domains, **CLOSING_FACTS}, names.properties, {}, names.tables, names.cautions, names.referrals
+        )
         rules: dict[str, Rule] = {}
         instances: dict[str, tuple[Instance, ...]] = {}
         for placed in self.folder.rules:
@@ -164,8 +237,17 @@ class _Loader:
             reader = RuleReader(closing if step == "closing" else names, self.citations, self.problems)
             if placed.shape.id in rules:
                 mark = placed.tree["id"].mark
-                self.problems.add(Problem(mark.file, mark.line, mark.column, ("rules",), f"the id '{placed.shape.id}' is taken by the rule in line "
-                                          f"{rules[placed.shape.id].mark.line} of {rules[placed.shape.id].mark.file}", "ids are never used twice"))
+                self.problems.add(
+                    Problem(
+                        mark.file,
+                        mark.line,
+                        mark.column,
+                        ("rules",),
+                        f"the id '{placed.shape.id}' is taken by the rule in line "
+                        f"{rules[placed.shape.id].mark.line} of {rules[placed.shape.id].mark.file}",
+                        "ids are never used twice",
+                    )
+                )
                 continue
             rule, made = reader.read(placed.shape, placed.tree, step, kind)
             rules[rule.id] = rule
@@ -181,17 +263,19 @@ class _Loader:
             for name, shape in getattr(file, part).items()
         }
 
-    def _cited(self, parent: object, name: str, shapes: Seq[object]):  # type: ignore[no-untyped-def]  # citations
+    def _cited(self, parent: object, name: str, shapes: list[CitationShape]) -> tuple[Citation, ...]:
         node = parent[name] if isinstance(parent, Mapping) else None
         scope = Scope(self.problems, {}, trail=("cautions", name))
-        return self.citations.read(list(shapes), node, scope) if node is not None else ()  # type: ignore[arg-type]  # shapes
+        return self.citations.read(shapes, node, scope) if node is not None else ()
 
     def _procedures(self) -> dict[str, Procedure]:
         file, tree = self.folder.files["cautions.yaml"]
         assert isinstance(file, CautionsFile)  # noqa: S101 - by the file's shape
         parent = tree.get("change_over")
-        return {name: Procedure(name, shape.title, tuple(shape.steps), self._cited(parent, name, shape.source))
-                for name, shape in file.change_over.items()}
+        return {
+            name: Procedure(name, shape.title, tuple(shape.steps), self._cited(parent, name, shape.source))
+            for name, shape in file.change_over.items()
+        }
 
     def _docket(self) -> tuple[DocketRow, ...]:
         file, tree = self.folder.files["docket.yaml"]
@@ -219,7 +303,15 @@ class _Loader:
                 shown = condition(node["shown_if"], scope.at("shown_if"))
             except Mistyped:
                 shown = ALWAYS
-        return DocketRow(shape.id, shape.title, shape.recommends or "", tuple(shape.demands or ()), tuple(shape.facts or ()), shown, section)
+        return DocketRow(
+            shape.id,
+            shape.title,
+            shape.recommends or "",
+            tuple(shape.demands or ()),
+            tuple(shape.facts or ()),
+            shown,
+            section,
+        )
 
     def _usual_oils(self) -> UsualOils:
         file, tree = self.folder.files["usual_oils.yaml"]
@@ -231,7 +323,9 @@ class _Loader:
             scope.problem(node.mark, f"'{shape.table}' is no table", nearest(shape.table, self.tables).strip())
         for column in (shape.low, shape.high, shape.index):
             if table is not None and column not in table.columns:
-                scope.problem(node.mark, f"'{column}' is no column of table {shape.table}", nearest(column, table.columns).strip())
+                scope.problem(
+                    node.mark, f"'{column}' is no column of table {shape.table}", nearest(column, table.columns).strip()
+                )
         try:
             ordinary = condition(shape.ordinary, scope.at("ordinary"))
         except Mistyped:
@@ -247,8 +341,16 @@ class _Loader:
             if product is None:
                 continue
             if product.item in seen:
-                self.problems.add(Problem(product.mark.file, product.mark.line, product.mark.column, (f"'{product.item}'",),
-                                          f"item '{product.item}' stands twice on the shelf", "give each product its own item code"))
+                self.problems.add(
+                    Problem(
+                        product.mark.file,
+                        product.mark.line,
+                        product.mark.column,
+                        (f"'{product.item}'",),
+                        f"item '{product.item}' stands twice on the shelf",
+                        "give each product its own item code",
+                    )
+                )
             seen.add(product.item)
             found.append(product)
         return found
@@ -257,18 +359,25 @@ class _Loader:
         if not isinstance(node, Mapping) or "item" not in node:
             mark = getattr(node, "mark", None)
             if mark is not None:
-                self.problems.add(Problem(mark.file, mark.line, mark.column, ("products",), "a product needs an item code", "item: GR-101"))
+                self.problems.add(
+                    Problem(
+                        mark.file, mark.line, mark.column, ("products",), "a product needs an item code", "item: GR-101"
+                    )
+                )
             return None
         item = str(node["item"])
         stored = {name: each.domain for name, each in self.properties.items() if each.stored}
-        scope = Scope(self.problems, stored, trail=("products", f"'{item}'"), what="property stored on a sheet",
-                      hints={name: "it is computed or looked up, not stated" for name in self.properties if name not in stored})
+        scope = Scope(
+            self.problems,
+            stored,
+            trail=("products", f"'{item}'"),
+            what="property stored on a sheet",
+            hints={name: "it is computed or looked up, not stated" for name in self.properties if name not in stored},
+        )
         values: dict[str, Value] = {}
         for name, child in node.items():
             if name in {"item", "title", "note"}:
                 continue
-            try:
-                values[name] = value(child, scope.domain(child, name, node.key_marks[name]), scope.at(name))
-            except Mistyped:
-                continue
+            with suppress(Mistyped):
+                values[name] = value(child, scope.domain(name, node.key_marks[name]), scope.at(name))
         return Product(item, str(node.get("title", item)), values, node.mark)

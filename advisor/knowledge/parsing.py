@@ -4,7 +4,20 @@ from collections.abc import Callable
 from collections.abc import Mapping as Map
 from dataclasses import dataclass, field, replace
 
-from advisor.conditions import ALWAYS, Bound, Coded, Condition, Domain, Either, Every, FactRef, Member, Stated, Ticked, Value
+from advisor.conditions import (
+    ALWAYS,
+    Bound,
+    Coded,
+    Condition,
+    Domain,
+    Either,
+    Every,
+    FactRef,
+    Member,
+    Stated,
+    Ticked,
+    Value,
+)
 from advisor.documents import Mapping, Mark, Node, Problem, Problems, Scalar, Sequence, as_number, nearest
 from advisor.knowledge.model import Band, Cell, Row, Table
 
@@ -49,7 +62,7 @@ class Scope:
         if problem not in set(self.problems):
             self.problems.add(problem)
 
-    def domain(self, node: Node, name: str, mark: Mark) -> Domain:
+    def domain(self, name: str, mark: Mark) -> Domain:
         """The domain of a name, or a problem at its mark."""
         if name in self.names:
             return self.names[name]
@@ -97,8 +110,11 @@ def _number(node: Scalar, domain: Domain, scope: Scope) -> float:
         if domain.places and domain.low <= number <= domain.high:
             raise scope.fault(node, f"{number:g} is none of the grades", f"use one of {_series(domain.places)}")
         raise scope.fault(
-            node, f"{number:g} {domain.unit}".strip() + f" lies outside {domain.low:g} to {domain.high:g} {domain.unit}".rstrip(),
-            "check the unit and the decimal point")
+            node,
+            f"{number:g} {domain.unit}".strip()
+            + f" lies outside {domain.low:g} to {domain.high:g} {domain.unit}".rstrip(),
+            "check the unit and the decimal point",
+        )
     return number
 
 
@@ -112,8 +128,7 @@ def condition(node: Node, scope: Scope) -> Condition:
         return ALWAYS
     if not isinstance(node, Mapping):
         raise scope.fault(node, "a condition is written as 'name: test'", "for instance {water_exposure: wash}")
-    return _all(
-        [lambda name=name, test=test: _entry(node, name, test, scope) for name, test in node.items()], Every)  # type: ignore[misc]
+    return _all([lambda name=name, test=test: _entry(node, name, test, scope) for name, test in node.items()], Every)  # type: ignore[misc]
 
 
 def _all(parts: list[Callable[[], Condition]], kind: type[Every] | type[Either]) -> Condition:
@@ -139,7 +154,7 @@ def _entry(parent: Mapping, name: str, test: Node, scope: Scope) -> Condition:
         if not isinstance(test, Sequence) or len(test) == 0:
             raise scope.fault(test, "'either' holds a list of conditions", "either: [{a: 1}, {b: 2}]")
         return _all([lambda each=each: condition(each, scope) for each in test], Either)  # type: ignore[misc]
-    domain = scope.domain(test, name, parent.key_marks[name])
+    domain = scope.domain(name, parent.key_marks[name])
     if domain.kind == "text":
         raise scope.fault(test, f"'{name}' is text, and no condition can be put on text")
     return _test(name, test, domain, scope)
@@ -151,12 +166,20 @@ def _test(name: str, test: Node, domain: Domain, scope: Scope) -> Condition:
     if isinstance(test, Mapping) and not {"fact", "row"} & set(test):
         unknown = [key for key in test if key not in _OPERATORS]
         for key in unknown:
-            scope.problem(test.key_marks[key], f"'{key}' is no operator",
-                          nearest(key, _OPERATORS).strip() or "known: " + ", ".join(_OPERATORS[:6]))
+            scope.problem(
+                test.key_marks[key],
+                f"'{key}' is no operator",
+                nearest(key, _OPERATORS).strip() or "known: " + ", ".join(_OPERATORS[:6]),
+            )
         if unknown or not test:
             raise Mistyped if unknown else scope.fault(test, "a test is missing here")
-        return _all([lambda op=op, operand=operand: _operation(name, op, operand, domain, scope)  # type: ignore[misc]
-                     for op, operand in test.items()], Every)
+        return _all(
+            [
+                lambda op=op, operand=operand: _operation(name, op, operand, domain, scope)  # type: ignore[misc]
+                for op, operand in test.items()
+            ],
+            Every,
+        )
     if isinstance(test, Sequence):
         raise scope.fault(test, "a list is no test", "write {any_of: [...]} or {none_of: [...]}")
     return _equals(name, operand(test, domain, scope), domain)
@@ -222,11 +245,14 @@ def _fact(node: Scalar, domain: Domain, scope: Scope) -> FactRef:
         raise scope.fault(node, f"'{name}' is no fact", nearest(name, scope.facts).strip())
     other = scope.facts[name]
     same = domain.kind == other.kind and (
-        domain.unit == other.unit if domain.kind == "number" else list(domain.choices) == list(other.choices))
+        domain.unit == other.unit if domain.kind == "number" else list(domain.choices) == list(other.choices)
+    )
     if not domain.ordered or not same:
         raise scope.fault(
-            node, f"'{name}' ({_kind(other)}) cannot stand for a limit here ({_kind(domain)})",
-            "both sides need the same kind and unit")
+            node,
+            f"'{name}' ({_kind(other)}) cannot stand for a limit here ({_kind(domain)})",
+            "both sides need the same kind and unit",
+        )
     return FactRef(name)
 
 
@@ -239,11 +265,16 @@ def _cell(node: Scalar, domain: Domain, scope: Scope) -> Value:
     if scope.table is None or scope.row is None:
         raise scope.fault(node, "{row: ...} needs 'each_row_of'", "name the table with each_row_of")
     if name not in scope.table.columns:
-        raise scope.fault(node, f"'{name}' is no column of table {scope.table.id}", nearest(name, scope.table.columns).strip())
+        raise scope.fault(
+            node, f"'{name}' is no column of table {scope.table.id}", nearest(name, scope.table.columns).strip()
+        )
     column = scope.table.columns[name]
     if domain.kind == "number" and (column.kind != "number" or column.unit != domain.unit):
-        raise scope.fault(node, f"column '{name}' ({_kind(column)}) does not suit ({_kind(domain)})",
-                          "both sides need the same kind and unit")
+        raise scope.fault(
+            node,
+            f"column '{name}' ({_kind(column)}) does not suit ({_kind(domain)})",
+            "both sides need the same kind and unit",
+        )
     cell = scope.row.cells.get(name)
     if cell is None:
         raise Blank
@@ -251,7 +282,8 @@ def _cell(node: Scalar, domain: Domain, scope: Scope) -> Value:
         raise scope.fault(node, f"column '{name}' holds bands, not values")
     if domain.kind != "number" and not domain.accepts(cell):
         raise scope.fault(
-            node, f"'{cell}' in row '{scope.row.id}' (line {scope.row.mark.line}) is not one of the choices here")
+            node, f"'{cell}' in row '{scope.row.id}' (line {scope.row.mark.line}) is not one of the choices here"
+        )
     return cell
 
 

@@ -87,8 +87,7 @@ def _elsewhere(tree: Node, loc: Sequence[str | int], key: str) -> str:
     node: Node | None = tree
     path: list[Node] = [tree]
     for part in loc[:-1]:
-        node = node[part] if isinstance(node, Mapping) and part in node else (  # type: ignore[index]
-            node[part] if isinstance(node, list) and isinstance(part, int) and part < len(node) else None)
+        node = _step_into(node, part)
         if node is None:
             break
         path.append(node)
@@ -101,6 +100,12 @@ def _elsewhere(tree: Node, loc: Sequence[str | int], key: str) -> str:
             line = near.key_marks[key].line
             return f"a '{key}' stands one level {where}, in line {line}: is its indentation wrong?"
     return ""
+
+
+def _step_into(node: Node | None, part: str | int) -> Node | None:
+    if isinstance(node, Mapping):
+        return node.get(str(part))
+    return node[part] if isinstance(node, list) and isinstance(part, int) and part < len(node) else None
 
 
 def _trail(tree: Node, loc: tuple[str | int, ...]) -> tuple[str, ...]:

@@ -2,12 +2,13 @@
 
 import re
 from collections.abc import Mapping as Map
+from contextlib import suppress
 from dataclasses import dataclass, replace
 
 from advisor.conditions import ALWAYS, Condition, Domain, Every, Value, branches, holds, negated
 from advisor.documents import Mapping, Node, Problems, Sequence, nearest
 from advisor.knowledge.citations import Citations
-from advisor.knowledge.model import Asks, Conclusion, Instance, Refers, Row, Rule, Sets, Table, Warns
+from advisor.knowledge.model import Asks, Band, Conclusion, Instance, Refers, Row, Rule, Sets, Table, Warns
 from advisor.knowledge.parsing import Blank, Mistyped, Scope, condition, operand, value
 from advisor.knowledge.schema import ConclusionShape, RuleShape
 
@@ -37,8 +38,15 @@ class RuleReader:
 
     def read(self, shape: RuleShape, tree: Mapping, step: str, point_kind: str) -> tuple[Rule, tuple[Instance, ...]]:
         """One written rule and its instances, one per row that applies."""
-        scope = Scope(self.problems, self.names.facts, self.names.facts, trail=("rules", f"'{shape.id}'"),
-                      hints={name: "a condition sees facts; properties belong in 'for' and in demands" for name in self.names.properties})
+        scope = Scope(
+            self.problems,
+            self.names.facts,
+            self.names.facts,
+            trail=("rules", f"'{shape.id}'"),
+            hints=dict.fromkeys(
+                self.names.properties, "a condition sees facts; properties belong in 'for' and in demands"
+            ),
+        )
         table = self._table(shape, tree, scope)
         rule = self._rule(shape, tree, step, point_kind, table, scope)
         rows: list[Row | None] = [None]
@@ -66,27 +74,45 @@ class RuleReader:
             return None
         table = self.names.tables.get(shape.each_row_of)
         if table is None or table.matrix:
-            scope.problem(tree["each_row_of"].mark, f"'{shape.each_row_of}' is no table with rows", nearest(shape.each_row_of, self.names.tables).strip())
+            scope.problem(
+                tree["each_row_of"].mark,
+                f"'{shape.each_row_of}' is no table with rows",
+                nearest(shape.each_row_of, self.names.tables).strip(),
+            )
             return None
         return table
 
-    def _rule(self, shape: RuleShape, tree: Mapping, step: str, point_kind: str, table: Table | None, scope: Scope) -> Rule:
+    def _rule(
+        self, shape: RuleShape, tree: Mapping, step: str, point_kind: str, table: Table | None, scope: Scope
+    ) -> Rule:
         self._placeholders(shape.because, tree, table, scope)
         conflicts = shape.may_conflict or []
         conflicts = conflicts if isinstance(conflicts, list) else [conflicts]
         return Rule(
-            shape.id, shape.title, shape.status, step, point_kind, shape.because, shape.limits,
-            self.citations.read(shape.source, tree, scope), table.id if table else "",
+            shape.id,
+            shape.title,
+            shape.status,
+            step,
+            point_kind,
+            shape.because,
+            shape.limits,
+            self.citations.read(shape.source, tree, scope),
+            table.id if table else "",
             {each.rule: each.because for each in conflicts},
-            self._example(tree, "fires", scope), self._example(tree, "silent", scope), tree.mark,
+            self._example(tree, "fires", scope),
+            self._example(tree, "silent", scope),
+            tree.mark,
         )
 
     def _placeholders(self, because: str, tree: Mapping, table: Table | None, scope: Scope) -> None:
         for of_row, name in PLACEHOLDER.findall(because):
             known: Map[str, object] = (table.columns if table else {}) if of_row else self.names.facts
             if name not in known:
-                scope.problem(tree["because"].mark, f"'{{{of_row}{name}}}' stands for no {'column' if of_row else 'fact'}",
-                              nearest(name, known).strip())
+                scope.problem(
+                    tree["because"].mark,
+                    f"'{{{of_row}{name}}}' stands for no {'column' if of_row else 'fact'}",
+                    nearest(name, known).strip(),
+                )
         rest = PLACEHOLDER.sub("", because)
         if "{" in rest or "}" in rest:
             scope.problem(tree["because"].mark, "a brace without a name in it", "write {fact} or {row.column}")
@@ -100,10 +126,8 @@ class RuleReader:
             return {}
         found: dict[str, Value] = {}
         for name, child in node.items():
-            try:
-                found[name] = value(child, scope.domain(child, name, node.key_marks[name]), scope.at(key))
-            except Mistyped:
-                continue
+            with suppress(Mistyped):
+                found[name] = value(child, scope.domain(name, node.key_marks[name]), scope.at(key))
         return found
 
     def _where(self, tree: Mapping, table: Table, row: Row, scope: Scope) -> bool:
@@ -111,10 +135,16 @@ class RuleReader:
             return True
         columns = {name: domain for name, domain in table.columns.items() if name not in table.bands}
         try:
-            chosen = condition(tree["where"], Scope(self.problems, columns, trail=scope.trail + ("where",), what="column"))
+            chosen = condition(
+                tree["where"], Scope(self.problems, columns, trail=(*scope.trail, "where"), what="column")
+            )
         except Mistyped:
             return False
-        record = {name: columns[name].code(cell) for name, cell in row.cells.items() if name in columns and not hasattr(cell, "meets")}  # type: ignore[arg-type]  # bands are left out
+        record = {
+            name: columns[name].code(cell)
+            for name, cell in row.cells.items()
+            if name in columns and not isinstance(cell, Band)
+        }
         return holds(chosen, record) is True
 
     def _instance(
@@ -143,16 +173,22 @@ class RuleReader:
         if "unless" in tree:
             when = Every((when, negated(condition(tree["unless"], scope.at("unless")))))
         if len(branches(when)) > MOST_BRANCHES:
-            raise scope.fault(tree["when"], f"the condition has more than {MOST_BRANCHES} alternatives when written out",
-                              "split the rule in two")
+            raise scope.fault(
+                tree["when"],
+                f"the condition has more than {MOST_BRANCHES} alternatives when written out",
+                "split the rule in two",
+            )
         return when
 
     def _conclusion(self, shape: ConclusionShape, node: Node, scope: Scope) -> Conclusion:
         assert isinstance(node, Mapping)  # noqa: S101 - by the shape
         verbs = [verb for verb in ("must", "should", "set", "caution", "refer") if verb in node]
         if len(verbs) != 1:
-            raise scope.fault(node, "a conclusion has exactly one of must, should, set, caution and refer",
-                              f"this one has {' and '.join(verbs) or 'none'}")
+            raise scope.fault(
+                node,
+                "a conclusion has exactly one of must, should, set, caution and refer",
+                f"this one has {' and '.join(verbs) or 'none'}",
+            )
         verb = verbs[0]
         if (verb == "should") != (shape.level is not None):
             raise scope.fault(node, "a should has a level from 1 (strong) to 4 (taste); nothing else has one")
@@ -166,7 +202,11 @@ class RuleReader:
         known = self.names.cautions if verb == "caution" else self.names.referrals
         name = str(node[verb])
         if name not in known:
-            raise scope.fault(node[verb], f"'{name}' is no {verb.replace('refer', 'referral')} of cautions.yaml", nearest(name, known).strip())
+            raise scope.fault(
+                node[verb],
+                f"'{name}' is no {verb.replace('refer', 'referral')} of cautions.yaml",
+                nearest(name, known).strip(),
+            )
         if verb == "caution":
             return Warns(name, for_)
         if for_ is not ALWAYS:
@@ -174,8 +214,13 @@ class RuleReader:
         return Refers(name, shape.withhold)
 
     def _property_scope(self, scope: Scope) -> Scope:
-        return replace(scope, names=self.names.properties, what="property", may_ask_stated=True,
-                       hints={name: "that is a fact; a demand and 'for' speak of properties" for name in self.names.facts})
+        return replace(
+            scope,
+            names=self.names.properties,
+            what="property",
+            may_ask_stated=True,
+            hints=dict.fromkeys(self.names.facts, "that is a fact; a demand and 'for' speak of properties"),
+        )
 
     def _for(self, node: Mapping, scope: Scope) -> Condition:
         return condition(node["for"], self._property_scope(scope).at("for")) if "for" in node else ALWAYS
@@ -192,9 +237,11 @@ class RuleReader:
             raise scope.fault(node, "'set' names one fact or property", "set: {name: value}")
         name, child = next(iter(node.items()))
         here = replace(scope, names=self.names.concluded, what="concluded fact or property").at("set")
-        domain = here.domain(child, name, node.key_marks[name])
+        domain = here.domain(name, node.key_marks[name])
         if for_ is not ALWAYS and name in self.names.facts:
-            raise scope.fault(node, f"'{name}' is a fact: it cannot differ from lubricant to lubricant", "take 'for' out")
+            raise scope.fault(
+                node, f"'{name}' is a fact: it cannot differ from lubricant to lubricant", "take 'for' out"
+            )
         return Sets(name, operand(child, domain, here), for_)
 
     def _examples(self, rule: Rule, tree: Mapping, instances: list[Instance], scope: Scope) -> None:
@@ -204,7 +251,9 @@ class RuleReader:
         if always:
             return
         if "silent" not in tree or "fires" not in tree:
-            scope.problem(tree.mark, "a rule with a condition needs two examples", "add 'fires:' and 'silent:' with facts")
+            scope.problem(
+                tree.mark, "a rule with a condition needs two examples", "add 'fires:' and 'silent:' with facts"
+            )
             return
         for key, facts, wanted in (("fires", rule.fires, True), ("silent", rule.silent, False)):
             record = {name: self.names.facts[name].code(each) for name, each in facts.items()}
@@ -212,5 +261,8 @@ class RuleReader:
             good = any(outcomes) if wanted else not any(outcome is None or outcome for outcome in outcomes)
             if not good:
                 seen = "holds" if any(outcomes) else "is undecided" if None in outcomes else "fails"
-                scope.problem(tree[key].mark, f"with this example the condition {seen}",
-                              "it should fire" if wanted else "it should fail: give every fact that the condition names")
+                scope.problem(
+                    tree[key].mark,
+                    f"with this example the condition {seen}",
+                    "it should fire" if wanted else "it should fail: give every fact that the condition names",
+                )

@@ -46,8 +46,25 @@ Name = Annotated[str, BeforeValidator(_text), StringConstraints(pattern=r"^[a-z]
 Tree = Any
 """A part that is typed later by the kind of the name it stands under."""
 
-Unit = Literal["°C", "K", "mm", "1/min", "mm/min", "mm²/s", "mPa·s", "kg/m³", "N", "h", "g", "cm³", "kg", "%", "",
-               "ISO VG", "months"]
+Unit = Literal[
+    "°C",
+    "K",
+    "mm",
+    "1/min",
+    "mm/min",
+    "mm²/s",
+    "mPa·s",
+    "kg/m³",
+    "N",
+    "h",
+    "g",
+    "cm³",
+    "kg",
+    "%",
+    "",
+    "ISO VG",
+    "months",
+]
 SourceKind = Literal["standard", "handbook", "paper", "government", "common practice"]
 Checked = Literal["yes", "from memory", "no source"]
 Kind = Literal["number", "choice", "scale", "several", "item", "yes_no", "text"]

@@ -1,10 +1,11 @@
 """Tables of the knowledge: columns with kinds and units, rows with blank cells, symmetric matrices."""
 
 from collections.abc import Mapping as Map
+from contextlib import suppress
 from dataclasses import replace
 
 from advisor.conditions import Domain, Value
-from advisor.documents import Mapping, Node, Problems, Scalar, Sequence, nearest
+from advisor.documents import Mapping, Mark, Node, Problems, Scalar, Sequence, nearest
 from advisor.knowledge.citations import Citations
 from advisor.knowledge.model import Band, Row, Table
 from advisor.knowledge.parsing import Mistyped, Scope, cell, value
@@ -14,7 +15,9 @@ from advisor.knowledge.schema import DomainShape, TableShape
 _ROW_EXTRAS = ("source", "note")
 
 
-def read_tables(raw: Map[str, tuple[TableShape, Mapping]], citations: Citations, problems: Problems) -> dict[str, Table]:
+def read_tables(
+    raw: Map[str, tuple[TableShape, Mapping]], citations: Citations, problems: Problems
+) -> dict[str, Table]:
     """All tables, typed. `raw` pairs each shape with its tree."""
     keys = {name: _keys(shape, tree) for name, (shape, tree) in raw.items()}
     labels = {name: _labels(shape, tree, keys[name]) for name, (shape, tree) in raw.items()}
@@ -53,22 +56,33 @@ def _labels(shape: TableShape, tree: Mapping, keys: list[str]) -> dict[str, str]
     return {one: titles.get(one, one.replace("_", " ")) for one in keys}
 
 
-def column_domain(
-    shape: DomainShape, node: Node, tables: Map[str, Map[str, str]], scope: Scope
-) -> Domain:
+def column_domain(shape: DomainShape, node: Node, tables: Map[str, Map[str, str]], scope: Scope) -> Domain:
     """A domain as declared for a column, fact or property (choices of other tables resolved)."""
     choices: dict[str, str] = {}
     if shape.choices_of:
         if shape.choices_of not in tables:
-            scope.problem(_mark(node, "choices_of"), f"'{shape.choices_of}' is no table", nearest(shape.choices_of, tables).strip())
+            scope.problem(
+                _mark(node, "choices_of"),
+                f"'{shape.choices_of}' is no table",
+                nearest(shape.choices_of, tables).strip(),
+            )
         choices |= dict(tables.get(shape.choices_of, {}))
     choices |= _choices(shape, scope)
     if shape.kind == "yes_no":
         choices = {"no": "no", "yes": "yes"}
     low, high = shape.limits or (float("-inf"), float("inf"))
     places = tuple(shape.places or ())
-    return Domain(shape.kind, shape.unit, low, high, None, choices, places, shape.named or {},
-                  open_choices=shape.kind == "choice" and not choices)
+    return Domain(
+        shape.kind,
+        shape.unit,
+        low,
+        high,
+        None,
+        choices,
+        places,
+        shape.named or {},
+        open_choices=shape.kind == "choice" and not choices,
+    )
 
 
 def _choices(shape: DomainShape, scope: Scope) -> dict[str, str]:
@@ -88,19 +102,24 @@ def _choices(shape: DomainShape, scope: Scope) -> dict[str, str]:
     return {}
 
 
-def _mark(node: Node, key: str):  # type: ignore[no-untyped-def]  # Mark; kept short
+def _mark(node: Node, key: str) -> Mark:
     return node.key_marks[key] if isinstance(node, Mapping) and key in node.key_marks else node.mark
 
 
 def _table(
-    name: str, shape: TableShape, tree: Mapping, labels: Map[str, Map[str, str]], citations: Citations, problems: Problems
+    name: str,
+    shape: TableShape,
+    tree: Mapping,
+    labels: Map[str, Map[str, str]],
+    citations: Citations,
+    problems: Problems,
 ) -> Table:
     scope = Scope(problems, {}, trail=("tables", name), what="column")
     columns: dict[str, Domain] = {}
     bands: set[str] = set()
     declared = tree.get("columns")
     for column, node in declared.items() if isinstance(declared, Mapping) else ():
-        domain, band = _column(column, node, labels, scope.at("columns", column))
+        domain, band = _column(node, labels, scope.at("columns", column))
         columns[column] = domain
         if band:
             bands.add(column)
@@ -114,7 +133,7 @@ def _table(
     return Table(name, shape.title, columns, frozenset(bands), rows, key, shape.policy or "unique", tree.mark, source)
 
 
-def _column(name: str, node: Node, labels: Map[str, Map[str, str]], scope: Scope) -> tuple[Domain, bool]:
+def _column(node: Node, labels: Map[str, Map[str, str]], scope: Scope) -> tuple[Domain, bool]:
     band = isinstance(node, Mapping) and str(node.get("kind", "")) == "band"
     if band and isinstance(node, Mapping):
         node = _as_number(node)
@@ -162,24 +181,31 @@ def _cells(node: Mapping, columns: Map[str, Domain], bands: frozenset[str], scop
         if name in _ROW_EXTRAS:
             continue
         if name not in columns:
-            scope.problem(node.key_marks[name], f"'{name}' is no column of this table",
-                          nearest(name, columns).strip() or "declare it under 'columns:'")
+            scope.problem(
+                node.key_marks[name],
+                f"'{name}' is no column of this table",
+                nearest(name, columns).strip() or "declare it under 'columns:'",
+            )
             continue
-        try:
+        with suppress(Mistyped):
             cells[name] = cell(child, columns[name], scope, band=name in bands)
-        except Mistyped:
-            continue
     return cells
 
 
 def _row_id(cells: Map[str, Value | Band], columns: Map[str, Domain], place: int) -> str:
     texts = [str(cells[name]) for name in columns if isinstance(cells.get(name), str)]
     return "-".join(texts[:2]) or (
-        next((f"{each:g}" for each in cells.values() if isinstance(each, float)), None) or f"row_{place + 1}")
+        next((f"{each:g}" for each in cells.values() if isinstance(each, float)), None) or f"row_{place + 1}"
+    )
 
 
 def _matrix(
-    name: str, shape: TableShape, tree: Mapping, labels: Map[str, Map[str, str]], citations: Citations, problems: Problems
+    name: str,
+    shape: TableShape,
+    tree: Mapping,
+    labels: Map[str, Map[str, str]],
+    citations: Citations,
+    problems: Problems,
 ) -> Table:
     scope = Scope(problems, {}, trail=("tables", name))
     ids = _listed(tree.get("of"), labels, scope)
@@ -188,20 +214,35 @@ def _matrix(
     matrix: dict[tuple[str, str], Value] = {}
     rows = tree.get("rows")
     for left, node in rows.items() if isinstance(rows, Mapping) else ():
+        _known_side(left, rows, ids, scope)
         for right, child in node.items() if isinstance(node, Mapping) else ():
-            for one, at in ((left, rows), (right, node)):
-                if one not in ids:
-                    scope.problem(at.key_marks[one], f"'{one}' is no row or column of this matrix", nearest(one, ids).strip())
+            _known_side(right, node, ids, scope)
             if (left, right) in matrix:
-                scope.problem(node.key_marks[right], f"{left} x {right} is given twice", "the matrix is symmetric: give one half")
+                scope.problem(child.mark, f"{left} x {right} is given twice", "the matrix is symmetric: give one half")
                 continue
-            try:
+            with suppress(Mistyped):
                 matrix[left, right] = matrix[right, left] = value(child, values, scope)
-            except Mistyped:
-                continue
     key_domain = Domain("choice", choices=ids)
-    return Table(name, shape.title, {"left": key_domain, "right": key_domain}, frozenset(), (), "", "unique", tree.mark,
-                 citations.read(shape.source, tree, scope), matrix, replace(values, kind="choice"))
+    return Table(
+        name,
+        shape.title,
+        {"left": key_domain, "right": key_domain},
+        frozenset(),
+        (),
+        "",
+        "unique",
+        tree.mark,
+        citations.read(shape.source, tree, scope),
+        matrix,
+        replace(values, kind="choice"),
+    )
+
+
+def _known_side(name: str, parent: Node | None, ids: Map[str, str], scope: Scope) -> None:
+    if name not in ids and isinstance(parent, Mapping):
+        scope.problem(
+            parent.key_marks[name], f"'{name}' is no row or column of this matrix", nearest(name, ids).strip()
+        )
 
 
 def _listed(node: Node | None, labels: Map[str, Map[str, str]], scope: Scope) -> dict[str, str]:

@@ -1,6 +1,6 @@
 """The shelf and the usual oils: judged and ranked column by column against a specification."""
 
-from advisor.shelf.catalogue import Catalogue, Item, Raise, all_reads, choices, products, usual_oils
+from advisor.shelf.catalogue import Catalogue, Item, Raise, all_reads, choices, products, reads, usual_oils
 from advisor.shelf.columns import Column, judge, places
 from advisor.shelf.judging import Judgement, Shortfall, Verdict, at_limit, steps_short
 
@@ -18,6 +18,7 @@ __all__ = [
     "judge",
     "places",
     "products",
+    "reads",
     "steps_short",
     "usual_oils",
 ]

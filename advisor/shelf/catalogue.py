@@ -1,6 +1,7 @@
 """A catalogue: items with their properties as columns, the fixed ones once, the others anew for each case."""
 
 from collections.abc import Mapping, Sequence
+from contextlib import suppress
 from dataclasses import dataclass, replace
 
 from advisor.case import Fact, Origin
@@ -51,13 +52,23 @@ class Catalogue:
                 self._fixed[name] = column
 
     def _is_fixed(self, prop: Property) -> bool:
-        return all(name in self._fixed or (name in self.knowledge.properties and not self._depends(name)) for name in reads(prop))
+        return all(
+            name in self._fixed or (name in self.knowledge.properties and not self._depends(name))
+            for name in reads(prop)
+        )
 
     def _depends(self, name: str) -> bool:
         return any(prop.name == name for prop in self._changing)
 
-    def for_case(self, facts: Mapping[str, Fact], raises: Sequence[Raise] = (), *, needed: frozenset[str],
-                 lenient: bool = False, context: Mapping[str, Value] | None = None) -> dict[str, Column]:
+    def for_case(
+        self,
+        facts: Mapping[str, Fact],
+        raises: Sequence[Raise] = (),
+        *,
+        needed: frozenset[str],
+        lenient: bool = False,
+        context: Mapping[str, Value] | None = None,
+    ) -> dict[str, Column]:
         """The columns for the facts of a case; those that are not needed and not fixed are left out.
 
         `raises` are conclusions on concluded properties: they apply where their `for` holds, and (unless lenient)
@@ -88,7 +99,9 @@ class Catalogue:
         changing = {prop.name for prop in self._changing if prop.concluded is None and fixed & set(reads(prop))}
         return frozenset({name} | fixed | changing)
 
-    def _raised(self, prop: Property, columns: Mapping[str, Column], raises: Sequence[Raise], *, lenient: bool) -> Column:
+    def _raised(
+        self, prop: Property, columns: Mapping[str, Column], raises: Sequence[Raise], *, lenient: bool
+    ) -> Column:
         assert prop.concluded is not None  # noqa: S101 - asked before
         start = prop.domain.code(prop.concluded.otherwise)
         raising = prop.concluded.combine == "highest"
@@ -109,7 +122,9 @@ class Catalogue:
         how = prop.how
         if how is None:
             code = prop.domain.code
-            return Column([None if (value := item.values.get(prop.name)) is None else code(value) for item in self.items])
+            return Column(
+                [None if (value := item.values.get(prop.name)) is None else code(value) for item in self.items]
+            )
         if _waits(prop, self.knowledge, facts):
             return Column([None] * len(self.items), waiting=True)
         if isinstance(how, Formed):
@@ -143,32 +158,41 @@ class Catalogue:
                 found.append(None)
         return found
 
-    def _looked_up(self, how: LookedUp, prop: Property, columns: Mapping[str, Column], facts: Mapping[str, Fact]) -> list[Coded | None]:
+    def _looked_up(
+        self, how: LookedUp, prop: Property, columns: Mapping[str, Column], facts: Mapping[str, Fact]
+    ) -> list[Coded | None]:
         properties = [name for _, name in how.by if name in self.knowledge.properties]
         parts = [columns[name].values if name in columns else [None] * len(self.items) for name in properties]
         known: dict[tuple[Coded | None, ...], Coded | None] = {}
         found: list[Coded | None] = []
         for row in zip(*parts, strict=True) if parts else ((),) * len(self.items):
             if row not in known:
-                known[row] = None if None in row else self._look(how, prop, dict(zip(properties, row, strict=True)), facts)
+                known[row] = (
+                    None if None in row else self._look(how, prop, dict(zip(properties, row, strict=True)), facts)
+                )
             found.append(known[row])
         return found
 
-    def _look(self, how: LookedUp, prop: Property, row: Mapping[str, Coded | None], facts: Mapping[str, Fact]) -> Coded | None:
+    def _look(
+        self, how: LookedUp, prop: Property, row: Mapping[str, Coded | None], facts: Mapping[str, Fact]
+    ) -> Coded | None:
         def get(name: str) -> Value | None:
             if name in row:
                 coded = row[name]
                 return None if coded is None else self.knowledge.properties[name].domain.decode(coded)
             return facts[name].value
+
         outcome = looked_up(how, get, self.knowledge.tables)
         return None if outcome.value is None else prop.domain.code(outcome.value)
 
-    def _worst_of(self, how: WorstOf, prop: Property, columns: Mapping[str, Column], facts: Mapping[str, Fact]) -> list[Coded | None]:
+    def _worst_of(
+        self, how: WorstOf, prop: Property, columns: Mapping[str, Column], facts: Mapping[str, Fact]
+    ) -> list[Coded | None]:
         parts = [self._looked_up(part, prop, columns, facts) for part in how.parts]
         found: list[Coded | None] = []
         for row in zip(*parts, strict=True):
             known = [value for value in row if value is not None]
-            found.append(max(known) if known else None)  # type: ignore[type-var]  # numbers and places
+            found.append(max(known) if known else None)
         if prop.same_item:
             place = self.place.get(str(facts[prop.same_item].value))
             if place is not None:
@@ -203,7 +227,9 @@ def reads(prop: Property) -> list[str]:
 
 
 def _waits(prop: Property, knowledge: Knowledge, facts: Mapping[str, Fact]) -> bool:
-    names = [name for name in reads(prop) if name not in knowledge.properties] + ([prop.same_item] if prop.same_item else [])
+    names = [name for name in reads(prop) if name not in knowledge.properties] + (
+        [prop.same_item] if prop.same_item else []
+    )
     return any(name not in facts or facts[name].origin in {Origin.UNANSWERED, Origin.VOID} for name in names)
 
 
@@ -225,7 +251,10 @@ def _dependency_order(properties: Mapping[str, Property]) -> list[str]:
 
 def products(knowledge: Knowledge, only: frozenset[str] | None = None) -> Catalogue:
     """The shelf as a catalogue."""
-    return Catalogue([Item(each.item, each.title, each.values) for each in knowledge.shelf if only is None or each.item in only], knowledge)
+    return Catalogue(
+        [Item(each.item, each.title, each.values) for each in knowledge.shelf if only is None or each.item in only],
+        knowledge,
+    )
 
 
 def usual_oils(knowledge: Knowledge) -> Catalogue:
@@ -237,18 +266,15 @@ def usual_oils(knowledge: Knowledge) -> Catalogue:
         low, high, index = (row.cells.get(column) for column in (how.low, how.high, how.index))
         if not all(isinstance(each, float) for each in (low, high, index)):
             continue
-        for grade in knowledge.properties["vg"].domain.places:
-            if low <= grade <= high:  # type: ignore[operator]  # floats by the check above
-                items.append(_usual_oil(row.id, grade, float(index), how.family))  # type: ignore[arg-type]  # a float
+        grades = knowledge.properties["vg"].domain.places
+        items += [_usual_oil(row.id, grade, float(index), how.family) for grade in grades if low <= grade <= high]  # type: ignore[arg-type, operator]  # floats by the check above
     return Catalogue(items, knowledge)
 
 
 def _usual_oil(family: str, grade: float, index: float, name: str) -> Item:
     values: dict[str, Value] = {name: family, "vg": grade, "viscosity_40": FORMULAS["grade_midpoint"].function(grade)}
-    try:
+    with suppress(OutOfRange):
         values["viscosity_100"] = FORMULAS["viscosity_100_from_index"].function(values["viscosity_40"], index)
-    except OutOfRange:
-        pass
     return Item(f"{family} {grade:g}", f"{family.replace('_', ' ')} ISO VG {grade:g}", values)
 
 

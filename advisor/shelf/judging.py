@@ -33,8 +33,15 @@ class Shortfall:
 class Judgement:
     """All items of a catalogue against all demands, as masks."""
 
-    def __init__(self, catalogue: Catalogue, columns: Mapping[str, Column], demands: Sequence[Demand],
-                 domains: Mapping[str, Domain], *, missing_counts: bool) -> None:
+    def __init__(
+        self,
+        catalogue: Catalogue,
+        columns: Mapping[str, Column],
+        demands: Sequence[Demand],
+        domains: Mapping[str, Domain],
+        *,
+        missing_counts: bool,
+    ) -> None:
         self.catalogue, self.columns, self.demands, self.domains = catalogue, columns, tuple(demands), domains
         everything = catalogue.everything
         self.failing: list[int] = []
@@ -85,9 +92,8 @@ class Judgement:
             level = demand.level - 1
             for place in places(missing & among):
                 short[place][level] += 1
-            failing &= among
-            if failing:
-                self._add(demand, failing, level, short)
+            if failing & among:
+                self._add(demand, failing & among, level, short)
         return {place: (each[0], each[1], each[2], each[3]) for place, each in short.items()}
 
     def _add(self, demand: Demand, failing: int, level: int, short: dict[int, list[int]]) -> None:
@@ -110,7 +116,13 @@ class Judgement:
                 found.append(Shortfall(demand, None, 1))
             elif failing & bit:
                 seen = self.columns[demand.property].values[place]
-                found.append(Shortfall(demand, seen, 0 if seen is None else steps_short(demand.test, seen, self.domains[demand.property])))
+                found.append(
+                    Shortfall(
+                        demand,
+                        seen,
+                        0 if seen is None else steps_short(demand.test, seen, self.domains[demand.property]),
+                    )
+                )
         return sorted(found, key=lambda each: each.demand.level)
 
     def ranking(self, *, is_open: bool = False) -> list[tuple[int, Verdict, tuple[int, int, int, int]]]:
@@ -118,7 +130,10 @@ class Judgement:
         alive = self.catalogue.everything & ~self.fails_must
         steps = self.steps(alive)
         order = list(Verdict)
-        rows = [(place, self.verdict(place, is_open=is_open), steps.get(place, (0, 0, 0, 0))) for place in range(len(self.catalogue.items))]
+        rows = [
+            (place, self.verdict(place, is_open=is_open), steps.get(place, (0, 0, 0, 0)))
+            for place in range(len(self.catalogue.items))
+        ]
         return sorted(rows, key=lambda row: (order.index(row[1]), row[2], self.catalogue.items[row[0]].code))
 
 

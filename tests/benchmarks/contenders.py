@@ -69,7 +69,7 @@ def clips_run(rules: Sequence[Condition], _domains: dict[str, Domain]) -> Fired:
 
 def _clips_step(rules: Sequence[Condition], action: str) -> tuple[Any, Any, Callable[[Case], Case]]:
     """An environment with the rules of a step, its template, and what is sent of a case."""
-    import clips  # type: ignore[import-untyped]  # noqa: PLC0415  # the package is optional
+    import clips  # type: ignore[import-untyped]  # the package is optional
 
     environment = clips.Environment()
     used = looked_at(rules)
@@ -105,18 +105,27 @@ def _clips_pattern(branch: Sequence[Term]) -> str:
         elif isinstance(term, Member):
             own.append("|".join(map(str, term.among)) if term.wanted else "&".join(f"~{each}" for each in term.among))
             own += [] if term.wanted else ["~nil"]
-    # A variable may only be used after its slot: the slots that others compare with come first.
-    limits = {term.limit.name for term in branch if isinstance(term, Bound) and isinstance(term.limit, FactRef)}
     slots = []
-    for name in sorted(constraints, key=lambda name: name not in limits):
+    # A variable may only be used after its slot: what others compare with comes first.
+    for name in _limits_first(branch, list(constraints)):
         first = [f"?{name}", f":(numberp ?{name})"] if name in ordered else []
         slots.append(f"({name} {'&'.join([*first, *constraints[name]])})")
     return " ".join(slots)
 
 
+def _limits_first(branch: Sequence[Term], slots: list[str]) -> list[str]:
+    limits = {
+        term.name: term.limit.name for term in branch if isinstance(term, Bound) and isinstance(term.limit, FactRef)
+    }
+    placed: list[str] = []
+    while len(placed) < len(slots):
+        placed += [name for name in slots if name not in placed and limits.get(name, name) in (*placed, name)]
+    return placed
+
+
 def zen_collect(rules: Sequence[Condition], _domains: dict[str, Domain]) -> Fired:
     """A decision table of zen-engine that collects every row that holds; one row per branch."""
-    import zen  # noqa: PLC0415  # the package is optional
+    import zen  # the package is optional
 
     used = looked_at(rules)
     rows = [
@@ -166,7 +175,7 @@ def experta_agenda(rules: Sequence[Condition], _domains: dict[str, Domain]) -> F
     for moved in ("Mapping", "MutableMapping", "Iterable", "Callable", "Hashable"):
         # experta and frozendict still look for these where Python kept them until 3.9.
         setattr(collections, moved, getattr(collections.abc, moved))
-    import experta  # type: ignore[import-untyped]  # noqa: PLC0415  # the package is optional
+    import experta  # type: ignore[import-untyped]  # the package is optional
 
     used = looked_at(rules)
     methods: dict[str, object] = {}

@@ -4,6 +4,7 @@ Expected outcomes come from `conditions.holds`, which is written independently o
 """
 
 from contextlib import closing
+from itertools import product
 
 import pytest
 from hypothesis import given, settings
@@ -158,6 +159,20 @@ def test_many_branches_of_many_rules_all_pending_at_once_are_split_without_loss(
     with closing(Matcher([pair] * 20, DOMAINS)) as matcher:
         assert matcher.fired({"number_0": 99.0, "number_1": 99.0}) == set(range(20))
         assert matcher.fired({"number_0": 99.0, "number_1": 0.0}) == frozenset()
+
+
+@pytest.mark.parametrize("among", ["a", "ab", "abcd"])
+@pytest.mark.parametrize("others", [(), ("second",), ("second", "third")])
+def test_choices_in_great_numbers_are_split_without_loss(among: str, others: tuple[str, ...]) -> None:
+    # Alternatives of a choice share a rule set where no record can meet two, so those that can must not overrun it.
+    choices = {name: Domain("choice", choices=dict.fromkeys("abcd", "")) for name in ("first", "second", "third")}
+    domains = {**choices, "number": Domain("number")}
+    chosen = Either(tuple(Member(name, frozenset(among)) for name in ("first", *others)))
+    conditions: list[Condition] = [Every((Bound("number", ">", float(n)), chosen)) for n in range(130)]
+    with closing(Matcher(conditions, domains)) as matcher:
+        for first, second, third in product("abe", repeat=3):
+            record: Record = {"first": first, "second": second, "third": third, "number": 129.5}
+            assert matcher.fired(record) == {i for i, each in enumerate(conditions) if holds(each, record)}
 
 
 def test_more_facts_than_one_record_of_the_engine_may_hold_are_split_without_loss() -> None:

@@ -1,0 +1,108 @@
+"""What can be said only once all is judged: cautions with what they concern, musts met with nothing to spare."""
+
+from collections.abc import Sequence
+
+from advisor.advice.model import AtLimit, CautionGiven, Ranked
+from advisor.advice.recommending import Recommendation
+from advisor.advice.running import Run
+from advisor.conditions import ALWAYS, Bound, Condition, failures
+from advisor.knowledge import Asks, Instance
+from advisor.shelf import Judgement, Verdict, at_limit, judge, places
+from advisor.specification import mentions, with_limits
+
+
+def maker_verdict(run: Run, shelf: Sequence[Ranked]) -> str:
+    """What became of the lubricant that the machine maker names."""
+    fact = run.facts.facts.get("maker_item")
+    named = str(fact.value) if fact is not None else "none_named"
+    ranked = next((each for each in shelf if each.item == named), None)
+    if ranked is None:
+        return "none_named" if named == "none_named" else "not_on_the_shelf"
+    return Verdict.FITS.value if ranked.verdict is Verdict.STILL_IN else ranked.verdict.value
+
+
+def cautions(run: Run, recommendation: Recommendation | None, judgement: Judgement | None) -> tuple[CautionGiven, ...]:
+    """The cautions drawn; one with a `for` is given where a recommended class or a product meets it."""
+    rules: dict[str, list[str]] = {}
+    concerned: dict[str, list[str]] = {}
+    general: set[str] = set()
+    for instance, each in run.drawn.warns:
+        for_, waits, void = with_limits(each.for_, run.facts.record)
+        if for_ == ALWAYS:
+            general.add(each.caution)
+        elif waits or void or not (concerns := _concerned(for_, recommendation, judgement)):
+            continue
+        else:
+            concerned.setdefault(each.caution, []).extend(concerns)
+        rules.setdefault(each.caution, []).append(instance.id)
+    return tuple(
+        CautionGiven(
+            name,
+            tuple(dict.fromkeys(rules[name])),
+            () if name in general else tuple(dict.fromkeys(concerned[name])),
+        )
+        for name in run.knowledge.cautions
+        if name in rules
+    )
+
+
+def _concerned(for_: Condition, recommendation: Recommendation | None, judgement: Judgement | None) -> list[str]:
+    """The recommended classes, and the products with no must against them, that meet the caution's `for`."""
+    if recommendation is None or judgement is None:
+        return []
+    found: list[str] = []
+    winners = [place for places_ in recommendation.winners.values() for place in places_]
+    for one, chosen in ((recommendation.oils, recommendation.oil_winners), (recommendation.choices, winners)):
+        if one is not None:
+            found += [one.catalogue.items[place].title for place in chosen if _meeting(for_, one) >> place & 1]
+    return found + [
+        judgement.catalogue.items[place].code for place in places(_meeting(for_, judgement) & judgement.passing)
+    ]
+
+
+def _meeting(for_: Condition, judgement: Judgement) -> int:
+    """The items that do not fail the condition and have at least one of the properties it names."""
+    _, failing = judge(for_, judgement.columns, judgement.catalogue.everything)
+    told = 0
+    for name in mentions(for_):
+        column = judgement.columns.get(name)
+        told |= column.present if column else 0
+    return told & ~failing
+
+
+def musts_at_limit(run: Run, recommendation: Recommendation, judgement: Judgement) -> tuple[AtLimit, ...]:
+    """Musts met with nothing to spare: by products that no must rules out, and by recommended classes."""
+    found: list[AtLimit] = []
+    for place, demand in enumerate(judgement.demands):
+        if demand.must and _is_measure(judgement, demand.property):
+            items = places(at_limit(judgement, place, judgement.passing))
+            found += [AtLimit("product", judgement.catalogue.items[each].code, demand.rule) for each in items]
+    recommended = {value for line in recommendation.lines.values() for value in line.values}
+    for step in run.trace:
+        for instance, outcome in zip(step.instances, step.outcomes, strict=True):
+            if (
+                outcome is False
+                and instance.binds
+                and instance.row is not None
+                and instance.row.id in recommended
+                and _missed_by_nothing(run, instance)
+            ):
+                found.append(AtLimit("class", instance.row.id, instance.id))
+    return tuple(dict.fromkeys(found))
+
+
+def _is_measure(judgement: Judgement, name: str) -> bool:
+    domain = judgement.domains[name]
+    return domain.kind == "number" and not domain.places
+
+
+def _missed_by_nothing(run: Run, instance: Instance) -> bool:
+    if not any(isinstance(each, Asks) and each.level == 0 for each in instance.then):
+        return False
+    return any(
+        isinstance(term, Bound)
+        and term.sign in {">", "<"}
+        and isinstance(term.limit, float)
+        and run.facts.record.get(term.name) == term.limit
+        for term in failures(instance.when, run.facts.record)
+    )
