@@ -8,7 +8,7 @@ from advisor.mishaps import DONE, NOT_SETTLED, USAGE, Refusal
 from advisor.places import knowledge_folder
 
 if TYPE_CHECKING:
-    from advisor.advice import Advice
+    from advisor.advice import Advice, Advisor
     from advisor.answers import Saved
     from advisor.knowledge import Knowledge
 
@@ -150,6 +150,38 @@ def compute(name: str | None, inputs: tuple[str, ...], as_json: bool) -> int:  #
     else:
         _print(computing.render_text(computed))
     return DONE
+
+
+def replay(
+    files: tuple[Path, ...], as_json: bool, junit: Path | None, coverage: bool, knowledge: Path | None, shelf: Path | None  # noqa: FBT001 - flags as click gives them
+) -> int:
+    """Replay scenarios and tell where their advice differs from what is expected."""
+    from advisor import replay as replaying
+    from advisor.documents import Unwritable, write_text_safely
+
+    found = replaying.find(files)
+    if not found:
+        raise Refusal("There is no scenario to replay here. Name a file or a folder that holds some.")
+    advisors = _advisors(replaying.kinds_of(found), knowledge, shelf)
+    outcome = replaying.replay(found, advisors)
+    covered = replaying.coverage(outcome, [each.knowledge for each in advisors.values()]) if coverage else None
+    if junit is not None:
+        try:
+            write_text_safely(junit, replaying.as_junit(outcome))
+        except Unwritable as fault:
+            raise Refusal(str(fault)) from None
+    for problem in outcome.problems:
+        print(problem, file=sys.stderr)  # noqa: T201 - words beside the output
+    _print(_json(replaying.as_data(outcome, covered)) if as_json else replaying.as_text(outcome, covered))
+    return USAGE if outcome.problems else NOT_SETTLED if outcome.differing else DONE
+
+
+def _advisors(kinds: list[str], knowledge: Path | None, shelf: Path | None) -> "dict[str, Advisor]":
+    """One advisor for each kind of point that the knowledge has; a kind that it lacks is told where a file names it."""
+    from advisor.advice import Advisor
+
+    known = _kinds(knowledge or knowledge_folder())
+    return {kind: Advisor(_loaded(knowledge, shelf, kind)) for kind in [each for each in kinds if each in known] or known[:1]}
 
 
 def _json(data: object) -> str:

@@ -96,21 +96,25 @@ def with_limits(condition: Condition, record: Record) -> tuple[Condition, set[st
 
 
 def combine(demands: Iterable[Demand], domains: Mapping[str, Domain]) -> Specification:
-    """Combine demands: decide what the plain ones decide, then look for empty intersections."""
+    """Combine demands: a `for` that the plain musts leave no choice about becomes plain; then look for conflicts.
+
+    A `for` that no allowed value meets stays conditional: it still speaks of lubricants whose sheet lacks the value.
+    """
     plain: list[Demand] = []
     conditional: list[Demand] = []
     for demand in demands:
         (plain if demand.for_ == ALWAYS else conditional).append(demand)
     allowed = _allowed(plain, domains, {})
     while True:
-        decided = [(demand, _for_holds(demand.for_, allowed, domains)) for demand in conditional]
-        now_plain = [replace(demand, for_=ALWAYS) for demand, outcome in decided if outcome is True]
-        conditional = [demand for demand, outcome in decided if outcome is None]
+        now_plain = [demand for demand in conditional if _always_for(demand.for_, allowed)]
         if not now_plain:
             break
+        conditional = [demand for demand in conditional if demand not in now_plain]
+        now_plain = [replace(demand, for_=ALWAYS) for demand in now_plain]
         plain += now_plain
         allowed = _allowed(now_plain, domains, allowed)
-    return Specification(tuple(plain), tuple(conditional), tuple(_empty_intersections(plain, domains)), allowed)
+    conflicts = tuple(_empty_intersections(plain, domains))
+    return Specification(tuple(plain), tuple(conditional), conflicts, allowed)
 
 
 def _finite(domain: Domain) -> list[Coded]:
@@ -144,20 +148,16 @@ def _kept(demand: Demand, values: frozenset[Coded]) -> frozenset[Coded]:
     return frozenset(each for each in values if holds(test, {demand.property: each}))
 
 
-def _for_holds(
-    condition: Condition, allowed: Mapping[str, frozenset[Coded]], domains: Mapping[str, Domain]
-) -> bool | None:
-    """Whether the plain musts decide a `for`: all allowed values meet it, or none does."""
-    if isinstance(condition, Every | Either):
-        outcomes = [_for_holds(part, allowed, domains) for part in condition.parts]
-        if isinstance(condition, Every):
-            return False if False in outcomes else None if None in outcomes else True
-        return True if True in outcomes else None if None in outcomes else False
+def _always_for(condition: Condition, allowed: Mapping[str, frozenset[Coded]]) -> bool:
+    """Whether every value that the plain musts allow meets a `for`."""
+    if isinstance(condition, Every):
+        return all(_always_for(part, allowed) for part in condition.parts)
+    if isinstance(condition, Either):
+        return any(_always_for(part, allowed) for part in condition.parts)
     values = allowed.get(condition.name)
     if not values or not isinstance(condition, Bound | Member):
-        return None
-    outcomes = [holds(condition, {condition.name: each}) for each in values]
-    return True if all(outcomes) else None if any(outcomes) else False
+        return False
+    return all(holds(condition, {condition.name: each}) for each in values)
 
 
 def _empty_intersections(plain: list[Demand], domains: Mapping[str, Domain]) -> Iterable[Conflict]:

@@ -22,7 +22,8 @@ LEVELS = [
     {"replay"},
     {"screens"},
     {"commands"},
-    {"cli", "__main__"},
+    {"cli"},
+    {"__main__"},
 ]
 SOLE_USERS = {
     "yaml": "documents",

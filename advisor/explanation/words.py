@@ -220,8 +220,8 @@ def say_steps(steps: Sequence[int]) -> str:
     return ", ".join(words)
 
 
-def say_because(instance: Instance, facts: Mapping[str, Fact], record: Record, knowledge: Knowledge) -> str:
-    """The reason of a rule with its placeholders filled from the facts and from the row of its table."""
+def fill_in(text: str, instance: Instance, facts: Mapping[str, Fact], record: Record, knowledge: Knowledge) -> str:
+    """A sentence of a rule with its placeholders filled from the facts and from the row of its table."""
 
     def filled(found: re.Match[str]) -> str:
         of_row, name = found.groups()
@@ -231,7 +231,7 @@ def say_because(instance: Instance, facts: Mapping[str, Fact], record: Record, k
             return say_fact(facts[name], knowledge)
         return say_value(domain_of(name, knowledge), record.get(name))
 
-    return PLACEHOLDER.sub(filled, instance.rule.because)
+    return PLACEHOLDER.sub(filled, text)
 
 
 def _say_cell(instance: Instance, column: str, knowledge: Knowledge) -> str:

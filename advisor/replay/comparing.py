@@ -1,17 +1,15 @@
-"""Compare an advice with what a scenario expects of it."""
+"""Compare an advice with what a scenario expects of it, kind by kind."""
 
 import math
 from collections.abc import Iterable
-from dataclasses import dataclass
+from functools import singledispatch
 
-from advisor.advice import Advice, Line, State
-from advisor.conditions import Value, holds
-from advisor.designations import Designer, din_serves, iso_serves
-from advisor.documents import Mark
-from advisor.knowledge import Instance, Knowledge, Refers, Warns
-from advisor.replay import reasons
+from advisor.advice import Advice, State
+from advisor.case import Origin
+from advisor.knowledge import Instance, Refers, Warns
+from advisor.replay import docket_compared, reasons
+from advisor.replay.differing import Difference
 from advisor.replay.expectations import (
-    INTERVAL_ROW,
     AsksAtLeast,
     AsksFor,
     Assumes,
@@ -32,75 +30,176 @@ from advisor.replay.expectations import (
     RuleIs,
     StateIs,
     WithheldIs,
-    fill_row,
 )
-from advisor.replay.falling import asks, falling, must_ask, nothing, say_at_least
+from advisor.quantities import show
 from advisor.shelf import Verdict
-
-
-@dataclass(frozen=True, slots=True)
-class Difference:
-    """What an advice has otherwise than expected, and the part of the trace that made it.
-
-    `read` says whether people read it; what shows in the trace only proves nothing about the advice.
-    """
-
-    kind: str
-    what: str
-    expected: str
-    got: str
-    because: tuple[str, ...]
-    mark: Mark
-    read: bool = True
-
-    def __str__(self) -> str:
-        what = f" {self.what}" if self.what else ""
-        return f"{self.kind}{what}: expected {self.expected}, got {self.got}"
+from advisor.specification import Conflict
 
 
 def differences(advice: Advice, expectations: Iterable[Expectation]) -> tuple[Difference, ...]:
     """Every expectation that the advice does not meet, in the order written."""
-    return tuple(found for each in expectations if (found := compare(advice, each)) is not None)
+    return tuple(found for each in expectations if (found := compare(each, advice)) is not None)
 
 
-def compare(advice: Advice, expected: Expectation) -> Difference | None:  # noqa: C901, PLR0911, PLR0912 - one case per kind of expectation
+@singledispatch
+def compare(expected: object, _advice: Advice) -> Difference | None:
     """The difference from one expectation, if there is any."""
-    match expected:
-        case StateIs():
-            return _state(advice, expected)
-        case WithheldIs():
-            return _withheld(advice, expected)
-        case FactIs():
-            return _fact(advice, expected)
-        case FactWithin():
-            return _fact_within(advice, expected)
-        case Recommends():
-            return _recommends(advice, expected)
-        case KeepsFrom():
-            return _keeps_from(advice, expected)
-        case Bars():
-            return _bars(advice, expected)
-        case AsksFor():
-            return _asks_for(advice, expected)
-        case AsksAtLeast():
-            return _asks_at_least(advice, expected)
-        case CodeServes():
-            return _code(advice, expected)
-        case CautionIs():
-            return _caution(advice, expected)
-        case ReferralIs():
-            return _referral(advice, expected)
-        case ProductIs():
-            return _product(advice, expected)
-        case LeavesOpen():
-            return _open_question(advice, expected)
-        case Assumes():
-            return _assumption(advice, expected)
-        case ConflictBetween():
-            return _conflict(advice, expected)
-        case IntervalIs():
-            return _interval(advice, expected)
-        case FillIs():
-            return _fill(advice, expected)
-        case RuleIs():
-            return _rule(advice, expected)
+    raise TypeError(f"{expected!r} is no expectation")
+
+
+compare.register(Recommends, docket_compared.recommends)
+compare.register(KeepsFrom, docket_compared.keeps_from)
+compare.register(Bars, docket_compared.bars)
+compare.register(AsksFor, docket_compared.asks_for)
+compare.register(AsksAtLeast, docket_compared.asks_at_least)
+compare.register(CodeServes, docket_compared.code_serves)
+compare.register(IntervalIs, docket_compared.interval)
+compare.register(FillIs, docket_compared.fill)
+
+
+@compare.register
+def _state(expected: StateIs, advice: Advice) -> Difference | None:
+    if advice.state is expected.state:
+        return None
+    because = [f"{each.rule} refers to {each.to}." for each in advice.referrals]
+    because += [_conflict_words(each) for each in advice.conflicts]
+    because += [f"'{each.fact}' is not answered; {', '.join(each.waiting[:reasons.MOST])} wait for it."
+                for each in advice.open_questions if each.decides == "lubricant"]
+    because += [f"'{name}' is assumed, which keeps the advice open." for name in advice.keeping_open]
+    return Difference("state", "", expected.state, advice.state, tuple(because), expected.mark)
+
+
+def _conflict_words(conflict: Conflict) -> str:
+    return f"The rules {', '.join(conflict.rules)} cannot be met together ({conflict.about.replace('_', ' ')})."
+
+
+@compare.register
+def _withheld(expected: WithheldIs, advice: Advice) -> Difference | None:
+    if advice.withheld is expected.withheld:
+        return None
+    because = [f"{each.rule} refers to {each.to}{' and withholds' if each.withhold else ''}." for each in advice.referrals]
+    because += [] if because else reasons.of_rules(advice, lambda rule: any(isinstance(each, Refers) and each.withhold for each in rule.then))
+    return Difference("withheld", "", _yes(expected.withheld), _yes(advice.withheld), tuple(because), expected.mark)
+
+
+def _yes(outcome: bool) -> str:  # noqa: FBT001 - the value itself is shown
+    return "yes" if outcome else "no"
+
+
+@compare.register
+def _fact_is(expected: FactIs, advice: Advice) -> Difference | None:
+    fact, name = advice.facts.get(expected.name), expected.name
+    if expected.value is None:
+        same = fact is not None and fact.origin is Origin.VOID
+    elif isinstance(expected.value, float):
+        same = fact is not None and isinstance(fact.value, float) and math.isclose(fact.value, expected.value, rel_tol=1e-9, abs_tol=1e-12)
+    else:
+        same = fact is not None and fact.value == expected.value
+    wanted = "void" if expected.value is None else reasons.shown(advice.knowledge, name, advice.knowledge.domain(name).code(expected.value))
+    return None if same else _fact_differs(name, wanted, advice, expected)
+
+
+@compare.register
+def _fact_within(expected: FactWithin, advice: Advice) -> Difference | None:
+    fact = advice.facts.get(expected.name)
+    value = fact.value if fact is not None else None
+    if isinstance(value, float) and expected.low <= value <= expected.high:
+        return None
+    unit = advice.knowledge.domain(expected.name).unit
+    return _fact_differs(expected.name, f"{show(expected.low, unit)} to {show(expected.high, unit)}", advice, expected)
+
+
+def _fact_differs(name: str, wanted: str, advice: Advice, expected: FactIs | FactWithin) -> Difference:
+    got = reasons.fact_words(advice, advice.facts.get(name))
+    return Difference("facts", name, wanted, got, reasons.of_fact(advice, name), expected.mark)
+
+
+@compare.register
+def _caution(expected: CautionIs, advice: Advice) -> Difference | None:
+    name, given = expected.caution, {each.caution for each in advice.cautions}
+    if (name in given) is expected.given:
+        return None
+
+    def concerns(rule: Instance) -> bool:
+        return any(isinstance(each, Warns) and each.caution == name for each in rule.then)
+
+    because = list(reasons.of_rules(advice, concerns))
+    if expected.given and any(outcome and concerns(rule) for rule, outcome in reasons.outcomes(advice)):
+        because.append("Nothing that is recommended or still in meets the 'for' of the caution.")
+    return Difference("cautions", name, *_given(expected.given), tuple(because), expected.mark)
+
+
+def _given(given: bool) -> tuple[str, str]:  # noqa: FBT001 - the value itself is shown
+    return ("given", "not given") if given else ("not given", "given")
+
+
+@compare.register
+def _referral(expected: ReferralIs, advice: Advice) -> Difference | None:
+    made = {each.to for each in advice.referrals}
+    if (expected.to in made) is expected.given:
+        return None
+    because = reasons.of_rules(advice, lambda rule: any(isinstance(each, Refers) and each.to == expected.to for each in rule.then))
+    return Difference("referrals", expected.to, *_given(expected.given), because, expected.mark)
+
+
+@compare.register
+def _product(expected: ProductIs, advice: Advice) -> Difference | None:
+    wanted = f"{expected.verdict}{f' by {expected.rule}' if expected.rule else ''}"
+    ranked = next((each for each in advice.shelf if each.item == expected.item), None)
+    if ranked is None or advice.judgement is None:
+        return Difference("products", expected.item, wanted, "no verdict", ("Products are withheld.",), expected.mark)
+    missed = [each for each in advice.judgement.shortfalls(ranked.place) if each.demand.must]
+    if expected.verdict is Verdict.UNPROVEN:
+        missed = [each for each in missed if each.seen is None or each.demand.void]
+    rules = list(dict.fromkeys(each.demand.rule for each in missed))
+    if ranked.verdict is expected.verdict and (not expected.rule or _names(rules, expected.rule)):
+        return None
+    got = f"{ranked.verdict} by {', '.join(rules)}" if rules and ranked.verdict in {Verdict.FALLS_SHORT, Verdict.UNPROVEN} else f"{ranked.verdict}"
+    because = reasons.of_shortfalls(advice, advice.judgement, ranked.place)
+    if expected.rule and not _names(rules, expected.rule):
+        because = (*reasons.of_rule(advice, expected.rule), *because)
+    return Difference("products", expected.item, wanted, got, because, expected.mark)
+
+
+def _names(rules: Iterable[str], rule: str) -> bool:
+    """Whether the rule is named, as written or for one row of its table."""
+    return any(rule in {each, each.partition("/")[0]} for each in rules)
+
+
+@compare.register
+def _open_question(expected: LeavesOpen, advice: Advice) -> Difference | None:
+    if expected.fact in {each.fact for each in advice.open_questions}:
+        return None
+    return Difference("open_questions", expected.fact, "open", _standing(advice, expected.fact), reasons.of_fact(advice, expected.fact), expected.mark)
+
+
+@compare.register
+def _assumption(expected: Assumes, advice: Advice) -> Difference | None:
+    if expected.fact in advice.assumptions:
+        return None
+    return Difference("assumptions", expected.fact, "assumed", _standing(advice, expected.fact), reasons.of_fact(advice, expected.fact), expected.mark)
+
+
+def _standing(advice: Advice, name: str) -> str:
+    fact = advice.facts.get(name)
+    if fact is None or fact.value is None:
+        return f"{reasons.fact_words(advice, fact)}, and nothing waits for it"
+    return f"{fact.origin.value}: {reasons.fact_words(advice, fact)}"
+
+
+@compare.register
+def _conflict(expected: ConflictBetween, advice: Advice) -> Difference | None:
+    if any(all(_names(conflict.rules, rule) for rule in expected.rules) for conflict in advice.conflicts):
+        return None
+    got = "; ".join(" with ".join(conflict.rules) for conflict in advice.conflicts) or "no conflict"
+    because = tuple(sentence for rule in expected.rules for sentence in reasons.of_rule(advice, rule))
+    return Difference("conflicts", "", " with ".join(expected.rules), got, because, expected.mark)
+
+
+@compare.register
+def _rule(expected: RuleIs, advice: Advice) -> Difference | None:
+    fired = any(outcome and expected.rule in {rule.id, rule.rule.id} for rule, outcome in reasons.outcomes(advice))
+    if fired is expected.fires:
+        return None
+    wanted, got = ("fires", "silent") if expected.fires else ("silent", "fires")
+    return Difference("rules", expected.rule, wanted, got, reasons.of_rule(advice, expected.rule), expected.mark, read=False)

@@ -158,3 +158,8 @@ def of_shortfalls(advice: Advice, judgement: Judgement, place: int) -> tuple[str
         f"{of_demand(advice.knowledge, each.demand)} Seen: "
         f"{'not on its sheet' if each.seen is None else shown(advice.knowledge, each.demand.property, each.seen)}."
         for each in judgement.shortfalls(place))
+
+
+def names_of(condition: Condition) -> set[str]:
+    """The facts that a condition looks at."""
+    return {term.name for term in leaves(condition)}

@@ -175,6 +175,13 @@ def test_choices_in_great_numbers_are_split_without_loss(among: str, others: tup
             assert matcher.fired(record) == {i for i, each in enumerate(conditions) if holds(each, record)}
 
 
+def test_many_rules_of_many_choices_are_split_without_loss() -> None:
+    # 1,200 branches, few of which any record meets; the engine hangs when some hundreds stand in one rule set.
+    conditions: list[Condition] = [Member("text", frozenset(f"{n}_{m}" for m in range(40))) for n in range(30)]
+    with closing(Matcher(conditions, DOMAINS)) as matcher:
+        assert [matcher.fired({"text": f"{n}_39"}) for n in range(30)] == [{n} for n in range(30)]
+
+
 def test_more_facts_than_one_record_of_the_engine_may_hold_are_split_without_loss() -> None:
     domains = {f"fact_{n}": Domain("number") for n in range(600)}
     conditions: list[Condition] = [

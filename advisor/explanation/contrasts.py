@@ -1,0 +1,191 @@
+"""Why not: every demand that a product or a class misses, by how much, and by which rule."""
+
+from collections.abc import Iterable
+from dataclasses import dataclass
+from difflib import get_close_matches
+
+from advisor.advice import Advice, Line
+from advisor.conditions import Bound, Coded, Condition, leaves
+from advisor.explanation.ruling import Known, RuleReason, rule_reason
+from advisor.explanation.seeing import instances_of
+from advisor.explanation.weighing import Field, field_of
+from advisor.explanation.words import (
+    LEVELS,
+    SHEET_SILENT,
+    margin,
+    say_condition,
+    say_margin,
+    say_steps,
+    say_test,
+    say_value,
+)
+from advisor.explanation.workings import NotHere
+from advisor.shelf import Judgement, Shortfall, Verdict, steps_short
+from advisor.specification import Demand
+
+VERDICTS = {
+    Verdict.FITS: "fits",
+    Verdict.SECOND_BEST: "second best",
+    Verdict.STILL_IN: "still in",
+    Verdict.UNPROVEN: "unproven",
+    Verdict.FALLS_SHORT: "falls short",
+}
+
+
+@dataclass(frozen=True, slots=True)
+class Miss:
+    """A demand that is missed: what it asks, what was seen, by how much, and the rule behind it.
+
+    `shared`: the recommended class misses it as well, so it tells nothing against this one.
+    """
+
+    demand: str
+    level: int
+    strength: str
+    for_: str
+    seen: str
+    margin: str
+    steps: int
+    rule: RuleReason
+    shared: bool = False
+
+
+@dataclass(frozen=True, slots=True)
+class WhyNot:
+    """Why a product or a class is not recommended; without misses it is, or is held off for what the verdict says."""
+
+    subject: str
+    title: str
+    kind: str
+    verdict: str
+    misses: tuple[Miss, ...]
+
+
+def why_not(advice: Advice, subject: str) -> WhyNot:
+    """Why a product (by its item code) or a class (`thickener=sodium`, or a value as the docket says it) is not recommended.
+
+    Raises:
+        NotHere: where neither the shelf nor a row has it; the message names the nearest.
+    """
+    if advice.withheld or advice.judgement is None:
+        raise NotHere("Nothing is recommended here, so there is nothing to compare: see the referral.")
+    place = advice.judgement.catalogue.place.get(subject)
+    if place is not None:
+        return product(advice, place)
+    line, value = find_class(advice, subject)
+    return of_class(advice, line, value)
+
+
+def product(advice: Advice, place: int, known: Known | None = None) -> WhyNot:
+    """All demands that a product misses, musts first."""
+    judgement = advice.judgement
+    assert judgement is not None  # noqa: S101 - asked by the callers
+    item = judgement.catalogue.items[place]
+    ranked = next(each for each in advice.shelf if each.place == place)
+    known = known if known is not None else instances_of(advice)
+    misses = tuple(_miss(advice, each, known) for each in judgement.shortfalls(place))
+    verdict = VERDICTS[ranked.verdict]
+    if ranked.verdict is not Verdict.FALLS_SHORT:
+        verdict += f": {say_steps(ranked.steps)}"
+    return WhyNot(item.code, item.title, "product", verdict, misses)
+
+
+def _miss(advice: Advice, short: Shortfall, known: Known, *, shared: bool = False) -> Miss:
+    demand = short.demand
+    domain = advice.knowledge.properties[demand.property].domain
+    return Miss(
+        say_test(demand.test, advice.knowledge), demand.level, LEVELS[demand.level],
+        "" if not list(leaves(demand.for_)) else say_condition(demand.for_, advice.knowledge),
+        _seen(demand, short.seen, say_value(domain, short.seen)),
+        _say_apart(demand, short.seen, advice), short.steps, rule_reason(advice, demand.rule, known), shared)  # fmt: skip
+
+
+def _seen(demand: Demand, seen: Coded | None, said: str) -> str:
+    if demand.void:
+        return f"the limit has no value: {', '.join(sorted(demand.void))}"
+    return SHEET_SILENT if seen is None else said
+
+
+def _say_apart(demand: Demand, seen: Coded | None, advice: Advice) -> str:
+    domain = advice.knowledge.properties[demand.property].domain
+    away = apart(demand.test, seen)
+    return "" if away is None else say_margin(away, domain)
+
+
+def apart(test: Condition, seen: Coded | None) -> float | None:
+    """How far a value lies from the nearest limit of a test that it misses; None where nothing is counted."""
+    away = [each for term in leaves(test) if isinstance(term, Bound) and (each := margin(term, seen, {})) is not None]
+    return min(away, default=None)
+
+
+def find_class(advice: Advice, subject: str) -> tuple[Line, Coded]:
+    """The row and the coded value that a subject means."""
+    wanted_row, _, value = subject.replace(":", "=", 1).rpartition("=")
+    known: list[str] = []
+    for line in advice.docket:
+        row = next(each for each in advice.knowledge.docket if each.id == line.row)
+        if not row.recommends or wanted_row.strip() not in {"", row.id, row.recommends}:
+            continue
+        domain = advice.knowledge.properties[row.recommends].domain
+        for each in domain.places or tuple(domain.choices):
+            said = say_value(domain, each)
+            if value.strip().casefold() in {str(each).casefold(), said.casefold(), f"{each:g}" if isinstance(each, float) else ""}:
+                return line, domain.code(each)
+            known.append(f"{row.recommends}={each:g}" if isinstance(each, float) else f"{row.recommends}={each}")
+    codes = advice.judgement.catalogue.place if advice.judgement is not None else ()
+    near = get_close_matches(subject, [*codes, *known], n=3, cutoff=0.4)
+    raise NotHere(f"'{subject}' is no product of this shelf and no class of the docket." + (f" Nearest: {', '.join(near)}." if near else ""))
+
+
+def of_class(advice: Advice, line: Line, value: Coded) -> WhyNot:
+    """What stands against a class of a row, beside the recommended one."""
+    row = next(each for each in advice.knowledge.docket if each.id == line.row)
+    domain = advice.knowledge.properties[row.recommends].domain
+    said = say_value(domain, value)
+    subject = f"{row.recommends}={value:g}" if isinstance(value, float) and domain.kind == "number" else f"{row.recommends}={domain.decode(value)}"
+    field = field_of(advice, line)
+    chosen = {domain.code(each) for each in line.values}
+    if value in chosen:
+        return WhyNot(subject, said, "class", "recommended", ())
+    own = [place for place in field.misses if field.value(place) == value] if field is not None else []
+    if field is None or not own:
+        reason = "does not apply" if line.skipped else "no usual oil has it" if field is not None else "not the conclusion of the rules: see why"
+        return WhyNot(subject, said, "class", reason, ())
+    closest = min(own, key=lambda place: (field.bars(place), _musts(field, place), field.steps(place), place))
+    return WhyNot(subject, said, "class", _class_verdict(field, own, closest), tuple(_against(advice, field, own, closest)))
+
+
+def _musts(field: Field, place: int) -> int:
+    return sum(field.judgement.demands[each].must for each in field.misses[place])
+
+
+def _class_verdict(field: Field, own: list[int], closest: int) -> str:
+    item = field.judgement.catalogue.items[closest]
+    among = f"; the closest of {len(own)} usual oils is {item.title}" if len(own) > 1 else ""
+    if field.bars(closest):
+        return f"barred{among}"
+    if closest not in field.narrowed([place for place in field.misses if not field.bars(place)]):
+        return f"allowed, but out of the ordinary, and ordinary ones pass{among}"
+    return f"allowed, but {say_steps(field.steps(closest))}{among}"
+
+
+def _against(advice: Advice, field: Field, own: list[int], closest: int) -> Iterable[Miss]:
+    """What the closest candidate misses, and the musts that bar every other one of the class."""
+    judgement, known = field.judgement, instances_of(advice)
+    best = field.best()
+    numbers = sorted(field.misses[closest], key=lambda each: judgement.demands[each].level)
+    for number in numbers:
+        demand = judgement.demands[number]
+        short = Shortfall(demand, _value(judgement, demand, closest), field.misses[closest][number])
+        shared = bool(best) and all(field.misses[place].get(number, 0) >= short.steps for place in best)
+        yield _miss(advice, short, known, shared=shared)
+
+
+def _value(judgement: Judgement, demand: Demand, place: int) -> Coded | None:
+    column = judgement.columns.get(demand.property)
+    return column.values[place] if column is not None else None
+
+
+def counted(demand: Demand, seen: Coded | None, judgement: Judgement) -> int:
+    """Whole steps short; 1 where the sheet is silent."""
+    return 1 if seen is None else steps_short(demand.test, seen, judgement.domains[demand.property])

@@ -1,0 +1,183 @@
+"""Why a row of the docket shows what it shows: the conclusion, its demands, their rules, and the facts behind these."""
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+
+from advisor.advice import Advice, Line
+from advisor.conditions import Condition, Every, FactRef, holds
+from advisor.conditions.terms import names
+from advisor.explanation.ruling import Known, RuleReason, rule_reason, why_not_rule
+from advisor.explanation.seeing import instances_of
+from advisor.explanation.weighing import Field, field_of
+from advisor.explanation.words import say_condition, say_demand, say_fact, say_test, say_value, title_of
+from advisor.explanation.workings import NotHere, Premise, premise
+from advisor.knowledge import Instance, Sets
+from advisor.shelf import places
+from advisor.specification import Demand
+
+WITHHELD = "withheld: see the referral"
+
+
+@dataclass(frozen=True, slots=True)
+class Reason:
+    """A demand that made a conclusion. `decides`: without it alone another class would be recommended.
+
+    `against` are the classes that it bars or sets back.
+    """
+
+    demand: str
+    level: int
+    rule: RuleReason
+    decides: bool
+    against: tuple[str, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Why:
+    """The tree behind one row: the conclusion on top."""
+
+    row: str
+    title: str
+    conclusion: str
+    reasons: tuple[Reason, ...]
+    premises: tuple[Premise, ...]
+    short: tuple[str, ...]
+    waits: tuple[str, ...]
+    notes: tuple[str, ...]
+
+
+def why(advice: Advice, row_id: str) -> Why:
+    """Why this row of the docket, or this quantity, is what it is.
+
+    Raises:
+        NotHere: where there is no such row.
+    """
+    rows = {row.id: row for row in advice.knowledge.docket}
+    if row_id not in rows:
+        raise NotHere(f"'{row_id}' is no row; the rows are {', '.join(rows)}.")
+    if advice.withheld:
+        return Why(row_id, rows[row_id].title, WITHHELD, (), (), (), (), ())
+    line = advice.line(row_id)
+    field = field_of(advice, line)
+    reasons, short = _weighed(advice, field) if field is not None else (_plain(advice, line), ())
+    return Why(
+        row_id, line.title, say_line(advice, line), tuple(reasons), tuple(premise(advice, name) for name in line.facts),
+        tuple(short), tuple(title_of(each, advice.knowledge) for each in line.waits), _notes(advice, line))  # fmt: skip
+
+
+def say_line(advice: Advice, line: Line) -> str:
+    """What a row shows, in words."""
+    knowledge = advice.knowledge
+    row = next(each for each in knowledge.docket if each.id == line.row)
+    if line.skipped:
+        return "no figure for this point" if row.section != "docket" else "does not apply"
+    if row.recommends:
+        domain = knowledge.properties[row.recommends].domain
+        said = " or ".join(dict.fromkeys(say_value(domain, each) for each in line.values))
+        return said or ("waits for answers" if line.waits else "nothing is left")
+    if line.facts:
+        return _say_facts(advice, line.facts)
+    musts = [demand for demand in line.demands if demand.must] or list(line.demands)
+    said = "; ".join(dict.fromkeys(_short_demand(demand, advice) for demand in musts))
+    return said or ("waits for answers" if line.waits else "nothing asked")
+
+
+def _short_demand(demand: Demand, advice: Advice) -> str:
+    return say_test(demand.test, advice.knowledge) + ("" if demand.must else " (wished)")
+
+
+def _say_facts(advice: Advice, names_: tuple[str, ...]) -> str:
+    said = [say_fact(advice.facts.get(name), advice.knowledge) for name in names_]
+    if len(set(said)) == 1:
+        return said[0]
+    low_high = len(said) == 2 and names_[0].endswith("_lo")
+    if low_high:
+        return f"{said[0].split(' ')[0]} to {said[1]}"
+    return ", ".join(f"{title_of(name, advice.knowledge)} {each}" for name, each in zip(names_, said, strict=True))
+
+
+def _weighed(advice: Advice, field: Field) -> tuple[list[Reason], list[str]]:
+    """The demands that tell candidates apart, decisive ones first; and those that every candidate misses alike."""
+    deciding, known = field.decisive(), instances_of(advice)
+    best = field.best()
+    reasons, short = [], []
+    for number, demand in enumerate(field.judgement.demands):
+        missed = {place: misses[number] for place, misses in field.misses.items() if number in misses}
+        about = demand.property == field.row.recommends
+        alike = len(missed) == len(field.misses) and len(set(missed.values())) == 1 and not demand.must
+        if missed and any(place in missed for place in best) and not demand.must:
+            short.append(_short(advice, field, number, best))
+        if (missed and not alike) or about:
+            reasons.append(Reason(
+                say_demand(demand, advice.knowledge), demand.level, rule_reason(advice, demand.rule, known),
+                number in deciding, _against(field, number)))  # fmt: skip
+    reasons.sort(key=lambda each: (not each.decides, each.level, -len(each.against)))
+    return reasons, list(dict.fromkeys(short))
+
+
+def _short(advice: Advice, field: Field, number: int, best: list[int]) -> str:
+    demand = field.judgement.demands[number]
+    steps = sorted({field.misses[place].get(number, 0) for place in best})
+    count = str(steps[0]) if len(steps) == 1 else f"{steps[0]} to {steps[-1]}"
+    return f"{count} step{'s' * (count != '1')} short of: {say_demand(demand, advice.knowledge)} ({demand.rule})"
+
+
+def _against(field: Field, number: int) -> tuple[str, ...]:
+    """The values of which every candidate misses the demand."""
+    by_value: dict[str, bool] = {}
+    for place in places(field.pool):
+        label = field.label(place)
+        by_value[label] = by_value.get(label, True) and number in field.misses[place]
+    return tuple(label for label, all_miss in by_value.items() if all_miss)
+
+
+def _plain(advice: Advice, line: Line) -> list[Reason]:
+    """The demands of a row that recommends nothing, and the rules that set what it shows."""
+    known = instances_of(advice)
+    found = [
+        Reason(say_demand(demand, advice.knowledge), demand.level, rule_reason(advice, demand.rule, known), demand.must, ())
+        for demand in line.demands]  # fmt: skip
+    row = next(each for each in advice.knowledge.docket if each.id == line.row)
+    for name in (row.recommends, *row.facts):
+        found += _setters(advice, name, line, known)
+    return sorted(found, key=lambda each: (not each.decides, each.level))
+
+
+def _setters(advice: Advice, name: str, line: Line, known: Known) -> Iterator[Reason]:
+    """The fired rules that set a fact or a property of some lubricants to what the row shows."""
+    shown = {advice.knowledge.domain(name).code(value) for value in line.values} if name else set()
+    for _, instance, outcome in known.values():
+        fired = outcome is True and instance.binds
+        for each in instance.then if fired else ():
+            if isinstance(each, Sets) and each.name == name and (not shown or each.value in shown):
+                reason = rule_reason(advice, instance.id, known)
+                yield Reason(_say_set(advice, each), 0, reason, decides=True, against=())
+
+
+def _say_set(advice: Advice, sets: Sets) -> str:
+    knowledge, value = advice.knowledge, sets.value
+    domain = knowledge.domain(sets.name)
+    said = title_of(value.name, knowledge) if isinstance(value, FactRef) else say_value(domain, value)
+    for_ = "" if sets.for_ == Every() else f", where {say_condition(sets.for_, knowledge)}"
+    return f"{title_of(sets.name, knowledge)}: {said}{for_}"
+
+
+def _notes(advice: Advice, line: Line) -> tuple[str, ...]:
+    """Why a row is empty, where it is."""
+    row = next(each for each in advice.knowledge.docket if each.id == line.row)
+    if not line.skipped:
+        return ()
+    if row.section != "docket":
+        return tuple(_guard(advice, row.shown_if))
+    return (f"only for {advice.knowledge.properties[row.recommends].of}",)
+
+
+def _guard(advice: Advice, shown_if: Condition) -> Iterator[str]:
+    """What a figure's guard saw: the rules that would have opened it, and why they did not."""
+    wanted = set(names(shown_if))
+    for _, instance, outcome in instances_of(advice).values():
+        if outcome is not True and any(isinstance(each, Sets) and each.name in wanted for each in instance.then):
+            verdict = why_not_rule(advice, instance.id)
+            yield f"{instance.rule.title} ({instance.id}) did not hold: {'; '.join(verdict.saw or verdict.waits)}"
+    if holds(shown_if, advice.record) is False:
+        yield f"shown where {say_condition(shown_if, advice.knowledge)}"

@@ -1,0 +1,271 @@
+"""Keeping interviews: one file per point, saved after every answer, open for writing in one place at a time."""
+
+import contextlib
+import os
+import re
+import secrets
+import socket
+import time
+import unicodedata
+from collections.abc import Sequence
+from dataclasses import dataclass
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from advisor import places
+from advisor.advice import Advice, Advisor
+from advisor.answers import Unsuitable, answer, read_case
+from advisor.case import Answer, Case
+from advisor.documents import Mapping, Node, Problems, Scalar, read_document, to_yaml, write_text_safely
+from advisor.documents import Sequence as Listed
+from advisor.documents.writing import Plain
+from advisor.interview.wording import rows_shown
+from advisor.knowledge import Knowledge
+
+if TYPE_CHECKING:
+    from advisor.interview.session import Session
+
+
+class Damaged(Exception):  # noqa: N818 - named for the state of the file
+    """A file that is no interview; the message says what became of it."""
+
+
+@dataclass(frozen=True, slots=True)
+class Kept:
+    """A kept interview, as the list of them shows it."""
+
+    path: Path
+    title: str
+    answered: int
+    when: float
+
+
+class Keeper:
+    """The file of one interview, and the lock beside it that lets only one process write."""
+
+    def __init__(self, path: Path) -> None:
+        self.path = path
+        self.holds = False
+        self.holder = ""
+
+    @property
+    def lock(self) -> Path:
+        """The file whose existence says that someone writes."""
+        return self.path.with_name(self.path.name + ".lock")
+
+    def take(self) -> bool:
+        """Take the lock, also from a process that is no more; False if another holds it."""
+        with contextlib.suppress(OSError):
+            self.path.parent.mkdir(parents=True, exist_ok=True)
+        try:
+            self.holds = self._create() or (self._abandoned() and self._create())
+        except OSError:
+            self.holds = True  # no lock can be made here; saving will say what is wrong with the folder
+        return self.holds
+
+    def _create(self) -> bool:
+        try:
+            with self.lock.open("x", encoding="utf-8") as file:
+                file.write(f"{os.getpid()} {socket.gethostname()}")
+        except FileExistsError:
+            return False
+        return True
+
+    def _abandoned(self) -> bool:
+        """Whether the lock was left by a process that is no more; it is then moved out of the way."""
+        with contextlib.suppress(FileNotFoundError):
+            if not self._stale(self.lock):
+                return False
+            aside = self.lock.with_name(f"{self.lock.name}.{secrets.token_hex(4)}")
+            self.lock.rename(aside)
+            # Another process may have taken it over in between: then it gets it back.
+            if not self._stale(aside):
+                with contextlib.suppress(FileExistsError):
+                    os.link(aside, self.lock)
+            aside.unlink(missing_ok=True)
+        return True
+
+    def _stale(self, lock: Path) -> bool:
+        pid, _, host = lock.read_text(encoding="utf-8", errors="replace").partition(" ")
+        self.holder = pid
+        if not pid.isdigit() or host != socket.gethostname():
+            return False
+        return int(pid) != os.getpid() and not _runs(int(pid))
+
+    def write(self, data: Plain) -> None:
+        """Replace the file in one step.
+
+        Raises:
+            Unwritable: with the reason and the mend.
+        """
+        with contextlib.suppress(OSError):
+            self.path.parent.mkdir(parents=True, exist_ok=True)
+        write_text_safely(self.path, to_yaml(data))
+
+    def release(self) -> None:
+        """Let others write."""
+        if self.holds:
+            with contextlib.suppress(OSError):
+                if self.lock.read_text(encoding="utf-8").startswith(f"{os.getpid()} "):
+                    self.lock.unlink()
+        self.holds = False
+
+
+def _runs(pid: int) -> bool:
+    try:
+        os.kill(pid, 0)
+    except ProcessLookupError:
+        return False
+    except OSError:
+        return True
+    return True
+
+
+# ---- what stands in the file -----------------------------------------------------------------------------------
+
+
+def as_plain(case: Case, knowledge: Knowledge) -> dict[str, Plain]:
+    """The answers as typed; ticks as lists."""
+    found: dict[str, Plain] = {}
+    for name, each in case.answers.items():
+        ticks = knowledge.facts[name].domain.kind == "several" and isinstance(each.value, tuple)
+        found[name] = list(each.value) if ticks and isinstance(each.value, tuple) else each.typed
+    return found
+
+
+def document(case: Case, advice: Advice, history: Sequence[str]) -> dict[str, Plain]:
+    """The kept interview: readable as a saved case, with its changes and what the docket said."""
+    docket: dict[str, Plain] = {} if advice.withheld else {each.id: each.full for each in rows_shown(advice)}
+    return {
+        "format": 1, "title": _writable(case.title), "point_kind": case.point_kind, "answers": as_plain(case, advice.knowledge),
+        "knowledge": {"fingerprint": advice.knowledge.fingerprint, "docket": docket}, "history": [_writable(each) for each in history]}
+
+
+def _writable(text: str) -> str:
+    return text.encode("utf-8", "replace").decode("utf-8")
+
+
+# ---- starting, resuming ----------------------------------------------------------------------------------------
+
+
+def new_interview(advisor: Advisor, title: str, path: Path | None = None) -> "Session":
+    """A fresh interview, kept in the usual folder unless a file is named."""
+    from advisor.interview.session import Session
+
+    title = " ".join(title.split()) or "Point without a name"
+    keeper = Keeper(path or _new_path(title))
+    keeper.take()
+    session = Session(advisor, keeper, Case(advisor.knowledge.point_kind.id, title), notices=_held(keeper))
+    session.save()
+    return session
+
+
+def _new_path(title: str) -> Path:
+    ascii_only = unicodedata.normalize("NFKD", title).encode("ascii", "ignore").decode()
+    slug = re.sub(r"[^a-z0-9]+", "-", ascii_only.casefold()).strip("-")[:40].strip("-") or "point"
+    return places.kept_interviews() / f"{slug}-{secrets.token_hex(3)}.yaml"
+
+
+def kept_interviews() -> list[Kept]:
+    """The kept interviews, the last one touched first."""
+    found = []
+    for path in places.kept_interviews().glob("*.yaml"):
+        tree = read_document(path, Problems())
+        title, answered = path.stem, 0
+        if isinstance(tree, Mapping):
+            title = str(tree.get("title", path.stem))
+            answers = tree.get("answers")
+            answered = len(list(answers)) if isinstance(answers, Mapping) else 0
+        with contextlib.suppress(OSError):
+            found.append(Kept(path, title, answered, path.stat().st_mtime))
+    return sorted(found, key=lambda each: -each.when)
+
+
+def open_interview(advisor: Advisor, path: Path) -> "Session":
+    """Go on with the interview in a file.
+
+    Raises:
+        Damaged: it cannot be read. One of the usual folder has then been moved aside.
+    """
+    from advisor.interview.session import Session
+
+    problems = Problems()
+    tree = read_document(path, problems)
+    if not isinstance(tree, Mapping) or problems.errors or str(tree.get("format", "")) != "1":
+        raise Damaged(_moved_aside(path, problems))
+    case, notices = _case(path, tree, advisor.knowledge)
+    if "expect" in tree or "like" in tree:
+        return copy_of(advisor, case, (f"'{path.name}' is a scenario and stays as it is; this interview is kept beside the others.", *notices))
+    keeper = Keeper(path)
+    keeper.take()
+    session = Session(advisor, keeper, case, history=_texts(tree.get("history")), notices=(*_held(keeper), *notices))
+    session.notices += _changed_since(tree.get("knowledge"), session.advice)
+    return session
+
+
+def copy_of(advisor: Advisor, case: Case, notices: Sequence[str] = ()) -> "Session":
+    """An interview that begins with the answers of another case."""
+    from advisor.interview.session import Session
+
+    keeper = Keeper(_new_path(case.title))
+    keeper.take()
+    return Session(advisor, keeper, case, notices=notices)
+
+
+def _case(path: Path, tree: Mapping, knowledge: Knowledge) -> tuple[Case, tuple[str, ...]]:
+    """The case of a file; answers that the knowledge does not know or take any more are left out, and told."""
+    saved = read_case(path, knowledge, Problems())
+    if saved is not None:
+        return saved.case, ()
+    answers: dict[str, Answer] = {}
+    notices = []
+    told = tree.get("answers")
+    for name, node in told.items() if isinstance(told, Mapping) else ():
+        declaration = knowledge.facts.get(name)
+        try:
+            if declaration is None or declaration.question is None:
+                raise Unsuitable("This is no question here.")
+            answers[name] = answer(declaration, ", ".join(_texts(node)) if isinstance(node, Listed) else str(node), strict=False)
+        except Unsuitable as fault:
+            notices.append(f"The answer to {name} was left out. {fault}")
+    return Case(knowledge.point_kind.id, str(tree.get("title", path.stem)), answers), tuple(notices)
+
+
+def _texts(node: Node | None) -> list[str]:
+    return [str(each) for each in node if isinstance(each, Scalar)] if isinstance(node, Listed) else []
+
+
+def _held(keeper: Keeper) -> tuple[str, ...]:
+    if keeper.holds:
+        return ()
+    return (
+        f"This interview is open elsewhere (process {keeper.holder or 'unknown'}): look and try, nothing is saved here. "
+        f"If no other gudgeon runs, delete '{keeper.lock}'.",)
+
+
+def _moved_aside(path: Path, problems: Problems) -> str:
+    first = next(iter(problems), None)
+    why = f"{first}" if first else f"'{path}' is no kept interview."
+    if not path.is_file() or path.resolve().parent != places.kept_interviews().resolve():
+        return f"{why} Nothing was changed."
+    aside = path.with_name(f"{path.name}.broken-{time.strftime('%Y-%m-%d')}")
+    count = 1
+    while aside.exists():
+        count += 1
+        aside = path.with_name(f"{path.name}.broken-{time.strftime('%Y-%m-%d')}-{count}")
+    try:
+        path.rename(aside)
+    except OSError:
+        return f"{why} Nothing was changed."
+    return f"{why} The file was moved to '{aside}'; nothing was deleted."
+
+
+def _changed_since(node: Node | None, advice: Advice) -> tuple[str, ...]:
+    """A sentence on the rows that another state of the knowledge reads differently."""
+    if not isinstance(node, Mapping) or str(node.get("fingerprint", "")) == advice.knowledge.fingerprint:
+        return ()
+    docket = node.get("docket")
+    was = {row: str(text) for row, text in docket.items()} if isinstance(docket, Mapping) else {}
+    changed = [each.title for each in rows_shown(advice) if each.id in was and was[each.id] != each.full]
+    what = f"these rows of the docket read differently: {', '.join(changed)}" if changed else "the docket reads the same"
+    return (f"The knowledge has changed since; {what}.",)

@@ -1,0 +1,194 @@
+"""Compare the docket, its demands, the codes and the quantities with what a scenario expects of them."""
+
+from advisor.advice import Advice, Line
+from advisor.conditions import Value, holds
+from advisor.designations import Designer, din_serves, iso_serves
+from advisor.quantities import show
+from advisor.replay import reasons
+from advisor.replay.differing import Difference
+from advisor.replay.expectations import (
+    INTERVAL_ROW,
+    AsksAtLeast,
+    AsksFor,
+    Bars,
+    CodeServes,
+    FillIs,
+    IntervalIs,
+    KeepsFrom,
+    Recommends,
+    fill_row,
+)
+from advisor.replay.falling import asks, falling, must_ask, nothing, say_at_least
+
+_WITHHELD = "withheld"
+
+
+def recommends(expected: Recommends, advice: Advice) -> Difference | None:
+    """Whether the docket recommends something expected, and nothing beyond what is accepted."""
+    values = _recommended(advice, expected.property)
+    if set(values) & set(expected.expected) and set(values) <= {*expected.expected, *expected.accept}:
+        return None
+    wanted = _listed(expected.expected) + (f" (accepted: {_listed(expected.accept)})" if expected.accept else "")
+    missing = [each for each in expected.expected if each not in values]
+    surplus = [each for each in values if each not in {*expected.expected, *expected.accept}]
+    because = tuple(word for each in (*missing, *surplus) for word in _of_value(advice, expected.property, each))
+    return Difference("recommended", expected.property, wanted, _got(advice, expected.property),
+                      tuple(dict.fromkeys((*because, *reasons.of_property(advice, expected.property)))), expected.mark)
+
+
+def keeps_from(expected: KeepsFrom, advice: Advice) -> Difference | None:
+    """Whether none of the values is recommended."""
+    found = [each for each in _recommended(advice, expected.property) if each in expected.values]
+    if not found:
+        return None
+    because = tuple(word for each in found for word in _of_value(advice, expected.property, each))
+    return Difference("must_not", expected.property, f"none of {_listed(expected.values)}", _got(advice, expected.property),
+                      (*because, *reasons.of_property(advice, expected.property)), expected.mark)
+
+
+def _line(advice: Advice, name: str) -> Line | None:
+    """The docket row that recommends the property."""
+    rows = [row.id for row in advice.knowledge.docket if row.recommends == name]
+    return next((line for line in advice.docket if line.row in rows), None)
+
+
+def _recommended(advice: Advice, name: str) -> tuple[Value, ...]:
+    line = _line(advice, name)
+    return () if line is None or line.skipped else line.values
+
+
+def _got(advice: Advice, name: str) -> str:
+    line = _line(advice, name)
+    if line is None:
+        return _WITHHELD if advice.withheld else "no row of the docket"
+    return "no recommendation, since the row is left out" if line.skipped else _listed(line.values)
+
+
+def _listed(values: tuple[Value, ...]) -> str:
+    return ", ".join(map(_word, values)) or "nothing"
+
+
+def _word(value: Value) -> str:
+    return f"{value:g}" if isinstance(value, float) else str(value)
+
+
+def _of_value(advice: Advice, name: str, value: Value) -> tuple[str, ...]:
+    """What became of one value: barred by whom, or so many steps short of the shoulds."""
+    line = _line(advice, name)
+    if line is None:
+        return ()
+    if line.barred and value in line.barred:
+        return (f"{_word(value)} is barred by {', '.join(line.barred[value])}.",)
+    steps = [each.steps for each in line.candidates if each.value == value]
+    if not steps:
+        return (f"{_word(value)} was no candidate.",)
+    return (f"{_word(value)} is {', '.join(map(str, min(steps)))} steps short, level by level.",)
+
+
+def bars(expected: Bars, advice: Advice) -> Difference | None:
+    """Whether a must, or the must of this rule, rules the value out."""
+    rules = _barring(advice, expected.property, expected.value)
+    if rules and (not expected.rule or any(expected.rule in {each, each.partition("/")[0]} for each in rules)):
+        return None
+    got = f"barred by {', '.join(rules)}" if rules else _WITHHELD if advice.withheld else "not barred"
+    because = reasons.of_rule(advice, expected.rule, str(expected.value)) if expected.rule else reasons.of_property(advice, expected.property)
+    what = f"{expected.property} {_word(expected.value)}"
+    return Difference("barred", what, f"barred by {expected.rule or 'any rule'}", got, because, expected.mark)
+
+
+def _barring(advice: Advice, name: str, value: Value) -> list[str]:
+    """The rules that bar the value: as the docket tells it, and by musts on the property itself."""
+    line = _line(advice, name)
+    rules = list((line.barred or {}).get(value, ())) if line is not None else []
+    coded = advice.knowledge.properties[name].domain.code(value)
+    for demands in falling(advice, name)[:1]:
+        rules += [demand.rule for demand in demands if demand.must and holds(demand.test, {name: coded}) is False]
+    return list(dict.fromkeys(rules))
+
+
+def asks_for(expected: AsksFor, advice: Advice) -> Difference | None:
+    """Whether a must or a should asks for the value, turns against it, or leaves it free."""
+    got = _strength(advice, expected.property, expected.value)
+    if got == expected.strength:
+        return None
+    about = f" {_word(expected.value)}" if expected.value is not None else ""
+    return Difference("demands", expected.property, f"{expected.strength}{about}", f"{got}{about}",
+                      reasons.of_property(advice, expected.property), expected.mark)
+
+
+def _strength(advice: Advice, name: str, value: Value | None) -> str:
+    """How strongly the demands on all that is recommended ask for a value; without one: for more than nothing of it."""
+    if advice.withheld:
+        return _WITHHELD
+    domain = advice.knowledge.properties[name].domain
+    combinations = falling(advice, name)
+    wanted = [value] if value is not None else [each for each in domain.choices if each != nothing(domain)]
+    if any(all(must_ask(demands, each, domain) for demands in combinations) for each in wanted):
+        return "must"
+    if any(all(any(asks(one, each, domain) for one in demands if not one.must) for demands in combinations) for each in wanted):
+        return "should"
+    if domain.choices and all(any(asks(one, nothing(domain), domain) for one in demands) for demands in combinations):
+        return "unwanted"
+    return "allowed"
+
+
+def asks_at_least(expected: AsksAtLeast, advice: Advice) -> Difference | None:
+    """Whether the musts that fall on what is recommended say together at least this."""
+    name = expected.property
+    domain = advice.knowledge.properties[name].domain
+    if not advice.withheld and all(say_at_least(demands, expected.test, name, domain) for demands in falling(advice, name)):
+        return None
+    musts = [demand for demand in advice.specification.demands if demand.property == name and demand.must]
+    got = "; ".join(dict.fromkeys(reasons.condition_words(advice.knowledge, each.test) for each in musts)) or "no must"
+    return Difference("demands", name, expected.written, _WITHHELD if advice.withheld else got, reasons.of_property(advice, name), expected.mark)
+
+
+def code_serves(expected: CodeServes, advice: Advice) -> Difference | None:
+    """Whether a grease of the expected code meets a code that is asked for."""
+    codes, none = (advice.codes.din, advice.codes.din_none) if expected.standard == "din" else (advice.codes.iso, advice.codes.iso_none)
+    if expected.code is None:
+        same = not codes
+    else:
+        same = any(_serves(Designer(advice.knowledge), expected, code) for code in codes)
+    if same:
+        return None
+    because = (f"No code: {none}.",) if none else tuple(f"{code} is the lowest code that suffices." for code in codes)
+    return Difference("codes", expected.standard, expected.code or "no code", ", ".join(codes) or "no code", because, expected.mark)
+
+
+def _serves(designer: Designer, expected: CodeServes, asked: str) -> bool:
+    if expected.standard == "din":
+        return din_serves(designer.read_din(str(expected.code)), designer.read_din(asked))
+    return iso_serves(designer.read_iso(str(expected.code)), designer.read_iso(asked))
+
+
+def interval(expected: IntervalIs, advice: Advice) -> Difference | None:
+    """Whether the interval that is shown lies between the ends, or none is shown."""
+    line = next((each for each in advice.quantities if each.row == INTERVAL_ROW and not each.skipped), None)
+    fact = advice.facts.get(line.facts[0]) if line is not None else None
+    value = fact.value if fact is not None else None
+    if expected.ends is None:
+        same = not isinstance(value, float)
+    else:
+        same = isinstance(value, float) and expected.ends[0] <= value <= expected.ends[1]
+    if same:
+        return None
+    row = next(each for each in advice.knowledge.docket if each.id == INTERVAL_ROW)
+    unit = advice.knowledge.domain(row.facts[0]).unit
+    wanted = " to ".join(show(each, unit) for each in expected.ends) if expected.ends else "no figure"
+    got = show(value, unit) if isinstance(value, float) else "no figure"
+    shown_by = {term for term in reasons.names_of(row.shown_if)}
+    because = (*reasons.of_fact(advice, row.facts[0]), *(word for name in sorted(shown_by) for word in reasons.of_fact(advice, name)))
+    return Difference("interval", "", wanted, got, because, expected.mark)
+
+
+def fill(expected: FillIs, advice: Advice) -> Difference | None:
+    """Whether the fill of the part is shown with these ends."""
+    row = next(each for each in advice.knowledge.docket if each.id == fill_row(expected.part))
+    line = next((each for each in advice.quantities if each.row == row.id and not each.skipped), None)
+    values = [fact.value if (fact := advice.facts.get(name)) else None for name in row.facts] if line is not None else []
+    if values == [expected.low, expected.high]:
+        return None
+    got = " to ".join(reasons.fact_words(advice, advice.facts.get(name)) for name in row.facts) if line is not None else "no fill"
+    because = tuple(word for name in row.facts for word in reasons.of_fact(advice, name))
+    return Difference("fill", expected.part, f"{show(expected.low, '%')} to {show(expected.high, '%')}", got, because, expected.mark)
