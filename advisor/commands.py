@@ -16,9 +16,11 @@ if TYPE_CHECKING:
 def _loaded(knowledge: Path | None, shelf: Path | None, point_kind: str = "rolling_bearing") -> "Knowledge":
     from advisor.documents import Faulty
     from advisor.knowledge import load
+    from advisor.settings import settings
 
+    kept = settings()
     try:
-        return load(knowledge or knowledge_folder(), point_kind, shelf)
+        return load(knowledge or kept.knowledge or knowledge_folder(), point_kind, shelf or kept.shelf)
     except Faulty as fault:
         raise Refusal(f"{fault}\n{_count(len(fault.problems))} in the knowledge; nothing was done.") from None
 

@@ -15,7 +15,7 @@ LEVELS = [
     {"documents", "quantities", "formulas", "conditions", "mishaps", "places"},
     {"case", "specification", "computing"},
     {"knowledge"},
-    {"computations", "inference", "designations", "answers", "listing"},
+    {"computations", "inference", "designations", "answers", "listing", "settings"},
     {"shelf"},
     {"advice"},
     {"explanation", "interview"},

@@ -5,10 +5,10 @@ from dataclasses import dataclass
 from difflib import get_close_matches
 
 from advisor.advice import Advice, Line
-from advisor.conditions import Bound, Coded, Condition, leaves
+from advisor.conditions import Bound, Coded, Condition, Domain, Value, leaves
 from advisor.explanation.ruling import Known, RuleReason, rule_reason
 from advisor.explanation.seeing import instances_of
-from advisor.explanation.weighing import Field, field_of
+from advisor.explanation.weighing import Field, field_of, oil_title
 from advisor.explanation.words import (
     LEVELS,
     SHEET_SILENT,
@@ -20,7 +20,8 @@ from advisor.explanation.words import (
     say_value,
 )
 from advisor.explanation.workings import NotHere
-from advisor.shelf import Judgement, Shortfall, Verdict, steps_short
+from advisor.knowledge import DocketRow
+from advisor.shelf import Judgement, Shortfall, Verdict
 from advisor.specification import Demand
 
 VERDICTS = {
@@ -120,21 +121,34 @@ def apart(test: Condition, seen: Coded | None) -> float | None:
 
 def find_class(advice: Advice, subject: str) -> tuple[Line, Coded]:
     """The row and the coded value that a subject means."""
-    wanted_row, _, value = subject.replace(":", "=", 1).rpartition("=")
+    wanted = subject.replace(":", "=", 1).casefold()
     known: list[str] = []
     for line in advice.docket:
         row = next(each for each in advice.knowledge.docket if each.id == line.row)
-        if not row.recommends or wanted_row.strip() not in {"", row.id, row.recommends}:
+        if not row.recommends:
             continue
         domain = advice.knowledge.properties[row.recommends].domain
         for each in domain.places or tuple(domain.choices):
-            said = say_value(domain, each)
-            if value.strip().casefold() in {str(each).casefold(), said.casefold(), f"{each:g}" if isinstance(each, float) else ""}:
+            if wanted in _names_of(row, domain, each):
                 return line, domain.code(each)
-            known.append(f"{row.recommends}={each:g}" if isinstance(each, float) else f"{row.recommends}={each}")
+            known.append(_subject(row, each))
     codes = advice.judgement.catalogue.place if advice.judgement is not None else ()
     near = get_close_matches(subject, [*codes, *known], n=3, cutoff=0.4)
     raise NotHere(f"'{subject}' is no product of this shelf and no class of the docket." + (f" Nearest: {', '.join(near)}." if near else ""))
+
+
+def _subject(row: DocketRow, value: Value) -> str:
+    return f"{row.recommends}={value:g}" if isinstance(value, float) else f"{row.recommends}={value}"
+
+
+def _names_of(row: DocketRow, domain: Domain, value: Value) -> set[str]:
+    """Everything that may be typed for a class: `sodium`, `thickener=sodium`, `NLGI 2`, `VG 100`."""
+    plain = f"{value:g}" if isinstance(value, float) else str(value)
+    words = {plain, say_value(domain, value)}
+    heads = {row.id, row.recommends, row.title}
+    found = words | {f"{head}={plain}" for head in heads} | {f"{head} {plain}" for head in heads}
+    found |= {f"{head.split()[-1] if head.startswith('ISO') else head.split()[0]} {plain}" for head in heads}
+    return {each.casefold() for each in found}
 
 
 def of_class(advice: Advice, line: Line, value: Coded) -> WhyNot:
@@ -142,7 +156,7 @@ def of_class(advice: Advice, line: Line, value: Coded) -> WhyNot:
     row = next(each for each in advice.knowledge.docket if each.id == line.row)
     domain = advice.knowledge.properties[row.recommends].domain
     said = say_value(domain, value)
-    subject = f"{row.recommends}={value:g}" if isinstance(value, float) and domain.kind == "number" else f"{row.recommends}={domain.decode(value)}"
+    subject = _subject(row, domain.decode(value))
     field = field_of(advice, line)
     chosen = {domain.code(each) for each in line.values}
     if value in chosen:
@@ -151,20 +165,23 @@ def of_class(advice: Advice, line: Line, value: Coded) -> WhyNot:
     if field is None or not own:
         reason = "does not apply" if line.skipped else "no usual oil has it" if field is not None else "not the conclusion of the rules: see why"
         return WhyNot(subject, said, "class", reason, ())
-    closest = min(own, key=lambda place: (field.bars(place), _musts(field, place), field.steps(place), place))
+    closest = min(own, key=lambda place: _distance(field, place))
     return WhyNot(subject, said, "class", _class_verdict(field, own, closest), tuple(_against(advice, field, own, closest)))
 
 
-def _musts(field: Field, place: int) -> int:
-    return sum(field.judgement.demands[each].must for each in field.misses[place])
+def _distance(field: Field, place: int) -> tuple[object, ...]:
+    """How far a candidate is from being recommended: ordinary ones first, then by musts missed, then by steps."""
+    musts = sum(field.judgement.demands[each].must for each in field.misses[place])
+    return (not field.ordinary >> place & 1, musts, field.steps(place), place)
 
 
 def _class_verdict(field: Field, own: list[int], closest: int) -> str:
-    item = field.judgement.catalogue.items[closest]
-    among = f"; the closest of {len(own)} usual oils is {item.title}" if len(own) > 1 else ""
+    among = f"; of {len(own)} usual oils the closest is {oil_title(field.judgement, closest)}" if len(own) > 1 else ""
+    passing = [place for place in field.misses if not field.bars(place)]
     if field.bars(closest):
-        return f"barred{among}"
-    if closest not in field.narrowed([place for place in field.misses if not field.bars(place)]):
+        special = sum(place in passing for place in own)
+        return f"barred{among}" + (f"; {special} out of the ordinary would pass" if special else "")
+    if closest not in field.narrowed(passing):
         return f"allowed, but out of the ordinary, and ordinary ones pass{among}"
     return f"allowed, but {say_steps(field.steps(closest))}{among}"
 
@@ -185,7 +202,3 @@ def _value(judgement: Judgement, demand: Demand, place: int) -> Coded | None:
     column = judgement.columns.get(demand.property)
     return column.values[place] if column is not None else None
 
-
-def counted(demand: Demand, seen: Coded | None, judgement: Judgement) -> int:
-    """Whole steps short; 1 where the sheet is silent."""
-    return 1 if seen is None else steps_short(demand.test, seen, judgement.domains[demand.property])

@@ -104,13 +104,14 @@ def _weighed(advice: Advice, field: Field) -> tuple[list[Reason], list[str]]:
     for number, demand in enumerate(field.judgement.demands):
         missed = {place: misses[number] for place, misses in field.misses.items() if number in misses}
         about = demand.property == field.row.recommends
-        alike = len(missed) == len(field.misses) and len(set(missed.values())) == 1 and not demand.must
-        if missed and any(place in missed for place in best) and not demand.must:
+        alike = len(missed) == len(field.misses) and len(set(missed.values())) == 1 and not about
+        if not demand.must and not alike and any(place in missed for place in best):
             short.append(_short(advice, field, number, best))
-        if (missed and not alike) or about:
-            reasons.append(Reason(
-                say_demand(demand, advice.knowledge), demand.level, rule_reason(advice, demand.rule, known),
-                number in deciding, _against(field, number)))  # fmt: skip
+        against = _against(field, number)
+        if about or (not alike and (number in deciding or against)):
+            reason = rule_reason(advice, demand.rule, known)
+            decides = number in deciding
+            reasons.append(Reason(say_demand(demand, advice.knowledge), demand.level, reason, decides, against))
     reasons.sort(key=lambda each: (not each.decides, each.level, -len(each.against)))
     return reasons, list(dict.fromkeys(short))
 

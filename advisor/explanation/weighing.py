@@ -113,3 +113,10 @@ def _steps(judgement: Judgement, demand: Demand, place: int) -> int:
     column = judgement.columns.get(demand.property)
     seen = column.values[place] if column is not None else None
     return 1 if seen is None else steps_short(demand.test, seen, judgement.domains[demand.property])
+
+
+def oil_title(judgement: Judgement, place: int) -> str:
+    """A usual oil as it is said: family and grade."""
+    family = judgement.catalogue.knowledge.usual_oils.family
+    parts = [(name, judgement.columns[name].values[place]) for name in (family, "vg") if name in judgement.columns]
+    return " ".join(say_value(judgement.domains[name], value) for name, value in parts)

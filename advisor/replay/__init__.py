@@ -5,10 +5,35 @@ from advisor.replay.differing import Difference
 from advisor.replay.expectations import Expectation
 from advisor.replay.reading import read_expectations
 from advisor.replay.reporting import as_data, as_junit, as_text
-from advisor.replay.running import Coverage, Outcome, Played, Scenario, coverage, find, kinds_of, play, read_scenario, replay
+from advisor.replay.running import (
+    Coverage,
+    Outcome,
+    Played,
+    Scenario,
+    coverage,
+    find,
+    kinds_of,
+    play,
+    read_scenario,
+    replay,
+)
 
 __all__ = [
-    "Coverage", "Difference", "Expectation", "Outcome", "Played", "Scenario",
-    "as_data", "as_junit", "as_text", "coverage", "differences", "find", "kinds_of", "play",
-    "read_expectations", "read_scenario", "replay",
+    "Coverage",
+    "Difference",
+    "Expectation",
+    "Outcome",
+    "Played",
+    "Scenario",
+    "as_data",
+    "as_junit",
+    "as_text",
+    "coverage",
+    "differences",
+    "find",
+    "kinds_of",
+    "play",
+    "read_expectations",
+    "read_scenario",
+    "replay",
 ]

@@ -4,9 +4,11 @@ import math
 from collections.abc import Iterable
 from functools import singledispatch
 
-from advisor.advice import Advice, State
+from advisor.advice import Advice
 from advisor.case import Origin
+from advisor.explanation.seeing import rules_seen
 from advisor.knowledge import Instance, Refers, Warns
+from advisor.quantities import show
 from advisor.replay import docket_compared, reasons
 from advisor.replay.differing import Difference
 from advisor.replay.expectations import (
@@ -31,7 +33,6 @@ from advisor.replay.expectations import (
     StateIs,
     WithheldIs,
 )
-from advisor.quantities import show
 from advisor.shelf import Verdict
 from advisor.specification import Conflict
 
@@ -63,8 +64,11 @@ def _state(expected: StateIs, advice: Advice) -> Difference | None:
         return None
     because = [f"{each.rule} refers to {each.to}." for each in advice.referrals]
     because += [_conflict_words(each) for each in advice.conflicts]
-    because += [f"'{each.fact}' is not answered; {', '.join(each.waiting[:reasons.MOST])} wait for it."
-                for each in advice.open_questions if each.decides == "lubricant"]
+    because += [
+        f"'{each.fact}' is not answered; {', '.join(each.waiting[: reasons.MOST])} wait for it."
+        for each in advice.open_questions
+        if each.decides == "lubricant"
+    ]
     because += [f"'{name}' is assumed, which keeps the advice open." for name in advice.keeping_open]
     return Difference("state", "", expected.state, advice.state, tuple(because), expected.mark)
 
@@ -77,12 +81,20 @@ def _conflict_words(conflict: Conflict) -> str:
 def _withheld(expected: WithheldIs, advice: Advice) -> Difference | None:
     if advice.withheld is expected.withheld:
         return None
-    because = [f"{each.rule} refers to {each.to}{' and withholds' if each.withhold else ''}." for each in advice.referrals]
-    because += [] if because else reasons.of_rules(advice, lambda rule: any(isinstance(each, Refers) and each.withhold for each in rule.then))
+    because = [
+        f"{each.rule} refers to {each.to}{' and withholds' if each.withhold else ''}." for each in advice.referrals
+    ]
+    because += (
+        []
+        if because
+        else reasons.of_rules(
+            advice, lambda rule: any(isinstance(each, Refers) and each.withhold for each in rule.then)
+        )
+    )
     return Difference("withheld", "", _yes(expected.withheld), _yes(advice.withheld), tuple(because), expected.mark)
 
 
-def _yes(outcome: bool) -> str:  # noqa: FBT001 - the value itself is shown
+def _yes(outcome: bool) -> str:
     return "yes" if outcome else "no"
 
 
@@ -92,10 +104,14 @@ def _fact_is(expected: FactIs, advice: Advice) -> Difference | None:
     if expected.value is None:
         same = fact is not None and fact.origin is Origin.VOID
     elif isinstance(expected.value, float):
-        same = fact is not None and isinstance(fact.value, float) and math.isclose(fact.value, expected.value, rel_tol=1e-9, abs_tol=1e-12)
+        same = (
+            fact is not None
+            and isinstance(fact.value, float)
+            and math.isclose(fact.value, expected.value, rel_tol=1e-9, abs_tol=1e-12)
+        )
     else:
         same = fact is not None and fact.value == expected.value
-    wanted = "void" if expected.value is None else reasons.shown(advice.knowledge, name, advice.knowledge.domain(name).code(expected.value))
+    wanted = "void" if expected.value is None else reasons.written(advice.knowledge, name, expected.value)
     return None if same else _fact_differs(name, wanted, advice, expected)
 
 
@@ -110,7 +126,7 @@ def _fact_within(expected: FactWithin, advice: Advice) -> Difference | None:
 
 
 def _fact_differs(name: str, wanted: str, advice: Advice, expected: FactIs | FactWithin) -> Difference:
-    got = reasons.fact_words(advice, advice.facts.get(name))
+    got = reasons.written_fact(advice, advice.facts.get(name))
     return Difference("facts", name, wanted, got, reasons.of_fact(advice, name), expected.mark)
 
 
@@ -124,12 +140,12 @@ def _caution(expected: CautionIs, advice: Advice) -> Difference | None:
         return any(isinstance(each, Warns) and each.caution == name for each in rule.then)
 
     because = list(reasons.of_rules(advice, concerns))
-    if expected.given and any(outcome and concerns(rule) for rule, outcome in reasons.outcomes(advice)):
+    if expected.given and any(outcome and concerns(rule) for _, rule, outcome in rules_seen(advice)):
         because.append("Nothing that is recommended or still in meets the 'for' of the caution.")
     return Difference("cautions", name, *_given(expected.given), tuple(because), expected.mark)
 
 
-def _given(given: bool) -> tuple[str, str]:  # noqa: FBT001 - the value itself is shown
+def _given(given: bool) -> tuple[str, str]:
     return ("given", "not given") if given else ("not given", "given")
 
 
@@ -138,7 +154,9 @@ def _referral(expected: ReferralIs, advice: Advice) -> Difference | None:
     made = {each.to for each in advice.referrals}
     if (expected.to in made) is expected.given:
         return None
-    because = reasons.of_rules(advice, lambda rule: any(isinstance(each, Refers) and each.to == expected.to for each in rule.then))
+    because = reasons.of_rules(
+        advice, lambda rule: any(isinstance(each, Refers) and each.to == expected.to for each in rule.then)
+    )
     return Difference("referrals", expected.to, *_given(expected.given), because, expected.mark)
 
 
@@ -152,44 +170,57 @@ def _product(expected: ProductIs, advice: Advice) -> Difference | None:
     if expected.verdict is Verdict.UNPROVEN:
         missed = [each for each in missed if each.seen is None or each.demand.void]
     rules = list(dict.fromkeys(each.demand.rule for each in missed))
-    if ranked.verdict is expected.verdict and (not expected.rule or _names(rules, expected.rule)):
+    if ranked.verdict is expected.verdict and (not expected.rule or reasons.named(rules, expected.rule)):
         return None
-    got = f"{ranked.verdict} by {', '.join(rules)}" if rules and ranked.verdict in {Verdict.FALLS_SHORT, Verdict.UNPROVEN} else f"{ranked.verdict}"
+    got = (
+        f"{ranked.verdict} by {', '.join(rules)}"
+        if rules and ranked.verdict in {Verdict.FALLS_SHORT, Verdict.UNPROVEN}
+        else f"{ranked.verdict}"
+    )
     because = reasons.of_shortfalls(advice, advice.judgement, ranked.place)
-    if expected.rule and not _names(rules, expected.rule):
+    if expected.rule and not reasons.named(rules, expected.rule):
         because = (*reasons.of_rule(advice, expected.rule), *because)
     return Difference("products", expected.item, wanted, got, because, expected.mark)
-
-
-def _names(rules: Iterable[str], rule: str) -> bool:
-    """Whether the rule is named, as written or for one row of its table."""
-    return any(rule in {each, each.partition("/")[0]} for each in rules)
 
 
 @compare.register
 def _open_question(expected: LeavesOpen, advice: Advice) -> Difference | None:
     if expected.fact in {each.fact for each in advice.open_questions}:
         return None
-    return Difference("open_questions", expected.fact, "open", _standing(advice, expected.fact), reasons.of_fact(advice, expected.fact), expected.mark)
+    return Difference(
+        "open_questions",
+        expected.fact,
+        "open",
+        _standing(advice, expected.fact),
+        reasons.of_fact(advice, expected.fact),
+        expected.mark,
+    )
 
 
 @compare.register
 def _assumption(expected: Assumes, advice: Advice) -> Difference | None:
     if expected.fact in advice.assumptions:
         return None
-    return Difference("assumptions", expected.fact, "assumed", _standing(advice, expected.fact), reasons.of_fact(advice, expected.fact), expected.mark)
+    return Difference(
+        "assumptions",
+        expected.fact,
+        "assumed",
+        _standing(advice, expected.fact),
+        reasons.of_fact(advice, expected.fact),
+        expected.mark,
+    )
 
 
 def _standing(advice: Advice, name: str) -> str:
     fact = advice.facts.get(name)
     if fact is None or fact.value is None:
-        return f"{reasons.fact_words(advice, fact)}, and nothing waits for it"
-    return f"{fact.origin.value}: {reasons.fact_words(advice, fact)}"
+        return f"{reasons.written_fact(advice, fact)}, and nothing waits for it"
+    return f"{fact.origin.value}: {reasons.written_fact(advice, fact)}"
 
 
 @compare.register
 def _conflict(expected: ConflictBetween, advice: Advice) -> Difference | None:
-    if any(all(_names(conflict.rules, rule) for rule in expected.rules) for conflict in advice.conflicts):
+    if any(all(reasons.named(conflict.rules, rule) for rule in expected.rules) for conflict in advice.conflicts):
         return None
     got = "; ".join(" with ".join(conflict.rules) for conflict in advice.conflicts) or "no conflict"
     because = tuple(sentence for rule in expected.rules for sentence in reasons.of_rule(advice, rule))
@@ -198,8 +229,10 @@ def _conflict(expected: ConflictBetween, advice: Advice) -> Difference | None:
 
 @compare.register
 def _rule(expected: RuleIs, advice: Advice) -> Difference | None:
-    fired = any(outcome and expected.rule in {rule.id, rule.rule.id} for rule, outcome in reasons.outcomes(advice))
+    fired = any(outcome and reasons.named((rule.id,), expected.rule) for _, rule, outcome in rules_seen(advice))
     if fired is expected.fires:
         return None
     wanted, got = ("fires", "silent") if expected.fires else ("silent", "fires")
-    return Difference("rules", expected.rule, wanted, got, reasons.of_rule(advice, expected.rule), expected.mark, read=False)
+    return Difference(
+        "rules", expected.rule, wanted, got, reasons.of_rule(advice, expected.rule), expected.mark, read=False
+    )

@@ -3,6 +3,7 @@
 from advisor.advice import Advice, Line
 from advisor.conditions import Value, holds
 from advisor.designations import Designer, din_serves, iso_serves
+from advisor.explanation.words import say_test
 from advisor.quantities import show
 from advisor.replay import reasons
 from advisor.replay.differing import Difference
@@ -18,7 +19,8 @@ from advisor.replay.expectations import (
     Recommends,
     fill_row,
 )
-from advisor.replay.falling import asks, falling, must_ask, nothing, say_at_least
+from advisor.replay.falling import Demands, asks, falling, nothing, say_at_least, turns_against
+from advisor.specification import mentions
 
 _WITHHELD = "withheld"
 
@@ -32,8 +34,14 @@ def recommends(expected: Recommends, advice: Advice) -> Difference | None:
     missing = [each for each in expected.expected if each not in values]
     surplus = [each for each in values if each not in {*expected.expected, *expected.accept}]
     because = tuple(word for each in (*missing, *surplus) for word in _of_value(advice, expected.property, each))
-    return Difference("recommended", expected.property, wanted, _got(advice, expected.property),
-                      tuple(dict.fromkeys((*because, *reasons.of_property(advice, expected.property)))), expected.mark)
+    return Difference(
+        "recommended",
+        expected.property,
+        wanted,
+        _got(advice, expected.property),
+        tuple(dict.fromkeys((*because, *reasons.of_property(advice, expected.property)))),
+        expected.mark,
+    )
 
 
 def keeps_from(expected: KeepsFrom, advice: Advice) -> Difference | None:
@@ -42,8 +50,14 @@ def keeps_from(expected: KeepsFrom, advice: Advice) -> Difference | None:
     if not found:
         return None
     because = tuple(word for each in found for word in _of_value(advice, expected.property, each))
-    return Difference("must_not", expected.property, f"none of {_listed(expected.values)}", _got(advice, expected.property),
-                      (*because, *reasons.of_property(advice, expected.property)), expected.mark)
+    return Difference(
+        "must_not",
+        expected.property,
+        f"none of {_listed(expected.values)}",
+        _got(advice, expected.property),
+        (*because, *reasons.of_property(advice, expected.property)),
+        expected.mark,
+    )
 
 
 def _line(advice: Advice, name: str) -> Line | None:
@@ -88,10 +102,14 @@ def _of_value(advice: Advice, name: str, value: Value) -> tuple[str, ...]:
 def bars(expected: Bars, advice: Advice) -> Difference | None:
     """Whether a must, or the must of this rule, rules the value out."""
     rules = _barring(advice, expected.property, expected.value)
-    if rules and (not expected.rule or any(expected.rule in {each, each.partition("/")[0]} for each in rules)):
+    if rules and (not expected.rule or reasons.named(rules, expected.rule)):
         return None
     got = f"barred by {', '.join(rules)}" if rules else _WITHHELD if advice.withheld else "not barred"
-    because = reasons.of_rule(advice, expected.rule, str(expected.value)) if expected.rule else reasons.of_property(advice, expected.property)
+    because = (
+        reasons.of_rule(advice, expected.rule, str(expected.value))
+        if expected.rule
+        else reasons.of_property(advice, expected.property)
+    )
     what = f"{expected.property} {_word(expected.value)}"
     return Difference("barred", what, f"barred by {expected.rule or 'any rule'}", got, because, expected.mark)
 
@@ -108,44 +126,83 @@ def _barring(advice: Advice, name: str, value: Value) -> list[str]:
 
 def asks_for(expected: AsksFor, advice: Advice) -> Difference | None:
     """Whether a must or a should asks for the value, turns against it, or leaves it free."""
-    got = _strength(advice, expected.property, expected.value)
-    if got == expected.strength:
+    found = _strengths(advice, expected.property, expected.value)
+    if expected.strength in found:
         return None
     about = f" {_word(expected.value)}" if expected.value is not None else ""
-    return Difference("demands", expected.property, f"{expected.strength}{about}", f"{got}{about}",
-                      reasons.of_property(advice, expected.property), expected.mark)
+    return Difference(
+        "demands",
+        expected.property,
+        f"{expected.strength}{about}",
+        f"{' and '.join(found)}{about}",
+        reasons.of_property(advice, expected.property),
+        expected.mark,
+    )
 
 
-def _strength(advice: Advice, name: str, value: Value | None) -> str:
-    """How strongly the demands on all that is recommended ask for a value; without one: for more than nothing of it."""
+def _strengths(advice: Advice, name: str, value: Value | None) -> list[str]:
+    """How the demands on all that is recommended stand to a value; without one: to more than nothing of it."""
     if advice.withheld:
-        return _WITHHELD
+        return [_WITHHELD]
     domain = advice.knowledge.properties[name].domain
     combinations = falling(advice, name)
-    wanted = [value] if value is not None else [each for each in domain.choices if each != nothing(domain)]
-    if any(all(must_ask(demands, each, domain) for demands in combinations) for each in wanted):
-        return "must"
-    if any(all(any(asks(one, each, domain) for one in demands if not one.must) for demands in combinations) for each in wanted):
-        return "should"
-    if domain.choices and all(any(asks(one, nothing(domain), domain) for one in demands) for demands in combinations):
-        return "unwanted"
-    return "allowed"
+    none = nothing(domain)
+    wanted = [value] if value is not None else [each for each in domain.choices if each != none]
+    found = []
+    if any(all(asks(_musts(demands), each, domain) for demands in combinations) for each in wanted):
+        found.append("must")
+    elif any(all(_wished(demands, each, domain) for demands in combinations) for each in wanted):
+        found.append("should")
+    if none and all(any(turns_against(one, domain) for one in demands) for demands in combinations):
+        found.append("unwanted")
+    return found or ["allowed"]
+
+
+def _musts(demands: Demands) -> Demands:
+    return tuple(demand for demand in demands if demand.must)
+
+
+def _wished(demands: Demands, value: Value, domain: Domain) -> bool:
+    return any(asks((demand,), value, domain) for demand in demands if not demand.must)
 
 
 def asks_at_least(expected: AsksAtLeast, advice: Advice) -> Difference | None:
-    """Whether the musts that fall on what is recommended say together at least this."""
+    """Whether the musts (or one of the shoulds) that fall on what is recommended say at least this."""
     name = expected.property
-    domain = advice.knowledge.properties[name].domain
-    if not advice.withheld and all(say_at_least(demands, expected.test, name, domain) for demands in falling(advice, name)):
+    combinations = () if advice.withheld else falling(advice, name)
+    if combinations and all(_says(expected, demands, advice) for demands in combinations):
         return None
-    musts = [demand for demand in advice.specification.demands if demand.property == name and demand.must]
-    got = "; ".join(dict.fromkeys(reasons.condition_words(advice.knowledge, each.test) for each in musts)) or "no must"
-    return Difference("demands", name, expected.written, _WITHHELD if advice.withheld else got, reasons.of_property(advice, name), expected.mark)
+    said = [demand for demand in advice.specification.demands if demand.property == name]
+    got = "; ".join(
+        dict.fromkeys(
+            f"{'must' if each.must else 'should'} be {say_test(each.test, advice.knowledge)}" for each in said
+        )
+    )
+    wanted = f"{'must' if expected.strength == 'must' else 'should'} be {expected.written}"
+    return Difference(
+        "demands",
+        name,
+        wanted,
+        _WITHHELD if advice.withheld else got or "no demand",
+        reasons.of_property(advice, name),
+        expected.mark,
+    )
+
+
+def _says(expected: AsksAtLeast, demands: Demands, advice: Advice) -> bool:
+    domain = advice.knowledge.properties[expected.property].domain
+    if expected.strength == "must":
+        return say_at_least(_musts(demands), expected.test, domain)
+    return any(say_at_least((demand,), expected.test, domain) for demand in demands if not demand.must)
 
 
 def code_serves(expected: CodeServes, advice: Advice) -> Difference | None:
     """Whether a grease of the expected code meets a code that is asked for."""
-    codes, none = (advice.codes.din, advice.codes.din_none) if expected.standard == "din" else (advice.codes.iso, advice.codes.iso_none)
+    codes, none = (
+        (advice.codes.din, advice.codes.din_none)
+        if expected.standard == "din"
+        else (advice.codes.iso, advice.codes.iso_none)
+    )
     if expected.code is None:
         same = not codes
     else:
@@ -153,7 +210,9 @@ def code_serves(expected: CodeServes, advice: Advice) -> Difference | None:
     if same:
         return None
     because = (f"No code: {none}.",) if none else tuple(f"{code} is the lowest code that suffices." for code in codes)
-    return Difference("codes", expected.standard, expected.code or "no code", ", ".join(codes) or "no code", because, expected.mark)
+    return Difference(
+        "codes", expected.standard, expected.code or "no code", ", ".join(codes) or "no code", because, expected.mark
+    )
 
 
 def _serves(designer: Designer, expected: CodeServes, asked: str) -> bool:
@@ -177,8 +236,9 @@ def interval(expected: IntervalIs, advice: Advice) -> Difference | None:
     unit = advice.knowledge.domain(row.facts[0]).unit
     wanted = " to ".join(show(each, unit) for each in expected.ends) if expected.ends else "no figure"
     got = show(value, unit) if isinstance(value, float) else "no figure"
-    shown_by = {term for term in reasons.names_of(row.shown_if)}
-    because = (*reasons.of_fact(advice, row.facts[0]), *(word for name in sorted(shown_by) for word in reasons.of_fact(advice, name)))
+    because = reasons.of_fact(advice, row.facts[0])
+    for name in sorted(mentions(row.shown_if)):
+        because += reasons.of_fact(advice, name)
     return Difference("interval", "", wanted, got, because, expected.mark)
 
 
@@ -186,9 +246,17 @@ def fill(expected: FillIs, advice: Advice) -> Difference | None:
     """Whether the fill of the part is shown with these ends."""
     row = next(each for each in advice.knowledge.docket if each.id == fill_row(expected.part))
     line = next((each for each in advice.quantities if each.row == row.id and not each.skipped), None)
-    values = [fact.value if (fact := advice.facts.get(name)) else None for name in row.facts] if line is not None else []
+    values = (
+        [fact.value if (fact := advice.facts.get(name)) else None for name in row.facts] if line is not None else []
+    )
     if values == [expected.low, expected.high]:
         return None
-    got = " to ".join(reasons.fact_words(advice, advice.facts.get(name)) for name in row.facts) if line is not None else "no fill"
+    got = (
+        " to ".join(reasons.written_fact(advice, advice.facts.get(name)) for name in row.facts)
+        if line is not None
+        else "no fill"
+    )
     because = tuple(word for name in row.facts for word in reasons.of_fact(advice, name))
-    return Difference("fill", expected.part, f"{show(expected.low, '%')} to {show(expected.high, '%')}", got, because, expected.mark)
+    return Difference(
+        "fill", expected.part, f"{show(expected.low, '%')} to {show(expected.high, '%')}", got, because, expected.mark
+    )

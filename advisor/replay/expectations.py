@@ -88,10 +88,11 @@ class AsksFor:
 
 @dataclass(frozen=True, slots=True)
 class AsksAtLeast:
-    """The musts that fall on what is recommended say together at least what this test says."""
+    """The musts that fall on what is recommended say together (or one of the shoulds says) at least this test."""
 
     mark: Mark
     property: str
+    strength: Strength
     test: Condition
     written: str
 
@@ -185,8 +186,25 @@ class RuleIs:
 
 
 Expectation = (
-    StateIs | WithheldIs | FactIs | FactWithin | Recommends | KeepsFrom | Bars | AsksFor | AsksAtLeast | CodeServes
-    | CautionIs | ReferralIs | ProductIs | LeavesOpen | Assumes | ConflictBetween | IntervalIs | FillIs | RuleIs
+    StateIs
+    | WithheldIs
+    | FactIs
+    | FactWithin
+    | Recommends
+    | KeepsFrom
+    | Bars
+    | AsksFor
+    | AsksAtLeast
+    | CodeServes
+    | CautionIs
+    | ReferralIs
+    | ProductIs
+    | LeavesOpen
+    | Assumes
+    | ConflictBetween
+    | IntervalIs
+    | FillIs
+    | RuleIs
 )
 
 

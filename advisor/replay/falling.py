@@ -4,7 +4,21 @@ from collections.abc import Iterable, Iterator
 from itertools import product
 
 from advisor.advice import Advice
-from advisor.conditions import Bound, Coded, Condition, Domain, Either, Every, Member, Record, Stated, Value, holds, leaves
+from advisor.conditions import (
+    Bound,
+    Coded,
+    Condition,
+    Domain,
+    Either,
+    Every,
+    Member,
+    Record,
+    Stated,
+    Value,
+    holds,
+    leaves,
+)
+from advisor.explanation.seeing import recommended_kappa
 from advisor.specification import Demand, mentions
 
 Demands = tuple[Demand, ...]
@@ -32,17 +46,6 @@ def _recommended(advice: Advice, name: str) -> list[Coded]:
     return [domain.code(value) for line in advice.docket if line.row in shown for value in line.values]
 
 
-def recommended_kappa(advice: Advice) -> float | None:
-    """The smallest viscosity ratio among the best usual oils."""
-    if advice.oils is None or not advice.oil_ranks or "kappa" not in advice.oils.columns:
-        return None
-    best = min(advice.oil_ranks.values())
-    values = advice.oils.columns["kappa"].values
-    items = advice.oils.catalogue.items
-    found = [value for place, value in enumerate(values) if advice.oil_ranks.get(items[place].code) == best and isinstance(value, float)]
-    return min(found, default=None)
-
-
 def _meets(condition: Condition, record: Record) -> bool:
     return holds(_unless_unsaid(condition), record) is not False
 
@@ -55,31 +58,38 @@ def _unless_unsaid(condition: Condition) -> Condition:
     return Every() if isinstance(condition, Stated) else condition
 
 
-def asks(demand: Demand, value: Value, domain: Domain) -> bool:
-    """Whether a demand asks for this value: it is what the demand leaves, or the end up to which it leaves values."""
-    return _asked([demand.test], value, domain)
+def asks(demands: Iterable[Demand], value: Value, domain: Domain) -> bool:
+    """Whether the demands, taken together, ask for this value.
 
-
-def must_ask(demands: Iterable[Demand], value: Value, domain: Domain) -> bool:
-    """Whether the musts among the demands, taken together, ask for this value."""
-    return _asked([demand.test for demand in demands if demand.must], value, domain)
-
-
-def _asked(tests: list[Condition], value: Value, domain: Domain) -> bool:
-    left = [each for each in _all(domain) if all(holds(test, {name: each}) for test in tests for name in _names(test))]
+    They do where they leave it alone, or where it is the end up to which a scale or a series is left;
+    `at_most anti_wear` asks for nothing, since it leaves `none`.
+    """
+    tests = [demand.test for demand in demands]
+    everything = _all(domain)
+    left = [each for each in everything if all(_meets_test(test, each) for test in tests)]
     wanted = domain.code(value)
-    if wanted not in left or len(left) == len(_all(domain)):
+    if wanted not in left or len(left) == len(everything):
         return False
     if len(left) == 1:
         return True
+    if none := nothing(domain):
+        if domain.code(none) in left:
+            return False
     if domain.ordered:
-        everything = _all(domain)
-        return (wanted == left[0] != everything[0]) or (wanted == left[-1] != everything[-1])
-    return any(isinstance(term, Member) and term.wanted and wanted in term.among for test in tests for term in leaves(test))
+        return wanted == left[0] != everything[0] or wanted == left[-1] != everything[-1]
+    return any(
+        isinstance(term, Member) and term.wanted and wanted in term.among for test in tests for term in leaves(test)
+    )
 
 
-def _names(test: Condition) -> set[str]:
-    return {term.name for term in leaves(test)}
+def turns_against(demand: Demand, domain: Domain) -> bool:
+    """Whether a demand leaves `none`, but not everything."""
+    left = [each for each in _all(domain) if _meets_test(demand.test, each)]
+    return domain.code(nothing(domain)) in left and len(left) < len(_all(domain))
+
+
+def _meets_test(test: Condition, coded: Coded) -> bool:
+    return holds(test, {term.name: coded for term in leaves(test)}) is True
 
 
 def _all(domain: Domain) -> list[Coded]:
@@ -87,20 +97,27 @@ def _all(domain: Domain) -> list[Coded]:
 
 
 def nothing(domain: Domain) -> str:
-    """The choice that means that there is nothing of it."""
-    return "none" if "none" in domain.choices else "no"
+    """The choice that means that there is nothing of it; empty where there is none."""
+    return next((choice for choice in ("none", "no") if choice in domain.choices), "")
 
 
-def say_at_least(demands: Iterable[Demand], test: Condition, name: str, domain: Domain) -> bool:
-    """Whether everything that all musts among the demands leave meets the test."""
-    musts = [demand.test for demand in demands if demand.must]
-    tried = _all(domain) or list(_samples([*musts, test]))
-    return all(holds(test, {name: each}) for each in tried if all(holds(must, {name: each}) for must in musts))
+def say_at_least(demands: Iterable[Demand], test: Condition, domain: Domain) -> bool:
+    """Whether everything that the demands together leave meets the test."""
+    tests = [demand.test for demand in demands]
+    tried = _all(domain) or list(_samples([*tests, test]))
+    return all(_meets_test(test, each) for each in tried if all(_meets_test(one, each) for one in tests))
 
 
 def _samples(tests: list[Condition]) -> Iterator[float]:
     """Numbers at, between and beyond all limits: enough to compare thresholds."""
-    limits = sorted({term.limit for test in tests for term in leaves(test) if isinstance(term, Bound) and isinstance(term.limit, float)})
+    limits = sorted(
+        {
+            term.limit
+            for test in tests
+            for term in leaves(test)
+            if isinstance(term, Bound) and isinstance(term.limit, float)
+        }
+    )
     yield from limits
     yield from ((low + high) / 2 for low, high in zip(limits, limits[1:], strict=False))
     yield limits[0] - 1

@@ -1,14 +1,15 @@
 """Read what a scenario expects: every name and value is checked against the knowledge, every fault told at once."""
 
-from collections.abc import Callable, Iterable
+from collections.abc import Callable
 from dataclasses import dataclass, field, replace
 
 from advisor.advice import State
 from advisor.answers import Saved
 from advisor.conditions import Domain, Value
 from advisor.designations import Designer, NoCode
-from advisor.documents import Mapping, Mark, Node, Problem, Problems, Scalar, Sequence, as_number, as_yes_no, nearest
-from advisor.knowledge import Knowledge, Mistyped, Scope, condition, value
+from advisor.documents import Mapping, Node, Problems, Scalar, Sequence, nearest
+from advisor.knowledge import Knowledge, Mistyped, condition, value
+from advisor.replay.checking import Checker
 from advisor.replay.expectations import (
     INTERVAL_ROW,
     AsksAtLeast,
@@ -30,9 +31,11 @@ from advisor.replay.expectations import (
     ReferralIs,
     RuleIs,
     StateIs,
+    Strength,
     WithheldIs,
     fill_row,
 )
+from advisor.replay.falling import nothing
 from advisor.shelf import Verdict
 
 _ANY = ("", "any")
@@ -44,14 +47,20 @@ def read_expectations(saved: Saved, knowledge: Knowledge, problems: Problems) ->
     reader = _Reader(saved, knowledge, problems)
     tree = saved.tree.get("expect")
     if not isinstance(tree, Mapping) or not tree:
-        reader.problem(saved.tree.mark if tree is None else tree.mark, "nothing is expected of this case",
-                       "expect: {state: settled}")
+        reader.problem(
+            saved.tree.mark if tree is None else tree.mark,
+            "nothing is expected of this case",
+            "expect: {state: settled}",
+        )
         return ()
     for key, node in tree.items():
         read = reader.readers.get(key)
         if read is None:
-            reader.problem(tree.key_marks[key], f"'{key}' is nothing that can be expected",
-                           nearest(key, reader.readers) or f"known: {', '.join(reader.readers)}")
+            reader.problem(
+                tree.key_marks[key],
+                f"'{key}' is nothing that can be expected",
+                nearest(key, reader.readers) or f"known: {', '.join(reader.readers)}",
+            )
             continue
         reader.key = key
         try:
@@ -62,13 +71,9 @@ def read_expectations(saved: Saved, knowledge: Knowledge, problems: Problems) ->
 
 
 @dataclass(slots=True)
-class _Reader:
-    """Reads one `expect`; `key` is the part being read, `found` what it gave."""
+class _Reader(Checker):
+    """Reads one `expect`; `found` is what it gave so far."""
 
-    saved: Saved
-    knowledge: Knowledge
-    problems: Problems
-    key: str = ""
     found: list[Expectation] = field(default_factory=list)
 
     @property
@@ -77,99 +82,39 @@ class _Reader:
         know = self.knowledge
         asked = {name for name, each in know.facts.items() if each.question is not None}
         return {
-            "state": lambda node: [StateIs(node.mark, State(self._word(node, list(State), "state")))],
-            "withheld": lambda node: [WithheldIs(node.mark, self._yes_no(node))],
-            "facts": lambda node: self._each(node, self._fact),
-            "recommended": lambda node: self._each(node, self._recommended),
-            "must_not": lambda node: self._each(node, self._must_not),
-            "barred": lambda node: self._each(node, self._barred),
-            "demands": lambda node: self._each(node, self._demand),
-            "codes": lambda node: self._each(node, self._code),
-            "cautions": lambda node: self._names(node, know.cautions, "caution", lambda at, name: CautionIs(at, name, True)),
-            "no_cautions": lambda node: self._names(node, know.cautions, "caution", lambda at, name: CautionIs(at, name, False)),
-            "referrals": lambda node: self._names(node, know.referrals, "referral", lambda at, name: ReferralIs(at, name, True)),
-            "no_referrals": lambda node: self._names(node, know.referrals, "referral", lambda at, name: ReferralIs(at, name, False)),
-            "products": lambda node: self._each(node, self._product),
-            "open_questions": lambda node: self._names(node, asked, "question", LeavesOpen),
-            "assumptions": lambda node: self._names(node, asked, "question", Assumes),
-            "conflicts": lambda node: [ConflictBetween(node.mark, tuple(self._rule(each) for each in self._list(node)))],
+            "state": lambda node: [StateIs(node.mark, State(self.word(node, list(State), "state")))],
+            "withheld": lambda node: [WithheldIs(node.mark, self.yes_no(node))],
+            "facts": lambda node: self.each(node, self._fact),
+            "recommended": lambda node: self.each(node, self._recommended),
+            "must_not": lambda node: self.each(node, self._must_not),
+            "barred": lambda node: self.each(node, self._barred),
+            "demands": lambda node: self.each(node, self._demand),
+            "codes": lambda node: self.each(node, self._code),
+            "cautions": lambda node: self.names(
+                node, know.cautions, "caution", lambda at, name: CautionIs(at, name, True)
+            ),
+            "no_cautions": lambda node: self.names(
+                node, know.cautions, "caution", lambda at, name: CautionIs(at, name, False)
+            ),
+            "referrals": lambda node: self.names(
+                node, know.referrals, "referral", lambda at, name: ReferralIs(at, name, True)
+            ),
+            "no_referrals": lambda node: self.names(
+                node, know.referrals, "referral", lambda at, name: ReferralIs(at, name, False)
+            ),
+            "products": lambda node: self.each(node, self._product),
+            "open_questions": lambda node: self.names(node, asked, "question", LeavesOpen),
+            "assumptions": lambda node: self.names(node, asked, "question", Assumes),
+            "conflicts": lambda node: [
+                ConflictBetween(node.mark, tuple(self.rule(each) for each in self.listed(node)))
+            ],
             "interval": self._interval,
-            "fill": lambda node: self._each(node, self._fill),
-            "rules_fired": lambda node: [RuleIs(each.mark, self._rule(each), fires=True) for each in self._list(node)],
-            "rules_silent": lambda node: [RuleIs(each.mark, self._rule(each), fires=False) for each in self._list(node)],
+            "fill": lambda node: self.each(node, self._fill),
+            "rules_fired": lambda node: [RuleIs(each.mark, self.rule(each), fires=True) for each in self.listed(node)],
+            "rules_silent": lambda node: [
+                RuleIs(each.mark, self.rule(each), fires=False) for each in self.listed(node)
+            ],
         }
-
-    def problem(self, mark: Mark, message: str, hint: str = "", *trail: str) -> Mistyped:
-        """Note a fault."""
-        within = ("expect", *([self.key] if self.key else []), *trail)
-        self.problems.add(Problem(mark.file, mark.line, mark.column, within, message, hint.strip()))
-        return Mistyped()
-
-    def _each(self, node: Node, read: Callable[[Scalar, Node], Iterable[Expectation]]) -> list[Expectation]:
-        """Read every entry of a mapping; a faulty one keeps none of the others from being read."""
-        if not isinstance(node, Mapping) or not node:
-            raise self.problem(node.mark, f"'{self.key}' is written 'name: what is expected'")
-        found: list[Expectation] = []
-        for name, child in node.items():
-            try:
-                found += read(Scalar(name, node.key_marks[name]), child)
-            except Mistyped:
-                continue
-        return found
-
-    def _list(self, node: Node) -> list[Scalar]:
-        if not isinstance(node, Sequence) or not node:
-            raise self.problem(node.mark, f"'{self.key}' is a list with at least one entry", f"{self.key}: [a, b]")
-        for each in node:
-            if not isinstance(each, Scalar):
-                raise self.problem(each.mark, "a plain value is expected in this list")
-        return [each for each in node if isinstance(each, Scalar)]
-
-    def _names(self, node: Node, known: Iterable[str], what: str, make: Callable[[Mark, str], Expectation]) -> list[Expectation]:
-        found: list[Expectation] = []
-        for each in self._list(node):
-            try:
-                found.append(make(each.mark, self._known(each, known, what)))
-            except Mistyped:
-                continue
-        return found
-
-    def _known(self, word: Scalar, known: Iterable[str], what: str) -> str:
-        names = list(known)
-        if str(word) not in names:
-            raise self.problem(word.mark, f"'{word}' is no {what} that is known here", nearest(word, names))
-        return str(word)
-
-    def _word(self, node: Node, known: Iterable[str], what: str) -> str:
-        names = [str(each) for each in known]
-        if not isinstance(node, Scalar) or str(node) not in names:
-            seen = f"'{node}'" if isinstance(node, Scalar) else "this"
-            raise self.problem(node.mark, f"{seen} is no {what}", f"use one of {', '.join(names)}")
-        return str(node)
-
-    def _yes_no(self, node: Node) -> bool:
-        try:
-            return as_yes_no(node)  # type: ignore[arg-type]  # anything but a text is refused below
-        except (ValueError, AttributeError, TypeError):
-            raise self.problem(node.mark, "yes or no is expected here") from None
-
-    def _number(self, node: Node) -> float:
-        if not isinstance(node, Scalar):
-            raise self.problem(node.mark, "a number is expected here")
-        try:
-            return as_number(node)
-        except ValueError as fault:
-            message, _, hint = str(fault).partition("; ")
-            raise self.problem(node.mark, message, hint) from None
-
-    def _rule(self, word: Node) -> str:
-        ids = {*self.knowledge.rules, *(each.id for step in self.knowledge.instances.values() for each in step)}
-        if not isinstance(word, Scalar):
-            raise self.problem(word.mark, "a rule is expected here")
-        return self._known(word, sorted(ids), "rule")
-
-    def _scope(self, *trail: str) -> Scope:
-        return Scope(self.problems, {}, trail=("expect", self.key, *trail), what="property")
 
     def _domain(self, name: Scalar) -> Domain:
         """The domain of a property."""
@@ -195,58 +140,52 @@ class _Reader:
         faulty = False
         for each in node:
             try:
-                found.append(value(each, replace(domain, kind="choice") if domain.kind == "several" else domain, self._scope(*trail)))
+                found.append(
+                    value(
+                        each, replace(domain, kind="choice") if domain.kind == "several" else domain, self.scope(*trail)
+                    )
+                )
             except Mistyped:
                 faulty = True
         if faulty:
             raise Mistyped
         return tuple(found)
 
-    def _only_keys(self, node: Mapping, *known: str) -> None:
-        faults = [self.problem(node.key_marks[key], f"'{key}' is not known here", nearest(key, known) or f"known: {', '.join(known)}")
-                  for key in node if key not in known]
-        if faults:
-            raise faults[0]
-
     def _fact(self, name: Scalar, node: Node) -> list[Expectation]:
         known = self.knowledge.facts.keys() | self.knowledge.computations.keys()
-        domain = self.knowledge.domain(self._known(name, sorted(known), "fact"))
+        domain = self.knowledge.domain(self.known(name, sorted(known), "fact"))
         if isinstance(node, Scalar) and str(node) == "void":
             return [FactIs(node.mark, name, None)]
         if not isinstance(node, Mapping):
-            return [FactIs(node.mark, name, value(node, domain, self._scope(name)))]
+            return [FactIs(node.mark, name, value(node, domain, self.scope(name)))]
         if domain.kind != "number":
             raise self.problem(node.mark, f"'{name}' is no number: it has one value or another", "", name)
-        self._only_keys(node, *(("about", "within") if "about" in node else ("from", "to")))
+        self.only_keys(node, *(("about", "within") if "about" in node else ("from", "to")))
         if "about" in node:
             return [self._about(name, node)]
-        low, high = self._ends(node)
+        low, high = self.ends(node)
         return [FactWithin(node.mark, name, low, high)]
 
     def _about(self, name: Scalar, node: Mapping) -> FactWithin:
-        about, within = self._number(node["about"]), node.get("within")
+        about, within = self.number(node["about"]), node.get("within")
         if not isinstance(within, Scalar):
-            raise self.problem(node.mark, "'about' needs 'within'", "{about: 0.15, within: 0.01} or {about: 0.15, within: 2 %}", name)
+            raise self.problem(
+                node.mark, "'about' needs 'within'", "{about: 0.15, within: 0.01} or {about: 0.15, within: 2 %}", name
+            )
         text = within.strip()
         share = text.removesuffix("%").strip() if text.endswith("%") else ""
-        apart = self._number(Scalar(share or text, within.mark)) * (abs(about) / 100 if share else 1)
+        apart = self.number(Scalar(share or text, within.mark)) * (abs(about) / 100 if share else 1)
         if apart <= 0:
-            raise self.problem(within.mark, "'within' is more than nothing", "leave it out and write the value alone", name)
+            raise self.problem(
+                within.mark, "'within' is more than nothing", "leave it out and write the value alone", name
+            )
         return FactWithin(node.mark, name, about - apart, about + apart)
-
-    def _ends(self, node: Mapping) -> tuple[float, float]:
-        if set(node) != {"from", "to"}:
-            raise self.problem(node.mark, "both ends are expected here", "{from: 1, to: 2}")
-        low, high = self._number(node["from"]), self._number(node["to"])
-        if low > high:
-            raise self.problem(node["to"].mark, f"'to' ({high:g}) lies below 'from' ({low:g})", "change the two about")
-        return low, high
 
     def _recommended(self, name: Scalar, node: Node) -> list[Expectation]:
         domain = self._recommendable(name)
         if not isinstance(node, Mapping):
             return [Recommends(node.mark, name, self._values(node, domain, name))]
-        self._only_keys(node, "expected", "accept")
+        self.only_keys(node, "expected", "accept")
         if "expected" not in node:
             raise self.problem(node.mark, "'expected' is missing", "{expected: [a], accept: [b]}", name)
         accept = self._values(node["accept"], domain, name) if "accept" in node else ()
@@ -258,12 +197,14 @@ class _Reader:
     def _barred(self, name: Scalar, node: Node) -> list[Expectation]:
         domain = self._domain(name)
         if not isinstance(node, Mapping) or not node:
-            raise self.problem(node.mark, "what is barred is written 'value: rule'", f"{name}: {{some_value: some_rule}}", name)
+            raise self.problem(
+                node.mark, "what is barred is written 'value: rule'", f"{name}: {{some_value: some_rule}}", name
+            )
         found: list[Expectation] = []
         for key, rule in node.items():
             try:
-                barred = value(Scalar(key, node.key_marks[key]), domain, self._scope(name))
-                found.append(Bars(rule.mark, name, barred, "" if str(rule) in _ANY else self._rule(rule)))
+                barred = value(Scalar(key, node.key_marks[key]), domain, self.scope(name))
+                found.append(Bars(rule.mark, name, barred, "" if str(rule) in _ANY else self.rule(rule)))
             except Mistyped:
                 continue
         return found
@@ -273,25 +214,38 @@ class _Reader:
         text = str(node) if isinstance(node, Scalar) else ""
         strength, _, wanted = text.partition(" ")
         if text in {"unwanted", "allowed"}:
-            if not {"none", "no"} & set(domain.choices):
-                raise self.problem(node.mark, f"'{text}' is for properties with a choice 'none' or 'no'", "write a test, such as {at_least: 3}", name)
+            if not nothing(domain):
+                hint = "write a test, such as {at_least: 3}"
+                raise self.problem(node.mark, f"'{text}' is for properties with a choice 'none' or 'no'", hint, name)
             return [AsksFor(node.mark, name, "unwanted" if text == "unwanted" else "allowed", None)]
-        if strength in {"must", "should"}:
-            if not domain.choices and not domain.places:
-                raise self.problem(node.mark, f"'{name}' is a number", "write a test, such as {at_least: 130}", name)
-            asked = value(Scalar(wanted.strip(), node.mark), domain, self._scope(name))
-            return [AsksFor(node.mark, name, "must" if strength == "must" else "should", asked)]
+        if strength not in {"must", "should"}:
+            return [self._test(name, "must", node, domain)]
+        how: Strength = "must" if strength == "must" else "should"
+        operator, _, limit = wanted.strip().partition(" ")
+        if limit or not (domain.choices or domain.places):
+            whole = Mapping(node.mark)
+            whole[operator] = Scalar(limit.strip(), node.mark)
+            whole.key_marks[operator] = node.mark
+            if not limit:
+                raise self.problem(
+                    node.mark, f"'{name}' is a number", f"write a test, such as {how} at_least 130", name
+                )
+            return [self._test(name, how, whole, domain)]
+        asked = value(Scalar(wanted.strip(), node.mark), domain, self.scope(name))
+        return [AsksFor(node.mark, name, how, asked)]
+
+    def _test(self, name: Scalar, strength: Strength, node: Node, domain: Domain) -> AsksAtLeast:
         if domain.kind in {"several", "text", "item"}:
             raise self.problem(node.mark, f"no test can be put on '{name}'", "", name)
         whole = Mapping(node.mark)
         whole[str(name)] = node
         whole.key_marks[str(name)] = name.mark
-        test = condition(whole, Scope(self.problems, {str(name): domain}, trail=("expect", self.key, name), what="property"))
-        return [AsksAtLeast(node.mark, name, test, _as_written(node))]
+        test = condition(whole, replace(self.scope(name), names={str(name): domain}))
+        return AsksAtLeast(node.mark, name, strength, test, _as_written(node))
 
     def _code(self, name: Scalar, node: Node) -> list[Expectation]:
-        standard = self._known(name, ("din", "iso"), "standard")
-        text = self._text(node)
+        standard = self.known(name, ("din", "iso"), "standard")
+        text = self.text(node)
         if text != "none":
             designer = Designer(self.knowledge)
             try:
@@ -300,38 +254,30 @@ class _Reader:
                 raise self.problem(node.mark, str(fault), "", name) from None
         return [CodeServes(node.mark, "din" if standard == "din" else "iso", None if text == "none" else text)]
 
-    def _text(self, node: Node) -> str:
-        if not isinstance(node, Scalar):
-            raise self.problem(node.mark, "a plain value is expected here")
-        return str(node).strip()
-
     def _product(self, name: Scalar, node: Node) -> list[Expectation]:
-        item = self._known(name, [each.item for each in self.knowledge.shelf], "product of the shelf")
+        item = self.known(name, [each.item for each in self.knowledge.shelf], "product of the shelf")
         if self.saved.only is not None and item not in self.saved.only:
             raise self.problem(name.mark, f"the shelf of this scenario leaves {item} out", "add it to 'shelf'")
-        word, by, rule = self._text(node).partition(" by ")
-        verdict = Verdict(self._word(Scalar(word, node.mark), list(Verdict), "verdict"))
+        word, by, rule = self.text(node).partition(" by ")
+        verdict = Verdict(self.word(Scalar(word, node.mark), list(Verdict), "verdict"))
         if by and verdict not in _NEEDS_A_RULE:
-            raise self.problem(node.mark, f"no rule makes a product '{word}'", "only falls_short and unproven go with 'by'", name)
-        return [ProductIs(node.mark, item, verdict, self._rule(Scalar(rule.strip(), node.mark)) if by else "")]
-
-    def _row(self, mark: Mark, row: str) -> None:
-        rows = [each.id for each in self.knowledge.docket]
-        if row not in rows:
-            raise self.problem(mark, f"the docket has no row '{row}'", nearest(row, rows))
+            raise self.problem(
+                node.mark, f"no rule makes a product '{word}'", "only falls_short and unproven go with 'by'", name
+            )
+        return [ProductIs(node.mark, item, verdict, self.rule(Scalar(rule.strip(), node.mark)) if by else "")]
 
     def _interval(self, node: Node) -> list[Expectation]:
-        self._row(node.mark, INTERVAL_ROW)
+        self.row(node.mark, INTERVAL_ROW)
         if isinstance(node, Scalar) and str(node) == "none":
             return [IntervalIs(node.mark, None)]
         if not isinstance(node, Mapping):
             raise self.problem(node.mark, "an interval is expected from .. to, or none", "{from: 5900, to: 7200}")
-        self._only_keys(node, "from", "to")
-        return [IntervalIs(node.mark, self._ends(node))]
+        self.only_keys(node, "from", "to")
+        return [IntervalIs(node.mark, self.ends(node))]
 
     def _fill(self, name: Scalar, node: Node) -> list[Expectation]:
-        self._row(name.mark, fill_row(name))
-        numbers = [self._number(each) for each in self._list(node)]
+        self.row(name.mark, fill_row(name))
+        numbers = [self.number(each) for each in self.listed(node)]
         if len(numbers) != 2:
             raise self.problem(node.mark, "a fill has two ends, in percent", f"{name}: [30, 40]")
         return [FillIs(node.mark, name, numbers[0], numbers[1])]

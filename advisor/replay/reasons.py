@@ -1,100 +1,75 @@
 """The part of the trace behind a difference, in short sentences with the numbers."""
 
-from collections.abc import Callable, Iterable, Iterator
+from collections.abc import Callable, Iterator
 
 from advisor.advice import Advice
-from advisor.case import Fact, Origin
-from advisor.conditions import VOID, Bound, Coded, Condition, FactRef, Member, Record, Stated, Ticked, failures, leaves, waits_for
-from advisor.conditions.terms import Term, Void
-from advisor.knowledge import CLOSING_FACTS, Asks, Formed, Instance, Knowledge, Sets
+from advisor.case import Fact
+from advisor.conditions import Value
+from advisor.explanation.ruling import verdict_of
+from advisor.explanation.seeing import rules_seen
+from advisor.explanation.words import NOT_KNOWN, say_demand, say_fact, say_value, title_of
+from advisor.knowledge import Asks, Formed, Instance, Knowledge, Sets
 from advisor.quantities import show
 from advisor.shelf import Judgement
-from advisor.specification import Demand
 
 MOST = 4
 """So many rules are told in full; the rest are counted."""
 
-_SIGNS = {"<": "below", "<=": "at most", ">": "above", ">=": "at least", "=": "", "!=": "other than"}
+Concern = Callable[[Instance], bool]
 
 
-def shown(knowledge: Knowledge, name: str, coded: Coded | Void | None) -> str:
-    """A coded value as scenarios write it, with its unit."""
-    if coded is None:
-        return "not known"
-    if isinstance(coded, Void):
-        return "void"
-    domain = CLOSING_FACTS.get(name) or knowledge.domain(name)
-    value = domain.decode(coded)
+def written(knowledge: Knowledge, name: str, value: Value) -> str:
+    """A value as a scenario writes it, with its unit."""
     if isinstance(value, float):
-        return show(value, domain.unit)
-    return ", ".join(value) or "none" if isinstance(value, tuple) else value
+        return show(value, knowledge.domain(name).unit)
+    return (", ".join(value) or "none") if isinstance(value, tuple) else value
 
 
-def test_words(knowledge: Knowledge, term: Term) -> str:
-    """What a term wants, without the name it looks at."""
-    if isinstance(term, Stated):
-        return "stated" if term.wanted else "not stated"
-    if isinstance(term, Bound):
-        limit = term.limit
-        words = knowledge.title(limit.name) if isinstance(limit, FactRef) else shown(knowledge, term.name, limit)
-        return f"{_SIGNS[term.sign]} {words}".strip()
-    among = " or ".join(sorted(shown(knowledge, term.name, each) if isinstance(term, Member) else str(each) for each in term.among))
-    return among if term.wanted else f"none of {among}"
+def written_fact(advice: Advice, fact: Fact | None) -> str:
+    """The value of a fact as a scenario writes it, or why it has none."""
+    if fact is None or fact.value is None:
+        return say_fact(fact, advice.knowledge)
+    return written(advice.knowledge, fact.name, fact.value)
 
 
-def of_term(knowledge: Knowledge, term: Term, record: Record) -> str:
-    """What is seen where a term looks, and what it wants."""
-    seen = record.get(term.name)
-    against = ""
-    if isinstance(term, Bound) and isinstance(term.limit, FactRef):
-        against = f" ({shown(knowledge, term.name, record.get(term.limit.name))})"
-    return f"{knowledge.title(term.name)} is {shown(knowledge, term.name, seen)}, wanted {test_words(knowledge, term)}{against}"
-
-
-def of_instance(advice: Advice, instance: Instance, outcome: bool | None) -> str:  # noqa: FBT001 - the third outcome is None
+def of_instance(advice: Advice, step: str, instance: Instance, outcome: bool | None) -> str:
     """What a rule did, with the numbers."""
-    knowledge, record = advice.knowledge, advice.record
+    verdict = verdict_of(advice, step, instance, outcome)
     if outcome is None:
-        return f"{instance.id} waits for {_titles(knowledge, waits_for(instance.when, record))}."
-    if outcome is False:
-        told = dict.fromkeys(of_term(knowledge, term, record) for term in failures(instance.when, record))
-        return f"{instance.id} stayed silent: {'; '.join(told) or 'its condition failed'}."
-    seen = dict.fromkeys(
-        f"{knowledge.title(term.name)} {shown(knowledge, term.name, record[term.name])}"
-        for term in leaves(instance.when) if record.get(term.name) is not None and record[term.name] is not VOID)
-    words = f"{instance.id} fired" + (f" ({', '.join(seen)})." if seen else ".")
-    return words if instance.binds else f"{words} It is a {instance.rule.status} rule and concludes nothing."
+        return f"{verdict.id} waits for {', '.join(verdict.waits)}."
+    told = f": {'; '.join(verdict.saw)}" if verdict.saw else ""
+    counts = f" It is a {instance.rule.status} rule and concludes nothing." if outcome and verdict.draft else ""
+    return f"{verdict.id} {verdict.verdict}{told}.{counts}"
 
 
-def _titles(knowledge: Knowledge, names: Iterable[str]) -> str:
-    return ", ".join(knowledge.title(name) for name in sorted(names)) or "an answer"
-
-
-def outcomes(advice: Advice) -> Iterator[tuple[Instance, bool | None]]:
-    """Every rule of the steps that were reached, with its outcome."""
-    for step in advice.trace:
-        yield from zip(step.instances, step.outcomes, strict=True)
-
-
-def of_rules(advice: Advice, concerns: Callable[[Instance], bool]) -> tuple[str, ...]:
-    """What the rules of this concern did: those that fired first, then the waiting, then the silent ones."""
-    told = [(instance, outcome) for instance, outcome in outcomes(advice) if concerns(instance)]
-    told.sort(key=lambda each: (True, None, False).index(each[1]))
-    words = [of_instance(advice, instance, outcome) for instance, outcome in told[:MOST]]
+def of_rules(advice: Advice, concerns: Concern) -> tuple[str, ...]:
+    """What the rules of this concern did: those that fired first, then the waiting, then the failed ones."""
+    told = [each for each in rules_seen(advice) if concerns(each[1])]
+    told.sort(key=lambda each: (True, None, False).index(each[2]))
+    words = [of_instance(advice, *each) for each in told[:MOST]]
     if len(told) > MOST:
         words.append(f"{len(told) - MOST} more of these rules are in the trace.")
-    if not told:
-        words += sorted({f"The step '{step.title}' was not reached." for step in advice.knowledge.steps
-                         if step.id not in {each.step for each in advice.trace}
-                         and any(concerns(instance) for instance in advice.knowledge.instances.get(step.id, ()))})
-    return tuple(words)
+    return tuple(words) if told else tuple(_not_reached(advice, concerns))
+
+
+def _not_reached(advice: Advice, concerns: Concern) -> Iterator[str]:
+    reached = {each.step for each in advice.trace}
+    for step in advice.knowledge.steps:
+        if step.id not in reached and any(map(concerns, advice.knowledge.instances.get(step.id, ()))):
+            yield f"The step '{step.title}' was not reached."
 
 
 def of_rule(advice: Advice, rule: str, row: str = "") -> tuple[str, ...]:
-    """What one rule did; with a row, what it did for that row of its table."""
-    mine = {instance.id for instance, _ in outcomes(advice) if rule in {instance.id, instance.rule.id}}
+    """What one rule did; where it goes over a table that has this row, what it did for the row."""
     exact = f"{rule}/{row}"
-    return of_rules(advice, lambda instance: instance.id == exact if exact in mine else rule in {instance.id, instance.rule.id})
+    if any(instance.id == exact for _, instance, _ in rules_seen(advice)):
+        return of_rules(advice, lambda instance: instance.id == exact)
+    return of_rules(advice, lambda instance: named((instance.id,), rule))
+
+
+def named(rules: tuple[str, ...] | list[str], rule: str) -> bool:
+    """Whether the rule is among these, as written or for one row of its table."""
+    return any(rule in {each, each.partition("/")[0]} for each in rules)
 
 
 def of_fact(advice: Advice, name: str) -> tuple[str, ...]:
@@ -106,60 +81,49 @@ def of_fact(advice: Advice, name: str) -> tuple[str, ...]:
     computation = advice.knowledge.computations.get(name)
     if computation is not None:
         how = computation.how
-        names = how.inputs.values() if isinstance(how, Formed) else [each for _, each in how.by]
         by = f"formula {how.formula}" if isinstance(how, Formed) else f"table {how.table}"
-        words.append(f"It comes by {by} from {', '.join(_input(advice, each) for each in names)}.")
-    setting = of_rules(advice, lambda instance: any(isinstance(each, Sets) and each.name == name for each in instance.then))
-    return (*words, *setting)
+        inputs = list(how.inputs.values()) if isinstance(how, Formed) else [each for _, each in how.by]
+        words.append(f"It comes by {by} from {', '.join(_input(advice, each) for each in inputs)}.")
+    sets = of_rules(advice, lambda rule: any(isinstance(each, Sets) and each.name == name for each in rule.then))
+    return (*words, *sets)
 
 
 def _input(advice: Advice, name: str | float) -> str:
     if isinstance(name, float):
         return f"{name:g}"
-    fact = advice.facts.get(name)
-    return f"{advice.knowledge.title(name)} {fact_words(advice, fact)}"
-
-
-def fact_words(advice: Advice, fact: Fact | None) -> str:
-    """The value of a fact, or why it has none."""
-    if fact is None:
-        return "not reached"
-    if fact.value is not None:
-        return shown(advice.knowledge, fact.name, advice.record[fact.name])
-    return "void" if fact.origin is Origin.VOID else "not answered"
-
-
-def condition_words(knowledge: Knowledge, condition: Condition) -> str:
-    """A test or a `for` in words, term by term."""
-    names = {term.name for term in leaves(condition)}
-    several = len(names) > 1
-    return " and ".join(dict.fromkeys(
-        f"{knowledge.title(term.name)} {test_words(knowledge, term)}" if several else test_words(knowledge, term) for term in leaves(condition)))
-
-
-def of_demand(knowledge: Knowledge, demand: Demand) -> str:
-    """A demand in words: how strongly, what, for which, by which rule."""
-    strength = "must" if demand.must else f"should (level {demand.level})"
-    conditions = "; ".join(f"{knowledge.title(term.name)} {test_words(knowledge, term)}" for term in leaves(demand.for_))
-    void = f" It proves nothing: {_titles(knowledge, demand.void)} has no value." if demand.void else ""
-    whom = f", for {conditions}" if conditions else ""
-    return f"{demand.rule}: {knowledge.title(demand.property)} {strength} be {condition_words(knowledge, demand.test)}{whom}.{void}"
+    return f"{title_of(name, advice.knowledge)} {say_fact(advice.facts.get(name), advice.knowledge)}"
 
 
 def of_property(advice: Advice, name: str) -> tuple[str, ...]:
     """The demands on a property; where there are none, what the rules did that could make one."""
-    found = tuple(of_demand(advice.knowledge, demand) for demand in advice.specification.demands if demand.property == name)
-    return found or of_rules(advice, lambda instance: any(isinstance(each, Asks) and each.property == name for each in instance.then))
+    knowledge = advice.knowledge
+    demands = [demand for demand in advice.specification.demands if demand.property == name]
+    found = tuple(f"{demand.rule}: {say_demand(demand, knowledge)}." for demand in demands)
+    return found or of_rules(
+        advice, lambda rule: any(isinstance(each, Asks) and each.property == name for each in rule.then)
+    )
 
 
 def of_shortfalls(advice: Advice, judgement: Judgement, place: int) -> tuple[str, ...]:
     """Every demand that an item misses, with what it shows."""
-    return tuple(
-        f"{of_demand(advice.knowledge, each.demand)} Seen: "
-        f"{'not on its sheet' if each.seen is None else shown(advice.knowledge, each.demand.property, each.seen)}."
-        for each in judgement.shortfalls(place))
+    knowledge = advice.knowledge
+    found = []
+    for each in judgement.shortfalls(place):
+        domain = knowledge.properties[each.demand.property].domain
+        seen = "its sheet does not say" if each.seen is None else f"seen {say_value(domain, each.seen)}"
+        found.append(f"{each.demand.rule}: {say_demand(each.demand, knowledge)}; {seen}.")
+    return tuple(found)
 
 
-def names_of(condition: Condition) -> set[str]:
-    """The facts that a condition looks at."""
-    return {term.name for term in leaves(condition)}
+__all__ = [
+    "MOST",
+    "NOT_KNOWN",
+    "named",
+    "of_fact",
+    "of_property",
+    "of_rule",
+    "of_rules",
+    "of_shortfalls",
+    "written",
+    "written_fact",
+]

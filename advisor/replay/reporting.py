@@ -24,7 +24,10 @@ def summary(outcome: Outcome) -> str:
     differing, played = len(outcome.differing), len(outcome.played)
     differences = sum(len(each.differences) for each in outcome.differing)
     words = f"{_count(played, 'scenario')} replayed, " + (
-        f"{differing} of them {'differs' if differing == 1 else 'differ'} ({_count(differences, 'difference')})" if differing else "all as expected")
+        f"{differing} of them {'differs' if differing == 1 else 'differ'} ({_count(differences, 'difference')})"
+        if differing
+        else "all as expected"
+    )
     faulty = len({problem.file for problem in outcome.problems})
     return f"{words}; {_count(faulty, 'file')} could not be replayed." if faulty else f"{words}."
 
@@ -44,15 +47,26 @@ def _scenario_lines(played: Played) -> list[str]:
 def _difference_lines(difference: Difference) -> list[str]:
     what = f" {difference.what}" if difference.what else ""
     head = f"  line {difference.mark.line}: {difference.kind}{what}{'' if difference.read else ' (trace only)'}"
-    return [head, f"    expected {difference.expected}", f"    got      {difference.got}", *(f"      {each}" for each in difference.because)]
+    return [
+        head,
+        f"    expected {difference.expected}",
+        f"    got      {difference.got}",
+        *(f"      {each}" for each in difference.because),
+    ]
 
 
 def _coverage_lines(coverage: Coverage) -> list[str]:
     """The rules and rows that no scenario fires, by name."""
     lines: list[str] = []
-    for one, several, names in (("rule is", "rules are", coverage.rules), ("row of a rule is", "rows of rules are", coverage.rows)):
+    for one, several, names in (
+        ("rule is", "rules are", coverage.rules),
+        ("row of a rule is", "rows of rules are", coverage.rows),
+    ):
         if names:
-            lines += [f"{len(names)} {one if len(names) == 1 else several} fired by no scenario:", *(f"  {name}" for name in names)]
+            lines += [
+                f"{len(names)} {one if len(names) == 1 else several} fired by no scenario:",
+                *(f"  {name}" for name in names),
+            ]
     return lines or ["Every agreed rule is fired by a scenario, for every row of its table."]
 
 
@@ -63,7 +77,10 @@ def as_data(outcome: Outcome, coverage: Coverage | None = None) -> dict[str, Any
         "replayed": len(outcome.played),
         "differing": len(outcome.differing),
         "scenarios": [_scenario_data(each) for each in outcome.played],
-        "problems": [{"file": each.file, "line": each.line, "column": each.column, "message": str(each)} for each in outcome.problems],
+        "problems": [
+            {"file": each.file, "line": each.line, "column": each.column, "message": str(each)}
+            for each in outcome.problems
+        ],
     }
     if coverage is not None:
         data["never_fired"] = {"rules": list(coverage.rules), "rows": list(coverage.rows)}
@@ -73,12 +90,23 @@ def as_data(outcome: Outcome, coverage: Coverage | None = None) -> dict[str, Any
 def _scenario_data(played: Played) -> dict[str, Any]:
     scenario = played.scenario
     return {
-        "file": str(scenario.path), "title": scenario.title, "guards": scenario.guards, "state": str(played.advice.state),
+        "file": str(scenario.path),
+        "title": scenario.title,
+        "guards": scenario.guards,
+        "state": str(played.advice.state),
         "same": not played.differences,
         "differences": [
-            {"kind": each.kind, "what": each.what, "expected": str(each.expected), "got": str(each.got), "because": list(each.because),
-             "line": each.mark.line, "trace_only": not each.read}
-            for each in played.differences],
+            {
+                "kind": each.kind,
+                "what": each.what,
+                "expected": str(each.expected),
+                "got": str(each.got),
+                "because": list(each.because),
+                "line": each.mark.line,
+                "trace_only": not each.read,
+            }
+            for each in played.differences
+        ],
     }
 
 
@@ -87,13 +115,22 @@ def as_junit(outcome: Outcome) -> str:
     at_fault: dict[str, list[str]] = {}
     for problem in outcome.problems:
         at_fault.setdefault(problem.file, []).append(str(problem))
-    suite = ElementTree.Element("testsuite", {
-        "name": "scenarios", "tests": str(len(outcome.played) + len(at_fault)),
-        "failures": str(len(outcome.differing)), "errors": str(len(at_fault)), "skipped": "0"})
+    suite = ElementTree.Element(
+        "testsuite",
+        {
+            "name": "scenarios",
+            "tests": str(len(outcome.played) + len(at_fault)),
+            "failures": str(len(outcome.differing)),
+            "errors": str(len(at_fault)),
+            "skipped": "0",
+        },
+    )
     for played in outcome.played:
         case = _case(suite, str(played.scenario.path), played.scenario.name)
         if played.differences:
-            failure = ElementTree.SubElement(case, "failure", {"message": _clean("; ".join(map(str, played.differences)))})
+            failure = ElementTree.SubElement(
+                case, "failure", {"message": _clean("; ".join(map(str, played.differences)))}
+            )
             failure.text = _clean("\n".join(line for each in played.differences for line in _difference_lines(each)))
     for file, told in at_fault.items():
         error = ElementTree.SubElement(_case(suite, file, file), "error", {"message": _clean(told[0])})
@@ -103,7 +140,9 @@ def as_junit(outcome: Outcome) -> str:
 
 
 def _case(suite: ElementTree.Element, file: str, name: str) -> ElementTree.Element:
-    return ElementTree.SubElement(suite, "testcase", {"classname": "scenarios", "name": _clean(name), "file": _clean(file)})
+    return ElementTree.SubElement(
+        suite, "testcase", {"classname": "scenarios", "name": _clean(name), "file": _clean(file)}
+    )
 
 
 def _clean(text: str) -> str:

@@ -47,8 +47,11 @@ class Played:
     def fired(self) -> frozenset[str]:
         """The rules that fired and count, one for each row of their table."""
         return frozenset(
-            instance.id for step in self.advice.trace
-            for instance, outcome in zip(step.instances, step.outcomes, strict=True) if outcome and instance.binds)
+            instance.id
+            for step in self.advice.trace
+            for instance, outcome in zip(step.instances, step.outcomes, strict=True)
+            if outcome and instance.binds
+        )
 
 
 @dataclass(frozen=True, slots=True)
@@ -114,7 +117,9 @@ def read_scenario(path: Path, knowledge: Knowledge, problems: Problems) -> Scena
     tree = saved.tree
     guards, status = _text(tree, "guards", problems), _text(tree, "status", problems)
     if status and status not in _STATUSES:
-        problems.add(Problem.at(_at(tree, "status").mark, f"'{status}' is no status", f"use one of {', '.join(_STATUSES)}"))
+        problems.add(
+            Problem.at(_at(tree, "status").mark, f"'{status}' is no status", f"use one of {', '.join(_STATUSES)}")
+        )
     expectations = read_expectations(saved, knowledge, problems)
     if len(problems) > before:
         return None
@@ -142,4 +147,9 @@ def coverage(outcome: Outcome, knowledge: Iterable[Knowledge]) -> Coverage:
     rules = {each.rule.id for each in instances if each.id in fired}
     return Coverage(
         tuple(dict.fromkeys(each.rule.id for each in instances if each.rule.id not in rules)),
-        tuple(each for each in dict.fromkeys(each.id for each in instances if each.row is not None and each.rule.id in rules) if each not in fired))
+        tuple(
+            each
+            for each in dict.fromkeys(each.id for each in instances if each.row is not None and each.rule.id in rules)
+            if each not in fired
+        ),
+    )

@@ -1,0 +1,267 @@
+"""What would change the advice: open questions, assumptions and what they reach, and limits that are close."""
+
+import math
+from collections.abc import Iterator
+from dataclasses import dataclass
+
+from advisor.advice import Advice
+from advisor.conditions import Bound, Condition, Domain, FactRef, Record, holds, leaves
+from advisor.conditions.terms import names
+from advisor.explanation.seeing import hides, record_at, rules_seen
+from advisor.explanation.weighing import is_oil_row
+from advisor.explanation.words import (
+    OPERATORS,
+    domain_of,
+    margin,
+    say_fact,
+    say_margin,
+    say_source,
+    say_test,
+    say_value,
+    title_of,
+)
+from advisor.explanation.workings import HIDDEN, reads
+from advisor.knowledge import Asks, DocketRow, Instance, Refers, Sets
+from advisor.shelf import at_limit, judge
+from advisor.shelf.catalogue import reads as property_reads
+
+MOST_NEAR = 5
+_KELVINS = 100.0
+
+
+@dataclass(frozen=True, slots=True)
+class Open:
+    """A question without a value, and what waits for it."""
+
+    fact: str
+    title: str
+    ask: str
+    decides: str
+    dont_know: bool
+    waiting: tuple[str, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Assumed:
+    """An assumption with its reason, and the rows that another answer might change."""
+
+    fact: str
+    title: str
+    value: str
+    because: str
+    sources: tuple[str, ...]
+    keeps_open: bool
+    rows: tuple[str, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Near:
+    """A limit close to which the case lies: how far, and the rules whose outcome would turn there."""
+
+    fact: str
+    title: str
+    value: str
+    limit: str
+    margin: str
+    exact: bool
+    rules: tuple[str, ...]
+
+
+@dataclass(frozen=True, slots=True)
+class Changes:
+    """Everything that would, or might, change the advice."""
+
+    open: tuple[Open, ...]
+    assumed: tuple[Assumed, ...]
+    at_limit: tuple[str, ...]
+    near: tuple[Near, ...]
+    set_aside: tuple[str, ...]
+
+
+def what_would_change(advice: Advice) -> Changes:
+    """Open questions, assumptions, musts met with nothing to spare, the closest limits, and answers set aside."""
+    knowledge = advice.knowledge
+    at = tuple(dict.fromkeys(_say_at_limit(advice, each.what, each.name, each.rule) for each in advice.at_limit))
+    return Changes(
+        tuple(_open(advice)), tuple(_assumed(advice, name) for name in advice.assumptions), at,
+        tuple(near_limits(advice)), tuple(title_of(name, knowledge) for name in advice.set_aside))  # fmt: skip
+
+
+def _open(advice: Advice) -> Iterator[Open]:
+    for each in advice.open_questions:
+        question = advice.knowledge.facts[each.fact].question
+        waiting = tuple(_say_waiting(advice, name) for name in each.waiting)
+        ask = question.ask if question is not None else ""
+        yield Open(each.fact, title_of(each.fact, advice.knowledge), ask, each.decides, each.dont_know, waiting)
+
+
+def _say_waiting(advice: Advice, name: str) -> str:
+    rule = advice.knowledge.rules.get(name.partition("/")[0])
+    return f"{rule.title} ({name})" if rule is not None else title_of(name, advice.knowledge)
+
+
+def _assumed(advice: Advice, name: str) -> Assumed:
+    knowledge, assume = advice.knowledge, advice.knowledge.facts[name].assume
+    sources = tuple(say_source(each, knowledge) for each in assume.source) if assume is not None else ()
+    value = HIDDEN if hides(advice, name) else say_fact(advice.facts[name], knowledge)
+    rows = () if advice.withheld else rows_reached(advice, name)
+    return Assumed(name, title_of(name, knowledge), value, advice.facts[name].note, sources, name in advice.keeping_open, rows)
+
+
+def _say_at_limit(advice: Advice, what: str, name: str, rule: str) -> str:
+    """One line; the rule's demand is repeated for products, since they show which figure has nothing to spare."""
+    if what != "product" or advice.judgement is None:
+        return f"class {_class_title(advice, name)}: {_say_waiting(advice, rule)} would bar it for the least more"
+    judgement, place = advice.judgement, advice.judgement.catalogue.place[name]
+    said = [
+        say_test(demand.test, advice.knowledge)
+        for number, demand in enumerate(judgement.demands)
+        if demand.rule == rule and demand.must and at_limit(judgement, number, 1 << place)
+    ]
+    return f"{name}: {' and '.join(said) or 'a demand'}, with nothing to spare ({rule})"
+
+
+def _class_title(advice: Advice, name: str) -> str:
+    for line in advice.docket:
+        row = next(each for each in advice.knowledge.docket if each.id == line.row)
+        if name in line.values:
+            return say_value(advice.knowledge.properties[row.recommends].domain, name)
+    return name
+
+
+def rows_reached(advice: Advice, fact: str) -> tuple[str, ...]:
+    """The titles of the rows whose demands, limits or figures depend on a fact."""
+    facts = facts_reached(advice, fact)
+    touched = {
+        name for name, prop in advice.knowledge.properties.items()
+        if facts & {*property_reads(prop), prop.same_item}}  # fmt: skip
+    for step in advice.knowledge.instances.values():
+        for instance in step:
+            touched |= set(_touched(instance, facts))
+    return tuple(row.title for row in advice.knowledge.docket if _looks_at(advice, row) & touched or facts & set(row.facts))
+
+
+def _touched(instance: Instance, facts: set[str]) -> Iterator[str]:
+    read = bool(facts & set(names(instance.when)))
+    for each in instance.then if instance.binds else ():
+        if isinstance(each, Asks) and (read or facts & {*names(each.test), *names(each.for_)}):
+            yield each.property
+        elif isinstance(each, Sets) and (read or (isinstance(each.value, FactRef) and each.value.name in facts)):
+            yield each.name
+
+
+def facts_reached(advice: Advice, fact: str) -> set[str]:
+    """The fact and everything computed or concluded from it."""
+    found = {fact}
+    knowledge = advice.knowledge
+    while True:
+        more = {each.fact for each in knowledge.computations.values() if found & set(reads(each))}
+        for step in knowledge.instances.values():
+            for instance in step:
+                more |= set(_touched(instance, found)) & knowledge.facts.keys()
+        if more <= found:
+            return found
+        found |= more
+
+
+def _looks_at(advice: Advice, row: DocketRow) -> frozenset[str]:
+    judgement = advice.oils if is_oil_row(advice, row.recommends) else advice.choices
+    if not row.recommends or judgement is None:
+        return frozenset(row.demands)
+    if advice.knowledge.properties[row.recommends].concluded is not None:
+        return frozenset({row.recommends, "pair"})
+    return judgement.catalogue.names_with(row.recommends)
+
+
+def near_limits(advice: Advice) -> list[Near]:
+    """The closest limits of rules that bind: crossing one of them turns the rule."""
+    found: dict[tuple[str, float], tuple[float, str, list[str]]] = {}
+    for step, instance, outcome in rules_seen(advice):
+        if outcome is None or not instance.binds or not _matters(instance):
+            continue
+        record = record_at(advice, step) if step == "closing" else advice.record
+        for term, limit in _turning(instance.when, record, outcome=outcome):
+            seen = record[term.name]
+            assert isinstance(seen, float)  # noqa: S101 - turning terms are on numbers
+            if not hides(advice, term.name):
+                scaled = _scaled(seen, limit, domain_of(term.name, advice.knowledge))
+                found.setdefault((term.name, limit), (scaled, term.sign, []))[2].append(instance.id)
+    closest = sorted(found.items(), key=lambda each: (each[1][0], each[0]))[:MOST_NEAR]
+    return [_near(advice, name, limit, sign, rules) for (name, limit), (_, sign, rules) in closest]
+
+
+def _matters(instance: Instance) -> bool:
+    return any(isinstance(each, Refers | Sets) or (isinstance(each, Asks) and each.level <= 1) for each in instance.then)
+
+
+def _turning(when: Condition, record: Record, *, outcome: bool) -> Iterator[tuple[Bound, float]]:
+    """The thresholds on numbers of which crossing alone turns the outcome, with their limits."""
+    for term in leaves(when):
+        seen = record.get(term.name)
+        if not isinstance(term, Bound) or not isinstance(seen, float):
+            continue
+        limit = record.get(term.limit.name) if isinstance(term.limit, FactRef) else term.limit
+        if not isinstance(limit, float):
+            continue
+        beside = (limit, math.nextafter(limit, -math.inf), math.nextafter(limit, math.inf))
+        if any(holds(when, {**record, term.name: each}) is (not outcome) for each in beside):
+            yield term, limit
+
+
+def _scaled(seen: float, limit: float, domain: Domain) -> float:
+    if domain.unit in {"°C", "K"}:
+        return abs(seen - limit) / _KELVINS
+    if domain.kind != "number":
+        return math.inf
+    return abs(seen - limit) / max(abs(seen), abs(limit), 1e-12)
+
+
+def _near(advice: Advice, name: str, limit: float, sign: str, rules: list[str]) -> Near:
+    domain = domain_of(name, advice.knowledge)
+    seen = record_at(advice, "closing")[name]
+    away = margin(Bound(name, sign, limit), seen, {}) or 0.0
+    wanted = f"{OPERATORS[sign]} {say_value(domain, limit)}"
+    return Near(
+        name, title_of(name, advice.knowledge), say_value(domain, seen), wanted, say_margin(away, domain), away == 0,
+        tuple(rules))  # fmt: skip
+
+
+@dataclass(frozen=True, slots=True)
+class Clearance:
+    """The must that a product meets with least to spare."""
+
+    demand: str
+    seen: str
+    margin: str
+    rule: str
+    steps: float
+
+
+def least_clearance(advice: Advice, place: int) -> Clearance | None:
+    """The must on a number that a product meets with the fewest steps to spare."""
+    judgement, found = advice.judgement, []
+    if judgement is None:
+        return None
+    for demand, failing in zip(judgement.demands, judgement.failing, strict=True):
+        column = judgement.columns.get(demand.property)
+        seen = column.values[place] if column is not None else None
+        if not demand.must or demand.void or failing >> place & 1 or not isinstance(seen, float):
+            continue
+        _, excluded = judge(demand.for_, judgement.columns, 1 << place)
+        domain = judgement.domains[demand.property]
+        away = [each for term in leaves(demand.test) if (each := margin(term, seen, {})) is not None]
+        if not excluded >> place & 1 and away and domain.kind == "number":
+            limit = seen - min(away)
+            steps = _fraction(domain, seen, limit)
+            found.append(Clearance(
+                say_test(demand.test, advice.knowledge), say_value(domain, seen), say_margin(min(away), domain),
+                demand.rule, steps))  # fmt: skip
+    return min(found, key=lambda each: (each.steps, each.rule), default=None)
+
+
+def _fraction(domain: Domain, seen: float, limit: float) -> float:
+    """The distance in steps, not rounded."""
+    if domain.step is not None and domain.step.kind == "ratio":
+        return abs(math.log(limit / seen) / math.log(domain.step.size)) if seen > 0 and limit > 0 else math.inf
+    size = domain.step.size if domain.step is not None and domain.step.kind == "absolute" else 1.0
+    return abs(seen - limit) / size
