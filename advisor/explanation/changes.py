@@ -8,10 +8,11 @@ from advisor.advice import Advice
 from advisor.conditions import Bound, Condition, Domain, FactRef, Record, holds, leaves
 from advisor.conditions.terms import names
 from advisor.explanation.seeing import hides, record_at, rules_seen
-from advisor.explanation.weighing import is_oil_row
+from advisor.explanation.weighing import field_of
 from advisor.explanation.words import (
     OPERATORS,
     domain_of,
+    listed,
     margin,
     say_fact,
     say_margin,
@@ -81,9 +82,8 @@ class Changes:
 def what_would_change(advice: Advice) -> Changes:
     """Open questions, assumptions, musts met with nothing to spare, the closest limits, and answers set aside."""
     knowledge = advice.knowledge
-    at = tuple(dict.fromkeys(_say_at_limit(advice, each.what, each.name, each.rule) for each in advice.at_limit))
     return Changes(
-        tuple(_open(advice)), tuple(_assumed(advice, name) for name in advice.assumptions), at,
+        tuple(_open(advice)), tuple(_assumed(advice, name) for name in advice.assumptions), tuple(_at_limit(advice)),
         tuple(near_limits(advice)), tuple(title_of(name, knowledge) for name in advice.set_aside))  # fmt: skip
 
 
@@ -108,17 +108,27 @@ def _assumed(advice: Advice, name: str) -> Assumed:
     return Assumed(name, title_of(name, knowledge), value, advice.facts[name].note, sources, name in advice.keeping_open, rows)
 
 
-def _say_at_limit(advice: Advice, what: str, name: str, rule: str) -> str:
-    """One line; the rule's demand is repeated for products, since they show which figure has nothing to spare."""
-    if what != "product" or advice.judgement is None:
-        return f"class {_class_title(advice, name)}: {_say_waiting(advice, rule)} would bar it for the least more"
-    judgement, place = advice.judgement, advice.judgement.catalogue.place[name]
-    said = [
+def _at_limit(advice: Advice) -> Iterator[str]:
+    """One line for each demand that is met with nothing to spare, with the products or classes that meet it so."""
+    products: dict[tuple[str, str], list[str]] = {}
+    for each in advice.at_limit:
+        if each.what == "product":
+            products.setdefault((_met_at_limit(advice, each.name, each.rule), each.rule), []).append(each.name)
+        else:
+            yield f"{_class_title(advice, each.name)}: a little more, and it is barred by: {_say_waiting(advice, each.rule)}"
+    for (said, rule), items in products.items():
+        yield f"{listed(items, 'and')}: {said}, with nothing to spare ({rule})"
+
+
+def _met_at_limit(advice: Advice, name: str, rule: str) -> str:
+    judgement = advice.judgement
+    if judgement is None:
+        return rule
+    place = 1 << judgement.catalogue.place[name]
+    return " and ".join(
         say_test(demand.test, advice.knowledge)
         for number, demand in enumerate(judgement.demands)
-        if demand.rule == rule and demand.must and at_limit(judgement, number, 1 << place)
-    ]
-    return f"{name}: {' and '.join(said) or 'a demand'}, with nothing to spare ({rule})"
+        if demand.rule == rule and demand.must and at_limit(judgement, number, place))  # fmt: skip
 
 
 def _class_title(advice: Advice, name: str) -> str:
@@ -164,13 +174,16 @@ def facts_reached(advice: Advice, fact: str) -> set[str]:
         found |= more
 
 
-def _looks_at(advice: Advice, row: DocketRow) -> frozenset[str]:
-    judgement = advice.oils if is_oil_row(advice, row.recommends) else advice.choices
-    if not row.recommends or judgement is None:
-        return frozenset(row.demands)
-    if advice.knowledge.properties[row.recommends].concluded is not None:
-        return frozenset({row.recommends, "pair"})
-    return judgement.catalogue.names_with(row.recommends)
+def _looks_at(advice: Advice, row: DocketRow) -> set[str]:
+    """The properties that a row shows, or on which its candidates differ."""
+    if not row.recommends or row.section != "docket":
+        return set(row.demands)
+    field = field_of(advice, advice.line(row.id))
+    if field is None:
+        return {row.recommends, "pair"}
+    columns = field.judgement.columns
+    differing = {name for name, column in columns.items() if len({column.values[place] for place in field.misses}) > 1}
+    return {row.recommends} | differing
 
 
 def near_limits(advice: Advice) -> list[Near]:

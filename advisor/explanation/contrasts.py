@@ -5,9 +5,8 @@ from dataclasses import dataclass
 from difflib import get_close_matches
 
 from advisor.advice import Advice, Line
-from advisor.conditions import Bound, Coded, Condition, Domain, Value, leaves
-from advisor.explanation.ruling import Known, RuleReason, rule_reason
-from advisor.explanation.seeing import instances_of
+from advisor.conditions import Bound, Coded, Condition, Domain, Member, Value, leaves
+from advisor.explanation.ruling import RuleReason, Rules
 from advisor.explanation.weighing import Field, field_of, oil_title
 from advisor.explanation.words import (
     LEVELS,
@@ -18,6 +17,7 @@ from advisor.explanation.words import (
     say_steps,
     say_test,
     say_value,
+    title_of,
 )
 from advisor.explanation.workings import NotHere
 from advisor.knowledge import DocketRow
@@ -37,12 +37,15 @@ VERDICTS = {
 class Miss:
     """A demand that is missed: what it asks, what was seen, by how much, and the rule behind it.
 
+    `barred`: the demand rules out the very value that was seen.
     `shared`: the recommended class misses it as well, so it tells nothing against this one.
     """
 
+    property: str
     demand: str
     level: int
     strength: str
+    barred: bool
     for_: str
     seen: str
     margin: str
@@ -77,28 +80,29 @@ def why_not(advice: Advice, subject: str) -> WhyNot:
     return of_class(advice, line, value)
 
 
-def product(advice: Advice, place: int, known: Known | None = None) -> WhyNot:
+def product(advice: Advice, place: int, rules: Rules | None = None) -> WhyNot:
     """All demands that a product misses, musts first."""
     judgement = advice.judgement
     assert judgement is not None  # noqa: S101 - asked by the callers
     item = judgement.catalogue.items[place]
     ranked = next(each for each in advice.shelf if each.place == place)
-    known = known if known is not None else instances_of(advice)
-    misses = tuple(_miss(advice, each, known) for each in judgement.shortfalls(place))
+    said = rules if rules is not None else Rules(advice)
+    misses = tuple(_miss(said, each) for each in judgement.shortfalls(place))
     verdict = VERDICTS[ranked.verdict]
     if ranked.verdict is not Verdict.FALLS_SHORT:
         verdict += f": {say_steps(ranked.steps)}"
     return WhyNot(item.code, item.title, "product", verdict, misses)
 
 
-def _miss(advice: Advice, short: Shortfall, known: Known, *, shared: bool = False) -> Miss:
-    demand = short.demand
+def _miss(rules: Rules, short: Shortfall, *, shared: bool = False) -> Miss:
+    advice, demand = rules.advice, short.demand
     domain = advice.knowledge.properties[demand.property].domain
     return Miss(
-        say_test(demand.test, advice.knowledge), demand.level, LEVELS[demand.level],
+        title_of(demand.property, advice.knowledge), say_test(demand.test, advice.knowledge), demand.level, LEVELS[demand.level],
+        isinstance(demand.test, Member) and not demand.test.wanted,
         "" if not list(leaves(demand.for_)) else say_condition(demand.for_, advice.knowledge),
         _seen(demand, short.seen, say_value(domain, short.seen)),
-        _say_apart(demand, short.seen, advice), short.steps, rule_reason(advice, demand.rule, known), shared)  # fmt: skip
+        _say_apart(demand, short.seen, advice), short.steps, rules.reason(demand.rule), shared)  # fmt: skip
 
 
 def _seen(demand: Demand, seen: Coded | None, said: str) -> str:
@@ -151,7 +155,7 @@ def _names_of(row: DocketRow, domain: Domain, value: Value) -> set[str]:
     return {each.casefold() for each in found}
 
 
-def of_class(advice: Advice, line: Line, value: Coded) -> WhyNot:
+def of_class(advice: Advice, line: Line, value: Coded, rules: Rules | None = None) -> WhyNot:
     """What stands against a class of a row, beside the recommended one."""
     row = next(each for each in advice.knowledge.docket if each.id == line.row)
     domain = advice.knowledge.properties[row.recommends].domain
@@ -166,7 +170,7 @@ def of_class(advice: Advice, line: Line, value: Coded) -> WhyNot:
         reason = "does not apply" if line.skipped else "no usual oil has it" if field is not None else "not the conclusion of the rules: see why"
         return WhyNot(subject, said, "class", reason, ())
     closest = min(own, key=lambda place: _distance(field, place))
-    return WhyNot(subject, said, "class", _class_verdict(field, own, closest), tuple(_against(advice, field, own, closest)))
+    return WhyNot(subject, said, "class", _class_verdict(field, own, closest), tuple(_against(rules if rules is not None else Rules(advice), field, closest)))
 
 
 def _distance(field: Field, place: int) -> tuple[object, ...]:
@@ -186,16 +190,15 @@ def _class_verdict(field: Field, own: list[int], closest: int) -> str:
     return f"allowed, but {say_steps(field.steps(closest))}{among}"
 
 
-def _against(advice: Advice, field: Field, own: list[int], closest: int) -> Iterable[Miss]:
-    """What the closest candidate misses, and the musts that bar every other one of the class."""
-    judgement, known = field.judgement, instances_of(advice)
-    best = field.best()
+def _against(rules: Rules, field: Field, closest: int) -> Iterable[Miss]:
+    """What the closest candidate of the class misses."""
+    judgement, best = field.judgement, field.best()
     numbers = sorted(field.misses[closest], key=lambda each: judgement.demands[each].level)
     for number in numbers:
         demand = judgement.demands[number]
         short = Shortfall(demand, _value(judgement, demand, closest), field.misses[closest][number])
         shared = bool(best) and all(field.misses[place].get(number, 0) >= short.steps for place in best)
-        yield _miss(advice, short, known, shared=shared)
+        yield _miss(rules, short, shared=shared)
 
 
 def _value(judgement: Judgement, demand: Demand, place: int) -> Coded | None:

@@ -6,8 +6,7 @@ from dataclasses import dataclass
 from advisor.advice import Advice, Line
 from advisor.conditions import Condition, Every, FactRef, holds
 from advisor.conditions.terms import names
-from advisor.explanation.ruling import Known, RuleReason, rule_reason, why_not_rule
-from advisor.explanation.seeing import instances_of
+from advisor.explanation.ruling import RuleReason, Rules, why_not_rule
 from advisor.explanation.weighing import Field, field_of
 from advisor.explanation.words import say_condition, say_demand, say_fact, say_test, say_value, title_of
 from advisor.explanation.workings import NotHere, Premise, premise
@@ -46,7 +45,7 @@ class Why:
     notes: tuple[str, ...]
 
 
-def why(advice: Advice, row_id: str) -> Why:
+def why(advice: Advice, row_id: str, rules: Rules | None = None) -> Why:
     """Why this row of the docket, or this quantity, is what it is.
 
     Raises:
@@ -58,11 +57,11 @@ def why(advice: Advice, row_id: str) -> Why:
     if advice.withheld:
         return Why(row_id, rows[row_id].title, WITHHELD, (), (), (), (), ())
     line = advice.line(row_id)
-    field = field_of(advice, line)
-    reasons, short = _weighed(advice, field) if field is not None else (_plain(advice, line), ())
+    field, said = field_of(advice, line), rules if rules is not None else Rules(advice)
+    reasons, short = _weighed(advice, field, said) if field is not None else (_plain(advice, line, said), [])
     return Why(
         row_id, line.title, say_line(advice, line), tuple(reasons), tuple(premise(advice, name) for name in line.facts),
-        tuple(short), tuple(title_of(each, advice.knowledge) for each in line.waits), _notes(advice, line))  # fmt: skip
+        tuple(short), tuple(title_of(each, advice.knowledge) for each in line.waits), _notes(advice, line, said))  # fmt: skip
 
 
 def say_line(advice: Advice, line: Line) -> str:
@@ -96,9 +95,9 @@ def _say_facts(advice: Advice, names_: tuple[str, ...]) -> str:
     return ", ".join(f"{title_of(name, advice.knowledge)} {each}" for name, each in zip(names_, said, strict=True))
 
 
-def _weighed(advice: Advice, field: Field) -> tuple[list[Reason], list[str]]:
+def _weighed(advice: Advice, field: Field, rules: Rules) -> tuple[list[Reason], list[str]]:
     """The demands that tell candidates apart, decisive ones first; and those that every candidate misses alike."""
-    deciding, known = field.decisive(), instances_of(advice)
+    deciding = field.decisive()
     best = field.best()
     reasons, short = [], []
     for number, demand in enumerate(field.judgement.demands):
@@ -109,7 +108,7 @@ def _weighed(advice: Advice, field: Field) -> tuple[list[Reason], list[str]]:
             short.append(_short(advice, field, number, best))
         against = _against(field, number)
         if about or (not alike and (number in deciding or against)):
-            reason = rule_reason(advice, demand.rule, known)
+            reason = rules.reason(demand.rule)
             decides = number in deciding
             reasons.append(Reason(say_demand(demand, advice.knowledge), demand.level, reason, decides, against))
     reasons.sort(key=lambda each: (not each.decides, each.level, -len(each.against)))
@@ -132,26 +131,25 @@ def _against(field: Field, number: int) -> tuple[str, ...]:
     return tuple(label for label, all_miss in by_value.items() if all_miss)
 
 
-def _plain(advice: Advice, line: Line) -> list[Reason]:
+def _plain(advice: Advice, line: Line, rules: Rules) -> list[Reason]:
     """The demands of a row that recommends nothing, and the rules that set what it shows."""
-    known = instances_of(advice)
     found = [
-        Reason(say_demand(demand, advice.knowledge), demand.level, rule_reason(advice, demand.rule, known), demand.must, ())
+        Reason(say_demand(demand, advice.knowledge), demand.level, rules.reason(demand.rule), demand.must, ())
         for demand in line.demands]  # fmt: skip
     row = next(each for each in advice.knowledge.docket if each.id == line.row)
     for name in (row.recommends, *row.facts):
-        found += _setters(advice, name, line, known)
+        found += _setters(advice, name, line, rules)
     return sorted(found, key=lambda each: (not each.decides, each.level))
 
 
-def _setters(advice: Advice, name: str, line: Line, known: Known) -> Iterator[Reason]:
+def _setters(advice: Advice, name: str, line: Line, rules: Rules) -> Iterator[Reason]:
     """The fired rules that set a fact or a property of some lubricants to what the row shows."""
     shown = {advice.knowledge.domain(name).code(value) for value in line.values} if name else set()
-    for _, instance, outcome in known.values():
+    for _, instance, outcome in rules.seen.values():
         fired = outcome is True and instance.binds
         for each in instance.then if fired else ():
             if isinstance(each, Sets) and each.name == name and (not shown or each.value in shown):
-                reason = rule_reason(advice, instance.id, known)
+                reason = rules.reason(instance.id)
                 yield Reason(_say_set(advice, each), 0, reason, decides=True, against=())
 
 
@@ -163,20 +161,20 @@ def _say_set(advice: Advice, sets: Sets) -> str:
     return f"{title_of(sets.name, knowledge)}: {said}{for_}"
 
 
-def _notes(advice: Advice, line: Line) -> tuple[str, ...]:
+def _notes(advice: Advice, line: Line, rules: Rules) -> tuple[str, ...]:
     """Why a row is empty, where it is."""
     row = next(each for each in advice.knowledge.docket if each.id == line.row)
     if not line.skipped:
         return ()
     if row.section != "docket":
-        return tuple(_guard(advice, row.shown_if))
+        return tuple(_guard(advice, row.shown_if, rules))
     return (f"only for {advice.knowledge.properties[row.recommends].of}",)
 
 
-def _guard(advice: Advice, shown_if: Condition) -> Iterator[str]:
+def _guard(advice: Advice, shown_if: Condition, rules: Rules) -> Iterator[str]:
     """What a figure's guard saw: the rules that would have opened it, and why they did not."""
     wanted = set(names(shown_if))
-    for _, instance, outcome in instances_of(advice).values():
+    for _, instance, outcome in rules.seen.values():
         if outcome is not True and any(isinstance(each, Sets) and each.name in wanted for each in instance.then):
             verdict = why_not_rule(advice, instance.id)
             yield f"{instance.rule.title} ({instance.id}) did not hold: {'; '.join(verdict.saw or verdict.waits)}"

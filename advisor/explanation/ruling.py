@@ -1,6 +1,6 @@
 """Rules of a case in words: why one fired, or why it did not."""
 
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterator
 from dataclasses import dataclass
 
 from advisor.advice import Advice
@@ -11,8 +11,6 @@ from advisor.explanation.words import fill_in, say_failure, say_source, say_term
 from advisor.explanation.workings import HIDDEN, NotHere, Premise, premise
 from advisor.knowledge import Asks, Instance, Sets
 from advisor.knowledge.rules import PLACEHOLDER
-
-Known = Mapping[str, tuple[str, Instance, bool | None]]
 
 
 @dataclass(frozen=True, slots=True)
@@ -78,25 +76,47 @@ def _failure(advice: Advice, term: Term, record: Record) -> str:
     return f"{title_of(term.name, advice.knowledge)}: {HIDDEN}" if hides(advice, term.name) else say_failure(term, advice.knowledge, record)
 
 
-def rule_reason(advice: Advice, rule_id: str, known: Known | None = None) -> RuleReason:
-    """A rule of this case in words.
+class Rules:
+    """The rules that a case went through, each put into words once."""
 
-    Raises:
-        NotHere: where no visited step has that rule.
-    """
-    found = (known if known is not None else instances_of(advice)).get(rule_id)
-    if found is None:
-        raise NotHere(f"'{rule_id}' is no rule of a step that this case went through.")
-    step, instance, _ = found
-    record, knowledge = record_at(advice, step), advice.knowledge
-    sources = (*instance.rule.source, *(instance.row.source if instance.row else ()))
-    return RuleReason(
-        instance.id, instance.rule.id, instance.rule.title, step,
-        fill_in(instance.rule.because, instance, advice.facts, record, knowledge),
-        fill_in(instance.rule.limits, instance, advice.facts, record, knowledge),
-        tuple(_term(advice, term, record) for term in holding(instance.when, record)),
-        tuple(dict.fromkeys(say_source(each, knowledge) for each in sources)),
-        tuple(premise(advice, name, record) for name in _used(instance, advice)))  # fmt: skip
+    def __init__(self, advice: Advice) -> None:
+        self.advice = advice
+        self.seen = instances_of(advice)
+        self._said: dict[str, RuleReason] = {}
+        self._premises: dict[str, Premise] = {}
+
+    def reason(self, rule_id: str) -> RuleReason:
+        """A rule of this case in words.
+
+        Raises:
+            NotHere: where no visited step has that rule.
+        """
+        if rule_id not in self._said:
+            if rule_id not in self.seen:
+                raise NotHere(f"'{rule_id}' is no rule of a step that this case went through.")
+            step, instance, _ = self.seen[rule_id]
+            self._said[rule_id] = self._say(step, instance)
+        return self._said[rule_id]
+
+    def _say(self, step: str, instance: Instance) -> RuleReason:
+        advice, knowledge = self.advice, self.advice.knowledge
+        record = record_at(advice, step)
+        sources = (*instance.rule.source, *(instance.row.source if instance.row else ()))
+        return RuleReason(
+            instance.id, instance.rule.id, instance.rule.title, step,
+            self._fill(instance.rule.because, instance, record), self._fill(instance.rule.limits, instance, record),
+            tuple(_term(advice, term, record) for term in holding(instance.when, record)),
+            tuple(dict.fromkeys(say_source(each, knowledge) for each in sources)),
+            tuple(self._premise(name, record) for name in _used(instance, advice)))  # fmt: skip
+
+    def _fill(self, text: str, instance: Instance, record: Record) -> str:
+        hidden = {name: fact for name, fact in self.advice.facts.items() if not hides(self.advice, name)}
+        return fill_in(text, instance, hidden if self.advice.withheld else self.advice.facts, record, self.advice.knowledge)
+
+    def _premise(self, name: str, record: Record) -> Premise:
+        if name not in self._premises:
+            self._premises[name] = premise(self.advice, name, record)
+        return self._premises[name]
 
 
 def holding(condition: Condition, record: Record) -> Iterator[Term]:

@@ -108,7 +108,8 @@ def listed(words: Sequence[str], last: str = "or") -> str:
     >>> listed(["a", "b", "c"])
     'a, b or c'
     """
-    return words[0] if len(words) == 1 else f"{', '.join(words[:-1])} {last} {words[-1]}" if words else "nothing"
+    comma = "; " if any("," in word for word in words) else ", "
+    return words[0] if len(words) == 1 else f"{comma.join(words[:-1])} {last} {words[-1]}" if words else "nothing"
 
 
 def say_wanted(term: Term, knowledge: Knowledge, record: Record) -> str:
@@ -121,7 +122,7 @@ def say_wanted(term: Term, knowledge: Knowledge, record: Record) -> str:
     words = listed(_in_order(domain, term.among))
     if isinstance(term, Ticked):
         return f"with {words} ticked" if term.wanted else f"without {words}"
-    return words if term.wanted else f"not {words}"
+    return words if term.wanted else f"other than {words}"
 
 
 def _say_bound(term: Bound, domain: Domain, knowledge: Knowledge, record: Record) -> str:
@@ -252,6 +253,6 @@ def say_source(citation: Citation, knowledge: Knowledge) -> str:
     title = source.title if source else citation.id
     sure = HOW_SURE.get(citation.checked, citation.checked)
     where = f", {citation.where}" if citation.where else ""
-    return f"{title}{where}" + ("" if sure in title else f" [{sure}]")
+    return f"{title}{where}" + ("" if sure in title else f" ({sure})")
 
 

@@ -116,7 +116,7 @@ def _sources(advice: Advice, cited: tuple[Citation, ...], formula: Formula | Non
     found = [say_source(each, advice.knowledge) for each in cited]
     if formula is not None and formula.source != formula.subject:
         sure = {"yes": "read", "common practice": "no source"}.get(formula.checked, formula.checked)
-        found.insert(0, formula.source + ("" if sure in formula.source else f" [{sure}]"))
+        found.insert(0, formula.source + ("" if sure in formula.source else f" ({sure})"))
     return tuple(dict.fromkeys(found))
 
 
@@ -139,7 +139,9 @@ def _looked_up(advice: Advice, computation: Computation) -> Working:
 def _no_row(how: LookedUp, table: Table) -> str:
     if table.matrix:
         return "the entry where they meet"
-    return "no row" if how.otherwise is None else f"no row, so the table gives {how.otherwise}"
+    if how.otherwise is None:
+        return "no row"
+    return f"no row, so {how.otherwise:g} is taken" if isinstance(how.otherwise, float) else f"no row, so {how.otherwise} is taken"
 
 
 def rows_met(how: LookedUp, table: Table, facts: Mapping[str, Fact]) -> tuple[Row, ...]:

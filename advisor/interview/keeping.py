@@ -9,6 +9,7 @@ import time
 import unicodedata
 from collections.abc import Sequence
 from dataclasses import dataclass
+from datetime import datetime
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -38,6 +39,11 @@ class Kept:
     title: str
     answered: int
     when: float
+
+    @property
+    def touched(self) -> str:
+        """When it was saved last."""
+        return f"{datetime.fromtimestamp(self.when):%Y-%m-%d %H:%M}"  # noqa: DTZ006 - the clock on the user's wall
 
 
 class Keeper:

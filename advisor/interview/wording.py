@@ -4,11 +4,12 @@ import math
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 
-from advisor.advice import Advice, Line, Ranked, falls_on
+from advisor.advice import Advice, Line, Ranked, State, falls_on
 from advisor.case import Answer
 from advisor.conditions import Bound, Coded, Condition, Domain, Either, Every, Member, Stated, Ticked, Value
+from advisor.explanation.contrasts import VERDICTS
 from advisor.explanation.seeing import instances_of
-from advisor.explanation.words import fill_in, harmless, say_value
+from advisor.explanation.words import fill_in, say_value
 from advisor.knowledge import Declaration, Knowledge
 from advisor.quantities import show
 from advisor.shelf import Shortfall, Verdict
@@ -224,14 +225,15 @@ def answer_shown(declaration: Declaration, given: Answer) -> str:
     """An answer as one line: what was typed, what it reads as, or what stands for a don't know."""
     if given.value is None:
         assumed = declaration.assume
-        return f"don't know, taken as {_plain(declaration, assumed.value)}" if assumed else "don't know"
-    text = _plain(declaration, given.value)
+        return f"don't know, taken as {shown_value(declaration, assumed.value)}" if assumed else "don't know"
+    text = shown_value(declaration, given.value)
     if declaration.domain.kind == "number" and given.estimate:
         return f"{given.typed.replace('_', ' ')}, about {text}"
     return text
 
 
-def _plain(declaration: Declaration, value: Value) -> str:
+def shown_value(declaration: Declaration, value: Value) -> str:
+    """A value of a question as people read it."""
     return exactly(value, declaration.domain.unit) if isinstance(value, float) else declaration.domain.label(value)
 
 
@@ -244,3 +246,49 @@ def exactly(value: float, unit: str) -> str:
     text = f"{value:,.2f}".replace(",", " ") if abs(value) >= 1 or not value else f"{value:.4g}"
     text = text.rstrip("0").rstrip(".") if "." in text else text
     return f"{text} {unit}".strip() if math.isfinite(value) else str(value)
+
+
+# ---- what came out ---------------------------------------------------------------------------------------------
+
+
+def outcome_text(advice: Advice) -> str:
+    """The outcome in two or three sentences."""
+    if advice.withheld:
+        return "The interview ends here: no lubricant is named. A person must decide; read what to mind before anything is touched."
+    found = [_STATES[advice.state], f"{count_text(advice)[0].upper()}{count_text(advice)[1:]}."]
+    first = next(iter(advice.shelf), None)
+    if first is not None and first.verdict in {Verdict.FITS, Verdict.SECOND_BEST}:
+        found.append(f"First on the shelf: {first.item}, {VERDICTS[first.verdict]}.")
+    elif advice.state is not State.OPEN:
+        found.append("No product on the shelf fits.")
+    unknown = [advice.knowledge.title(each.fact) for each in advice.open_questions if each.dont_know]
+    if unknown:
+        found.append(f"Not known, and it matters: {', '.join(unknown)}.")
+    if advice.keeping_open:
+        found.append(f"Assumed, to be made sure of: {', '.join(advice.knowledge.title(name) for name in advice.keeping_open)}.")
+    for conflict in advice.conflicts:
+        found.append(f"Cannot be had together: {', '.join(conflict.rules)}.")
+    return " ".join(found)
+
+
+_STATES = {
+    State.SETTLED: "Settled.", State.OPEN: "Still open.", State.REFERRED: "A person must decide.",
+    State.CONFLICT: "The demands cannot all be met."}
+
+
+def cautions_told(advice: Advice) -> list[str]:
+    """The cautions in full."""
+    return [advice.knowledge.cautions[each.caution].text for each in advice.cautions]
+
+
+def referrals_told(advice: Advice) -> list[tuple[str, str]]:
+    """To whom the case goes, and what is to be told."""
+    known = [advice.knowledge.referrals[name] for name in dict.fromkeys(each.to for each in advice.referrals)]
+    return [(each.to, each.text) for each in known]
+
+
+def care_text(advice: Advice) -> str:
+    """How much there is to mind, in one line."""
+    parts = [f"goes to {to}" for to, _ in referrals_told(advice)]
+    parts += [f"! {len(advice.cautions)} cautions, F3 lists them"] if advice.cautions else []
+    return "; ".join(parts) or "nothing special so far"

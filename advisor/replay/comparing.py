@@ -4,7 +4,7 @@ import math
 from collections.abc import Iterable
 from functools import singledispatch
 
-from advisor.advice import Advice
+from advisor.advice import Advice, Ranked
 from advisor.case import Origin
 from advisor.explanation.seeing import rules_seen
 from advisor.knowledge import Instance, Refers, Warns
@@ -33,7 +33,7 @@ from advisor.replay.expectations import (
     StateIs,
     WithheldIs,
 )
-from advisor.shelf import Verdict
+from advisor.shelf import Judgement, Verdict
 from advisor.specification import Conflict
 
 
@@ -81,17 +81,10 @@ def _conflict_words(conflict: Conflict) -> str:
 def _withheld(expected: WithheldIs, advice: Advice) -> Difference | None:
     if advice.withheld is expected.withheld:
         return None
-    because = [
-        f"{each.rule} refers to {each.to}{' and withholds' if each.withhold else ''}." for each in advice.referrals
-    ]
-    because += (
-        []
-        if because
-        else reasons.of_rules(
-            advice, lambda rule: any(isinstance(each, Refers) and each.withhold for each in rule.then)
-        )
+    because = reasons.of_rules(
+        advice, lambda rule: any(isinstance(each, Refers) and each.withhold for each in rule.then)
     )
-    return Difference("withheld", "", _yes(expected.withheld), _yes(advice.withheld), tuple(because), expected.mark)
+    return Difference("withheld", "", _yes(expected.withheld), _yes(advice.withheld), because, expected.mark)
 
 
 def _yes(outcome: bool) -> str:
@@ -166,21 +159,22 @@ def _product(expected: ProductIs, advice: Advice) -> Difference | None:
     ranked = next((each for each in advice.shelf if each.item == expected.item), None)
     if ranked is None or advice.judgement is None:
         return Difference("products", expected.item, wanted, "no verdict", ("Products are withheld.",), expected.mark)
-    missed = [each for each in advice.judgement.shortfalls(ranked.place) if each.demand.must]
-    if expected.verdict is Verdict.UNPROVEN:
-        missed = [each for each in missed if each.seen is None or each.demand.void]
-    rules = list(dict.fromkeys(each.demand.rule for each in missed))
+    rules = _deciding(advice.judgement, ranked)
     if ranked.verdict is expected.verdict and (not expected.rule or reasons.named(rules, expected.rule)):
         return None
-    got = (
-        f"{ranked.verdict} by {', '.join(rules)}"
-        if rules and ranked.verdict in {Verdict.FALLS_SHORT, Verdict.UNPROVEN}
-        else f"{ranked.verdict}"
-    )
+    got = f"{ranked.verdict}{' by ' if rules else ''}{', '.join(rules)}"
     because = reasons.of_shortfalls(advice, advice.judgement, ranked.place)
     if expected.rule and not reasons.named(rules, expected.rule):
         because = (*reasons.of_rule(advice, expected.rule), *because)
     return Difference("products", expected.item, wanted, got, because, expected.mark)
+
+
+def _deciding(judgement: Judgement, ranked: Ranked) -> list[str]:
+    """The rules whose musts a product fails, or whose musts its sheet does not prove."""
+    missed = [each for each in judgement.shortfalls(ranked.place) if each.demand.must]
+    unproven = ranked.verdict is Verdict.UNPROVEN
+    chosen = [each for each in missed if (each.seen is None or bool(each.demand.void)) is unproven]
+    return list(dict.fromkeys(each.demand.rule for each in chosen))
 
 
 @compare.register

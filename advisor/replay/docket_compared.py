@@ -1,7 +1,7 @@
 """Compare the docket, its demands, the codes and the quantities with what a scenario expects of them."""
 
 from advisor.advice import Advice, Line
-from advisor.conditions import Value, holds
+from advisor.conditions import Domain, Value, holds
 from advisor.designations import Designer, din_serves, iso_serves
 from advisor.explanation.words import say_test
 from advisor.quantities import show
@@ -119,9 +119,11 @@ def _barring(advice: Advice, name: str, value: Value) -> list[str]:
     line = _line(advice, name)
     rules = list((line.barred or {}).get(value, ())) if line is not None else []
     coded = advice.knowledge.properties[name].domain.code(value)
-    for demands in falling(advice, name)[:1]:
-        rules += [demand.rule for demand in demands if demand.must and holds(demand.test, {name: coded}) is False]
-    return list(dict.fromkeys(rules))
+    always = [
+        {demand.rule for demand in _musts(demands) if holds(demand.test, {name: coded}) is False}
+        for demands in falling(advice, name)
+    ]
+    return list(dict.fromkeys([*rules, *sorted(set.intersection(*always))]))
 
 
 def asks_for(expected: AsksFor, advice: Advice) -> Difference | None:
@@ -256,7 +258,7 @@ def fill(expected: FillIs, advice: Advice) -> Difference | None:
         if line is not None
         else "no fill"
     )
-    because = tuple(word for name in row.facts for word in reasons.of_fact(advice, name))
+    because = tuple(dict.fromkeys(word for name in row.facts for word in reasons.of_fact(advice, name)))
     return Difference(
         "fill", expected.part, f"{show(expected.low, '%')} to {show(expected.high, '%')}", got, because, expected.mark
     )

@@ -1,7 +1,7 @@
 """Demands as they fall on what is recommended: for every combination of recommended classes, what is asked of it."""
 
 from collections.abc import Iterable, Iterator
-from itertools import product
+from itertools import pairwise, product
 
 from advisor.advice import Advice
 from advisor.conditions import (
@@ -72,20 +72,19 @@ def asks(demands: Iterable[Demand], value: Value, domain: Domain) -> bool:
         return False
     if len(left) == 1:
         return True
-    if none := nothing(domain):
-        if domain.code(none) in left:
-            return False
+    if (none := nothing(domain)) and domain.code(none) in left:
+        return False
     if domain.ordered:
         return wanted == left[0] != everything[0] or wanted == left[-1] != everything[-1]
-    return any(
-        isinstance(term, Member) and term.wanted and wanted in term.among for test in tests for term in leaves(test)
-    )
+    terms = [term for test in tests for term in leaves(test)]
+    return any(isinstance(term, Member) and term.wanted and wanted in term.among for term in terms)
 
 
 def turns_against(demand: Demand, domain: Domain) -> bool:
-    """Whether a demand leaves `none`, but not everything."""
+    """Whether a demand leaves `none`, but not the most there is; on choices without order: nothing else."""
     left = [each for each in _all(domain) if _meets_test(demand.test, each)]
-    return domain.code(nothing(domain)) in left and len(left) < len(_all(domain))
+    none = domain.code(nothing(domain))
+    return none in left and (_all(domain)[-1] not in left if domain.ordered else len(left) == 1)
 
 
 def _meets_test(test: Condition, coded: Coded) -> bool:
@@ -110,15 +109,9 @@ def say_at_least(demands: Iterable[Demand], test: Condition, domain: Domain) -> 
 
 def _samples(tests: list[Condition]) -> Iterator[float]:
     """Numbers at, between and beyond all limits: enough to compare thresholds."""
-    limits = sorted(
-        {
-            term.limit
-            for test in tests
-            for term in leaves(test)
-            if isinstance(term, Bound) and isinstance(term.limit, float)
-        }
-    )
+    terms = [term for test in tests for term in leaves(test)]
+    limits = sorted({term.limit for term in terms if isinstance(term, Bound) and isinstance(term.limit, float)})
     yield from limits
-    yield from ((low + high) / 2 for low, high in zip(limits, limits[1:], strict=False))
+    yield from ((low + high) / 2 for low, high in pairwise(limits))
     yield limits[0] - 1
     yield limits[-1] + 1

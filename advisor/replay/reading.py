@@ -50,7 +50,7 @@ def read_expectations(saved: Saved, knowledge: Knowledge, problems: Problems) ->
         reader.problem(
             saved.tree.mark if tree is None else tree.mark,
             "nothing is expected of this case",
-            "expect: {state: settled}",
+            "Write at least expect: {state: settled}",
         )
         return ()
     for key, node in tree.items():
@@ -59,7 +59,7 @@ def read_expectations(saved: Saved, knowledge: Knowledge, problems: Problems) ->
             reader.problem(
                 tree.key_marks[key],
                 f"'{key}' is nothing that can be expected",
-                nearest(key, reader.readers) or f"known: {', '.join(reader.readers)}",
+                nearest(key, reader.readers) or f"Known: {', '.join(reader.readers)}",
             )
             continue
         reader.key = key
@@ -91,16 +91,16 @@ class _Reader(Checker):
             "demands": lambda node: self.each(node, self._demand),
             "codes": lambda node: self.each(node, self._code),
             "cautions": lambda node: self.names(
-                node, know.cautions, "caution", lambda at, name: CautionIs(at, name, True)
+                node, know.cautions, "caution", lambda at, name: CautionIs(at, name, given=True)
             ),
             "no_cautions": lambda node: self.names(
-                node, know.cautions, "caution", lambda at, name: CautionIs(at, name, False)
+                node, know.cautions, "caution", lambda at, name: CautionIs(at, name, given=False)
             ),
             "referrals": lambda node: self.names(
-                node, know.referrals, "referral", lambda at, name: ReferralIs(at, name, True)
+                node, know.referrals, "referral", lambda at, name: ReferralIs(at, name, given=True)
             ),
             "no_referrals": lambda node: self.names(
-                node, know.referrals, "referral", lambda at, name: ReferralIs(at, name, False)
+                node, know.referrals, "referral", lambda at, name: ReferralIs(at, name, given=False)
             ),
             "products": lambda node: self.each(node, self._product),
             "open_questions": lambda node: self.names(node, asked, "question", LeavesOpen),
@@ -121,7 +121,7 @@ class _Reader(Checker):
         if str(name) not in self.knowledge.properties:
             known = self.knowledge.properties
             rows = {row.id: row.recommends for row in self.knowledge.docket if row.recommends}
-            hint = f"write {rows[name]}, the property that the row shows" if str(name) in rows else nearest(name, known)
+            hint = f"Write {rows[name]}, the property that the row shows" if str(name) in rows else nearest(name, known)
             raise self.problem(name.mark, f"'{name}' is no property that is known here", hint)
         return self.knowledge.properties[str(name)].domain
 
@@ -130,21 +130,18 @@ class _Reader(Checker):
         domain = self._domain(name)
         shown = [row.recommends for row in self.knowledge.docket if row.recommends]
         if str(name) not in shown:
-            raise self.problem(name.mark, f"no row of the docket recommends '{name}'", f"known: {', '.join(shown)}")
+            raise self.problem(name.mark, f"no row of the docket recommends '{name}'", f"Known: {', '.join(shown)}")
         return domain
 
     def _values(self, node: Node, domain: Domain, *trail: str) -> tuple[Value, ...]:
         if not isinstance(node, Sequence) or not node:
-            raise self.problem(node.mark, "a list with at least one value is expected here", "[a, b]", *trail)
+            raise self.problem(node.mark, "a list with at least one value is expected here", "Write [a, b]", *trail)
+        single = replace(domain, kind="choice") if domain.kind == "several" else domain
         found: list[Value] = []
         faulty = False
         for each in node:
             try:
-                found.append(
-                    value(
-                        each, replace(domain, kind="choice") if domain.kind == "several" else domain, self.scope(*trail)
-                    )
-                )
+                found.append(value(each, single, self.scope(*trail)))
             except Mistyped:
                 faulty = True
         if faulty:
@@ -170,14 +167,14 @@ class _Reader(Checker):
         about, within = self.number(node["about"]), node.get("within")
         if not isinstance(within, Scalar):
             raise self.problem(
-                node.mark, "'about' needs 'within'", "{about: 0.15, within: 0.01} or {about: 0.15, within: 2 %}", name
+                node.mark, "'about' needs 'within'", "Write {about: 0.15, within: 0.01} or {about: 0.15, within: 2 %}", name
             )
         text = within.strip()
         share = text.removesuffix("%").strip() if text.endswith("%") else ""
         apart = self.number(Scalar(share or text, within.mark)) * (abs(about) / 100 if share else 1)
         if apart <= 0:
             raise self.problem(
-                within.mark, "'within' is more than nothing", "leave it out and write the value alone", name
+                within.mark, "'within' must be more than nothing", "Leave it out and write the value alone", name
             )
         return FactWithin(node.mark, name, about - apart, about + apart)
 
@@ -187,7 +184,7 @@ class _Reader(Checker):
             return [Recommends(node.mark, name, self._values(node, domain, name))]
         self.only_keys(node, "expected", "accept")
         if "expected" not in node:
-            raise self.problem(node.mark, "'expected' is missing", "{expected: [a], accept: [b]}", name)
+            raise self.problem(node.mark, "'expected' is missing", "Write {expected: [a], accept: [b]}", name)
         accept = self._values(node["accept"], domain, name) if "accept" in node else ()
         return [Recommends(node.mark, name, self._values(node["expected"], domain, name), accept)]
 
@@ -198,7 +195,7 @@ class _Reader(Checker):
         domain = self._domain(name)
         if not isinstance(node, Mapping) or not node:
             raise self.problem(
-                node.mark, "what is barred is written 'value: rule'", f"{name}: {{some_value: some_rule}}", name
+                node.mark, "what is barred is written 'value: rule'", f"Write {name}: {{some_value: some_rule}}", name
             )
         found: list[Expectation] = []
         for key, rule in node.items():
@@ -215,7 +212,7 @@ class _Reader(Checker):
         strength, _, wanted = text.partition(" ")
         if text in {"unwanted", "allowed"}:
             if not nothing(domain):
-                hint = "write a test, such as {at_least: 3}"
+                hint = "Write a test, such as {at_least: 3}"
                 raise self.problem(node.mark, f"'{text}' is for properties with a choice 'none' or 'no'", hint, name)
             return [AsksFor(node.mark, name, "unwanted" if text == "unwanted" else "allowed", None)]
         if strength not in {"must", "should"}:
@@ -228,7 +225,7 @@ class _Reader(Checker):
             whole.key_marks[operator] = node.mark
             if not limit:
                 raise self.problem(
-                    node.mark, f"'{name}' is a number", f"write a test, such as {how} at_least 130", name
+                    node.mark, f"'{name}' is a number", f"Write a test, such as {how} at_least 130", name
                 )
             return [self._test(name, how, whole, domain)]
         asked = value(Scalar(wanted.strip(), node.mark), domain, self.scope(name))
@@ -257,12 +254,12 @@ class _Reader(Checker):
     def _product(self, name: Scalar, node: Node) -> list[Expectation]:
         item = self.known(name, [each.item for each in self.knowledge.shelf], "product of the shelf")
         if self.saved.only is not None and item not in self.saved.only:
-            raise self.problem(name.mark, f"the shelf of this scenario leaves {item} out", "add it to 'shelf'")
+            raise self.problem(name.mark, f"the shelf of this scenario leaves {item} out", "Add it to 'shelf'")
         word, by, rule = self.text(node).partition(" by ")
         verdict = Verdict(self.word(Scalar(word, node.mark), list(Verdict), "verdict"))
         if by and verdict not in _NEEDS_A_RULE:
             raise self.problem(
-                node.mark, f"no rule makes a product '{word}'", "only falls_short and unproven go with 'by'", name
+                node.mark, f"no rule makes a product '{word}'", "Only falls_short and unproven go with 'by'", name
             )
         return [ProductIs(node.mark, item, verdict, self.rule(Scalar(rule.strip(), node.mark)) if by else "")]
 
@@ -271,7 +268,7 @@ class _Reader(Checker):
         if isinstance(node, Scalar) and str(node) == "none":
             return [IntervalIs(node.mark, None)]
         if not isinstance(node, Mapping):
-            raise self.problem(node.mark, "an interval is expected from .. to, or none", "{from: 5900, to: 7200}")
+            raise self.problem(node.mark, "an interval is expected from .. to, or none", "Write {from: 5900, to: 7200}")
         self.only_keys(node, "from", "to")
         return [IntervalIs(node.mark, self.ends(node))]
 
@@ -279,7 +276,7 @@ class _Reader(Checker):
         self.row(name.mark, fill_row(name))
         numbers = [self.number(each) for each in self.listed(node)]
         if len(numbers) != 2:
-            raise self.problem(node.mark, "a fill has two ends, in percent", f"{name}: [30, 40]")
+            raise self.problem(node.mark, "a fill has two ends, in percent", f"Write {name}: [30, 40]")
         return [FillIs(node.mark, name, numbers[0], numbers[1])]
 
 

@@ -7,10 +7,11 @@ from advisor.case import Fact
 from advisor.conditions import Value
 from advisor.explanation.ruling import verdict_of
 from advisor.explanation.seeing import rules_seen
-from advisor.explanation.words import NOT_KNOWN, say_demand, say_fact, say_value, title_of
+from advisor.explanation.words import say_demand, say_fact, say_value, title_of
 from advisor.knowledge import Asks, Formed, Instance, Knowledge, Sets
 from advisor.quantities import show
 from advisor.shelf import Judgement
+from advisor.specification import STRONG
 
 MOST = 4
 """So many rules are told in full; the rest are counted."""
@@ -77,7 +78,8 @@ def of_fact(advice: Advice, name: str) -> tuple[str, ...]:
     fact = advice.facts.get(name)
     if fact is None:
         return ("The step in which it arises was not reached.",)
-    words = [f"It is {fact.origin.value}{f': {fact.note}' if fact.note else ''}."]
+    note = f": {fact.note}" if fact.note else ""
+    words = [f"{title_of(name, advice.knowledge)} is {fact.origin.value}{note}."]
     computation = advice.knowledge.computations.get(name)
     if computation is not None:
         how = computation.how
@@ -105,25 +107,13 @@ def of_property(advice: Advice, name: str) -> tuple[str, ...]:
 
 
 def of_shortfalls(advice: Advice, judgement: Judgement, place: int) -> tuple[str, ...]:
-    """Every demand that an item misses, with what it shows."""
+    """Every demand that an item misses and that its verdict rests on, with what it shows."""
     knowledge = advice.knowledge
     found = []
     for each in judgement.shortfalls(place):
+        if each.demand.level > STRONG:
+            continue
         domain = knowledge.properties[each.demand.property].domain
         seen = "its sheet does not say" if each.seen is None else f"seen {say_value(domain, each.seen)}"
         found.append(f"{each.demand.rule}: {say_demand(each.demand, knowledge)}; {seen}.")
     return tuple(found)
-
-
-__all__ = [
-    "MOST",
-    "NOT_KNOWN",
-    "named",
-    "of_fact",
-    "of_property",
-    "of_rule",
-    "of_rules",
-    "of_shortfalls",
-    "written",
-    "written_fact",
-]

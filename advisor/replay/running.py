@@ -56,7 +56,7 @@ class Played:
 
 @dataclass(frozen=True, slots=True)
 class Outcome:
-    """What a replay found: the scenarios in the order of their paths, and the faults of files that could not be played."""
+    """What a replay found: the scenarios in the order of their paths, and the faults of the other files."""
 
     played: tuple[Played, ...]
     problems: tuple[Problem, ...]
@@ -118,7 +118,7 @@ def read_scenario(path: Path, knowledge: Knowledge, problems: Problems) -> Scena
     guards, status = _text(tree, "guards", problems), _text(tree, "status", problems)
     if status and status not in _STATUSES:
         problems.add(
-            Problem.at(_at(tree, "status").mark, f"'{status}' is no status", f"use one of {', '.join(_STATUSES)}")
+            Problem.at(_at(tree, "status").mark, f"'{status}' is no status", f"Use one of {', '.join(_STATUSES)}")
         )
     expectations = read_expectations(saved, knowledge, problems)
     if len(problems) > before:
@@ -135,7 +135,7 @@ def _text(tree: Tree, key: str, problems: Problems) -> str:
     node = tree.get(key)
     if isinstance(node, Scalar) and node.strip():
         return str(node)
-    hint = {"guards": "say why this scenario exists", "status": "status: agreed"}[key]
+    hint = {"guards": "Say why this scenario exists", "status": "Write status: agreed"}[key]
     problems.add(Problem.at(_at(tree, key).mark, f"'{key}' is missing", hint))
     return ""
 

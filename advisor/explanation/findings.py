@@ -1,0 +1,167 @@
+"""The findings of an advice as sections: docket, shelf, codes, quantities, change-over, cautions."""
+
+from collections import Counter
+
+from advisor.advice import Advice
+from advisor.explanation.blocks import GLYPHS, Block, Grid, Node, Para, Section, Tree, leaf
+from advisor.explanation.contrasts import Miss, WhyNot, product
+from advisor.explanation.reasons import Why
+from advisor.explanation.ruling import Rules
+from advisor.explanation.seeing import hides
+from advisor.explanation.words import SHEET_SILENT, harmless, say_fact, say_source, title_of
+from advisor.explanation.workings import HIDDEN, Working
+from advisor.shelf import Verdict
+
+LONG_SHELF = 80
+_TOP = 12
+_LAST_WORD = ("maker", "sds", "loto")
+_SHORT = 3
+
+
+def answers_section(advice: Advice) -> Section:
+    """What was answered, as typed and as read."""
+    rows = []
+    for name, answer in advice.case.answers.items():
+        hidden = hides(advice, name)
+        fact = advice.facts.get(name)
+        read = HIDDEN if hidden else say_fact(fact, advice.knowledge)
+        origin = "set aside: not asked here" if name in advice.set_aside else fact.origin.value if fact else ""
+        rows.append((title_of(name, advice.knowledge), HIDDEN if hidden else answer.typed or "none", read, origin))
+    return Section("answers", "Answers", (Grid(("Question", "As typed", "Counts as", "Origin"), tuple(rows)),))
+
+
+def docket_section(whys: list[Why]) -> Section:
+    """The docket, row by row, with the rules behind it."""
+    rows = []
+    for each in whys:
+        rules = dict.fromkeys(reason.rule.rule for reason in each.reasons if reason.decides or reason.level <= 1)
+        shown = [*rules][:_SHORT] + ([f"{len(rules) - _SHORT} more"] if len(rules) > _SHORT else [])
+        said = each.conclusion + (f" (waits for: {', '.join(each.waits)})" if each.waits else "")
+        rows.append((each.title, said, ", ".join(shown)))
+    return Section("docket", "Docket", (Grid(("Row", "Recommended, or asked", "Rules"), tuple(rows)),))
+
+
+def shelf_verdicts(advice: Advice, rules: Rules) -> list[WhyNot]:
+    """The products of the shelf with all that each misses, best first; the far end of a long shelf is left out."""
+    return [product(advice, each.place, rules) for each in advice.shelf[:LONG_SHELF]]
+
+
+def shelf_section(advice: Advice, verdicts: list[WhyNot], rules: Rules) -> Section:
+    """The products that are not ruled out, best first; the others counted by the main reason."""
+    title = f"Shelf: {advice.knowledge.shelf_title}" if advice.knowledge.shelf_title else "Shelf"
+    if not verdicts:
+        return Section("shelf", title, (Para("No product was judged."),))
+    alive = [each for each, ranked in zip(verdicts, advice.shelf, strict=False) if ranked.verdict is not Verdict.FALLS_SHORT]
+    shown = alive[:_TOP] or verdicts[:_SHORT]
+    blocks: list[Block] = [Grid(("Product", "", "Verdict", "What it misses"), tuple(_shelf_row(each) for each in shown))]
+    rest = advice.shelf[len(shown):]
+    if rest:
+        blocks.append(Para(f"{len(rest)} more, counted by the first demand that each one misses:"))
+        counts = Counter(_main_reason(advice, each.place, rules) for each in rest)
+        ordered = sorted(counts.items(), key=lambda each: (-each[1], each[0]))
+        blocks.append(Tree(leaf(*(f"{count}: {reason}" for reason, count in ordered))))
+    return Section("shelf", title, tuple(blocks))
+
+
+def _shelf_row(verdict: WhyNot) -> tuple[str, str, str, str]:
+    word, _, steps = verdict.verdict.partition(": ")
+    deciding = [each for each in verdict.misses if each.level == 0] or list(verdict.misses)
+    reasons = list(dict.fromkeys(say_miss(each) for each in deciding))
+    more = f"; {len(reasons) - _SHORT} more" if len(reasons) > _SHORT else ""
+    return (verdict.subject, verdict.title, f"{GLYPHS[word]} {word}" + (f", {steps}" if steps else ""), "; ".join(reasons[:_SHORT]) + more)
+
+
+def say_miss(miss: Miss) -> str:
+    """A demand that is missed, with what was seen and by how much."""
+    if miss.barred and miss.seen != SHEET_SILENT:
+        return f"{miss.property} {miss.seen} is barred"
+    away = f", {miss.margin} away" if miss.margin else ""
+    seen = SHEET_SILENT if miss.seen == SHEET_SILENT else f"has {miss.seen}"
+    return f"{miss.demand}: {seen}{away}"
+
+
+def miss_lines(misses: tuple[Miss, ...]) -> list[str]:
+    """What is missed, line by line with strength and rules; what several rules ask alike is said once."""
+    found: dict[str, list[str]] = {}
+    for each in misses:
+        steps = f", {each.steps} step{'s' * (each.steps != 1)}" if each.level else ""
+        shared = "; the recommended class misses it too" if each.shared else ""
+        found.setdefault(f"{each.strength}: {say_miss(each)}{steps}{shared}", []).append(each.rule.id)
+    return [f"{said} ({', '.join(rules)})" for said, rules in found.items()]
+
+
+def _main_reason(advice: Advice, place: int, rules: Rules) -> str:
+    judgement = advice.judgement
+    first = judgement.shortfalls(place)[:1] if judgement is not None else []
+    return next((f"{rule.title} ({rule.rule})" for rule in (rules.reason(each.demand.rule) for each in first)), "nothing")
+
+
+def codes_section(advice: Advice) -> Section:
+    """The designations asked for; any code that covers them serves as well."""
+    codes = advice.codes
+    lines = [
+        f"DIN 51825: {', '.join(codes.din) or f'none, since {codes.din_none}'}",
+        f"ISO 6743-9: {', '.join(codes.iso) or f'none, since {codes.iso_none}'}"]  # fmt: skip
+    after = (Para("These are the lowest codes that suffice; a higher letter serves as well."),) if codes.din or codes.iso else ()
+    return Section("codes", "Designations", (Tree(leaf(*lines)), *after))
+
+
+def quantities_section(whys: list[Why]) -> Section:
+    """Fill, quantity and interval: figure, formula, how surely its source was read, and its guard."""
+    nodes = []
+    for each in whys:
+        under = [line for premise in each.premises if premise.working for line in working_lines(premise.working)]
+        under += [f"{reason.rule.because} ({reason.rule.id})" for reason in each.reasons]
+        under += each.notes
+        if each.waits:
+            under.append(f"waits for: {', '.join(each.waits)}")
+        nodes.append(Node(f"{each.title}: {each.conclusion}", leaf(*dict.fromkeys(under))))
+    return Section("quantities", "Quantities and interval", (Tree(tuple(nodes)),))
+
+
+def working_lines(working: Working) -> list[str]:
+    """A working line by line: equation, numbers put in, what the symbols are, source, warnings."""
+    symbols = "; ".join(f"{each.symbol} = {each.value} ({each.title})" for each in working.symbols)
+    numbers = [working.equation, working.substituted] if working.equation != working.substituted else [working.equation]
+    source = [f"source: {'; '.join(working.sources)}"] if working.sources else []
+    return [*numbers, f"with {symbols}", *source, *(f"warning: {each}" for each in working.warnings)]
+
+
+def change_over_section(advice: Advice) -> Section | None:
+    """The numbered steps of the recommended change-over."""
+    lines = [line for line in advice.docket if any(value in advice.knowledge.procedures for value in line.values)]
+    blocks: list[Block] = []
+    for value in (value for line in lines for value in line.values):
+        procedure = advice.knowledge.procedures[str(value)]
+        blocks.append(Para(f"{procedure.title}:", strong=True))
+        blocks.append(Tree(leaf(*procedure.steps), numbered=True))
+        blocks.append(Para(f"Source: {'; '.join(say_source(each, advice.knowledge) for each in procedure.source)}"))
+    return Section("change_over", "Change-over", tuple(blocks)) if blocks else None
+
+
+def cautions_section(advice: Advice) -> Section | None:
+    """The cautions with their full text, what they concern, and the rules that gave them."""
+    nodes = []
+    for each in advice.cautions:
+        caution = advice.knowledge.cautions[each.caution]
+        concerns = [] if advice.withheld or not each.concerns else [f"concerns: {', '.join(each.concerns)}"]
+        source = f"source: {'; '.join(say_source(cited, advice.knowledge) for cited in caution.source)}"
+        rules = f"rules: {', '.join(each.rules)}"
+        nodes.append(Node(caution.text, leaf(*concerns, f"{rules}; {source}")))
+    return Section("cautions", "Cautions", (Tree(tuple(nodes)),)) if nodes else None
+
+
+def last_word(advice: Advice) -> Section:
+    """Whose word comes before this advice."""
+    given = {each.caution for each in advice.cautions}
+    texts = [advice.knowledge.cautions[name].text for name in _LAST_WORD if name in given]
+    return Section("last", "Whose word comes first", (
+        Para("This is the advice of rules. The machine maker, local codes and licensed practice come before it."),
+        Tree(leaf(*texts))))  # fmt: skip
+
+
+def about(advice: Advice) -> str:
+    """One line about the case."""
+    kind = harmless(advice.knowledge.point_kind.title)
+    return f"{kind}. Knowledge {advice.knowledge.fingerprint}."
+

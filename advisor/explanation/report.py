@@ -1,0 +1,55 @@
+"""The report of an advice: its sections in the order in which they are read."""
+
+from advisor import __version__
+from advisor.advice import Advice
+from advisor.explanation import details, findings, first_screen
+from advisor.explanation.blocks import Report, Section
+from advisor.explanation.changes import what_would_change
+from advisor.explanation.reasons import why
+from advisor.explanation.ruling import Rules
+
+
+def report(advice: Advice) -> Report:
+    """The whole report; what is withheld is not in it."""
+    title = advice.case.title or "A lubrication point without a name"
+    about = f"{findings.about(advice)} gudgeon {__version__}."
+    sections = _withheld(advice) if advice.withheld else _complete(advice)
+    return Report(title, about, advice.state.value, tuple(each for each in sections if each is not None))
+
+
+def _withheld(advice: Advice) -> list[Section | None]:
+    return [
+        first_screen.state_section(advice, Rules(advice)),
+        findings.cautions_section(advice),
+        first_screen.caution_section(advice, what_would_change(advice)),
+        findings.answers_section(advice),
+        details.not_fired_section(advice),
+        details.sources_section(advice),
+        findings.last_word(advice),
+    ]
+
+
+def _complete(advice: Advice) -> list[Section | None]:
+    rules, changes = Rules(advice), what_would_change(advice)
+    rows = [why(advice, line.row, rules) for line in advice.docket]
+    figures = [why(advice, line.row, rules) for line in advice.quantities]
+    verdicts = findings.shelf_verdicts(advice, rules)
+    return [
+        first_screen.state_section(advice, rules),
+        first_screen.caution_section(advice, changes),
+        first_screen.decisive_section(rows),
+        findings.docket_section(rows),
+        findings.shelf_section(advice, verdicts, rules),
+        findings.codes_section(advice),
+        findings.quantities_section(figures),
+        findings.change_over_section(advice),
+        findings.cautions_section(advice),
+        details.why_section([*rows, *figures]),
+        *details.why_not_sections(advice, verdicts, rules),
+        details.computed_section(advice),
+        details.not_fired_section(advice),
+        details.changes_section(changes),
+        findings.answers_section(advice),
+        details.sources_section(advice),
+        findings.last_word(advice),
+    ]

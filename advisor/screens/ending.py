@@ -1,0 +1,71 @@
+"""The end of an interview: what came out, what to mind, and what to do next."""
+
+from collections.abc import Iterator
+from typing import TYPE_CHECKING
+
+from textual.app import ComposeResult
+from textual.containers import Vertical
+from textual.content import Content
+from textual.widgets import OptionList
+from textual.widgets.option_list import Option
+
+from advisor.interview import Session
+from advisor.interview.wording import cautions_told, outcome_text, referrals_told
+from advisor.screens.given import Chosen
+from advisor.screens.row import Row
+
+if TYPE_CHECKING:
+    from advisor.screens.glyphs import Glyphs
+
+NEXT = {
+    "scenario": "save the case as a scenario  Ctrl+S",
+    "markdown": "write the report as Markdown",
+    "html": "write the report as HTML",
+    "map": "change an answer  F5",
+    "go_on": "go on with the questions left",
+    "quit": "leave; the answers are kept",
+}
+
+
+class Ending(Vertical):
+    """The outcome in a sentence, referrals and cautions in full, and the next steps to pick from."""
+
+    def __init__(self, session: Session, glyphs: "Glyphs", *, stopped: bool) -> None:
+        super().__init__(id="ending")
+        self.session, self.glyphs, self.stopped = session, glyphs, stopped
+
+    def compose(self) -> ComposeResult:
+        """The outcome first, then what next, then what to mind."""
+        yield Row(id="outcome")
+        left = self.stopped and bool(self.session.open)
+        entries = [(what, text) for what, text in NEXT.items() if what != "go_on" or left]
+        yield OptionList(
+            *(Option(Content(f" {number}  {text}"), id=what) for number, (what, text) in enumerate(entries, start=1)),
+            id="editor", markup=False)
+        yield Row(id="minding")
+
+    def on_mount(self) -> None:
+        """Fill in the texts."""
+        advice, words = self.session.advice, self.glyphs.words
+        self.query_one("#outcome", Row).show(Content.assemble((words(outcome_text(advice)), "bold")))
+        self.query_one("#minding", Row).show(Content("\n").join(self._minding()))
+        self.query_one(OptionList).highlighted = 0
+
+    def _minding(self) -> Iterator[Content]:
+        advice, words = self.session.advice, self.glyphs.words
+        for to, text in referrals_told(advice):
+            yield Content.assemble(("\nThis goes to ", "$quiet"), (words(to), "bold"), f"\n{words(text)}")
+        for number, text in enumerate(cautions_told(advice)):
+            yield Content.assemble(("\nMIND\n", "bold $accent") if not number else "", f"! {words(text)}")
+
+    def on_key(self, event: object) -> None:
+        """A digit picks."""
+        sign = getattr(event, "character", None) or ""
+        options = self.query_one(OptionList)
+        if sign.isdigit() and 0 < int(sign) <= options.option_count:
+            options.highlighted = int(sign) - 1
+
+    def on_option_list_option_selected(self, event: OptionList.OptionSelected) -> None:
+        """Tell the sheet."""
+        event.stop()
+        self.post_message(Chosen(event.option.id or ""))

@@ -1,0 +1,88 @@
+"""Find one of many choices: type a part of its name."""
+
+from collections.abc import Mapping
+from typing import TYPE_CHECKING, ClassVar
+
+from textual.app import ComposeResult
+from textual.binding import Binding, BindingType
+from textual.containers import Vertical
+from textual.content import Content
+from textual.widgets import Input, OptionList
+from textual.widgets.option_list import Option
+
+from advisor.screens.given import DontKnow, Given
+from advisor.screens.hanging import hanging
+
+if TYPE_CHECKING:
+    from advisor.screens.glyphs import Glyphs
+
+_UNKNOWN = "?"
+
+
+class FindList(Vertical):
+    """A field over a list: what is typed narrows the list, the arrows move in it, Enter answers."""
+
+    BINDINGS: ClassVar[list[BindingType]] = [
+        Binding("up", "move(-1)", show=False, priority=True), Binding("down", "move(1)", show=False, priority=True)]
+
+    def __init__(self, choices: Mapping[str, str], unknown: str, chosen: str, width: int, glyphs: "Glyphs") -> None:
+        super().__init__(id="editor")
+        own = {name: label for name, label in choices.items() if not label.startswith(name)}
+        self.choices = {**own, **choices, _UNKNOWN: unknown}
+        self.chosen, self.width, self.glyphs = chosen, width, glyphs
+
+    def compose(self) -> ComposeResult:
+        """The field and the list."""
+        yield Input(placeholder=f"type a part of the name; {len(self.choices) - 1} entries", compact=True)
+        options = OptionList(markup=False)
+        options.can_focus = False
+        yield options
+
+    def on_mount(self) -> None:
+        """Start with all entries and with the one chosen before."""
+        self._list("")
+        names = list(self.choices)
+        self.query_one(OptionList).highlighted = names.index(self.chosen) if self.chosen in names else 0
+
+    def focus(self, scroll_visible: bool = True) -> "FindList":  # noqa: FBT001, FBT002 - as textual calls it
+        """Typing goes to the field."""
+        self.query_one(Input).focus(scroll_visible)
+        return self
+
+    def on_input_changed(self, event: Input.Changed) -> None:
+        """Narrow the list to the entries that hold every word typed."""
+        event.stop()
+        self._list(event.value)
+
+    def _list(self, typed: str) -> None:
+        words = typed.casefold().split()
+        found = {name: label for name, label in self.choices.items() if all(word in label.casefold() for word in words)}
+        options = self.query_one(OptionList)
+        options.clear_options()
+        options.add_options([
+            Option(Content(self.glyphs.words(hanging(" ? " if name == _UNKNOWN else "   ", label, self.width))), id=name)
+            for name, label in found.items()])
+        options.highlighted = 0 if found else None
+
+    def action_move(self, by: int) -> None:
+        """Move the highlight."""
+        options = self.query_one(OptionList)
+        if options.option_count:
+            options.highlighted = min(max((options.highlighted or 0) + by, 0), options.option_count - 1)
+
+    def on_input_submitted(self, event: Input.Submitted) -> None:
+        """Enter answers with the highlighted entry."""
+        event.stop()
+        options = self.query_one(OptionList)
+        if options.highlighted is None:
+            self.app.bell()
+        else:
+            self._answer(options.get_option_at_index(options.highlighted).id or "")
+
+    def on_option_list_option_selected(self, event: OptionList.OptionSelected) -> None:
+        """A click answers."""
+        event.stop()
+        self._answer(event.option.id or "")
+
+    def _answer(self, name: str) -> None:
+        self.post_message(DontKnow() if name == _UNKNOWN else Given(name))

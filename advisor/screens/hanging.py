@@ -1,0 +1,13 @@
+"""Numbered entries whose later lines stand under the first."""
+
+import textwrap
+
+
+def hanging(lead: str, text: str, width: int) -> str:
+    """The text after its lead, broken at the width.
+
+    >>> hanging(" 1  ", "grease or oil", 12)
+    ' 1  grease\\n    or oil'
+    """
+    lines = textwrap.wrap(text, max(10, width - len(lead))) or [""]
+    return lead + ("\n" + " " * len(lead)).join(lines)

@@ -1,0 +1,84 @@
+"""Tick all that applies; none ticked is an answer too."""
+
+from collections.abc import Collection, Mapping
+from typing import TYPE_CHECKING, ClassVar
+
+from textual import events
+from textual.binding import Binding, BindingType
+from textual.content import Content
+from textual.widgets import OptionList
+from textual.widgets.option_list import Option
+
+from advisor.screens.given import DontKnow, Given
+from advisor.screens.hanging import hanging
+
+if TYPE_CHECKING:
+    from advisor.screens.glyphs import Glyphs
+
+
+class TickList(OptionList):
+    """The choices with a box each. Space or a digit ticks, Enter accepts all ticks together."""
+
+    BINDINGS: ClassVar[list[BindingType]] = [Binding("space", "tick", "Tick", show=False)]
+
+    def __init__(self, choices: Mapping[str, str], unknown: str, ticked: Collection[str], width: int, glyphs: "Glyphs") -> None:
+        self.ids, self.labels, self.unknown = list(choices), list(choices.values()), unknown
+        self.ticked = {each for each in ticked if each in choices}
+        self.width, self.glyphs, self.digits = width, glyphs, ""
+        super().__init__(*self._options(), id="editor", markup=False)
+        self.highlighted = 0
+
+    def _options(self) -> list[Option]:
+        wide = len(str(len(self.ids)))
+        entries = [
+            (f" {self._box(each)} {place:>{wide}}  ", label)
+            for place, (each, label) in enumerate(zip(self.ids, self.labels, strict=True), start=1)]
+        entries += [(f"   {'':>{wide}}  ", self._accepts()), (f"   {'?':>{wide}}  ", self.unknown)]
+        return [Option(Content(self.glyphs.words(hanging(*entry, self.width))), id=str(place)) for place, entry in enumerate(entries)]
+
+    def _box(self, choice: str) -> str:
+        return self.glyphs.ticked if choice in self.ticked else self.glyphs.unticked
+
+    def _accepts(self) -> str:
+        return f"Enter: accept these {len(self.ticked)}" if len(self.ticked) > 1 else f"Enter: {'accept this one' if self.ticked else 'none of these'}"
+
+    def on_key(self, event: events.Key) -> None:
+        """A digit ticks the choice of that number; a second digit corrects it to a two-digit number."""
+        sign = event.character or ""
+        if not sign.isdigit():
+            self.digits = ""
+            return
+        longer = self.digits + sign
+        if self.digits and int(longer) <= len(self.ids):
+            self._turn(int(self.digits) - 1)
+            self.digits = longer
+        else:
+            self.digits = sign if 0 < int(sign) <= len(self.ids) else ""
+        if self.digits:
+            self._turn(int(self.digits) - 1)
+
+    def action_tick(self) -> None:
+        """Tick or untick the highlighted choice."""
+        if self.highlighted is not None and self.highlighted < len(self.ids):
+            self._turn(self.highlighted)
+
+    def _turn(self, place: int) -> None:
+        self.ticked ^= {self.ids[place]}
+        for each, option in enumerate(self._options()):
+            if each in {place, len(self.ids)}:
+                self.replace_option_prompt_at_index(each, option.prompt)
+        self.highlighted = place
+
+    async def _on_click(self, event: events.Click) -> None:
+        """A click on a choice ticks it; on the last two entries it answers."""
+        place = event.style.meta.get("option")
+        if isinstance(place, int) and place < len(self.ids):
+            event.prevent_default()
+            event.stop()
+            self._turn(place)
+
+    def on_option_list_option_selected(self, event: OptionList.OptionSelected) -> None:
+        """Enter accepts the ticks, unless it stands on the last entry."""
+        event.stop()
+        unknown = event.option_index == len(self.ids) + 1
+        self.post_message(DontKnow() if unknown else Given(", ".join(each for each in self.ids if each in self.ticked)))

@@ -1,0 +1,68 @@
+"""Every scenario holds, every agreed rule is fired by one, and none can be taken away unnoticed."""
+
+from collections.abc import Iterator
+from dataclasses import replace
+
+import pytest
+
+from advisor.advice import Advisor
+from advisor.documents import Problems
+from advisor.knowledge import Knowledge
+from advisor.replay import Outcome, Played, find, kinds_of, play, read_scenario
+from advisor.replay import replay as replay_all
+
+FILES = find([])
+
+
+@pytest.fixture(scope="module")
+def outcome(advisor: Advisor) -> Outcome:
+    return replay_all(FILES, {"rolling_bearing": advisor})
+
+
+@pytest.mark.parametrize("path", FILES, ids=lambda path: path.stem)
+def test_scenario(path, advisor: Advisor) -> None:  # type: ignore[no-untyped-def]  # pytest names it
+    problems = Problems()
+    scenario = read_scenario(path, advisor.knowledge, problems)
+    assert scenario is not None, "\n".join(map(str, problems))
+    told = [f"line {each.mark.line}: {each}\n  " + "\n  ".join(each.because) for each in play(scenario, advisor).differences]
+    assert not told, f"{scenario.guards}\n" + "\n".join(told)
+
+
+def test_the_scenarios_speak_of_kinds_of_point_that_are_known() -> None:
+    assert kinds_of(FILES) == ["rolling_bearing"]
+
+
+def agreed(knowledge: Knowledge) -> list[str]:
+    return [rule.id for rule in knowledge.rules.values() if rule.status == "agreed"]
+
+
+def rules_fired(played: Played) -> set[str]:
+    return {instance.partition("/")[0] for instance in played.fired}
+
+
+def test_every_agreed_rule_is_fired_by_a_scenario(outcome: Outcome, knowledge: Knowledge) -> None:
+    fired = set().union(*(rules_fired(played) for played in outcome.played))
+    assert [rule for rule in agreed(knowledge) if rule not in fired] == []
+
+
+def without(knowledge: Knowledge, rule: str) -> Knowledge:
+    """The knowledge with one written rule taken away."""
+    instances = {
+        step: tuple(each for each in found if each.rule.id != rule) for step, found in knowledge.instances.items()
+    }
+    return replace(knowledge, rules={name: each for name, each in knowledge.rules.items() if name != rule}, instances=instances)
+
+
+def unnoticed(outcome: Outcome, knowledge: Knowledge) -> Iterator[str]:
+    """The agreed rules whose removal leaves everything that people read as the scenarios expect it."""
+    for rule in agreed(knowledge):
+        advisor = Advisor(without(knowledge, rule))
+        touched = [played.scenario for played in outcome.played if rule in rules_fired(played)]
+        if not any(each.read for scenario in touched for each in play(scenario, advisor).differences):
+            yield rule
+
+
+def test_every_agreed_rule_is_missed_when_it_is_taken_away(outcome: Outcome, knowledge: Knowledge) -> None:
+    met = replace(outcome, played=tuple(each for each in outcome.played if not each.differences))
+    survivors = list(unnoticed(met, knowledge))
+    assert survivors == [], f"nobody would notice if these {len(survivors)} rules were lost"
