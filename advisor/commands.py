@@ -1,5 +1,6 @@
 """What the commands do: load, call one room, print; the result is the exit code."""
 
+import os
 import sys
 from pathlib import Path
 from typing import TYPE_CHECKING
@@ -42,6 +43,41 @@ def _print(text: str) -> None:
 
 def _count(faults: int) -> str:
     return "1 problem" if faults == 1 else f"{faults} problems"
+
+
+def start() -> int:
+    """Without a command: the interview on a terminal; otherwise the demonstration case, and how to go on."""
+    from advisor.places import demonstration_case
+
+    if sys.stdin.isatty() and sys.stdout.isatty():
+        return interview(None, plain=False, plain_glyphs=False, knowledge=None, shelf=None)
+    from advisor import explanation
+
+    file = demonstration_case()
+    _print(explanation.text(_advice(file, _loaded(None, None))))
+    _print(f"""
+This was the advice for the bundled demonstration case, {file}
+  gudgeon interview            choose a lubricant for a point of your own (on a terminal)
+  gudgeon interview --plain    the same question by question, line by line
+  gudgeon advise FILE --html OUT    advice for a saved case, and a report
+  gudgeon --help               everything else""")
+    return DONE
+
+
+def interview(
+    file: Path | None, plain: bool, plain_glyphs: bool, knowledge: Path | None, shelf: Path | None  # noqa: FBT001 - flags as click gives them
+) -> int:
+    """Start or resume an interview: the sheet on a terminal that can show it, else line by line."""
+    from functools import partial
+
+    load = partial(_loaded, knowledge, shelf)
+    if plain or os.environ.get("TERM", "dumb") == "dumb" or not (sys.stdin.isatty() and sys.stdout.isatty()):
+        from advisor.screens import plain as lines
+
+        return lines.run(load, file)
+    from advisor.screens import running
+
+    return running.run(load, file, plain_glyphs=plain_glyphs)
 
 
 def check(folder: Path | None, shelf: Path | None) -> int:
@@ -155,7 +191,12 @@ def compute(name: str | None, inputs: tuple[str, ...], as_json: bool) -> int:  #
 
 
 def replay(
-    files: tuple[Path, ...], as_json: bool, junit: Path | None, coverage: bool, knowledge: Path | None, shelf: Path | None  # noqa: FBT001 - flags as click gives them
+    files: tuple[Path, ...],
+    as_json: bool,
+    junit: Path | None,
+    coverage: bool,
+    knowledge: Path | None,
+    shelf: Path | None,
 ) -> int:
     """Replay scenarios and tell where their advice differs from what is expected."""
     from advisor import replay as replaying
@@ -183,7 +224,8 @@ def _advisors(kinds: list[str], knowledge: Path | None, shelf: Path | None) -> "
     from advisor.advice import Advisor
 
     known = _kinds(knowledge or knowledge_folder())
-    return {kind: Advisor(_loaded(knowledge, shelf, kind)) for kind in [each for each in kinds if each in known] or known[:1]}
+    chosen = [kind for kind in kinds if kind in known] or known[:1]
+    return {kind: Advisor(_loaded(knowledge, shelf, kind)) for kind in chosen}
 
 
 def _json(data: object) -> str:

@@ -57,17 +57,27 @@ class Conflict:
 
 @dataclass(frozen=True, slots=True)
 class Specification:
-    """All demands: plain ones hold for every lubricant, conditional ones only for some."""
+    """All demands: plain ones hold for every lubricant, conditional ones only for some.
+
+    `dropped` are conditional demands that no lubricant meeting the plain musts can fall under: products are not
+    judged by them, but classes that lack the deciding property are.
+    """
 
     plain: tuple[Demand, ...] = ()
     conditional: tuple[Demand, ...] = ()
+    dropped: tuple[Demand, ...] = ()
     conflicts: tuple[Conflict, ...] = ()
     allowed: Mapping[str, frozenset[Coded]] = field(default_factory=dict)
 
     @property
     def demands(self) -> tuple[Demand, ...]:
-        """Plain and conditional demands."""
+        """The demands by which products are judged."""
         return self.plain + self.conditional
+
+    @property
+    def class_demands(self) -> tuple[Demand, ...]:
+        """The demands by which usual oils and choices are judged."""
+        return self.plain + self.conditional + self.dropped
 
 
 def with_limits(condition: Condition, record: Record) -> tuple[Condition, set[str], set[str]]:
@@ -96,25 +106,79 @@ def with_limits(condition: Condition, record: Record) -> tuple[Condition, set[st
 
 
 def combine(demands: Iterable[Demand], domains: Mapping[str, Domain]) -> Specification:
-    """Combine demands: a `for` that the plain musts leave no choice about becomes plain; then look for conflicts.
-
-    A `for` that no allowed value meets stays conditional: it still speaks of lubricants whose sheet lacks the value.
-    """
+    """Combine demands: decide every `for` that the plain musts leave no choice about, then look for conflicts."""
     plain: list[Demand] = []
     conditional: list[Demand] = []
     for demand in demands:
         (plain if demand.for_ == ALWAYS else conditional).append(demand)
-    allowed = _allowed(plain, domains, {})
+    left = _Left(plain, domains)
     while True:
-        now_plain = [demand for demand in conditional if _always_for(demand.for_, allowed)]
+        now_plain = [demand for demand in conditional if left.meets(demand.for_) is True]
         if not now_plain:
             break
         conditional = [demand for demand in conditional if demand not in now_plain]
-        now_plain = [replace(demand, for_=ALWAYS) for demand in now_plain]
-        plain += now_plain
-        allowed = _allowed(now_plain, domains, allowed)
+        plain += [replace(demand, for_=ALWAYS) for demand in now_plain]
+        left.narrow(now_plain)
+    dropped = tuple(demand for demand in conditional if left.meets(demand.for_) is False)
+    kept = tuple(demand for demand in conditional if demand not in dropped)
     conflicts = tuple(_empty_intersections(plain, domains))
-    return Specification(tuple(plain), tuple(conditional), conflicts, allowed)
+    return Specification(tuple(plain), kept, dropped, conflicts, left.values)
+
+
+class _Left:
+    """What the plain musts leave: values of finite properties, ranges of numbers."""
+
+    def __init__(self, plain: Iterable[Demand], domains: Mapping[str, Domain]) -> None:
+        self.domains = domains
+        self.values: dict[str, frozenset[Coded]] = {}
+        self.bounds: dict[str, list[Bound]] = {}
+        self.narrow(plain)
+
+    def narrow(self, demands: Iterable[Demand]) -> None:
+        """Take more plain demands into account."""
+        for demand in demands:
+            if not demand.must or demand.void:
+                continue
+            name = demand.property
+            values = self.values[name] if name in self.values else frozenset(_finite(self.domains[name]))
+            if values or name in self.values:
+                self.values[name] = _kept(demand, values)
+            elif all(isinstance(term, Bound) for term in leaves(demand.test)) and not isinstance(demand.test, Either):
+                self.bounds.setdefault(name, []).extend(term for term in leaves(demand.test) if isinstance(term, Bound))
+
+    def meets(self, condition: Condition) -> bool | None:
+        """Whether all that is left meets the condition (True), nothing does (False), or only some (None)."""
+        if isinstance(condition, Every | Either):
+            outcomes = [self.meets(part) for part in condition.parts]
+            if isinstance(condition, Every):
+                return False if False in outcomes else None if None in outcomes else True
+            return True if True in outcomes else None if None in outcomes else False
+        values = self.values.get(condition.name)
+        if values and isinstance(condition, Bound | Member):
+            met = [holds(condition, {condition.name: each}) for each in values]
+            return True if all(met) else None if any(met) else False
+        if isinstance(condition, Bound):
+            return self._in_range(condition)
+        return None
+
+    def _in_range(self, term: Bound) -> bool | None:
+        """The same for a threshold on a number, against each plain threshold on it."""
+        for known in self.bounds.get(term.name, ()):
+            if known.sign in _UP and term.sign in _DOWN and _beyond(known, term):
+                return False
+            if known.sign in _DOWN and term.sign in _UP and _beyond(term, known):
+                return False
+        return None
+
+
+_UP, _DOWN = frozenset({">", ">="}), frozenset({"<", "<="})
+
+
+def _beyond(low: Bound, high: Bound) -> bool:
+    """Whether nothing lies both above the one threshold and below the other."""
+    if not isinstance(low.limit, float | int) or not isinstance(high.limit, float | int):
+        return False
+    return low.limit > high.limit or (low.limit == high.limit and (low.sign == ">" or high.sign == "<"))
 
 
 def _finite(domain: Domain) -> list[Coded]:
@@ -125,39 +189,12 @@ def _finite(domain: Domain) -> list[Coded]:
     return []
 
 
-def _allowed(
-    plain: list[Demand], domains: Mapping[str, Domain], before: Mapping[str, frozenset[Coded]]
-) -> dict[str, frozenset[Coded]]:
-    """For each finite property with a plain must: the values that all of its musts allow."""
-    found = dict(before)
-    for demand in plain:
-        if not demand.must or demand.void:
-            continue
-        name = demand.property
-        values = found[name] if name in found else frozenset(_finite(domains[name]))
-        if values or name in found:
-            found[name] = _kept(demand, values)
-    return found
-
-
 def _kept(demand: Demand, values: frozenset[Coded]) -> frozenset[Coded]:
     """Those of the values that meet the demand's test."""
     test = demand.test
     if isinstance(test, Member):
         return values & test.among if test.wanted else values - test.among
     return frozenset(each for each in values if holds(test, {demand.property: each}))
-
-
-def _always_for(condition: Condition, allowed: Mapping[str, frozenset[Coded]]) -> bool:
-    """Whether every value that the plain musts allow meets a `for`."""
-    if isinstance(condition, Every):
-        return all(_always_for(part, allowed) for part in condition.parts)
-    if isinstance(condition, Either):
-        return any(_always_for(part, allowed) for part in condition.parts)
-    values = allowed.get(condition.name)
-    if not values or not isinstance(condition, Bound | Member):
-        return False
-    return all(holds(condition, {condition.name: each}) for each in values)
 
 
 def _empty_intersections(plain: list[Demand], domains: Mapping[str, Domain]) -> Iterable[Conflict]:

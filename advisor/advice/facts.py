@@ -128,7 +128,7 @@ class Facts:
             chosen = values[0][1] if values else domain.code(how.otherwise)
         else:
             pick = max if how.combine == "highest" else min
-            chosen = pick([domain.code(how.otherwise), *(value for _, value in values)])
+            chosen = pick(value for _, value in values) if values else domain.code(how.otherwise)
         rules = ", ".join(rule for rule, value in values if value == chosen)
         self.put(Fact(name, domain.decode(chosen), Origin.CONCLUDED, rules))
 

@@ -50,7 +50,7 @@ class Recommender:
     ) -> Recommendation:
         """The recommended class of every row."""
         found = Recommendation()
-        demands = specification.demands
+        demands = specification.class_demands
         self.needed = needed
         own = self.incumbent is not None
         about_form = [demand for demand in demands if own or demand.property == "form"]

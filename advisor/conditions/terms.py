@@ -5,7 +5,7 @@ A fact missing from the record is unanswered; a fact that is `VOID` makes every 
 """
 
 import operator
-from collections.abc import Callable, Iterator, Mapping
+from collections.abc import Callable, Container, Iterator, Mapping
 from dataclasses import dataclass
 from typing import Final
 
@@ -70,6 +70,14 @@ class Stated:
 
 
 @dataclass(frozen=True, slots=True)
+class Valueless:
+    """Whether a fact is void: it has no value for good."""
+
+    name: str
+    wanted: bool = True
+
+
+@dataclass(frozen=True, slots=True)
 class Every:
     """All parts hold; without parts it always holds."""
 
@@ -83,7 +91,7 @@ class Either:
     parts: tuple["Condition", ...]
 
 
-Term = Bound | Member | Ticked | Stated
+Term = Bound | Member | Ticked | Stated | Valueless
 Condition = Term | Every | Either
 ALWAYS: Final = Every()
 
@@ -140,6 +148,8 @@ def term_holds(term: Term, record: Record) -> bool | None:
     seen = record.get(term.name)
     if isinstance(term, Stated):
         return (seen is not None and seen is not VOID) is term.wanted
+    if isinstance(term, Valueless):
+        return None if seen is None else (seen is VOID) is term.wanted
     limit: object = None
     if isinstance(term, Bound):
         limit = record.get(term.limit.name) if isinstance(term.limit, FactRef) else term.limit
@@ -157,25 +167,31 @@ def term_holds(term: Term, record: Record) -> bool | None:
     return (seen in term.among) is term.wanted
 
 
-def negated(condition: Condition) -> Condition:
-    """The condition that holds exactly where this one fails on known values (De Morgan, signs flipped).
+def negated(condition: Condition, voidable: Container[str] = ()) -> Condition:
+    """The condition that holds exactly where this one fails (De Morgan, signs flipped).
 
-    On a void fact both fail.
+    On a void fact every term fails, so the opposite holds there: for the names in `voidable` that is written out.
 
     >>> negated(Either((Bound("t", ">", 70.0), Member("shock", frozenset({"none"})))))
     Every(parts=(Bound(name='t', sign='<=', limit=70.0), Member(name='shock', among=frozenset({'none'}), wanted=False)))
+    >>> negated(Bound("interval_h", ">=", 100.0), {"interval_h"})
+    Either(parts=(Bound(name='interval_h', sign='<', limit=100.0), Valueless(name='interval_h', wanted=True)))
     """
     if isinstance(condition, Every):
-        return Either(tuple(negated(part) for part in condition.parts))
+        return Either(tuple(negated(part, voidable) for part in condition.parts))
     if isinstance(condition, Either):
-        return Every(tuple(negated(part) for part in condition.parts))
+        return Every(tuple(negated(part, voidable) for part in condition.parts))
+    lacking = tuple(Valueless(name) for name in names(condition) if name in voidable)
+    if isinstance(condition, Stated | Valueless):
+        return type(condition)(condition.name, not condition.wanted)
+    opposite: Term
     if isinstance(condition, Bound):
-        return Bound(condition.name, _OPPOSITE[condition.sign], condition.limit)
-    if isinstance(condition, Member):
-        return Member(condition.name, condition.among, not condition.wanted)
-    if isinstance(condition, Ticked):
-        return Ticked(condition.name, condition.among, not condition.wanted)
-    return Stated(condition.name, not condition.wanted)
+        opposite = Bound(condition.name, _OPPOSITE[condition.sign], condition.limit)
+    elif isinstance(condition, Member):
+        opposite = Member(condition.name, condition.among, not condition.wanted)
+    else:
+        opposite = Ticked(condition.name, condition.among, not condition.wanted)
+    return Either((opposite, *lacking)) if lacking else opposite
 
 
 def leaves(condition: Condition) -> Iterator[Term]:

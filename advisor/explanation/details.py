@@ -10,6 +10,7 @@ from advisor.explanation.blocks import Grid, Node, Para, Section, Tree, leaf
 from advisor.explanation.changes import Changes
 from advisor.explanation.contrasts import WhyNot, of_class
 from advisor.explanation.findings import miss_lines, working_lines
+from advisor.explanation.first_screen import say_apart
 from advisor.explanation.reasons import Reason, Why
 from advisor.explanation.ruling import Rules, verdict_of
 from advisor.explanation.seeing import hides, record_at, rules_seen
@@ -104,9 +105,10 @@ def _missing(verdict: WhyNot) -> list[str]:
 def computed_section(advice: Advice) -> Section:
     """Every computed fact: equation, numbers put in, result, source, warnings."""
     nodes = []
+    unprinted = {name for line in advice.quantities if line.skipped for name in line.facts}
     for step in advice.trace:
         for name in step.computed:
-            if hides(advice, name):
+            if hides(advice, name) or name in unprinted:
                 continue
             working = how_computed(advice, name)
             nodes.append(Node(f"{working.title} = {working.result}", leaf(*working_lines(working))))
@@ -177,8 +179,8 @@ def changes_section(changes: Changes) -> Section:
         nodes.append(Node(f"Assumed: {assumed.title} = {assumed.value}. {assumed.because}", leaf(rows, f"source: {'; '.join(assumed.sources)}")))
     nodes += [Node(f"Exactly at its limit: {each}") for each in changes.at_limit]
     for near in changes.near:
-        away = "exactly at the limit" if near.exact else f"{near.margin} from the limit"
-        nodes.append(Node(f"{near.title} is {near.value}, {away}, {near.limit}, where these rules turn: {', '.join(near.rules)}"))
+        turning = f"these rules turn ({near.limit}): {', '.join(near.rules)}"
+        nodes.append(Node(f"{near.title} is {near.value}, {say_apart(near)} {turning}"))
     nodes += [Node(f"Answered, but not asked here and set aside: {each}") for each in changes.set_aside]
     return Section("changes", "What would change it", (Tree(tuple(nodes)),) if nodes else (Para("Nothing that is known."),))
 

@@ -53,7 +53,7 @@ def shelf_section(advice: Advice, verdicts: list[WhyNot], rules: Rules) -> Secti
         return Section("shelf", title, (Para("No product was judged."),))
     alive = [each for each, ranked in zip(verdicts, advice.shelf, strict=False) if ranked.verdict is not Verdict.FALLS_SHORT]
     shown = alive[:_TOP] or verdicts[:_SHORT]
-    blocks: list[Block] = [Grid(("Product", "", "Verdict", "What it misses"), tuple(_shelf_row(each) for each in shown))]
+    blocks: list[Block] = [Grid(("Product", "Verdict", "What it misses"), tuple(_shelf_row(each) for each in shown))]
     rest = advice.shelf[len(shown):]
     if rest:
         blocks.append(Para(f"{len(rest)} more, counted by the first demand that each one misses:"))
@@ -63,12 +63,13 @@ def shelf_section(advice: Advice, verdicts: list[WhyNot], rules: Rules) -> Secti
     return Section("shelf", title, tuple(blocks))
 
 
-def _shelf_row(verdict: WhyNot) -> tuple[str, str, str, str]:
+def _shelf_row(verdict: WhyNot) -> tuple[str, str, str]:
     word, _, steps = verdict.verdict.partition(": ")
     deciding = [each for each in verdict.misses if each.level == 0] or list(verdict.misses)
     reasons = list(dict.fromkeys(say_miss(each) for each in deciding))
     more = f"; {len(reasons) - _SHORT} more" if len(reasons) > _SHORT else ""
-    return (verdict.subject, verdict.title, f"{GLYPHS[word]} {word}" + (f", {steps}" if steps else ""), "; ".join(reasons[:_SHORT]) + more)
+    said = "; ".join(reasons[:_SHORT]) + more
+    return (f"{verdict.subject} {verdict.title}", f"{GLYPHS[word]} {word}", f"{steps}: {said}" if steps and said else said or steps)
 
 
 def say_miss(miss: Miss) -> str:
@@ -81,13 +82,15 @@ def say_miss(miss: Miss) -> str:
 
 
 def miss_lines(misses: tuple[Miss, ...]) -> list[str]:
-    """What is missed, line by line with strength and rules; what several rules ask alike is said once."""
-    found: dict[str, list[str]] = {}
+    """What is missed, one line for each strength, with the rules; what several rules ask alike is said once."""
+    found: dict[str, dict[str, list[str]]] = {}
     for each in misses:
         steps = f", {each.steps} step{'s' * (each.steps != 1)}" if each.level else ""
-        shared = "; the recommended class misses it too" if each.shared else ""
-        found.setdefault(f"{each.strength}: {say_miss(each)}{steps}{shared}", []).append(each.rule.id)
-    return [f"{said} ({', '.join(rules)})" for said, rules in found.items()]
+        shared = ", as the recommended class does" if each.shared else ""
+        found.setdefault(each.strength, {}).setdefault(f"{say_miss(each)}{steps}{shared}", []).append(each.rule.id)
+    return [
+        f"{strength}: " + "; ".join(f"{said} ({', '.join(rules)})" for said, rules in asked.items())
+        for strength, asked in found.items()]  # fmt: skip
 
 
 def _main_reason(advice: Advice, place: int, rules: Rules) -> str:
@@ -111,7 +114,7 @@ def quantities_section(whys: list[Why]) -> Section:
     nodes = []
     for each in whys:
         under = [line for premise in each.premises if premise.working for line in working_lines(premise.working)]
-        under += [f"{reason.rule.because} ({reason.rule.id})" for reason in each.reasons]
+        under += [f"{reason.demand}. {reason.rule.because} ({reason.rule.id})" for reason in each.reasons]
         under += each.notes
         if each.waits:
             under.append(f"waits for: {', '.join(each.waits)}")

@@ -75,7 +75,7 @@ def caution_section(advice: Advice, changes: Changes) -> Section:
         nodes.append(Node(f"Estimated, not measured: {listed(estimates, 'and')}."))
     nodes += [Node(f"Exactly at its limit: {each}.") for each in changes.at_limit]
     nodes += [
-        Node(f"Close: {each.title} is {each.value}{_apart(each)}, {each.limit}, where {_rules(each.rules)}.")
+        Node(f"Close: {each.title} is {each.value}, {say_apart(each)} {_rules(each.rules)} ({each.limit}).")
         for each in changes.near[:_SHOWN_NEAR]]  # fmt: skip
     nodes += _best_clearance(advice)
     nodes.append(Node(_how_sourced(advice)))
@@ -91,8 +91,9 @@ def _rules(rules: tuple[str, ...]) -> str:
     return f"{rules[0]} and {more} more turn" if more else f"{rules[0]} turns"
 
 
-def _apart(near: Near) -> str:
-    return ", exactly at the limit" if near.exact else f", {near.margin} from the limit"
+def say_apart(near: Near) -> str:
+    """How far the limit is."""
+    return "exactly where" if near.exact else f"{near.margin} from where"
 
 
 def _best_clearance(advice: Advice) -> Iterator[Node]:
@@ -112,10 +113,10 @@ def _how_sourced(advice: Advice) -> str:
 def decisive_section(whys: list[Why]) -> Section:
     """At most five reasons, those that decide first, one for each rule: with data, rule, source and what limits it."""
     chosen: dict[str, tuple[tuple[bool, int, int], str, Reason]] = {}
-    for each in whys:
+    for row, each in enumerate(whys):
         for turn, reason in enumerate(each.reasons):
             weighed = bool(reason.against)
-            rank = (not (reason.decides and weighed), turn if weighed else len(whys), reason.level)
+            rank = (not (reason.decides and weighed), turn if weighed else len(whys), row)
             head = f"{each.title}: {each.conclusion}" if weighed else reason.demand
             known = chosen.get(reason.rule.rule)
             if known is None or rank < known[0]:

@@ -4,6 +4,7 @@ from collections.abc import Iterator
 from dataclasses import dataclass
 
 from advisor.advice import Advice, Line
+from advisor.case import Origin
 from advisor.conditions import Condition, Every, FactRef, holds
 from advisor.conditions.terms import names
 from advisor.explanation.ruling import RuleReason, Rules, why_not_rule
@@ -60,7 +61,7 @@ def why(advice: Advice, row_id: str, rules: Rules | None = None) -> Why:
     field, said = field_of(advice, line), rules if rules is not None else Rules(advice)
     reasons, short = _weighed(advice, field, said) if field is not None else (_plain(advice, line, said), [])
     return Why(
-        row_id, line.title, say_line(advice, line), tuple(reasons), tuple(premise(advice, name) for name in line.facts),
+        row_id, line.title, say_line(advice, line), tuple(reasons), tuple(premise(advice, name) for name in line.facts if not line.skipped),
         tuple(short), tuple(title_of(each, advice.knowledge) for each in line.waits), _notes(advice, line, said))  # fmt: skip
 
 
@@ -106,7 +107,7 @@ def _weighed(advice: Advice, field: Field, rules: Rules) -> tuple[list[Reason], 
         alike = len(missed) == len(field.misses) and len(set(missed.values())) == 1 and not about
         if not demand.must and not alike and any(place in missed for place in best):
             short.append(_short(advice, field, number, best))
-        against = _against(field, number)
+        against = _against(field, number, best)
         if about or (not alike and (number in deciding or against)):
             reason = rules.reason(demand.rule)
             decides = number in deciding
@@ -122,13 +123,15 @@ def _short(advice: Advice, field: Field, number: int, best: list[int]) -> str:
     return f"{count} step{'s' * (count != '1')} short of: {say_demand(demand, advice.knowledge)} ({demand.rule})"
 
 
-def _against(field: Field, number: int) -> tuple[str, ...]:
-    """The values of which every candidate misses the demand."""
-    by_value: dict[str, bool] = {}
+def _against(field: Field, number: int, best: list[int]) -> tuple[str, ...]:
+    """The classes of which every candidate is barred by the demand, or misses it by more than the recommended ones."""
+    must = field.judgement.demands[number].must
+    allowed = 0 if must else min((field.misses[place].get(number, 0) for place in best), default=0)
+    least: dict[str, int] = {}
     for place in places(field.pool):
-        label = field.label(place)
-        by_value[label] = by_value.get(label, True) and number in field.misses[place]
-    return tuple(label for label, all_miss in by_value.items() if all_miss)
+        label, steps = field.label(place), field.misses[place].get(number, 0)
+        least[label] = min(least.get(label, steps), steps)
+    return tuple(label for label, steps in least.items() if steps > allowed)
 
 
 def _plain(advice: Advice, line: Line, rules: Rules) -> list[Reason]:
@@ -143,14 +146,22 @@ def _plain(advice: Advice, line: Line, rules: Rules) -> list[Reason]:
 
 
 def _setters(advice: Advice, name: str, line: Line, rules: Rules) -> Iterator[Reason]:
-    """The fired rules that set a fact or a property of some lubricants to what the row shows."""
+    """The fired rules that set a fact or a property of some lubricants, to what the row shows or to what gave way."""
     shown = {advice.knowledge.domain(name).code(value) for value in line.values} if name else set()
+    fact = advice.facts.get(name)
+    counting = fact.note.split(", ") if fact is not None and fact.origin is Origin.CONCLUDED else None
     for _, instance, outcome in rules.seen.values():
         fired = outcome is True and instance.binds
         for each in instance.then if fired else ():
             if isinstance(each, Sets) and each.name == name and (not shown or each.value in shown):
-                reason = rules.reason(instance.id)
-                yield Reason(_say_set(advice, each), 0, reason, decides=True, against=())
+                gives_way = counting is not None and instance.id not in counting
+                said = _say_set(advice, each) + (f", which gives way: the {_combined(advice, name)} counts" if gives_way else "")
+                yield Reason(said, 0, rules.reason(instance.id), decides=not gives_way, against=())
+
+
+def _combined(advice: Advice, name: str) -> str:
+    declared = advice.knowledge.facts[name].concluded
+    return declared.combine if declared is not None else ""
 
 
 def _say_set(advice: Advice, sets: Sets) -> str:

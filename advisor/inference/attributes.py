@@ -21,6 +21,7 @@ PLAIN_BELOW: Final = 1e15
 RESERVED: Final = ("id", "sid", "probe", "$s", "$forward")
 _quoted: Final = json.JSONEncoder(ensure_ascii=False).encode
 
+
 def number(value: object) -> str:
     """A number as the engine reads it.
 
@@ -118,6 +119,12 @@ class Attributes:
     def answered(self, fact: str) -> int:
         """The attribute that is there when a tick list has been answered at all."""
         return self._number((fact, "answered"), lambda _value: "true")
+
+    def void(self, fact: str) -> int:
+        """The attribute that says whether a fact is void; absent while the fact is unanswered."""
+        number = self._number((fact, "void"), lambda _value: "false")
+        self.spellings[number][VOID] = self.spellings[number].head + "true"
+        return number
 
     def _number(self, key: tuple[str, ...], spell: Callable[[object], str], known: Sequence[object] = ()) -> int:
         found = self._numbers.get(key)

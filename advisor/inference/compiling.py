@@ -6,7 +6,7 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import Final, NamedTuple
 
-from advisor.conditions import Bound, Condition, Domain, Either, Every, FactRef, Member, Stated, Ticked
+from advisor.conditions import Bound, Condition, Domain, Either, Every, FactRef, Member, Stated, Ticked, Valueless
 from advisor.inference.attributes import Attributes, Spelling, number, text
 from advisor.inference.faults import TooManyBranches, UnfitCondition, Unsendable
 
@@ -136,7 +136,7 @@ class _Alternatives:
             return self._member(condition)
         if isinstance(condition, Ticked):
             return self._ticked(condition)
-        return self._stated(condition)
+        return self._valueless(condition) if isinstance(condition, Valueless) else self._stated(condition)
 
     def _every(self, condition: Every) -> Branches:
         if _count(condition) == 0:
@@ -180,6 +180,9 @@ class _Alternatives:
         several = self._domain(term.name).kind == "several"
         seen = self.attributes.answered(term.name) if several else self.attributes.value(term.name)
         return [(_present(seen) if term.wanted else _absent(seen),)]
+
+    def _valueless(self, term: Valueless) -> Branches:
+        return [(_compare(self.attributes.void(term.name), "=", "true" if term.wanted else "false"),)]
 
     def _number(self, name: str) -> int:
         if not self._domain(name).ordered:

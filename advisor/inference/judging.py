@@ -14,6 +14,7 @@ from advisor.conditions import (
     Record,
     Stated,
     Ticked,
+    Valueless,
     waits_for,
 )
 from advisor.conditions.terms import SIGNS
@@ -68,6 +69,8 @@ def judge_of(condition: Condition) -> Judge:
         return _against_limit(condition.name, condition.sign, condition.limit)
     if isinstance(condition, Member):
         return _member(condition)
+    if isinstance(condition, Valueless):
+        return _valueless(condition)
     return _ticked(condition) if isinstance(condition, Ticked) else _stated(condition)
 
 
@@ -121,6 +124,16 @@ def _against_fact(name: str, sign: str, other: str) -> Judge:
         if seen is None or limit is None:
             return None
         return compare(seen, limit)  # type: ignore[arg-type]  # both are declared numbers or places
+
+    return judge
+
+
+def _valueless(term: Valueless) -> Judge:
+    name, wanted = term.name, term.wanted
+
+    def judge(record: Record) -> bool | None:
+        seen = record.get(name)
+        return None if seen is None else (seen is VOID) is wanted
 
     return judge
 

@@ -130,5 +130,3 @@ class Matcher:
     def _check_owner(self) -> None:
         if threading.get_ident() != self._owner:
             raise EngineFault("The rule engine was called from a foreign thread; make one Matcher in each thread.")
-
-

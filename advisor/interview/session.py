@@ -9,6 +9,7 @@ from advisor.advice import Advice, Advisor
 from advisor.answers import DONT_KNOW, Unsuitable, answer
 from advisor.case import Answer, Case
 from advisor.documents import Unwritable, to_yaml, write_text_safely
+from advisor.documents.writing import Plain
 from advisor.interview.keeping import Keeper, as_plain, document
 from advisor.interview.wording import rows_shown
 from advisor.knowledge import Declaration
@@ -201,10 +202,10 @@ class Session:
         """
         if path.exists():
             raise Unwritable(f"'{path}' exists already. Choose another name.")
-        expect: dict[str, str] = {"state": self.advice.state.value}
+        expect: dict[str, Plain] = {"state": self.advice.state.value}
         if self.advice.withheld:
             expect["withheld"] = "yes"
-        scenario = {
+        scenario: dict[str, Plain] = {
             "format": 1, "title": title, "point_kind": self.case.point_kind, "guards": guards, "status": "draft",
             "answers": as_plain(self.case, self.knowledge), "gaps": "open", "expect": expect}
         write_text_safely(path, to_yaml(scenario))

@@ -117,9 +117,9 @@ def asked(domain: Domain, tests: Sequence[Condition]) -> str:
     low = max(lows, key=_limit, default=None)
     high = min(highs, key=_limit, default=None)
     if low and high and low.sign == ">=" and high.sign == "<=":
-        words.append(f"{say_value(domain, low.limit)} to {say_value(domain, high.limit)}")
+        words.append(f"{say_value(domain, _limit(low))} to {say_value(domain, _limit(high))}")
     else:
-        words += [f"{_SIGNS[each.sign]} {say_value(domain, each.limit)}" for each in (low, high) if each]
+        words += [f"{_SIGNS[each.sign]} {say_value(domain, _limit(each))}" for each in (low, high) if each]
     words += dict.fromkeys(text for term in terms if term not in (*lows, *highs) and (text := _term(domain, term)))
     return ", ".join(words)
 
@@ -141,9 +141,10 @@ def _limit(term: Bound) -> float:
 
 def _term(domain: Domain, term: Condition) -> str:
     if isinstance(term, Bound):
-        return f"{_SIGNS[term.sign]} {say_value(domain, term.limit)}".strip()
+        return f"{_SIGNS[term.sign]} {say_value(domain, _limit(term))}".strip()
     if isinstance(term, Member | Ticked):
-        labels = " or ".join(say_value(domain, each) for each in sorted(term.among, key=str)[:3]) + (" ..." if len(term.among) > 3 else "")
+        among: list[float | str] = sorted(term.among, key=str)
+        labels = " or ".join(say_value(domain, each) for each in among[:3]) + (" ..." if len(among) > 3 else "")
         return labels if term.wanted else f"not {labels}"
     if isinstance(term, Either):
         return " or ".join(asked(domain, [part]) for part in term.parts)

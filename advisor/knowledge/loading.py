@@ -2,6 +2,7 @@
 
 from collections.abc import Mapping as Map
 from contextlib import suppress
+from dataclasses import replace
 from pathlib import Path
 
 from advisor.conditions import ALWAYS, Condition, Domain, Value
@@ -223,12 +224,16 @@ class _Loader:
             self.fact_domains,
             self.property_domains,
             concluded,
+            frozenset({*self.computations, *concluded}),
             self.tables,
             frozenset(cautions.cautions),
             frozenset(cautions.referrals),
         )
-        closing = Names(
-            {**self.fact_domains, **CLOSING_FACTS}, names.properties, {}, names.tables, names.cautions, names.referrals
+        closing = replace(
+            names,
+            facts={**self.fact_domains, **CLOSING_FACTS},
+            concluded={},
+            voidable=names.voidable | frozenset(CLOSING_FACTS),
         )
         rules: dict[str, Rule] = {}
         instances: dict[str, tuple[Instance, ...]] = {}

@@ -23,6 +23,7 @@ class Names:
     facts: Map[str, Domain]
     properties: Map[str, Domain]
     concluded: Map[str, Domain]
+    voidable: frozenset[str]
     tables: Map[str, Table]
     cautions: frozenset[str]
     referrals: frozenset[str]
@@ -171,7 +172,7 @@ class RuleReader:
     def _when(self, tree: Mapping, scope: Scope) -> Condition:
         when = condition(tree["when"], scope.at("when"))
         if "unless" in tree:
-            when = Every((when, negated(condition(tree["unless"], scope.at("unless")))))
+            when = Every((when, negated(condition(tree["unless"], scope.at("unless")), self.names.voidable)))
         if len(branches(when)) > MOST_BRANCHES:
             raise scope.fault(
                 tree["when"],

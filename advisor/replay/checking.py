@@ -50,7 +50,8 @@ class Checker:
     def listed(self, node: Node) -> list[Scalar]:
         """The entries of a list of plain values."""
         if not isinstance(node, Sequence) or not node:
-            raise self.problem(node.mark, f"'{self.key}' is a list with at least one entry", f"Write {self.key}: [a, b]")
+            message = f"'{self.key}' is a list with at least one entry"
+            raise self.problem(node.mark, message, f"Write {self.key}: [a, b]")
         for each in node:
             if not isinstance(each, Scalar):
                 raise self.problem(each.mark, "a plain value is expected in this list")

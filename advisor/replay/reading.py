@@ -167,7 +167,10 @@ class _Reader(Checker):
         about, within = self.number(node["about"]), node.get("within")
         if not isinstance(within, Scalar):
             raise self.problem(
-                node.mark, "'about' needs 'within'", "Write {about: 0.15, within: 0.01} or {about: 0.15, within: 2 %}", name
+                node.mark,
+                "'about' needs 'within'",
+                "Write {about: 0.15, within: 0.01} or {about: 0.15, within: 2 %}",
+                name,
             )
         text = within.strip()
         share = text.removesuffix("%").strip() if text.endswith("%") else ""

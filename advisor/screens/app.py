@@ -26,8 +26,8 @@ class Gudgeon(App[None]):
     CSS_PATH = "sheet.tcss"
     TITLE = "gudgeon"
     COMMANDS: ClassVar[set[type[Provider] | Callable[[], type[Provider]]]] = {Actions}
-    HORIZONTAL_BREAKPOINTS: ClassVar[list[tuple[int, str]] | None] = [(0, "-tiny"), (60, "-one"), (100, "-two")]
-    VERTICAL_BREAKPOINTS: ClassVar[list[tuple[int, str]] | None] = [(0, "-flat"), (18, "-short"), (34, "-tall")]
+    HORIZONTAL_BREAKPOINTS = [(0, "-tiny"), (60, "-one"), (100, "-two")]
+    VERTICAL_BREAKPOINTS = [(0, "-flat"), (18, "-short"), (34, "-tall")]
 
     def __init__(self, load: "Callable[[], Knowledge]", file: Path | None, glyphs: Glyphs) -> None:
         super().__init__()

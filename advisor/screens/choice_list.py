@@ -21,10 +21,10 @@ class ChoiceList(OptionList):
     def __init__(self, choices: Mapping[str, str], unknown: str, chosen: str, width: int, glyphs: "Glyphs") -> None:
         self.ids, self.labels = list(choices), [*choices.values(), unknown]
         self.width, self.glyphs, self.digits = width, glyphs, ""
-        super().__init__(*self._options(), id="editor", markup=False)
+        super().__init__(*self._entries(), id="editor", markup=False)
         self.highlighted = self.ids.index(chosen) if chosen in self.ids else 0
 
-    def _options(self) -> list[Option]:
+    def _entries(self) -> list[Option]:
         numbers = [*(str(place) for place in range(1, len(self.ids) + 1)), "?"]
         wide = len(str(len(self.ids)))
         return [

@@ -23,15 +23,15 @@ class QuestionMap(OptionList):
 
     def show(self) -> None:
         """List all questions anew."""
-        self.clear_options()
-        self.add_options(list(self._options()))
+        self.clear_entries()
+        self.add_options(list(self._entries()))
         here = self.session.question.name if self.session.question else ""
         places = [place for place in range(self.option_count) if self.get_option_at_index(place).id == here]
         self.highlighted = places[0] if places else None
         if self.highlighted is None:
             self.action_first()
 
-    def _options(self) -> Iterator[Option]:
+    def _entries(self) -> Iterator[Option]:
         section = ""
         for declaration in self.session.knowledge.facts.values():
             if declaration.question is None:

@@ -3,7 +3,6 @@
 import re
 from pathlib import Path
 
-from advisor import explanation
 from advisor.advice import Advice
 from advisor.documents import Unwritable, write_text_safely
 
@@ -23,6 +22,8 @@ def write(advice: Advice, kind: str, path: Path) -> None:
     Raises:
         Unwritable: with the reason and the mend; a file that exists already is never replaced.
     """
+    from advisor import explanation
+
     if path.exists():
         raise Unwritable(f"'{path}' exists already. Choose another name.")
     write_text_safely(path, explanation.markdown(advice) if kind == "markdown" else explanation.html(advice))

@@ -6,7 +6,8 @@ from textual.content import Content
 
 from advisor.advice import Advice, Ranked
 from advisor.interview import product_reason
-from advisor.interview.wording import VERDICTS, count_text
+from advisor.explanation.contrasts import VERDICTS
+from advisor.interview.wording import count_text
 from advisor.screens.glyphs import Glyphs
 from advisor.screens.row import Row
 from advisor.shelf import Verdict

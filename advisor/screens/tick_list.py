@@ -25,10 +25,10 @@ class TickList(OptionList):
         self.ids, self.labels, self.unknown = list(choices), list(choices.values()), unknown
         self.ticked = {each for each in ticked if each in choices}
         self.width, self.glyphs, self.digits = width, glyphs, ""
-        super().__init__(*self._options(), id="editor", markup=False)
+        super().__init__(*self._entries(), id="editor", markup=False)
         self.highlighted = 0
 
-    def _options(self) -> list[Option]:
+    def _entries(self) -> list[Option]:
         wide = len(str(len(self.ids)))
         entries = [
             (f" {self._box(each)} {place:>{wide}}  ", label)
@@ -64,7 +64,7 @@ class TickList(OptionList):
 
     def _turn(self, place: int) -> None:
         self.ticked ^= {self.ids[place]}
-        for each, option in enumerate(self._options()):
+        for each, option in enumerate(self._entries()):
             if each in {place, len(self.ids)}:
                 self.replace_option_prompt_at_index(each, option.prompt)
         self.highlighted = place

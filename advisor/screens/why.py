@@ -4,12 +4,12 @@ from rich.text import Text
 from textual.widgets import Tree
 from textual.widgets.tree import TreeNode
 
-from advisor.explanation.contrasts import why_not
+from advisor.explanation.contrasts import VERDICTS, why_not
 from advisor.explanation.reasons import Why, why
 from advisor.explanation.ruling import RuleReason
 from advisor.explanation.workings import Premise
 from advisor.interview import Session, rows_shown
-from advisor.interview.wording import VERDICTS, cautions_told, referrals_told
+from advisor.interview.wording import cautions_told, referrals_told
 from advisor.screens.glyphs import Glyphs
 
 Subject = tuple[str, str]

@@ -2,6 +2,7 @@
 
 from collections.abc import Iterator
 from dataclasses import replace
+from pathlib import Path
 
 import pytest
 
@@ -20,11 +21,12 @@ def outcome(advisor: Advisor) -> Outcome:
 
 
 @pytest.mark.parametrize("path", FILES, ids=lambda path: path.stem)
-def test_scenario(path, advisor: Advisor) -> None:  # type: ignore[no-untyped-def]  # pytest names it
+def test_scenario(path: Path, advisor: Advisor) -> None:
     problems = Problems()
     scenario = read_scenario(path, advisor.knowledge, problems)
     assert scenario is not None, "\n".join(map(str, problems))
-    told = [f"line {each.mark.line}: {each}\n  " + "\n  ".join(each.because) for each in play(scenario, advisor).differences]
+    found = play(scenario, advisor).differences
+    told = [f"line {each.mark.line}: {each}\n  " + "\n  ".join(each.because) for each in found]
     assert not told, f"{scenario.guards}\n" + "\n".join(told)
 
 
@@ -50,7 +52,8 @@ def without(knowledge: Knowledge, rule: str) -> Knowledge:
     instances = {
         step: tuple(each for each in found if each.rule.id != rule) for step, found in knowledge.instances.items()
     }
-    return replace(knowledge, rules={name: each for name, each in knowledge.rules.items() if name != rule}, instances=instances)
+    rules = {name: each for name, each in knowledge.rules.items() if name != rule}
+    return replace(knowledge, rules=rules, instances=instances)
 
 
 def unnoticed(outcome: Outcome, knowledge: Knowledge) -> Iterator[str]:
