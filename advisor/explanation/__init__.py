@@ -21,21 +21,21 @@ __all__ = [
 
 def text(advice: "Advice") -> str:
     """The report as plain text for a terminal."""
-    from advisor.explanation.text import text as write
+    from advisor.explanation.text_report import text as write
 
     return write(advice)
 
 
 def markdown(advice: "Advice") -> str:
     """The report as Markdown."""
-    from advisor.explanation.markdown import markdown as write
+    from advisor.explanation.markdown_report import markdown as write
 
     return write(advice)
 
 
 def html(advice: "Advice") -> str:
     """The report as one HTML file."""
-    from advisor.explanation.html import html as write
+    from advisor.explanation.html_report import html as write
 
     return write(advice)
 

@@ -4,7 +4,7 @@ from collections.abc import Iterable, Iterator
 from itertools import groupby
 
 from advisor.advice import Advice
-from advisor.conditions import Bound, FactRef, Record, failures
+from advisor.conditions import Bound, FactRef, Record, Valueless, failures
 from advisor.conditions.terms import Term
 from advisor.explanation.blocks import Grid, Node, Para, Section, Tree, leaf
 from advisor.explanation.changes import Changes
@@ -143,7 +143,7 @@ def _grouped(advice: Advice, step: str, failed: list[Instance]) -> Iterator[str]
     record = record_at(advice, step)
     found: dict[str, dict[str, list[str]]] = {}
     for instance in failed:
-        for term in dict.fromkeys(failures(instance.when, record)):
+        for term in dict.fromkeys(each for each in failures(instance.when, record) if not isinstance(each, Valueless)):
             head, wanted = _failed(advice, term, record)
             row = instance.row.id if instance.row is not None and isinstance(term, Bound) else ""
             found.setdefault(head, {}).setdefault(wanted, []).append(row)

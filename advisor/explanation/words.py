@@ -13,11 +13,11 @@ from advisor.conditions import (
     Either,
     Every,
     FactRef,
-    Member,
     Record,
     Stated,
     Ticked,
     Value,
+    Valueless,
     holds,
     leaves,
 )
@@ -117,6 +117,8 @@ def say_wanted(term: Term, knowledge: Knowledge, record: Record) -> str:
     domain = domain_of(term.name, knowledge)
     if isinstance(term, Stated):
         return "stated" if term.wanted else "not stated"
+    if isinstance(term, Valueless):
+        return "without a value" if term.wanted else "with a value"
     if isinstance(term, Bound):
         return _say_bound(term, domain, knowledge, record)
     words = listed(_in_order(domain, term.among))
@@ -137,7 +139,7 @@ def _say_bound(term: Bound, domain: Domain, knowledge: Knowledge, record: Record
 def say_term(term: Term, knowledge: Knowledge, record: Record) -> str:
     """A term with what was seen: `steady temperature with margin 120 °C is above 110 °C`."""
     title, wanted = title_of(term.name, knowledge), say_wanted(term, knowledge, record)
-    if isinstance(term, Stated):
+    if isinstance(term, Stated | Valueless):
         return f"{title} is {wanted}"
     seen = say_value(domain_of(term.name, knowledge), record.get(term.name))
     if isinstance(term, Bound) and seen not in {NOT_KNOWN, NO_VALUE}:

@@ -17,6 +17,7 @@ from advisor.conditions import (
     Record,
     Stated,
     Ticked,
+    Valueless,
     branches,
     negated,
 )
@@ -82,7 +83,7 @@ def a_record(draw: random.Random) -> Record:
 
 
 def a_term(draw: random.Random) -> Term:
-    kind = draw.randrange(6)
+    kind = draw.randrange(7)
     wanted = draw.random() < 0.5
     if kind <= 1:
         name = draw.choice(ORDERED)
@@ -99,6 +100,8 @@ def a_term(draw: random.Random) -> Term:
         return Member(name, frozenset(values), wanted)
     if kind == 4:
         return Ticked(draw.choice(SEVERAL), frozenset(draw.sample(TICKS, draw.randrange(4))), wanted)
+    if kind == 5:
+        return Valueless(draw.choice(tuple(DOMAINS)), wanted)
     return Stated(draw.choice(tuple(DOMAINS)), wanted)
 
 
@@ -115,7 +118,8 @@ def _nested(draw: random.Random, depth: int) -> Condition:
         return a_term(draw)
     parts = tuple(_nested(draw, depth - 1) for _ in range(draw.choice((0, 1, 2, 2, 3))))
     condition = Every(parts) if draw.random() < 0.6 else Either(parts)
-    return negated(condition) if draw.random() < 0.3 else condition
+    voidable = DOMAINS if draw.random() < 0.3 else ()
+    return negated(condition, voidable) if draw.random() < 0.3 else condition
 
 
 def _branch_count(condition: Condition) -> int:

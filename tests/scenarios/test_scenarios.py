@@ -56,16 +56,20 @@ def without(knowledge: Knowledge, rule: str) -> Knowledge:
     return replace(knowledge, rules=rules, instances=instances)
 
 
+def read(played: Played) -> set[str]:
+    """The differences in what people read."""
+    return {str(each) for each in played.differences if each.read}
+
+
 def unnoticed(outcome: Outcome, knowledge: Knowledge) -> Iterator[str]:
-    """The agreed rules whose removal leaves everything that people read as the scenarios expect it."""
+    """The agreed rules whose removal makes no scenario differ anew in anything that people read."""
     for rule in agreed(knowledge):
         advisor = Advisor(without(knowledge, rule))
-        touched = [played.scenario for played in outcome.played if rule in rules_fired(played)]
-        if not any(each.read for scenario in touched for each in play(scenario, advisor).differences):
+        touched = [played for played in outcome.played if rule in rules_fired(played)]
+        if not any(read(play(played.scenario, advisor)) - read(played) for played in touched):
             yield rule
 
 
 def test_every_agreed_rule_is_missed_when_it_is_taken_away(outcome: Outcome, knowledge: Knowledge) -> None:
-    met = replace(outcome, played=tuple(each for each in outcome.played if not each.differences))
-    survivors = list(unnoticed(met, knowledge))
+    survivors = list(unnoticed(outcome, knowledge))
     assert survivors == [], f"nobody would notice if these {len(survivors)} rules were lost"
