@@ -113,8 +113,8 @@ def _oils(advice: Advice) -> Iterator[tuple[str, float, float]]:
     for place in recommended_oils(advice):
         values = advice.oils.catalogue.items[place].values
         at_40, at_100 = values.get("viscosity_40"), values.get("viscosity_100")
-        if isinstance(at_40, float) and isinstance(at_100, float):
-            yield oil_title(advice.oils, place), at_40, at_100
+        if isinstance(at_40, float | int) and isinstance(at_100, float | int):
+            yield oil_title(advice.oils, place), float(at_40), float(at_100)
 
 
 def _at(at_40: float, at_100: float, celsius: float) -> float:

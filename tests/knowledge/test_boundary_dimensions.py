@@ -1,8 +1,8 @@
 """Boundary dimensions by designation, held against the rules of the dimension plans and a second typing.
 
 All figures here are from memory of ISO 15, ISO 355 and ISO 104, as the table is; no publication was at hand. The second
-typing was not copied from the rows, so that a slip of the hand shows; an error of memory may stand in both. The rules hold
-for sizes added later; how far the old sizes may lie from them is set to what these need.
+typing was not copied from the rows, so that a slip of the hand shows; an error of memory may stand in both. How far the
+old sizes may lie from the rules is set to what these sizes need.
 """
 
 from collections.abc import Iterator
@@ -108,7 +108,8 @@ def neighbours(sizes: Series) -> Iterator[tuple[Size, Size]]:
 
 
 @pytest.mark.parametrize(
-    ("designation", "bore", "outside", "width"), list(zip(*(TYPED_AGAIN.split()[at::4] for at in range(4)), strict=True)))
+    ("designation", "bore", "outside", "width"),
+    list(zip(*(TYPED_AGAIN.split()[at::4] for at in range(4)), strict=True)))
 def test_a_second_typing_agrees(
     designation: str, bore: str, outside: str, width: str, rows: dict[str, dict[str, object]]
 ) -> None:
