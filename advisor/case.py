@@ -23,11 +23,16 @@ class Origin(StrEnum):
 
 @dataclass(frozen=True, slots=True)
 class Answer:
-    """One answer: its canonical value (None for don't know), and the text that was typed."""
+    """One answer: its canonical value (None for don't know), and the text that was typed.
+
+    Without a value it may still say something: the `alternatives` that are open, or the ends of a range (`span`).
+    """
 
     value: Value | None
     typed: str
     estimate: bool = False
+    alternatives: tuple[Value, ...] = ()
+    span: tuple[float, float] | None = None
 
     @property
     def known(self) -> bool:

@@ -82,6 +82,7 @@ class Line:
     facts: tuple[str, ...] = ()
     waits: tuple[str, ...] = ()
     skipped: bool = False
+    differs: bool = False
     barred: Mapping[Value, tuple[str, ...]] | None = None
 
 
@@ -102,6 +103,16 @@ class AtLimit:
     what: str
     name: str
     rule: str
+
+
+@dataclass(frozen=True, slots=True)
+class Branch:
+    """The advice for one value of what was left open, or for a stretch of a range (then also for its other end)."""
+
+    label: str
+    settings: Mapping[str, Value]
+    advice: "Advice"
+    other_end: "Advice | None" = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -132,7 +143,8 @@ class Advice:
     at_limit: tuple[AtLimit, ...]
     set_aside: tuple[str, ...]
     trace: tuple[StepTrace, ...]
-    branches: tuple["Advice", ...] = ()
+    branches: tuple[Branch, ...] = ()
+    held_over: str = ""
 
     @property
     def fits(self) -> bool:

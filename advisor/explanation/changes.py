@@ -23,7 +23,7 @@ from advisor.explanation.words import (
 )
 from advisor.explanation.workings import HIDDEN, reads
 from advisor.knowledge import Asks, DocketRow, Instance, Refers, Sets
-from advisor.shelf import at_limit, judge
+from advisor.shelf import at_limit
 from advisor.shelf.catalogue import reads as property_reads
 
 MOST_NEAR = 5
@@ -237,44 +237,3 @@ def _near(advice: Advice, name: str, limit: float, sign: str, rules: list[str]) 
     return Near(
         name, title_of(name, advice.knowledge), say_value(domain, seen), wanted, say_margin(away, domain), away == 0,
         tuple(rules))  # fmt: skip
-
-
-@dataclass(frozen=True, slots=True)
-class Clearance:
-    """The must that a product meets with least to spare."""
-
-    demand: str
-    seen: str
-    margin: str
-    rule: str
-    steps: float
-
-
-def least_clearance(advice: Advice, place: int) -> Clearance | None:
-    """The must on a number that a product meets with the fewest steps to spare."""
-    judgement, found = advice.judgement, []
-    if judgement is None:
-        return None
-    for demand, failing in zip(judgement.demands, judgement.failing, strict=True):
-        column = judgement.columns.get(demand.property)
-        seen = column.values[place] if column is not None else None
-        if not demand.must or demand.void or failing >> place & 1 or not isinstance(seen, float):
-            continue
-        _, excluded = judge(demand.for_, judgement.columns, 1 << place)
-        domain = judgement.domains[demand.property]
-        away = [each for term in leaves(demand.test) if (each := margin(term, seen, {})) is not None]
-        if not excluded >> place & 1 and away and domain.kind == "number":
-            limit = seen - min(away)
-            steps = _fraction(domain, seen, limit)
-            found.append(Clearance(
-                say_test(demand.test, advice.knowledge), say_value(domain, seen), say_margin(min(away), domain),
-                demand.rule, steps))  # fmt: skip
-    return min(found, key=lambda each: (each.steps, each.rule), default=None)
-
-
-def _fraction(domain: Domain, seen: float, limit: float) -> float:
-    """The distance in steps, not rounded."""
-    if domain.step is not None and domain.step.kind == "ratio":
-        return abs(math.log(limit / seen) / math.log(domain.step.size)) if seen > 0 and limit > 0 else math.inf
-    size = domain.step.size if domain.step is not None and domain.step.kind == "absolute" else 1.0
-    return abs(seen - limit) / size

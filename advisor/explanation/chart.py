@@ -12,8 +12,8 @@ from advisor.explanation.words import LEVELS
 from advisor.formulas import FORMULAS, OutOfRange
 from advisor.quantities import show
 
-WIDTH, HEIGHT = 640, 400
-_LEFT, _RIGHT, _TOP, _BOTTOM = 64, 168, 20, 44
+WIDTH, HEIGHT = 720, 400
+_LEFT, _RIGHT, _TOP, _BOTTOM = 64, 236, 24, 44
 _GRADES = (2.0, 5.0, 10.0, 20.0, 50.0, 100.0, 200.0, 500.0, 1000.0, 2000.0, 5000.0, 20000.0, 100000.0)
 _DASHES = ("", "8 4", "2 3", "10 3 2 3", "5 5", "1 4")
 _MOST_OILS = 6
@@ -89,10 +89,11 @@ def chart(advice: Advice) -> Chart | None:
     """The chart of the recommended oils; None where nothing is recommended or the point has no film to draw."""
     running, needed = _number(advice, "t_eff_c"), _number(advice, "reference_viscosity")
     oils = list(_oils(advice))[:_MOST_OILS]
+    dashes = dict(zip(dict.fromkeys(oil[1:] for oil in oils), _DASHES, strict=False))
     if advice.withheld or running is None or not oils:
         return None
     axes = _axes(running, oils)
-    lines = [_oil_line(axes, *oil, dash) for oil, dash in zip(oils, _DASHES, strict=False)]
+    lines = [_oil_line(axes, *oil, dashes[oil[1:]]) for oil in oils]
     lines += _needed_lines(axes, advice, needed) if needed is not None else []
     lines.append(_running_line(axes, running))
     return Chart(

@@ -4,11 +4,12 @@ from collections.abc import Iterator
 
 from advisor.advice import Advice, State
 from advisor.explanation.blocks import GLYPHS, Block, Node, Para, Section, Tree, leaf
-from advisor.explanation.changes import Changes, Near, least_clearance
+from advisor.explanation.changes import Changes, Near
+from advisor.explanation.clearances import least_clearances
 from advisor.explanation.reasons import Reason, Why
 from advisor.explanation.ruling import Rules
 from advisor.explanation.seeing import rules_seen
-from advisor.explanation.words import listed, title_of
+from advisor.explanation.words import listed, say_margin, say_test, say_value, title_of
 
 MOST_REASONS = 5
 _SHOWN_NEAR = 3
@@ -97,11 +98,18 @@ def say_apart(near: Near) -> str:
 
 
 def _best_clearance(advice: Advice) -> Iterator[Node]:
-    if advice.fits and advice.shelf:
-        clear = least_clearance(advice, advice.shelf[0].place)
-        if clear is not None:
-            item = advice.shelf[0].item
-            yield Node(f"Smallest margin of {item}: {clear.demand}, its sheet says {clear.seen}, {clear.margin} to spare ({clear.rule}).")
+    """The smallest margin of the best product."""
+    judgement = advice.judgement
+    if judgement is None or not advice.fits:
+        return
+    best = advice.shelf[0]
+    clear = least_clearances(judgement, [best.place]).get(best.place)
+    if clear is not None:
+        demand = judgement.demands[clear.demand]
+        domain = judgement.domains[demand.property]
+        said, seen = say_test(demand.test, advice.knowledge), say_value(domain, clear.seen)
+        spare = say_margin(clear.margin, domain)
+        yield Node(f"Smallest margin of {best.item}: {said}, it has {seen}, {spare} to spare ({clear.rule}).")
 
 
 def _how_sourced(advice: Advice) -> str:

@@ -8,6 +8,7 @@ from advisor.formulas.formula import Formula, Input, demand_positive
 
 # ASTM D1250-04, constant K1 of lubricating oils, kg/m³ per K; 0.34878 per °F in the table for 60 °F.
 K1 = 0.6278
+SHRINKS_BY = 0.65  # kg/m³ per K; common practice
 
 
 def density_at(density_15: float, temperature_c: float) -> float:
@@ -22,6 +23,20 @@ def density_at(density_15: float, temperature_c: float) -> float:
     demand_positive(density_15, "density at 15 °C", "kg/m³")
     shrink = K1 / density_15 * (temperature_c - 15.0)
     return density_15 * exp(-shrink * (1.0 + 0.8 * shrink))
+
+
+def density_at_linear(density_15: float, temperature_c: float) -> float:
+    """Density of an oil at a temperature by the short rule, in kg/m³, from the density at 15 °C in kg/m³.
+
+    Equation: ρ = ρ₁₅ − 0.65·(t − 15), t in °C.
+    Range: 800 to 1000 kg/m³, −20 to 120 °C. Source: common practice.
+
+    >>> density_at_linear(880, 100)
+    824.75
+    """
+    density = density_15 - SHRINKS_BY * (temperature_c - 15.0)
+    demand_positive(density, "density by the short rule", "kg/m³")
+    return density
 
 
 def dynamic_viscosity(viscosity: float, density: float) -> float:
@@ -66,6 +81,13 @@ FORMULAS: tuple[Formula, ...] = (
         "ρ = ρ₁₅·exp(−α·Δ·(1 + 0.8·α·Δ)), α = 0.6278/ρ₁₅, Δ = t − 15",
         "ASTM D1250-04 (API MPMS 11.1), lubricating oils", "from memory",
         "The constant was read per °F and agrees; the range is from memory. Made for petroleum oils.",
+    ),
+    Formula(
+        "density_at_linear", "viscosity", "Density of an oil at a temperature, short rule", density_at_linear,
+        (Input("density_15", "ρ₁₅", "kg/m³", 800, 1000, "up", "density at 15 °C"),
+         Input("temperature_c", "t", "°C", -20, 120, "down", "oil temperature")),
+        "density at the temperature", "ρ", "kg/m³", "ρ = ρ₁₅ − 0.65·(t − 15)", "common practice, no source",
+        "common practice", "About 0.1 % from ASTM D1250 at 100 °C for an oil of 880 kg/m³.",
     ),
     Formula(
         "dynamic_viscosity", "viscosity", "Dynamic viscosity", dynamic_viscosity,

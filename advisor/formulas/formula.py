@@ -1,11 +1,15 @@
-"""What a formula is: a function on plain numbers, with equation, ranges, directions and source beside it as data."""
+"""What a formula is: a function on plain numbers, with equation, ranges, directions and source beside it as data.
+
+A `Formula` takes numbers and gives one number, and knowledge may bind it. A `Lookup` is for people: it takes a name
+from a list beside its numbers, or answers with names.
+"""
 
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from math import inf, isfinite
-from typing import Literal
+from typing import Literal, NamedTuple
 
 Direction = Literal["up", "down", "none"]
 Checked = Literal["yes", "from memory", "common practice"]
@@ -42,6 +46,17 @@ class Input:
         """Whether the value lies in the inclusive range; a value that is no number does not."""
         return self.low <= value <= self.high
 
+    def misses(self, values: Mapping[str, float]) -> bool:
+        """Whether the value given for this input lies outside its range."""
+        return self.name in values and not self.holds(values[self.name])
+
+    def outside(self, value: float) -> str:
+        """The sentence about a value outside the range."""
+        return (
+            f"{self.text[:1].upper()}{self.text[1:]} ({self.symbol}) is {with_unit(value, self.unit)}; "
+            f"the formula is stated for {self.range}."
+        )
+
 
 @dataclass(frozen=True, slots=True)
 class Formula:
@@ -76,16 +91,73 @@ class Formula:
 
     def outside(self, values: Mapping[str, float]) -> tuple[str, ...]:
         """One sentence for each value outside the inclusive range of its input."""
-        return tuple(
-            f"{each.text[:1].upper()}{each.text[1:]} ({each.symbol}) is {with_unit(values[each.name], each.unit)}; "
-            f"the formula is stated for {each.range}."
-            for each in self.inputs
-            if each.name in values and not each.holds(values[each.name])
-        )
+        return tuple(each.outside(values[each.name]) for each in self.inputs if each.misses(values))
 
     def _breakdown(self) -> str:
-        ranges = ", ".join(f"{each.symbol} {each.range}" for each in self.inputs)
-        return f"{self.title} has no finite value here; it is stated for {ranges}."
+        return no_finite_value(self.title, self.inputs)
+
+
+class Named(NamedTuple):
+    """An answer in names: none, one or several of them, and the sentence in which they are told."""
+
+    names: tuple[str, ...]
+    text: str
+
+
+@dataclass(frozen=True, slots=True)
+class Choice:
+    """An input that is one name out of a list."""
+
+    name: str
+    symbol: str
+    options: tuple[str, ...]
+    text: str
+
+    @property
+    def range(self) -> str:
+        """The options as they are printed."""
+        return f"one of {', '.join(self.options)}"
+
+
+@dataclass(frozen=True, slots=True)
+class Lookup:
+    """A table or rule that people read by a name, or that answers with names; knowledge does not bind it."""
+
+    name: str
+    subject: str
+    title: str
+    function: Callable[..., float | Named]
+    inputs: tuple[Input | Choice, ...]
+    result: str
+    result_symbol: str
+    result_unit: str
+    equation: str
+    source: str
+    checked: Checked
+    note: str = ""
+
+    def __call__(self, *values: float | str, **named: float | str) -> float | Named:
+        """The answer, finite where it is a number; OutOfRange where the arithmetic itself breaks down."""
+        try:
+            answer = self.function(*values, **named)
+        except (ArithmeticError, OutOfRange) as fault:
+            if isinstance(fault, OutOfRange):
+                raise
+            raise OutOfRange(no_finite_value(self.title, self.inputs)) from fault
+        if not isinstance(answer, Named) and not isfinite(answer):
+            raise OutOfRange(no_finite_value(self.title, self.inputs))
+        return answer
+
+    def outside(self, values: Mapping[str, float]) -> tuple[str, ...]:
+        """One sentence for each number outside the inclusive range of its input."""
+        numbers = [each for each in self.inputs if isinstance(each, Input)]
+        return tuple(each.outside(values[each.name]) for each in numbers if each.misses(values))
+
+
+def no_finite_value(title: str, inputs: tuple[Input | Choice, ...]) -> str:
+    """The sentence that is told where the arithmetic of a formula breaks down."""
+    ranges = ", ".join(f"{each.symbol} {each.range}" for each in inputs)
+    return f"{title} has no finite value here; it is stated for {ranges}."
 
 
 def plain(value: float) -> str:
@@ -112,3 +184,11 @@ def demand_positive(value: float, text: str, unit: str = "") -> None:
     """Refuse a value that is not a finite number above zero."""
     if not 0 < value < inf:
         raise OutOfRange(f"The {text} must be more than 0 {unit}".rstrip() + f", but it is {with_unit(value, unit)}.")
+
+
+def demand_within(value: float, low: float, high: float, text: str, unit: str = "") -> None:
+    """Refuse a value outside an inclusive range beyond which the physics or the table ends."""
+    if not low <= value <= high:
+        raise OutOfRange(
+            f"The {text} must lie between {plain(low)} and {with_unit(high, unit)}, but it is {with_unit(value, unit)}."
+        )

@@ -9,6 +9,7 @@ from advisor.knowledge.model import (
     Computation,
     Declaration,
     DocketRow,
+    Fork,
     Formed,
     FromItem,
     Instance,
@@ -26,7 +27,8 @@ from advisor.knowledge.model import (
     Warns,
     WorstOf,
 )
-from advisor.knowledge.parsing import Mistyped, Scope, condition, value
+from advisor.knowledge.parsing import condition
+from advisor.knowledge.values import Mistyped, Scope, value
 
 __all__ = [
     "CLOSING_FACTS",
@@ -37,6 +39,7 @@ __all__ = [
     "Computation",
     "Declaration",
     "DocketRow",
+    "Fork",
     "Formed",
     "FromItem",
     "Instance",

@@ -1,14 +1,19 @@
 """Formulas and look-ups bound to facts and properties."""
 
+from collections.abc import Iterator
 from collections.abc import Mapping as Map
 from dataclasses import dataclass, replace
 
 from advisor.conditions import Domain, Value
-from advisor.documents import Mapping, Node, Problems, Scalar, Sequence, as_number, nearest
+from advisor.documents import Mapping, Mark, Node, Scalar, Sequence, as_number, nearest
 from advisor.formulas import FORMULAS
-from advisor.knowledge.model import Formed, LookedUp, Table, WorstOf
-from advisor.knowledge.parsing import Mistyped, Scope, value
+from advisor.formulas.formula import Formula
+from advisor.knowledge.model import Band, Formed, LookedUp, Table, WorstOf
+from advisor.knowledge.reading import list_in, mapping_in
 from advisor.knowledge.schema import ComputationShape, LookUpShape, PropertyShape
+from advisor.knowledge.values import Mistyped, Scope, value
+
+_ANY = Domain("choice", open_choices=True)
 
 
 @dataclass(frozen=True, slots=True)
@@ -16,26 +21,24 @@ class Bindings:
     """Reads bindings against the known tables, facts and properties."""
 
     tables: Map[str, Table]
-    facts: dict[str, Domain]
+    facts: Map[str, Domain]
     properties: Map[str, Domain]
-    problems: Problems
 
     def of_computation(
         self, shape: ComputationShape, tree: Mapping, scope: Scope
     ) -> tuple[Formed | LookedUp | None, Domain]:
         """What computes a fact, and the domain that follows from it."""
-        if (shape.formula is None) == (shape.looked_up is None):
-            scope.problem(tree.mark, "a computed fact has either a formula or a look-up")
-            return None, Domain("number")
-        if shape.formula is not None:
-            domain = self._formula_domain(shape.formula, tree, scope)
+        facts_only = replace(self, properties={})
+        if shape.formula is not None and shape.looked_up is None:
+            formed, domain = facts_only.formed(shape.formula, tree, scope)
             if shape.limits:
                 domain = replace(domain, low=shape.limits[0], high=shape.limits[1])
-            return self._formed(shape.formula, tree, scope), domain
-        node = tree["looked_up"]
-        assert shape.looked_up is not None  # noqa: S101 - one of the two is there
-        domain = self._column(shape.looked_up)
-        return self._looked_up(shape.looked_up, node, domain, scope), domain
+            return formed, domain
+        if shape.looked_up is not None and shape.formula is None:
+            domain = self._column(shape.looked_up)
+            return facts_only.looked_up(shape.looked_up, mapping_in(tree, "looked_up"), domain, scope), domain
+        scope.problem(tree.mark, "a computed fact has either a formula or a look-up", "formula: ..., or looked_up: ...")
+        return None, Domain("number")
 
     def of_property(
         self, shape: PropertyShape, tree: Mapping, domain: Domain, scope: Scope
@@ -43,118 +46,121 @@ class Bindings:
         """What computes a property, if anything does."""
         ways = [way for way in ("formula", "looked_up", "worst_of", "concluded") if getattr(shape, way) is not None]
         if len(ways) > 1:
-            scope.problem(tree.mark, f"a property is found in one way, not by {' and '.join(ways)}")
+            scope.problem(
+                tree.key_marks[ways[-1]], f"a property is found in one way, not by {' and '.join(ways)}", "keep one"
+            )
         if shape.formula is not None:
-            self._formula_domain(shape.formula, tree, scope)
-            return self._formed(shape.formula, tree, scope)
+            formed, found = self.formed(shape.formula, tree, scope)
+            if formed is not None and (domain.kind != "number" or (found.unit and found.unit != domain.unit)):
+                scope.problem(tree["formula"].mark, f"{shape.formula} gives a number in {found.unit or 'no unit'}")
+            return formed
         if shape.looked_up is not None:
-            return self._looked_up(shape.looked_up, tree["looked_up"], domain, scope)
+            return self._reads(shape.looked_up, tree, domain, scope)
         if shape.worst_of is not None:
-            nodes = tree["worst_of"]
-            assert isinstance(nodes, Sequence)  # noqa: S101 - by the shape
-            parts = [
-                self._looked_up(part.looked_up, node["looked_up"], domain, scope)
-                for part, node in zip(shape.worst_of, nodes, strict=True)
-                if isinstance(node, Mapping)
-            ]
+            pairs = zip(shape.worst_of, list_in(tree, "worst_of"), strict=True)
+            parts = [self._reads(part.looked_up, node, domain, scope) for part, node in pairs]
             return WorstOf(tuple(part for part in parts if part is not None))
         return None
 
-    def _formula_domain(self, name: str, tree: Mapping, scope: Scope) -> Domain:
-        formula = FORMULAS.get(name)
+    def formed(self, name: str, tree: Mapping, scope: Scope) -> tuple[Formed | None, Domain]:
+        """A formula with its inputs, and the domain of its result."""
+        formula, node = FORMULAS.get(name), tree.get("in")
         if formula is None:
-            scope.problem(
-                tree["formula"].mark,
-                f"'{name}' is no formula",
-                nearest(name, FORMULAS).strip() or "gudgeon compute lists them",
-            )
-            return Domain("number")
-        return Domain("number", self._unit(name, tree))
-
-    def _unit(self, name: str, tree: Mapping) -> str:
-        """The unit of the result; some formulas hold in any unit and take that of an input."""
-        formula, node = FORMULAS[name], tree.get("in")
-        if not formula.unit_follows or not isinstance(node, Mapping):
-            return formula.result_unit
-        named = (str(node.get(each.name, "")) for each in formula.inputs)
-        units = [domain.unit for each in named if (domain := self.facts.get(each) or self.properties.get(each))]
-        return next((unit for unit in units if unit), "")
-
-    def _formed(self, name: str, tree: Mapping, scope: Scope) -> Formed | None:
-        formula = FORMULAS.get(name)
-        node = tree.get("in")
-        if formula is None:
-            return None
+            hint = nearest(name, FORMULAS).strip() or "'gudgeon compute' lists them"
+            scope.problem(tree["formula"].mark, f"'{name}' is no formula", hint)
+            return None, Domain("number")
+        domain = Domain("number", self._unit(formula, mapping_in(node)))
         if not isinstance(node, Mapping):
-            scope.problem(tree.mark, f"formula {name} needs its inputs", "in: {input: fact or number}")
-            return None
+            at = node.mark if node is not None else tree["formula"].mark
+            scope.problem(at, f"formula {name} needs its inputs", "in: {input: fact or number}")
+            return None, domain
         wanted = {each.name: each for each in formula.inputs}
-        for key in node:
-            if key not in wanted:
-                scope.problem(
-                    node.key_marks[key],
-                    f"'{key}' is no input of {name}",
-                    nearest(key, wanted).strip() or "its inputs: " + ", ".join(wanted),
-                )
+        strange = [key for key in node if key not in wanted]
+        for key in strange:
+            hint = nearest(key, wanted).strip() or "its inputs: " + ", ".join(wanted)
+            scope.problem(node.key_marks[key], f"'{key}' is no input of {name}", hint)
         for key in wanted:
-            if key not in node:
+            if key not in node and not nearest(key, strange):
                 scope.problem(node.mark, f"input '{key}' of {name} is missing", f"add '{key}: fact or number'")
         inputs: dict[str, str | float] = {}
         for key, child in node.items():
             if key in wanted:
                 self._input(key, child, wanted[key].unit, inputs, scope)
-        return Formed(name, inputs) if len(inputs) == len(wanted) else None
+        return (Formed(name, inputs) if len(inputs) == len(wanted) else None), domain
+
+    def _unit(self, formula: Formula, inputs: Mapping) -> str:
+        """The unit of the result; some formulas hold in any unit and take that of an input."""
+        if not formula.unit_follows:
+            return formula.result_unit
+        named = (str(inputs.get(each.name, "")) for each in formula.inputs)
+        units = [domain.unit for each in named if (domain := self.facts.get(each) or self.properties.get(each))]
+        return next((unit for unit in units if unit), "")
 
     def _input(self, key: str, node: Node, unit: str, inputs: dict[str, str | float], scope: Scope) -> None:
         if not isinstance(node, Scalar):
-            scope.problem(node.mark, "an input is the name of a fact or property, or a number")
+            scope.problem(node.mark, "an input is the name of a fact or property, or a number", f"{key}: t_eff_c")
             return
         name = str(node)
         domain = self.facts.get(name) or self.properties.get(name)
-        if domain is None:
+        if domain is None or scope.lost.has("names", name):
             try:
                 inputs[key] = as_number(node)
             except ValueError:
-                scope.problem(
-                    node.mark,
-                    f"'{name}' is neither a number nor a known fact or property",
-                    nearest(name, [*self.facts, *self.properties]).strip(),
-                )
-            return
-        if domain.kind != "number":
-            scope.problem(node.mark, f"'{name}' is {domain.kind}, and a formula needs a number")
+                known = "fact or property" if self.properties else "fact"
+                message = f"'{name}' is neither a number nor a known {known}"
+                scope.unknown(node.mark, "names", name, message, [*self.facts, *self.properties])
+        elif domain.kind != "number":
+            scope.problem(node.mark, f"'{name}' is {domain.kind}, and a formula needs a number", "name a number")
         elif unit and domain.unit and unit != domain.unit:
-            scope.problem(node.mark, f"'{name}' is in {domain.unit}, and input '{key}' is in {unit}")
-        inputs[key] = name
+            message = f"'{name}' is in {domain.unit}, and input '{key}' is in {unit}"
+            scope.problem(node.mark, message, "both need the same unit")
+        else:
+            inputs[key] = name
 
     def _column(self, shape: LookUpShape) -> Domain:
         table = self.tables.get(shape.table)
         if table is None:
-            return Domain("choice", open_choices=True)
+            return _ANY
         if table.matrix and table.values is not None:
             return table.values
-        domain = table.columns.get(shape.column or "")
-        return domain if domain is not None else Domain("choice", open_choices=True)
+        return table.columns.get(shape.column or "", _ANY)
 
-    def _looked_up(self, shape: LookUpShape, node: Node, domain: Domain, scope: Scope) -> LookedUp | None:
+    def looked_up(self, shape: LookUpShape, node: Mapping, domain: Domain, scope: Scope) -> LookedUp | None:
+        """A look-up, with its table, key columns and column resolved."""
         scope = scope.at("looked_up")
         table = self.tables.get(shape.table)
-        assert isinstance(node, Mapping)  # noqa: S101 - by the shape
         if table is None:
-            scope.problem(node["table"].mark, f"'{shape.table}' is no table", nearest(shape.table, self.tables).strip())
+            scope.unknown(
+                node["table"].mark, "tables", shape.table, f"'{shape.table}' is no table", self.tables, "see tables/"
+            )
             return None
-        by = self._by(table, node, scope)
+        by = self._by(table, node["by"], scope)
         column = shape.column or ""
         if not table.matrix and column not in table.columns:
             at = node["column"].mark if "column" in node else node.mark
-            scope.problem(
-                at,
-                f"'{column}' is no column of table {table.id}" if column else "the column to be read is missing",
-                nearest(column, table.columns).strip(),
-            )
+            message = f"'{column}' is no column of table {table.id}" if column else "the column to be read is missing"
+            scope.problem(at, message, nearest(column, table.columns).strip() or f"it has {', '.join(table.columns)}")
             return None
         otherwise = self._otherwise(node, domain, scope)
         return LookedUp(shape.table, by, column, shape.combine or "", otherwise) if by else None
+
+    def _reads(self, shape: LookUpShape, node: Node, domain: Domain, scope: Scope) -> LookedUp | None:
+        """The look-up of a property; every value that it can find must be one that the property may have."""
+        how = self.looked_up(shape, mapping_in(node, "looked_up"), domain, scope)
+        for mark, found in self._found(how) if how else ():
+            if not domain.accepts(found):
+                message = f"'{found}' is read from here for {scope.trail[-1]}, which cannot be that"
+                scope.problem(mark, message, nearest(str(found), domain.choices).strip() or "check both declarations")
+        return how
+
+    def _found(self, how: LookedUp) -> Iterator[tuple[Mark, Value]]:
+        table = self.tables[how.table]
+        if table.values is not None:
+            yield from ((table.mark, each) for each in table.values.choices)
+        for row in table.rows:
+            cell = row.cells.get(how.column)
+            if cell is not None and not isinstance(cell, Band):
+                yield row.mark, cell
 
     def _otherwise(self, node: Mapping, domain: Domain, scope: Scope) -> Value | None:
         if "otherwise" not in node:
@@ -165,8 +171,7 @@ class Bindings:
         except Mistyped:
             return None
 
-    def _by(self, table: Table, node: Mapping, scope: Scope) -> tuple[tuple[str, str], ...]:
-        by = node["by"]
+    def _by(self, table: Table, by: Node, scope: Scope) -> tuple[tuple[str, str], ...]:
         if table.matrix:
             if not isinstance(by, Sequence) or len(by) != 2:
                 scope.problem(by.mark, "a matrix is looked up by two names", "by: [one, other]")
@@ -177,18 +182,24 @@ class Bindings:
         else:
             scope.problem(by.mark, "'by' pairs columns of the table with facts or properties", "by: {column: fact}")
             return ()
-        return tuple((column, str(name)) for column, name in pairs if self._pair(table, column, name, by, scope))
+        good = [self._pair(table, column, name, by, scope) for column, name in pairs]
+        return tuple((column, str(name)) for column, name in pairs) if all(good) else ()
 
     def _pair(self, table: Table, column: str, name: Node, by: Node, scope: Scope) -> bool:
         if column not in table.columns:
             at = by.key_marks[column] if isinstance(by, Mapping) else by.mark
-            scope.problem(at, f"'{column}' is no column of table {table.id}", nearest(column, table.columns).strip())
+            hint = nearest(column, table.columns).strip() or f"it has {', '.join(table.columns)}"
+            scope.problem(at, f"'{column}' is no column of table {table.id}", hint)
             return False
-        if str(name) not in self.facts and str(name) not in self.properties:
-            scope.problem(
-                name.mark,
-                f"'{name}' is no fact or property",
-                nearest(str(name), [*self.facts, *self.properties]).strip(),
-            )
+        domain = self.facts.get(str(name)) or self.properties.get(str(name))
+        if not isinstance(name, Scalar) or domain is None or scope.lost.has("names", str(name)):
+            known = "fact or property" if self.properties else "fact"
+            names = [*self.facts, *self.properties]
+            scope.unknown(name.mark, "names", str(name), f"'{name}' is no {known}", names, "declare it")
+            return False
+        key = table.columns[column]
+        if (key.kind == "number") != (domain.kind == "number") or key.unit != domain.unit:
+            message = f"'{name}' ({domain.kind} {domain.unit}".rstrip() + f") cannot be looked up in column '{column}'"
+            scope.problem(name.mark, message, "both need the same kind and unit")
             return False
         return True

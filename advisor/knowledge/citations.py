@@ -3,11 +3,11 @@
 from collections.abc import Mapping as Map
 from dataclasses import dataclass
 
-from advisor.documents import Mapping, Node, Problems, nearest
+from advisor.documents import Mapping, Mark, Node, Scalar
 from advisor.knowledge.model import Citation, Source
-from advisor.knowledge.parsing import Scope
 from advisor.knowledge.reading import shaped
 from advisor.knowledge.schema import CitationShape, SourceShape
+from advisor.knowledge.values import Scope
 
 _STRENGTH = {"yes": 2, "from memory": 1, "no source": 0}
 
@@ -17,7 +17,6 @@ class Citations:
     """Reads citations against the known sources."""
 
     sources: Map[str, Source]
-    problems: Problems
 
     def read(self, shapes: list[CitationShape], owner: Node, scope: Scope) -> tuple[Citation, ...]:
         """The citations of an owner; faults stand at the citation's own place."""
@@ -34,27 +33,35 @@ class Citations:
         if not isinstance(node, list):
             scope.problem(node.mark, "a source is a list", "source: [{id: ..., where: ...}]")
             return ()
-        shapes = [(shaped(each, CitationShape, self.problems), each) for each in node]
+        shapes = [(shaped(each, CitationShape, scope.problems), each) for each in node]
         return tuple(self._one(shape, each, scope) for shape, each in shapes if shape is not None)
 
     def _one(self, shape: CitationShape, node: Node, scope: Scope) -> Citation:
         source = self.sources.get(shape.id)
         if source is None:
-            scope.problem(
-                node.mark,
+            scope.unknown(
+                _mark(node, "id"),
+                "sources",
+                shape.id,
                 f"'{shape.id}' is no source",
-                nearest(shape.id, self.sources).strip() or "add it to sources.yaml",
+                self.sources,
+                "add it to sources.yaml",
             )
             return Citation(shape.id, shape.where, "no source")
         checked = shape.checked or source.checked
         if _STRENGTH[checked] > _STRENGTH[source.checked]:
             scope.problem(
-                node.mark,
+                _mark(node, "checked"),
                 f"'{shape.id}' is marked '{source.checked}' in sources.yaml, and a citation cannot be surer",
                 "read the source, then change its 'checked' there",
             )
             checked = source.checked
         return Citation(shape.id, shape.where, checked)
+
+
+def _mark(node: Node, key: str) -> Mark:
+    child = node.get(key) if isinstance(node, Mapping) else None
+    return child.mark if isinstance(child, Scalar) else node.mark
 
 
 def read_sources(shapes: Map[str, SourceShape]) -> dict[str, Source]:

@@ -2,11 +2,14 @@
 
 from collections.abc import Iterator
 from collections.abc import Mapping as Map
+from dataclasses import dataclass
 
 from advisor.conditions import FactRef
 from advisor.conditions.terms import names
-from advisor.documents import Mark, Problem, Problems
-from advisor.knowledge.model import Asks, Computation, Formed, Instance, Knowledge, LookedUp, Sets
+from advisor.documents import Mapping, Mark, Node, Scalar
+from advisor.knowledge.model import Computation, Formed, Instance, Knowledge, LookedUp, Sets
+from advisor.knowledge.reading import list_in
+from advisor.knowledge.values import Scope
 
 
 def inputs_of(how: Formed | LookedUp) -> list[str]:
@@ -16,7 +19,7 @@ def inputs_of(how: Formed | LookedUp) -> list[str]:
     return [name for _, name in how.by]
 
 
-def ordered(computations: Map[str, Computation], problems: Problems) -> dict[str, Computation]:
+def in_order(computations: Map[str, Computation], trees: Map[str, Mapping], scope: Scope) -> dict[str, Computation]:
     """The computations so that each comes after those it reads; a cycle is a problem."""
     done: dict[str, Computation] = {}
 
@@ -24,18 +27,10 @@ def ordered(computations: Map[str, Computation], problems: Problems) -> dict[str
         if name in done or name not in computations:
             return
         if name in above:
-            mark = computations[name].mark
             circle = " -> ".join((*above[above.index(name) :], name))
-            problems.add(
-                Problem(
-                    mark.file,
-                    mark.line,
-                    mark.column,
-                    ("computations", f"'{name}'"),
-                    f"these computations need one another: {circle}",
-                    "break the circle",
-                )
-            )
+            mark = place_of(name, trees[above[-1]])
+            message = f"these computations need one another: {circle}"
+            scope.over({}, "computations", f"'{above[-1]}'").problem(mark, message, "break the circle")
             return
         for needed in inputs_of(computations[name].how):
             place(needed, (*above, name))
@@ -46,35 +41,72 @@ def ordered(computations: Map[str, Computation], problems: Problems) -> dict[str
     return done
 
 
-def cross_check(knowledge: Knowledge, problems: Problems) -> None:
-    """Check that every name is known by the step that reads it, and that conclusions suit their step."""
-    order = {step.id: place for place, step in enumerate(knowledge.steps)}
-    ready = _ready(knowledge, order)
-    for computation in knowledge.computations.values():
-        for name in inputs_of(computation.how):
-            if ready.get(name, -1) > order[computation.step]:
-                _late(problems, computation.mark, ("computations", f"'{computation.fact}'"), name, computation.step)
-    told: set[tuple[Mark, str]] = set()
-    for step, instances in knowledge.instances.items():
-        for instance in instances:
-            for name in _named(instance):
-                key = (instance.rule.mark, name)
-                if ready.get(name, -1) > order[step] and key not in told:
-                    told.add(key)
-                    _late(problems, instance.rule.mark, ("rules", f"'{instance.rule.id}'"), name, step)
-            if step == "closing" and any(isinstance(each, Asks | Sets) for each in instance.then):
-                mark = instance.rule.mark
-                problems.add(
-                    Problem(
-                        mark.file,
-                        mark.line,
-                        mark.column,
-                        ("rules", f"'{instance.rule.id}'"),
-                        "a closing rule may only caution and refer",
-                        "move the rule to an earlier step",
-                    )
-                )
-    _may_conflict(knowledge, problems)
+def place_of(name: str, node: Node) -> Mark:
+    """Where a name stands in a part of the knowledge, as a key or as a value; else where the part begins."""
+    return next(_places(name, node), node.mark)
+
+
+def _places(name: str, node: Node) -> Iterator[Mark]:
+    if isinstance(node, Scalar):
+        if str(node) == name:
+            yield node.mark
+    elif isinstance(node, Mapping):
+        for key, child in node.items():
+            if key == name:
+                yield node.key_marks[key]
+            elif key not in {"id", "fact", "title", "because", "fires", "silent", "source"}:
+                yield from _places(name, child)
+    else:
+        for child in node:
+            yield from _places(name, child)
+
+
+@dataclass(frozen=True, slots=True)
+class CrossChecks:
+    """Checks that every name is known by the step that reads it, and that conclusions suit their step."""
+
+    knowledge: Knowledge
+    rules: Map[str, Mapping]
+    computations: Map[str, Mapping]
+    ground: Scope
+
+    def check(self) -> None:
+        """Tell every such fault."""
+        order = {step.id: place for place, step in enumerate(self.knowledge.steps)}
+        ready = _ready(self.knowledge, order)
+        for computation in self.knowledge.computations.values():
+            scope = self.ground.over({}, "computations", f"'{computation.fact}'")
+            for name in inputs_of(computation.how):
+                if ready.get(name, -1) > order[computation.step]:
+                    _late(name, computation.step, self.computations[computation.fact], scope)
+        for step, instances in self.knowledge.instances.items():
+            for instance in instances:
+                tree, scope = self.rules[instance.rule.id], self.ground.over({}, "rules", f"'{instance.rule.id}'")
+                for name in _named(instance):
+                    if ready.get(name, -1) > order[step]:
+                        _late(name, step, tree, scope)
+                if step == "closing":
+                    _closes(tree, scope)
+        self._may_conflict()
+        self._procedures()
+
+    def _may_conflict(self) -> None:
+        for rule in self.knowledge.rules.values():
+            scope = self.ground.over({}, "rules", f"'{rule.id}'", "may_conflict")
+            for other in rule.may_conflict:
+                if other not in self.knowledge.rules:
+                    mark = place_of(other, self.rules[rule.id]["may_conflict"])
+                    message, known = f"'{other}' is no rule", self.knowledge.rules
+                    scope.unknown(mark, "rules", other, message, known, "name a rule by its id")
+
+    def _procedures(self) -> None:
+        """Each way of changing over has its steps."""
+        change_over = self.knowledge.properties.get("change_over")
+        for choice in change_over.domain.choices if change_over else ():
+            if change_over and choice not in self.knowledge.procedures:
+                message = f"cautions.yaml has no steps for the change-over '{choice}'"
+                scope = self.ground.over({}, "properties", "change_over")
+                scope.unknown(change_over.mark, "procedures", choice, message, (), "add them under 'change_over'")
 
 
 def _ready(knowledge: Knowledge, order: Map[str, int]) -> dict[str, int]:
@@ -95,30 +127,17 @@ def _named(instance: Instance) -> Iterator[str]:
             yield conclusion.value.name
 
 
-def _late(problems: Problems, mark: Mark, trail: tuple[str, ...], name: str, step: str) -> None:
-    problems.add(
-        Problem(
-            mark.file,
-            mark.line,
-            mark.column,
-            trail,
-            f"'{name}' is not known yet in step {step}",
-            "concluded facts are visible from the next step on; move the rule, or what concludes the fact",
-        )
+def _closes(tree: Mapping, scope: Scope) -> None:
+    for conclusion in list_in(tree, "then"):
+        for verb in ("must", "should", "set"):
+            if isinstance(conclusion, Mapping) and verb in conclusion:
+                mark = conclusion.key_marks[verb]
+                scope.problem(mark, "a closing rule may only caution and refer", "move the rule to an earlier step")
+
+
+def _late(name: str, step: str, tree: Mapping, scope: Scope) -> None:
+    scope.problem(
+        place_of(name, tree),
+        f"'{name}' is not known yet in step {step}",
+        "concluded facts are visible from the next step on; move the rule, or what concludes the fact",
     )
-
-
-def _may_conflict(knowledge: Knowledge, problems: Problems) -> None:
-    for rule in knowledge.rules.values():
-        for other in rule.may_conflict:
-            if other not in knowledge.rules:
-                problems.add(
-                    Problem(
-                        rule.mark.file,
-                        rule.mark.line,
-                        rule.mark.column,
-                        ("rules", f"'{rule.id}'", "may_conflict"),
-                        f"'{other}' is no rule",
-                        "name a rule by its id",
-                    )
-                )

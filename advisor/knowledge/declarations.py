@@ -2,44 +2,47 @@
 
 from collections.abc import Mapping as Map
 from dataclasses import dataclass, replace
+from typing import TypeVar
 
 from advisor.conditions import ALWAYS, Condition, Domain, FactRef, Step, Value
-from advisor.documents import Mapping, Node, Problems, Scalar, nearest
+from advisor.documents import Mapping, Node, Scalar
 from advisor.knowledge.bindings import Bindings
 from advisor.knowledge.citations import Citations
+from advisor.knowledge.folder import Placed
 from advisor.knowledge.model import Assumption, Concluded, Declaration, FromItem, Property, Question
-from advisor.knowledge.parsing import Mistyped, Scope, condition, value
+from advisor.knowledge.parsing import condition
+from advisor.knowledge.reading import mapping_in
 from advisor.knowledge.schema import AssumeShape, ConcludedShape, FactShape, PropertyShape
 from advisor.knowledge.tables import column_domain
+from advisor.knowledge.values import Mistyped, Scope, value
 
-
-@dataclass(frozen=True, slots=True)
-class Declared:
-    """A shape with its tree and the place of its key."""
-
-    shape: FactShape | PropertyShape
-    tree: Mapping
-    parent: Mapping
+Declared = TypeVar("Declared", FactShape, PropertyShape)
 
 
 def domains_of(
-    raw: Map[str, Declared], labels: Map[str, Map[str, str]], items: Map[str, str], problems: Problems, where: str
+    raw: Map[str, Placed[Declared]], labels: Map[str, Map[str, str]], items: Map[str, str], ground: Scope
 ) -> dict[str, Domain]:
-    """The domains of all facts, or of all properties."""
+    """The domains of all facts, or of all properties; what is faulty here is told here and nowhere else."""
     found: dict[str, Domain] = {}
-    for name, declared in raw.items():
-        scope = Scope(problems, {}, trail=(where, name))
-        domain = column_domain(declared.shape, declared.tree, labels, scope)
+    for name, placed in raw.items():
+        shape, scope = placed.shape, ground.at(name)
+        before = len(scope.problems)
+        domain = column_domain(shape, placed.tree, labels, scope)
         if domain.kind == "item":
-            domain = replace(domain, choices={**items, **domain.choices}, open_choices=False)
-        if domain.kind in {"choice", "scale", "several"} and not domain.choices:
-            scope.problem(declared.tree.mark, f"a {domain.kind} needs its choices", "list them under 'choices:'")
-        found[name] = replace(domain, step=_step(declared, scope))
+            domain = replace(
+                domain, choices={**items, **domain.choices}, open_choices=scope.lost.may_have("items", "")
+            )
+        borrowed = shape.choices_of is None or shape.choices_of in labels
+        if domain.kind in {"choice", "scale", "several"} and not domain.choices and borrowed:
+            scope.problem(placed.tree["kind"].mark, f"a {domain.kind} needs its choices", "list them under 'choices:'")
+        found[name] = replace(domain, step=_step(placed.tree, scope))
+        if len(scope.problems) > before or not borrowed:
+            scope.lost.lose("names", name)
     return found
 
 
-def _step(declared: Declared, scope: Scope) -> Step | None:
-    node = declared.tree.get("step")
+def _step(tree: Mapping, scope: Scope) -> Step | None:
+    node = tree.get("step")
     if node is None:
         return None
     if isinstance(node, Mapping) and len(node) == 1:
@@ -50,7 +53,7 @@ def _step(declared: Declared, scope: Scope) -> Step | None:
             return _sized(kind, size, scope)
     if isinstance(node, Scalar):
         return _sized("absolute", node, scope)
-    scope.problem(node.mark, "a step is a number, {absolute: 10}, {ratio: 1.5} or {places: yes}")
+    scope.problem(node.mark, "this is no step", "write a number, {absolute: 10}, {ratio: 1.5} or {places: yes}")
     return None
 
 
@@ -60,7 +63,7 @@ def _sized(kind: str, node: Node, scope: Scope) -> Step | None:
     except Mistyped:
         return None
     if not isinstance(size, float) or size <= (1 if kind == "ratio" else 0):
-        scope.problem(node.mark, "a step is above 0, a ratio above 1")
+        scope.problem(node.mark, "a step is above 0, a ratio above 1", "step: {ratio: 1.5}")
         return None
     return Step(kind, size)
 
@@ -72,27 +75,26 @@ class FactReader:
     domains: Map[str, Domain]
     properties: Map[str, Domain]
     citations: Citations
-    problems: Problems
+    ground: Scope
 
-    def read(self, raw: Map[str, Declared]) -> dict[str, Declaration]:
+    def read(self, raw: Map[str, Placed[FactShape]]) -> dict[str, Declaration]:
         """All facts in the order of asking."""
         found: dict[str, Declaration] = {}
         asked: dict[str, Domain] = {}
-        for name, declared in raw.items():
-            found[name] = self._one(name, declared, asked)
+        for name, placed in raw.items():
+            found[name] = self._one(name, placed, asked)
             if found[name].question:
                 asked[name] = self.domains[name]
         return found
 
-    def _one(self, name: str, declared: Declared, asked: Map[str, Domain]) -> Declaration:
-        shape, tree = declared.shape, declared.tree
-        assert isinstance(shape, FactShape)  # noqa: S101 - only facts are read here
+    def _one(self, name: str, placed: Placed[FactShape], asked: Map[str, Domain]) -> Declaration:
+        shape, tree, mark = placed.shape, placed.tree, placed.parent.key_marks[name]
         domain = self.domains[name]
-        scope = Scope(self.problems, asked, trail=("facts", name), what="fact asked earlier")
+        scope = self.ground.over(asked, "facts", name, what="fact asked earlier")
         kinds = [kind for kind in ("question", "concluded", "tunable") if getattr(shape, kind) is not None]
         if len(kinds) != 1:
             scope.problem(
-                declared.parent.key_marks[name],
+                mark,
                 "a fact has exactly one of question, concluded and tunable",
                 f"this one has {' and '.join(kinds) or 'none'}",
             )
@@ -101,11 +103,11 @@ class FactReader:
             name,
             shape.title,
             domain,
-            declared.parent.key_marks[name],
+            mark,
             question=self._question(shape, tree, scope),
             assume=self._assumption(shape.assume, tree.get("assume"), domain, scope.at("assume")),
-            unasked=self._unasked(shape, tree, domain, asked, scope),
-            concluded=concluded(shape.concluded, tree.get("concluded"), domain, scope),
+            unasked=self._unasked(shape, tree, domain, asked, scope.at("unasked")),
+            concluded=concluded(shape.concluded, tree.get("concluded"), domain, scope.at("concluded")),
             tunable=self._assumption(shape.tunable, tree.get("tunable"), domain, scope.at("tunable")),
         )
 
@@ -145,12 +147,15 @@ class FactReader:
         if node is None:
             return None
         if shape.question is None or shape.question.when is None:
-            scope.problem(tree.key_marks["unasked"], "'unasked' stands only beside a question with 'when'")
+            scope.problem(
+                tree.key_marks["unasked"], "'unasked' stands only beside a question with 'when'", "take it out"
+            )
         try:
             if isinstance(node, Mapping) and "fact" in node:
                 name = str(node["fact"])
                 if name not in asked:
-                    raise scope.fault(node["fact"], f"'{name}' is no fact asked earlier", nearest(name, asked).strip())
+                    message = f"'{name}' is no fact asked earlier"
+                    raise scope.unknown(node["fact"].mark, "names", name, message, asked)
                 return FactRef(name)
             if isinstance(node, Mapping) and "item" in node:
                 return self._from_item(node, domain, asked, scope)
@@ -161,11 +166,16 @@ class FactReader:
     def _from_item(self, node: Mapping, domain: Domain, asked: Map[str, Domain], scope: Scope) -> FromItem:
         name, wanted = str(node.get("item")), str(node.get("property", ""))
         if name not in asked or asked[name].kind != "item":
-            raise scope.fault(node, f"'{name}' is no fact of kind item asked earlier")
+            message = f"'{name}' is no fact of kind item asked earlier"
+            raise scope.unknown(node["item"].mark, "names", name, message, asked)
         if wanted not in self.properties:
-            raise scope.fault(node, f"'{wanted}' is no property", nearest(wanted, self.properties).strip())
+            at = node["property"].mark if "property" in node else node.mark
+            message = f"'{wanted}' is no property"
+            raise scope.unknown(at, "names", wanted, message, self.properties, "property: thickener")
         if "otherwise" not in node:
-            raise scope.fault(node, "'otherwise' is missing: what stands where the sheet does not say")
+            raise scope.fault(
+                node, "'otherwise' is missing: what stands where the sheet does not say", "otherwise: not_known"
+            )
         return FromItem(name, wanted, value(node["otherwise"], domain, scope))
 
 
@@ -174,33 +184,44 @@ def concluded(shape: ConcludedShape | None, node: Node | None, domain: Domain, s
     if shape is None or not isinstance(node, Mapping):
         return None
     if shape.combine != "one" and not domain.ordered:
-        scope.problem(node.mark, "only numbers, scales and yes/no have a highest and a lowest", "use combine: one")
+        message = "only numbers, scales and yes/no have a highest and a lowest"
+        scope.problem(node["combine"].mark, message, "use combine: one")
     try:
-        return Concluded(value(node["otherwise"], domain, scope.at("concluded")), shape.combine)
+        return Concluded(value(node["otherwise"], domain, scope), shape.combine)
     except Mistyped:
         return None
 
 
 def read_properties(
-    raw: Map[str, Declared], domains: Map[str, Domain], bindings: Bindings, citations: Citations, problems: Problems
+    raw: Map[str, Placed[PropertyShape]], bindings: Bindings, citations: Citations, ground: Scope
 ) -> dict[str, Property]:
     """All properties."""
     found: dict[str, Property] = {}
-    for name, declared in raw.items():
-        shape, tree = declared.shape, declared.tree
-        assert isinstance(shape, PropertyShape)  # noqa: S101 - only properties are read here
-        scope = Scope(problems, domains, trail=("properties", name), what="property")
+    for name, placed in raw.items():
+        shape, tree, domain = placed.shape, placed.tree, bindings.properties[name]
+        scope = ground.over(bindings.properties, "properties", name, what="property")
         citations.read(shape.source, tree, scope)
         found[name] = Property(
             name,
             shape.title,
-            domains[name],
-            declared.parent.key_marks[name],
+            domain,
+            placed.parent.key_marks[name],
             shape.of or "",
             shape.test,
             shape.hidden,
-            bindings.of_property(shape, tree, domains[name], scope),
-            concluded(shape.concluded, tree.get("concluded"), domains[name], scope),
-            shape.same.item if shape.same else "",
+            bindings.of_property(shape, tree, domain, scope),
+            concluded(shape.concluded, tree.get("concluded"), domain, scope.at("concluded")),
+            _same_item(shape, tree, bindings.facts, scope.at("same")),
         )
     return found
+
+
+def _same_item(shape: PropertyShape, tree: Mapping, facts: Map[str, Domain], scope: Scope) -> str:
+    """The fact that names the product in use."""
+    if shape.same is None:
+        return ""
+    name, mark = shape.same.item, mapping_in(tree, "same")["item"].mark
+    items = [fact for fact, domain in facts.items() if domain.kind == "item"]
+    if name not in items:
+        scope.unknown(mark, "names", name, f"'{name}' is no fact of kind item", items)
+    return name

@@ -1,230 +1,208 @@
 """The files of a knowledge folder, read into shapes; and the folder's fingerprint."""
 
 import hashlib
+from collections.abc import Iterator
 from collections.abc import Mapping as Map
 from dataclasses import dataclass, field
 from pathlib import Path
 from typing import Generic, TypeVar
 
-from advisor.documents import Mapping, Node, Problem, Problems, nearest
-from advisor.knowledge.reading import read_file
-from advisor.knowledge.schema import (
-    CautionsFile,
-    ComputationShape,
-    DesignationsFile,
-    DocketFile,
+from advisor.documents import Mapping, Problem, Problems, nearest
+from advisor.knowledge.files import (
+    SHAPES,
     FactsFile,
-    FactShape,
     File,
     PointKindsFile,
-    PointKindShape,
     PropertiesFile,
-    PropertyShape,
-    RuleShape,
     ShelfFile,
-    SourcesFile,
     StepFile,
     StepsFile,
     TablesFile,
+)
+from advisor.knowledge.lost import Lost
+from advisor.knowledge.reading import list_in, mapping_in, read_file
+from advisor.knowledge.schema import (
+    ComputationShape,
+    FactShape,
+    PointKindShape,
+    PropertyShape,
+    RuleShape,
+    Shape,
     TableShape,
-    UsualOilsFile,
 )
 
-SHAPES: dict[str, type[File]] = {
-    "sources.yaml": SourcesFile,
-    "point_kinds.yaml": PointKindsFile,
-    "steps.yaml": StepsFile,
-    "facts.yaml": FactsFile,
-    "properties.yaml": PropertiesFile,
-    "usual_oils.yaml": UsualOilsFile,
-    "docket.yaml": DocketFile,
-    "cautions.yaml": CautionsFile,
-    "designations.yaml": DesignationsFile,
-}
-
-
-T = TypeVar("T", FactShape, PropertyShape, ComputationShape, RuleShape)
+T = TypeVar("T", bound=Shape)
+Filed = TypeVar("Filed", bound=File)
 
 
 @dataclass(frozen=True, slots=True)
 class Placed(Generic[T]):
-    """A shape with its tree, the mapping that holds it, and where it belongs."""
+    """A shape with its tree, the mapping that holds it, and the step and kind of point it belongs to."""
 
     shape: T
     tree: Mapping
     parent: Mapping
-    where: str = ""
+    step: str = ""
+    point_kind: str = ""
 
 
 @dataclass(slots=True)
 class Folder:
-    """Everything read from a folder, before names are resolved."""
+    """Everything read from a folder, before names are resolved; what is damaged is told, and noted as lost."""
 
     root: Path
     problems: Problems
+    lost: Lost = field(default_factory=Lost)
     files: dict[str, tuple[File, Mapping]] = field(default_factory=dict)
     kinds: dict[str, PointKindShape] = field(default_factory=dict)
-    tables: dict[str, tuple[TableShape, Mapping]] = field(default_factory=dict)
+    steps: tuple[str, ...] = ()
+    tables: dict[str, Placed[TableShape]] = field(default_factory=dict)
     facts: dict[str, Placed[FactShape]] = field(default_factory=dict)
     properties: dict[str, Placed[PropertyShape]] = field(default_factory=dict)
     computations: list[Placed[ComputationShape]] = field(default_factory=list)
     rules: list[Placed[RuleShape]] = field(default_factory=list)
     shelf: tuple[ShelfFile, Mapping] | None = None
-    complete: bool = True
+
+    def kept(self, name: str, shape: type[Filed]) -> tuple[Filed, Mapping] | None:
+        """A file that was read, with its tree."""
+        read, tree = self.files.get(name, (None, None))
+        return (read, tree) if isinstance(read, shape) and tree is not None else None
+
+    def keep(self, name: str, shape: type[Filed]) -> tuple[Filed, Mapping] | None:
+        """Read a file and keep it."""
+        found = read_file(self.root / name, shape, self.problems, self.lost)
+        if found is not None:
+            self.files[name] = found
+        return found
 
 
 def fingerprint(root: Path) -> str:
     """A short digest over every knowledge file: names and contents, line ends normalised."""
     digest = hashlib.sha256()
-    for path in sorted(root.rglob("*.yaml")):
-        digest.update(path.relative_to(root).as_posix().encode() + b"\0")
-        digest.update(path.read_bytes().replace(b"\r\n", b"\n") + b"\0")
+    for path in sorted(root.rglob("*.yaml"), key=lambda path: path.relative_to(root).as_posix()):
+        if path.is_file():
+            digest.update(path.relative_to(root).as_posix().encode() + b"\0")
+            digest.update(path.read_bytes().replace(b"\r\n", b"\n") + b"\0")
     return digest.hexdigest()[:16]
 
 
-def read_folder(root: Path, point_kind: str, shelf: Path | None, problems: Problems) -> Folder:
-    """Read every file of the folder that concerns the point kind."""
-    folder = Folder(root, problems)
+def read_folder(root: Path, point_kind: str, shelf: Path | None, problems: Problems) -> Folder | None:
+    """Read every file of the folder that concerns the point kind; nothing where there is no such folder or kind."""
     if not root.is_dir():
         problems.add(Problem(str(root), 1, 1, (), "this is no folder", "name a knowledge folder"))
-        folder.complete = False
-        return folder
+        return None
+    folder = Folder(root, problems)
     for name, shape in SHAPES.items():
-        _keep(folder, name, shape)
-    _kinds(folder)
-    _tables(folder)
-    _facts(folder, "facts.yaml")
-    if point_kind in folder.kinds:
-        _facts(folder, f"{folder.kinds[point_kind].folder}/facts.yaml")
-    _properties(folder)
-    _steps(folder, point_kind)
-    _shelf(folder, shelf)
-    _strays(folder)
+        folder.keep(name, shape)
+    _read_tables(folder)
+    _read_properties(folder)
+    _read_facts(folder, "facts.yaml")
+    _read_kind(folder, point_kind)
+    folder.shelf = read_file(shelf or root / "shelf" / "demo.yaml", ShelfFile, problems, folder.lost)
+    if folder.shelf is None:
+        folder.lost.lose_whole("items")
     return folder
 
 
-def _keep(folder: Folder, name: str, shape: type[File]) -> tuple[File, Mapping] | None:
-    if name in folder.files:
-        return folder.files[name]
-    read, tree = read_file(folder.root / name, shape, folder.problems)
-    if read is None or not isinstance(tree, Mapping):
-        folder.complete = False
-        return None
-    folder.files[name] = read, tree
-    return read, tree
+def _read_kind(folder: Folder, point_kind: str) -> None:
+    """Read what belongs to the kind of point: its facts, and the steps."""
+    kinds, steps = folder.kept("point_kinds.yaml", PointKindsFile), folder.kept("steps.yaml", StepsFile)
+    if kinds is None or steps is None or not _kind_known(folder, *kinds, point_kind):
+        folder.lost.lose_whole("names", "rules")
+        return
+    folder.kinds, folder.steps = kinds[0].kinds, tuple(steps[0].steps)
+    place = folder.kinds[point_kind].folder
+    _read_facts(folder, f"{place}/facts.yaml")
+    for step in folder.steps:
+        for where, kind in (("common", ""), (place, point_kind)):
+            if (folder.root / where / f"{step}.yaml").exists():
+                _read_step(folder, f"{where}/{step}.yaml", step, kind)
+    _strays(folder)
 
 
-def _kinds(folder: Folder) -> None:
-    kept = folder.files.get("point_kinds.yaml")
-    if kept and isinstance(kept[0], PointKindsFile):
-        folder.kinds = kept[0].kinds
-
-
-def _clash(folder: Folder, known: Map[str, object], name: str, parent: Mapping) -> bool:
-    if name not in known:
+def _kind_known(folder: Folder, shape: PointKindsFile, tree: Mapping, point_kind: str) -> bool:
+    """Whether the kind is declared, and every kind has its folder."""
+    kinds, problems = mapping_in(tree, "kinds"), folder.problems
+    if point_kind not in shape.kinds:
+        mark = next(iter(kinds.key_marks.values()), tree.mark)
+        hint = nearest(point_kind, kinds).strip() or "declare it, or name one of these"
+        problems.add(Problem.at(mark, f"'{point_kind}' is no kind of point here", hint, ("kinds",)))
         return False
-    mark = parent.key_marks[name]
-    folder.problems.add(
-        Problem(mark.file, mark.line, mark.column, (), f"'{name}' is declared twice", "give each its own id")
-    )
+    for name, kind in shape.kinds.items():
+        if not (folder.root / kind.folder).is_dir():
+            near = nearest(kind.folder, [each.name for each in folder.root.iterdir() if each.is_dir()])
+            mark = mapping_in(kinds, name)["folder"].mark
+            message = f"there is no folder '{kind.folder}'"
+            problems.add(Problem.at(mark, message, near.strip() or "check its name", ("kinds", name)))
+            return False
     return True
 
 
-def _tables(folder: Folder) -> None:
+def _clash(folder: Folder, known: Map[str, object], name: str, parent: Mapping) -> bool:
+    if name in known:
+        folder.problems.add(
+            Problem.at(parent.key_marks[name], f"'{name}' is declared twice", "give each its own id")
+        )
+    return name in known
+
+
+def _declared(shapes: Map[str, T], parent: Mapping) -> Iterator[tuple[str, Placed[T]]]:
+    """Named shapes beside the trees they were read from."""
+    for name, shape in shapes.items():
+        yield name, Placed(shape, mapping_in(parent, name), parent)
+
+
+def _read_tables(folder: Folder) -> None:
     for path in sorted((folder.root / "tables").glob("*.yaml")):
-        kept = _keep(folder, f"tables/{path.name}", TablesFile)
-        if kept and isinstance(kept[0], TablesFile):
-            parent = kept[1]["tables"]
-            assert isinstance(parent, Mapping)  # noqa: S101 - by the shape
-            for name, shape in kept[0].tables.items():
-                node = parent[name]
-                if not _clash(folder, folder.tables, name, parent) and isinstance(node, Mapping):
-                    folder.tables[name] = shape, node
+        if kept := folder.keep(f"tables/{path.name}", TablesFile):
+            for name, placed in _declared(kept[0].tables, mapping_in(kept[1], "tables")):
+                if not _clash(folder, folder.tables, name, placed.parent):
+                    folder.tables[name] = placed
 
 
-def _facts(folder: Folder, name: str) -> None:
-    kept = _keep(folder, name, FactsFile)
-    if not kept or not isinstance(kept[0], FactsFile):
-        return
-    parent = kept[1].get("facts")
-    for fact, shape in kept[0].facts.items():
-        node = parent[fact] if isinstance(parent, Mapping) else None
-        if isinstance(parent, Mapping) and isinstance(node, Mapping) and not _clash(folder, folder.facts, fact, parent):
-            folder.facts[fact] = Placed(shape, node, parent)
+def _read_facts(folder: Folder, name: str) -> None:
+    read = folder.kept if name in SHAPES else folder.keep
+    if kept := read(name, FactsFile):
+        for fact, placed in _declared(kept[0].facts, mapping_in(kept[1], "facts")):
+            if not _clash(folder, folder.facts, fact, placed.parent):
+                folder.facts[fact] = placed
 
 
-def _properties(folder: Folder) -> None:
-    kept = folder.files.get("properties.yaml")
-    if not kept or not isinstance(kept[0], PropertiesFile):
-        return
-    parent = kept[1]["properties"]
-    for name, shape in kept[0].properties.items():
-        node = parent[name] if isinstance(parent, Mapping) else None
-        if isinstance(parent, Mapping) and isinstance(node, Mapping):
-            folder.properties[name] = Placed(shape, node, parent)
+def _read_properties(folder: Folder) -> None:
+    if kept := folder.kept("properties.yaml", PropertiesFile):
+        folder.properties = dict(_declared(kept[0].properties, mapping_in(kept[1], "properties")))
 
 
-def step_ids(folder: Folder) -> list[str]:
-    """The steps in order."""
-    kept = folder.files.get("steps.yaml")
-    return list(kept[0].steps) if kept and isinstance(kept[0], StepsFile) else []
+def _read_step(folder: Folder, name: str, step: str, kind: str) -> None:
+    if kept := folder.keep(name, StepFile):
+        shape, tree = kept
+        folder.computations += _listed(shape.computations, tree, "computations", step, kind)
+        folder.rules += _listed(shape.rules, tree, "rules", step, kind)
 
 
-def _steps(folder: Folder, point_kind: str) -> None:
-    places = [("common", "")]
-    if point_kind in folder.kinds:
-        places.append((folder.kinds[point_kind].folder, point_kind))
-    for step in step_ids(folder):
-        for place, kind in places:
-            if (folder.root / place / f"{step}.yaml").exists():
-                _step(folder, f"{place}/{step}.yaml", step, kind)
-
-
-def _step(folder: Folder, name: str, step: str, kind: str) -> None:
-    kept = _keep(folder, name, StepFile)
-    if not kept or not isinstance(kept[0], StepFile):
-        return
-    shape, tree = kept
-    assert isinstance(shape, StepFile)  # noqa: S101 - just asked
-    where = f"{step} {kind}"
-    folder.computations += [
-        Placed(one, node, tree, where) for one, node in _entries(shape.computations, tree.get("computations"))
-    ]
-    folder.rules += [Placed(one, node, tree, where) for one, node in _entries(shape.rules, tree.get("rules"))]
-
-
-def _entries(shapes: list[T], nodes: Node | None) -> list[tuple[T, Mapping]]:
-    """Shapes beside the trees they were read from."""
-    pairs = zip(shapes, nodes if isinstance(nodes, list) else (), strict=True)
-    return [(shape, node) for shape, node in pairs if isinstance(node, Mapping)]
-
-
-def _shelf(folder: Folder, shelf: Path | None) -> None:
-    path = shelf or folder.root / "shelf" / "demo.yaml"
-    read, tree = read_file(path, ShelfFile, folder.problems)
-    if read is None or not isinstance(tree, Mapping):
-        folder.complete = False
-        return
-    folder.shelf = read, tree
+def _listed(shapes: list[T], tree: Mapping, section: str, step: str, kind: str) -> list[Placed[T]]:
+    """Listed shapes beside the trees they were read from."""
+    pairs = zip(shapes, list_in(tree, section), strict=True)
+    return [Placed(shape, node, tree, step, kind) for shape, node in pairs if isinstance(node, Mapping)]
 
 
 def _strays(folder: Folder) -> None:
     """Files that nothing reads: a misspelt name would otherwise drop its rules silently."""
-    steps = step_ids(folder)
     places = {"common", *(kind.folder for kind in folder.kinds.values())}
-    if not steps:
-        return
+    stems = [*folder.steps, "facts"]
     for path in sorted(folder.root.rglob("*")):
-        if not path.is_file() or path.name == "README.md" or path.name.startswith("."):
-            continue
         parts = path.relative_to(folder.root).parts
+        if not path.is_file() or path.name == "README.md" or any(part.startswith(".") for part in parts):
+            continue
+        place = parts[0] if len(parts) == 2 else ""
         known = (
-            (len(parts) == 1 and parts[0] in SHAPES)
-            or (len(parts) == 2 and parts[0] in {"tables", "shelf"} and path.suffix == ".yaml")
-            or (len(parts) == 2 and parts[0] in places and path.stem in {*steps, "facts"} and path.suffix == ".yaml")
+            parts[0] in SHAPES
+            if len(parts) == 1
+            else path.suffix == ".yaml" and (place in {"tables", "shelf"} or (place in places and path.stem in stems))
         )
         if not known:
-            near = nearest(path.stem, [*steps, "facts"]) if len(parts) == 2 and parts[0] in places else ""
-            folder.problems.add(
-                Problem(str(path), 1, 1, (), "nothing reads this file", near.strip() or "rename it, or take it out")
-            )
+            near = nearest(path.stem, stems).strip() if place in places else ""
+            if place in places or place == "tables":
+                folder.lost.lose_whole("tables" if place == "tables" else "names", "rules")
+            hint = near or "rename it, or take it out"
+            folder.problems.add(Problem(str(path), 1, 1, (), "nothing reads this file", hint))

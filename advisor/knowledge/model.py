@@ -47,6 +47,23 @@ class Assumption:
     because: str
     source: tuple[Citation, ...]
     keeps_open: bool = False
+    each: tuple[Value, ...] = ()
+
+
+@dataclass(frozen=True, slots=True)
+class Fork:
+    """A contested point: where its condition holds, the case is run once per branch.
+
+    A branch is a label with the value that the fact takes; for a tick list, with the ticks that are left out.
+    """
+
+    id: str
+    title: str
+    when: Condition
+    fact: str
+    branches: tuple[tuple[str, Value], ...]
+    because: str
+    source: tuple[Citation, ...]
 
 
 @dataclass(frozen=True, slots=True)
@@ -351,6 +368,7 @@ class Knowledge:
     shelf_title: str
     shelf: tuple[Product, ...]
     fingerprint: str
+    forks: Mapping[str, Fork] = field(default_factory=dict)
 
     def domain(self, name: str) -> Domain:
         """The domain of a fact or property."""

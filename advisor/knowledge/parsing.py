@@ -1,8 +1,7 @@
-"""Typing of values and conditions by the declared kinds of the names they stand under."""
+"""Typing of conditions by the declared kinds of the names in them."""
 
 from collections.abc import Callable
-from collections.abc import Mapping as Map
-from dataclasses import dataclass, field, replace
+from dataclasses import replace
 
 from advisor.conditions import (
     ALWAYS,
@@ -18,108 +17,12 @@ from advisor.conditions import (
     Ticked,
     Value,
 )
-from advisor.documents import Mapping, Mark, Node, Problem, Problems, Scalar, Sequence, as_number, nearest
-from advisor.knowledge.model import Band, Cell, Row, Table
+from advisor.documents import Mapping, Node, Scalar, Sequence, nearest
+from advisor.knowledge.model import Band
+from advisor.knowledge.values import Blank, Mistyped, Scope, value
 
 _THRESHOLDS = {"above": ">", "at_least": ">=", "below": "<", "at_most": "<="}
 _OPERATORS = (*_THRESHOLDS, "any_of", "none_of", "fact", "row")
-
-
-class Blank(Exception):
-    """The row has no value in a cell that the rule names: the row does not apply."""
-
-
-class Mistyped(Exception):
-    """A problem was recorded; the part has no value."""
-
-
-@dataclass(frozen=True, slots=True)
-class Scope:
-    """What names mean in one place of the knowledge."""
-
-    problems: Problems
-    names: Map[str, Domain]
-    facts: Map[str, Domain] = field(default_factory=dict)
-    table: Table | None = None
-    row: Row | None = None
-    trail: tuple[str, ...] = ()
-    what: str = "fact"
-    may_ask_stated: bool = False
-    hints: Map[str, str] = field(default_factory=dict)
-
-    def at(self, *trail: str) -> "Scope":
-        """The same scope further down the trail."""
-        return replace(self, trail=self.trail + trail)
-
-    def fault(self, node: Node, message: str, hint: str = "") -> Mistyped:
-        """Record a problem at a node."""
-        self.problem(node.mark, message, hint)
-        return Mistyped()
-
-    def problem(self, mark: Mark, message: str, hint: str = "") -> None:
-        """Record a problem at a mark, once."""
-        problem = Problem(mark.file, mark.line, mark.column, self.trail, message, hint)
-        if problem not in set(self.problems):
-            self.problems.add(problem)
-
-    def domain(self, name: str, mark: Mark) -> Domain:
-        """The domain of a name, or a problem at its mark."""
-        if name in self.names:
-            return self.names[name]
-        hint = self.hints.get(name) or nearest(name, self.names).strip() or f"declare it, or use another {self.what}"
-        self.problem(mark, f"'{name}' is no {self.what} that is known here", hint)
-        raise Mistyped
-
-
-def value(node: Node, domain: Domain, scope: Scope) -> Value:
-    """A constant of the domain."""
-    if domain.kind == "several":
-        return _ticks(node, domain, scope)
-    if not isinstance(node, Scalar):
-        raise scope.fault(node, "one value is expected here, not a list or a mapping")
-    if domain.kind == "number":
-        return _number(node, domain, scope)
-    text = str(node)
-    if domain.kind == "yes_no":
-        text = {"true": "yes", "false": "no"}.get(text, text)
-    if domain.kind == "text" or domain.accepts(text):
-        return text
-    known = list(domain.choices)
-    hint = nearest(text, known).strip() or f"known here: {', '.join(known[:12])}{' ...' if len(known) > 12 else ''}"
-    raise scope.fault(node, f"'{text}' is not one of the choices", hint)
-
-
-def _ticks(node: Node, domain: Domain, scope: Scope) -> Value:
-    if isinstance(node, Scalar) and str(node) == "none" and "none" not in domain.choices:
-        return ()
-    entries = list(node) if isinstance(node, Sequence) else [node]
-    single = replace(domain, kind="choice")
-    ticked = {str(value(entry, single, scope)) for entry in entries}
-    return tuple(choice for choice in domain.choices if choice in ticked)
-
-
-def _number(node: Scalar, domain: Domain, scope: Scope) -> float:
-    if str(node) in domain.named:
-        return domain.named[str(node)]
-    try:
-        number = as_number(node)
-    except ValueError as fault:
-        message, _, hint = str(fault).partition("; ")
-        raise scope.fault(node, message, hint) from None
-    if not domain.accepts(number):
-        if domain.places and domain.low <= number <= domain.high:
-            raise scope.fault(node, f"{number:g} is none of the grades", f"use one of {_series(domain.places)}")
-        raise scope.fault(
-            node,
-            f"{number:g} {domain.unit}".strip()
-            + f" lies outside {domain.low:g} to {domain.high:g} {domain.unit}".rstrip(),
-            "check the unit and the decimal point",
-        )
-    return number
-
-
-def _series(numbers: tuple[float, ...]) -> str:
-    return ", ".join(f"{number:g}" for number in numbers)
 
 
 def condition(node: Node, scope: Scope) -> Condition:
@@ -241,8 +144,8 @@ def operand(node: Node, domain: Domain, scope: Scope) -> Coded | FactRef:
 
 def _fact(node: Scalar, domain: Domain, scope: Scope) -> FactRef:
     name = str(node)
-    if name not in scope.facts:
-        raise scope.fault(node, f"'{name}' is no fact", nearest(name, scope.facts).strip())
+    if name not in scope.facts or scope.lost.has("names", name):
+        raise scope.unknown(node.mark, "names", name, f"'{name}' is no fact", scope.facts)
     other = scope.facts[name]
     same = domain.kind == other.kind and (
         domain.unit == other.unit if domain.kind == "number" else list(domain.choices) == list(other.choices)
@@ -281,20 +184,9 @@ def _cell(node: Scalar, domain: Domain, scope: Scope) -> Value:
     if isinstance(cell, Band):
         raise scope.fault(node, f"column '{name}' holds bands, not values")
     if domain.kind != "number" and not domain.accepts(cell):
+        if any(problem.mark == node.mark for problem in scope.problems):
+            raise Mistyped
         raise scope.fault(
             node, f"'{cell}' in row '{scope.row.id}' (line {scope.row.mark.line}) is not one of the choices here"
         )
     return cell
-
-
-def cell(node: Node, domain: Domain, scope: Scope, *, band: bool) -> Cell:
-    """A cell of a table."""
-    if not band:
-        return value(node, domain, scope)
-    if not isinstance(node, Mapping) or not set(node) <= {"from", "below"} or not node:
-        raise scope.fault(node, "a band is written {from: 1, below: 2}", "either end may be left out")
-    low = value(node["from"], domain, scope) if "from" in node else float("-inf")
-    high = value(node["below"], domain, scope) if "below" in node else float("inf")
-    if not low < high:  # type: ignore[operator]  # both are numbers by the domain
-        raise scope.fault(node, "the band is empty: 'from' is not below 'below'")
-    return Band(low, high)  # type: ignore[arg-type]  # both are numbers by the domain

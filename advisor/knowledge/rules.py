@@ -5,12 +5,15 @@ from collections.abc import Mapping as Map
 from contextlib import suppress
 from dataclasses import dataclass, replace
 
-from advisor.conditions import ALWAYS, Condition, Domain, Every, Value, branches, holds, negated
-from advisor.documents import Mapping, Node, Problems, Sequence, nearest
+from advisor.conditions import ALWAYS, Coded, Condition, Domain, Every, Value, branches, holds, negated
+from advisor.documents import Mapping, Node
 from advisor.knowledge.citations import Citations
+from advisor.knowledge.lost import Space
 from advisor.knowledge.model import Asks, Band, Conclusion, Instance, Refers, Row, Rule, Sets, Table, Warns
-from advisor.knowledge.parsing import Blank, Mistyped, Scope, condition, operand, value
+from advisor.knowledge.parsing import condition, operand
+from advisor.knowledge.reading import list_in, mapping_in
 from advisor.knowledge.schema import ConclusionShape, RuleShape
+from advisor.knowledge.values import Blank, Mistyped, Scope, value
 
 MOST_BRANCHES = 40
 PLACEHOLDER = re.compile(r"\{(row\.)?([A-Za-z_][A-Za-z0-9_]*)\}")
@@ -35,51 +38,63 @@ class RuleReader:
 
     names: Names
     citations: Citations
-    problems: Problems
+    ground: Scope
 
     def read(self, shape: RuleShape, tree: Mapping, step: str, point_kind: str) -> tuple[Rule, tuple[Instance, ...]]:
         """One written rule and its instances, one per row that applies."""
-        scope = Scope(
-            self.problems,
-            self.names.facts,
-            self.names.facts,
-            trail=("rules", f"'{shape.id}'"),
-            hints=dict.fromkeys(
-                self.names.properties, "a condition sees facts; properties belong in 'for' and in demands"
-            ),
+        beyond = dict.fromkeys(self.names.properties, "a condition sees facts; properties belong in 'for' and demands")
+        scope = replace(
+            self.ground.over(self.names.facts, "rules", f"'{shape.id}'"), facts=self.names.facts, hints=beyond
         )
+        before = len(scope.problems)
         table = self._table(shape, tree, scope)
         rule = self._rule(shape, tree, step, point_kind, table, scope)
-        rows: list[Row | None] = [None]
-        if table is not None:
-            rows = [row for row in table.rows if self._where(tree, table, row, scope)]
-            if not rows:
-                scope.problem(tree.mark, "no row of the table meets 'where', so the rule can never fire")
-        instances = []
-        faulty = False
+        if shape.each_row_of is not None and table is None:
+            return rule, ()
+        instances: list[Instance] = []
+        sound = not (table and scope.lost.has("rows", table.id))
+        try:
+            rows = self._rows(tree, table, scope)
+        except Mistyped:
+            rows = list(table.rows) if table else []
         for row in rows:
             try:
                 instances.append(self._instance(rule, tree, shape, table, row, scope))
             except Mistyped:
-                faulty = True
+                sound = False
             except Blank:
                 continue
-        if not faulty:
+        if sound and len(scope.problems) == before:
             self._examples(rule, tree, instances, scope)
         return rule, tuple(instances)
+
+    def _rows(self, tree: Mapping, table: Table | None, scope: Scope) -> list[Row | None]:
+        """The rows for which the rule speaks; one None for a rule without a table."""
+        if table is None:
+            return [None]
+        if "where" not in tree:
+            return list(table.rows)
+        columns = {name: domain for name, domain in table.columns.items() if name not in table.bands}
+        here = Scope(scope.problems, columns, trail=(*scope.trail, "where"), what="column")
+        chosen = condition(tree["where"], here)
+        rows: list[Row | None] = [row for row in table.rows if holds(chosen, _record(row, columns)) is True]
+        if not rows and not scope.lost.has("rows", table.id):
+            message = f"no row of {table.id} meets this, so the rule can never fire"
+            raise here.fault(tree["where"], message, "check it against the rows")
+        return rows
 
     def _table(self, shape: RuleShape, tree: Mapping, scope: Scope) -> Table | None:
         if shape.each_row_of is None:
             if "where" in tree:
-                scope.problem(tree.key_marks["where"], "'where' chooses rows and needs 'each_row_of'")
+                scope.problem(
+                    tree.key_marks["where"], "'where' chooses rows and needs 'each_row_of'", "name the table"
+                )
             return None
         table = self.names.tables.get(shape.each_row_of)
         if table is None or table.matrix:
-            scope.problem(
-                tree["each_row_of"].mark,
-                f"'{shape.each_row_of}' is no table with rows",
-                nearest(shape.each_row_of, self.names.tables).strip(),
-            )
+            message = f"'{shape.each_row_of}' is no table with rows"
+            known = [name for name, each in self.names.tables.items() if not each.matrix]
+            scope.unknown(tree["each_row_of"].mark, "tables", shape.each_row_of, message, known, "see tables/")
             return None
         return table
 
@@ -87,8 +102,6 @@ class RuleReader:
         self, shape: RuleShape, tree: Mapping, step: str, point_kind: str, table: Table | None, scope: Scope
     ) -> Rule:
         self._placeholders(shape.because, tree, table, scope)
-        conflicts = shape.may_conflict or []
-        conflicts = conflicts if isinstance(conflicts, list) else [conflicts]
         return Rule(
             shape.id,
             shape.title,
@@ -99,7 +112,7 @@ class RuleReader:
             shape.limits,
             self.citations.read(shape.source, tree, scope),
             table.id if table else "",
-            {each.rule: each.because for each in conflicts},
+            {each.rule: each.because for each in shape.may_conflict},
             self._example(tree, "fires", scope),
             self._example(tree, "silent", scope),
             tree.mark,
@@ -108,12 +121,9 @@ class RuleReader:
     def _placeholders(self, because: str, tree: Mapping, table: Table | None, scope: Scope) -> None:
         for of_row, name in PLACEHOLDER.findall(because):
             known: Map[str, object] = (table.columns if table else {}) if of_row else self.names.facts
-            if name not in known:
-                scope.problem(
-                    tree["because"].mark,
-                    f"'{{{of_row}{name}}}' stands for no {'column' if of_row else 'fact'}",
-                    nearest(name, known).strip(),
-                )
+            if name not in known and not (of_row and table is None and "each_row_of" in tree):
+                message = f"'{{{of_row}{name}}}' stands for no {'column' if of_row else 'fact'}"
+                scope.unknown(tree["because"].mark, "tables" if of_row else "names", name, message, known, "declare it")
         rest = PLACEHOLDER.sub("", because)
         if "{" in rest or "}" in rest:
             scope.problem(tree["because"].mark, "a brace without a name in it", "write {fact} or {row.column}")
@@ -123,30 +133,13 @@ class RuleReader:
         if node is None:
             return {}
         if not isinstance(node, Mapping):
-            scope.problem(node.mark, "an example is written {fact: value}")
+            scope.problem(node.mark, "an example is written {fact: value}", "name each fact that the condition names")
             return {}
         found: dict[str, Value] = {}
         for name, child in node.items():
             with suppress(Mistyped):
                 found[name] = value(child, scope.domain(name, node.key_marks[name]), scope.at(key))
         return found
-
-    def _where(self, tree: Mapping, table: Table, row: Row, scope: Scope) -> bool:
-        if "where" not in tree:
-            return True
-        columns = {name: domain for name, domain in table.columns.items() if name not in table.bands}
-        try:
-            chosen = condition(
-                tree["where"], Scope(self.problems, columns, trail=(*scope.trail, "where"), what="column")
-            )
-        except Mistyped:
-            return False
-        record = {
-            name: columns[name].code(cell)
-            for name, cell in row.cells.items()
-            if name in columns and not isinstance(cell, Band)
-        }
-        return holds(chosen, record) is True
 
     def _instance(
         self, rule: Rule, tree: Mapping, shape: RuleShape, table: Table | None, row: Row | None, scope: Scope
@@ -159,10 +152,9 @@ class RuleReader:
         except Mistyped:
             faulty = True
         then: list[Conclusion] = []
-        nodes = tree["then"]
-        for part, node in zip(shape.then, nodes if isinstance(nodes, Sequence) else (), strict=True):
+        for part, node in zip(shape.then, list_in(tree, "then"), strict=True):
             try:
-                then.append(self._conclusion(part, node, here.at("then")))
+                then.append(self._conclusion(part, mapping_in(node), here.at("then")))
             except Mistyped:
                 faulty = True
         if faulty:
@@ -181,8 +173,7 @@ class RuleReader:
             )
         return when
 
-    def _conclusion(self, shape: ConclusionShape, node: Node, scope: Scope) -> Conclusion:
-        assert isinstance(node, Mapping)  # noqa: S101 - by the shape
+    def _conclusion(self, shape: ConclusionShape, node: Mapping, scope: Scope) -> Conclusion:
         verbs = [verb for verb in ("must", "should", "set", "caution", "refer") if verb in node]
         if len(verbs) != 1:
             raise scope.fault(
@@ -192,27 +183,28 @@ class RuleReader:
             )
         verb = verbs[0]
         if (verb == "should") != (shape.level is not None):
-            raise scope.fault(node, "a should has a level from 1 (strong) to 4 (taste); nothing else has one")
+            at = node.get("level", node)
+            hint = "add 'level: 3'" if verb == "should" else "take 'level' out"
+            raise scope.fault(at, "a should has a level from 1 (strong) to 4 (taste); nothing else has one", hint)
         if shape.withhold and verb != "refer":
-            raise scope.fault(node["withhold"], "'withhold' goes with 'refer'")
+            raise scope.fault(node["withhold"], "'withhold' goes with 'refer'", "take it out")
         for_ = self._for(node, scope)
         if verb in {"must", "should"}:
             return self._asks(node[verb], shape.level or 0, for_, scope)
         if verb == "set":
             return self._sets(node["set"], for_, scope)
-        known = self.names.cautions if verb == "caution" else self.names.referrals
-        name = str(node[verb])
-        if name not in known:
-            raise scope.fault(
-                node[verb],
-                f"'{name}' is no {verb.replace('refer', 'referral')} of cautions.yaml",
-                nearest(name, known).strip(),
-            )
         if verb == "caution":
-            return Warns(name, for_)
+            return Warns(self._known(node[verb], self.names.cautions, "cautions", scope), for_)
         if for_ is not ALWAYS:
             raise scope.fault(node["for"], "a referral is for the whole case", "take 'for' out, or use a caution")
-        return Refers(name, shape.withhold)
+        return Refers(self._known(node[verb], self.names.referrals, "referrals", scope), shape.withhold)
+
+    def _known(self, node: Node, known: frozenset[str], space: Space, scope: Scope) -> str:
+        name = str(node)
+        if name not in known:
+            message = f"'{name}' stands nowhere under '{space}' in cautions.yaml"
+            raise scope.unknown(node.mark, space, name, message, known, f"add it under '{space}'")
+        return name
 
     def _property_scope(self, scope: Scope) -> Scope:
         return replace(
@@ -248,7 +240,9 @@ class RuleReader:
     def _examples(self, rule: Rule, tree: Mapping, instances: list[Instance], scope: Scope) -> None:
         always = all(instance.when == ALWAYS for instance in instances)
         if always and "silent" in tree:
-            scope.problem(tree.key_marks["silent"], "a rule that always holds has no silent example")
+            scope.problem(
+                tree.key_marks["silent"], "a rule that always holds has no silent example", "take 'silent' out"
+            )
         if always:
             return
         if "silent" not in tree or "fires" not in tree:
@@ -265,5 +259,14 @@ class RuleReader:
                 scope.problem(
                     tree[key].mark,
                     f"with this example the condition {seen}",
-                    "it should fire" if wanted else "it should fail: give every fact that the condition names",
+                    f"it should {'hold' if wanted else 'fail'}: give every fact that the condition names",
                 )
+
+
+def _record(row: Row, columns: Map[str, Domain]) -> dict[str, Coded]:
+    """The cells of a row as conditions see them."""
+    return {
+        name: columns[name].code(cell)
+        for name, cell in row.cells.items()
+        if name in columns and not isinstance(cell, Band)
+    }

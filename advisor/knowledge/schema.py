@@ -222,6 +222,10 @@ class ConclusionShape(Shape):
     for_: Tree = Field(default=None, alias="for")
 
 
+def _listed(value: object) -> object:
+    return [value] if isinstance(value, dict) else value
+
+
 class MayConflictShape(Shape):
     """A conflict that is real life."""
 
@@ -245,7 +249,7 @@ class RuleShape(Shape):
     source: Annotated[Citations, Field(min_length=1)]
     fires: Tree = None
     silent: Tree = None
-    may_conflict: MayConflictShape | list[MayConflictShape] | None = None
+    may_conflict: Annotated[list[MayConflictShape], BeforeValidator(_listed)] = []
     note: Text = ""
 
 
@@ -320,87 +324,3 @@ class PurposeShape(Shape):
 
     title: Text
     purpose: Text = Field(alias="for")
-
-
-class File(Shape):
-    """What every file begins with."""
-
-    format: Literal["1"]
-
-
-class SourcesFile(File):
-    """sources.yaml."""
-
-    sources: dict[Id, SourceShape]
-
-
-class PointKindsFile(File):
-    """point_kinds.yaml."""
-
-    kinds: dict[Name, PointKindShape]
-
-
-class StepsFile(File):
-    """steps.yaml."""
-
-    steps: dict[Name, PurposeShape]
-
-
-class FactsFile(File):
-    """facts.yaml."""
-
-    facts: dict[Name, FactShape] = {}
-
-
-class PropertiesFile(File):
-    """properties.yaml."""
-
-    properties: dict[Name, PropertyShape]
-
-
-class TablesFile(File):
-    """A file of tables."""
-
-    tables: dict[Id, TableShape]
-
-
-class StepFile(File):
-    """The computations and rules of a step."""
-
-    computations: list[ComputationShape] = []
-    rules: list[RuleShape] = []
-
-
-class CautionsFile(File):
-    """cautions.yaml."""
-
-    cautions: dict[Name, CautionShape]
-    referrals: dict[Name, ReferralShape]
-    change_over: dict[Name, ProcedureShape] = {}
-
-
-class DocketFile(File):
-    """docket.yaml."""
-
-    rows: list[DocketRowShape]
-    quantities: list[DocketRowShape] = []
-
-
-class UsualOilsFile(File):
-    """usual_oils.yaml."""
-
-    usual_oils: UsualOilsShape
-
-
-class DesignationsFile(File):
-    """designations.yaml."""
-
-    designations: dict[Id, Tree]
-
-
-class ShelfFile(File):
-    """A shelf."""
-
-    shelf: Text
-    note: Text = ""
-    products: list[Tree]

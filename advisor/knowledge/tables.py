@@ -2,29 +2,34 @@
 
 from collections.abc import Mapping as Map
 from contextlib import suppress
-from dataclasses import replace
 
 from advisor.conditions import Domain, Value
-from advisor.documents import Mapping, Mark, Node, Problems, Scalar, Sequence, nearest
+from advisor.documents import Mapping, Node, Scalar, Sequence, nearest
 from advisor.knowledge.citations import Citations
+from advisor.knowledge.folder import Placed
+from advisor.knowledge.matrix import Unusable, read_matrix
 from advisor.knowledge.model import Band, Row, Table
-from advisor.knowledge.parsing import Mistyped, Scope, cell, value
-from advisor.knowledge.reading import shaped
+from advisor.knowledge.reading import list_in, mapping_in, shaped
 from advisor.knowledge.schema import DomainShape, TableShape
+from advisor.knowledge.values import Mistyped, Scope, cell
 
 _ROW_EXTRAS = ("source", "note")
 
 
-def read_tables(
-    raw: Map[str, tuple[TableShape, Mapping]], citations: Citations, problems: Problems
-) -> dict[str, Table]:
-    """All tables, typed. `raw` pairs each shape with its tree."""
-    keys = {name: _keys(shape, tree) for name, (shape, tree) in raw.items()}
-    labels = {name: _labels(shape, tree, keys[name]) for name, (shape, tree) in raw.items()}
+def read_tables(raw: Map[str, Placed[TableShape]], citations: Citations, ground: Scope) -> dict[str, Table]:
+    """All tables, typed; what uses a table that is damaged as a whole is not told again."""
+    labels = {name: _labels(placed.shape, placed.tree) for name, placed in raw.items()}
     tables: dict[str, Table] = {}
-    for name, (shape, tree) in raw.items():
-        read = _matrix if shape.matrix else _table
-        tables[name] = read(name, shape, tree, labels, citations, problems)
+    for name, placed in raw.items():
+        before = len(ground.problems)
+        scope = ground.over({}, "tables", name, what="column")
+        read = read_matrix if placed.shape.matrix else _table
+        try:
+            tables[name] = read(name, placed, labels, citations, scope)
+        except Unusable:
+            ground.lost.lose("tables", name)
+        if len(ground.problems) > before:
+            ground.lost.lose("rows", name)
     return tables
 
 
@@ -40,20 +45,11 @@ def choices_of(table: Table) -> dict[str, str]:
     return found
 
 
-def _entries(tree: Mapping) -> list[Mapping]:
-    rows = tree.get("rows")
-    return [row for row in rows if isinstance(row, Mapping)] if isinstance(rows, Sequence) else []
-
-
-def _keys(shape: TableShape, tree: Mapping) -> list[str]:
+def _labels(shape: TableShape, tree: Mapping) -> dict[str, str]:
+    """The ids of a table before it is typed, for columns that take their choices from another table."""
     key = shape.key or next(iter(shape.columns or {}), "")
-    return [str(row[key]) for row in _entries(tree) if isinstance(row.get(key), Scalar)]
-
-
-def _labels(shape: TableShape, tree: Mapping, keys: list[str]) -> dict[str, str]:
-    key = shape.key or next(iter(shape.columns or {}), "")
-    titles = {str(row[key]): str(row["title"]) for row in _entries(tree) if key in row and "title" in row}
-    return {one: titles.get(one, one.replace("_", " ")) for one in keys}
+    rows = [row for row in list_in(tree, "rows") if isinstance(row, Mapping) and isinstance(row.get(key), Scalar)]
+    return {str(row[key]): str(row.get("title", str(row[key]).replace("_", " "))) for row in rows}
 
 
 def column_domain(shape: DomainShape, node: Node, tables: Map[str, Map[str, str]], scope: Scope) -> Domain:
@@ -61,16 +57,20 @@ def column_domain(shape: DomainShape, node: Node, tables: Map[str, Map[str, str]
     choices: dict[str, str] = {}
     if shape.choices_of:
         if shape.choices_of not in tables:
-            scope.problem(
-                _mark(node, "choices_of"),
+            scope.unknown(
+                mapping_in(node)["choices_of"].mark,
+                "tables",
+                shape.choices_of,
                 f"'{shape.choices_of}' is no table",
-                nearest(shape.choices_of, tables).strip(),
+                tables,
             )
         choices |= dict(tables.get(shape.choices_of, {}))
     choices |= _choices(shape, scope)
     if shape.kind == "yes_no":
         choices = {"no": "no", "yes": "yes"}
     low, high = shape.limits or (float("-inf"), float("inf"))
+    if low > high:
+        scope.problem(mapping_in(node)["limits"].mark, "the lower limit lies above the upper", "limits: [low, high]")
     places = tuple(shape.places or ())
     return Domain(
         shape.kind,
@@ -90,35 +90,31 @@ def _choices(shape: DomainShape, scope: Scope) -> dict[str, str]:
     if node is None:
         return {}
     if isinstance(node, Mapping):
+        for key, label in node.items():
+            if not isinstance(label, Scalar):
+                scope.problem(label.mark, f"the label of '{key}' is text", f"{key}: what people read")
         return {key: str(label) for key, label in node.items()}
     if isinstance(node, Sequence):
         found: dict[str, str] = {}
         for each in node:
+            if not isinstance(each, Scalar):
+                scope.problem(each.mark, "a choice is one word", "choices: [a, b]")
             if str(each) in found:
                 scope.problem(each.mark, f"'{each}' stands twice among the choices", "take one out")
             found[str(each)] = str(each).replace("_", " ")
         return found
-    scope.problem(node.mark, "choices are a list, or a mapping of ids to labels")
+    scope.problem(node.mark, "choices are a list, or a mapping of ids to labels", "choices: [a, b]")
     return {}
 
 
-def _mark(node: Node, key: str) -> Mark:
-    return node.key_marks[key] if isinstance(node, Mapping) and key in node.key_marks else node.mark
-
-
 def _table(
-    name: str,
-    shape: TableShape,
-    tree: Mapping,
-    labels: Map[str, Map[str, str]],
-    citations: Citations,
-    problems: Problems,
+    name: str, placed: Placed[TableShape], labels: Map[str, Map[str, str]], citations: Citations, scope: Scope
 ) -> Table:
-    scope = Scope(problems, {}, trail=("tables", name), what="column")
+    shape, tree = placed.shape, placed.tree
+    before = len(scope.problems)
     columns: dict[str, Domain] = {}
     bands: set[str] = set()
-    declared = tree.get("columns")
-    for column, node in declared.items() if isinstance(declared, Mapping) else ():
+    for column, node in mapping_in(tree, "columns").items():
         domain, band = _column(node, labels, scope.at("columns", column))
         columns[column] = domain
         if band:
@@ -127,10 +123,20 @@ def _table(
         scope.problem(tree.mark, "the table has no columns", "declare them under 'columns:'")
     key = shape.key or ""
     if key and key not in columns:
-        scope.problem(_mark(tree, "key"), f"the key '{key}' is no column", nearest(key, columns).strip())
+        scope.problem(tree["key"].mark, f"the key '{key}' is no column", nearest(key, columns).strip())
+    if not isinstance(tree.get("rows"), Sequence):
+        scope.problem(tree.key_marks["rows"], "rows are a list of mappings", "- {column: value, ...}")
+    if len(scope.problems) > before or any(each not in labels for each in _borrowed(tree)):
+        raise Unusable
     source = citations.read(shape.source, tree, scope)
     rows = tuple(_rows(tree, columns, frozenset(bands), key, citations, scope))
     return Table(name, shape.title, columns, frozenset(bands), rows, key, shape.policy or "unique", tree.mark, source)
+
+
+def _borrowed(tree: Mapping) -> list[str]:
+    """The tables from which columns take their choices."""
+    columns = mapping_in(tree, "columns")
+    return [str(table) for column in columns if (table := mapping_in(columns, column).get("choices_of")) is not None]
 
 
 def _column(node: Node, labels: Map[str, Map[str, str]], scope: Scope) -> tuple[Domain, bool]:
@@ -155,15 +161,14 @@ def _as_number(node: Mapping) -> Mapping:
 def _rows(
     tree: Mapping, columns: Map[str, Domain], bands: frozenset[str], key: str, citations: Citations, scope: Scope
 ) -> list[Row]:
-    nodes = tree.get("rows")
-    if not isinstance(nodes, Sequence):
-        scope.problem(tree.mark, "rows are a list of mappings", "- {column: value, ...}")
-        return []
     found: list[Row] = []
     seen: dict[str, int] = {}
-    for place, node in enumerate(nodes):
-        if not isinstance(node, Mapping):
-            scope.problem(node.mark, "a row is written {column: value, ...}")
+    nameless = False
+    for place, node in enumerate(list_in(tree, "rows")):
+        if not isinstance(node, Mapping) or (key and not isinstance(node.get(key), Scalar)):
+            needs = f"a row of this table begins with its {key}" if key else "a row is written {column: value, ...}"
+            scope.problem(node.mark, needs, f"{{{key or 'column'}: ..., ...}}")
+            nameless = True
             continue
         cells = _cells(node, columns, bands, scope)
         row_id = str(cells.get(key) or _row_id(cells, columns, place))
@@ -172,6 +177,8 @@ def _rows(
         seen.setdefault(row_id, node.mark.line)
         source = citations.read_tree(node.get("source"), scope)
         found.append(Row(row_id, cells, node.mark, source, str(node.get("note", ""))))
+    if nameless:
+        raise Unusable
     return found
 
 
@@ -197,63 +204,3 @@ def _row_id(cells: Map[str, Value | Band], columns: Map[str, Domain], place: int
     return "-".join(texts[:2]) or (
         next((f"{each:g}" for each in cells.values() if isinstance(each, float)), None) or f"row_{place + 1}"
     )
-
-
-def _matrix(
-    name: str,
-    shape: TableShape,
-    tree: Mapping,
-    labels: Map[str, Map[str, str]],
-    citations: Citations,
-    problems: Problems,
-) -> Table:
-    scope = Scope(problems, {}, trail=("tables", name))
-    ids = _listed(tree.get("of"), labels, scope)
-    kinds = _listed(tree.get("values"), labels, scope)
-    values = Domain("choice", choices=kinds)
-    matrix: dict[tuple[str, str], Value] = {}
-    rows = tree.get("rows")
-    for left, node in rows.items() if isinstance(rows, Mapping) else ():
-        _known_side(left, rows, ids, scope)
-        for right, child in node.items() if isinstance(node, Mapping) else ():
-            _known_side(right, node, ids, scope)
-            if (left, right) in matrix:
-                scope.problem(child.mark, f"{left} x {right} is given twice", "the matrix is symmetric: give one half")
-                continue
-            with suppress(Mistyped):
-                matrix[left, right] = matrix[right, left] = value(child, values, scope)
-    key_domain = Domain("choice", choices=ids)
-    return Table(
-        name,
-        shape.title,
-        {"left": key_domain, "right": key_domain},
-        frozenset(),
-        (),
-        "",
-        "unique",
-        tree.mark,
-        citations.read(shape.source, tree, scope),
-        matrix,
-        replace(values, kind="choice"),
-    )
-
-
-def _known_side(name: str, parent: Node | None, ids: Map[str, str], scope: Scope) -> None:
-    if name not in ids and isinstance(parent, Mapping):
-        scope.problem(
-            parent.key_marks[name], f"'{name}' is no row or column of this matrix", nearest(name, ids).strip()
-        )
-
-
-def _listed(node: Node | None, labels: Map[str, Map[str, str]], scope: Scope) -> dict[str, str]:
-    if isinstance(node, Mapping):
-        choices = node.get("choices")
-        if isinstance(choices, Sequence):
-            return {str(each): str(each) for each in choices}
-        if isinstance(choices, Mapping):
-            return {key: str(label) for key, label in choices.items()}
-        if isinstance(node.get("choices_of"), Scalar):
-            return dict(labels.get(str(node["choices_of"]), {}))
-    if node is not None:
-        scope.problem(node.mark, "{choices: [...]} is expected here")
-    return {}

@@ -27,6 +27,7 @@ class Kind:
 _INCH = 25.4                   # mm, exact by definition
 _POUND = 0.45359237            # kg, exact by definition
 _POUND_FORCE = 4.4482216152605  # N, exact: the pound times standard gravity 9.80665 m/s²
+_PSI = _POUND_FORCE / _INCH**2  # MPa
 _MONTH = 365.25 / 12           # days: a twelfth of the Julian year
 
 _MASSES = {
@@ -106,6 +107,65 @@ KINDS = {
         Unit("mm³", 0.001),
         Unit("in³", _INCH**3 / 1000, "cuin"),
     )),
+    "MPa": Kind("a pressure", (
+        Unit("MPa", 1.0, "megapascal N/mm²"),
+        Unit("GPa", 1000.0, "gigapascal"),
+        Unit("bar", 0.1),
+        Unit("kPa", 0.001, "kilopascal"),
+        Unit("hPa", 1e-4, "hectopascal"),
+        Unit("mbar", 1e-4, "millibar"),
+        Unit("Pa", 1e-6, "pascal"),
+        Unit("psi", _PSI, "lbf/in²"),
+    )),
+    "GPa": Kind("an elastic modulus", (
+        Unit("GPa", 1.0, "gigapascal kN/mm²"),
+        Unit("MPa", 0.001, "megapascal N/mm²"),
+        Unit("Pa", 1e-9, "pascal"),
+        Unit("psi", _PSI / 1000, "lbf/in²"),
+    )),
+    "1/Pa": Kind("a pressure-viscosity coefficient", (
+        Unit("1/Pa", 1.0, "Pa-1 /Pa m²/N"),
+        Unit("1/GPa", 1e-9, "GPa-1 /GPa"),
+        Unit("mm²/N", 1e-6, "1/MPa MPa-1 /MPa"),
+    )),
+    "m/s": Kind("a surface speed", (
+        Unit("m/s", 1.0, "mps m·s-1"),
+        Unit("mm/s", 0.001),
+        Unit("m/min", 1 / 60),
+        Unit("ft/min", 12 * _INCH / 60_000, "fpm"),
+        Unit("ft/s", 12 * _INCH / 1000, "fps"),
+    )),
+    "µm": Kind("a film thickness or roughness", (
+        Unit("µm", 1.0, "um micron microns micrometre micrometer"),
+        Unit("nm", 0.001, "nanometre nanometer"),
+        Unit("mm", 1000.0),
+        Unit("µin", _INCH / 1000, "uin microinch"),
+    )),
+    "mm²": Kind("an area", (
+        Unit("mm²", 1.0, "sqmm"),
+        Unit("cm²", 100.0, "sqcm"),
+        Unit("m²", 1e6, "sqm"),
+        Unit("in²", _INCH**2, "sqin"),
+    )),
+    "N·mm": Kind("a torque", (
+        Unit("N·mm", 1.0),
+        Unit("N·m", 1000.0),
+        Unit("mN·m", 1.0),
+        Unit("lbf·in", _POUND_FORCE * _INCH, "in·lbf"),
+        Unit("lbf·ft", 12 * _POUND_FORCE * _INCH, "ft·lbf"),
+    )),
+    "W": Kind("a power", (
+        Unit("W", 1.0, "watt watts"),
+        Unit("kW", 1000.0, "kilowatt kilowatts"),
+        Unit("hp", 550 * 12 * _POUND_FORCE * _INCH / 1000, "horsepower"),
+    )),
+    "W/mm²": Kind("a heat flow density", (Unit("W/mm²"), Unit("W/cm²", 0.01), Unit("kW/m²", 0.001), Unit("W/m²", 1e-6))),
+    "s": Kind("a time of flow", (
+        Unit("s", 1.0, "sec second seconds SUS SSU SFS"),
+        Unit("min", 60.0, "minute minutes mins"),
+    )),
+    "°E": Kind("an Engler viscosity", (Unit("°E", 1.0, "E degE engler"),)),
+    "°": Kind("an angle", (Unit("°", 1.0, "deg degree degrees"), Unit("rad", 180 / math.pi, "radian radians"))),
     "%": Kind("a share", (Unit("%", 1.0, "percent pct"),)),
     "": Kind("a plain number", (Unit(""),)),
     "ISO VG": Kind("a viscosity grade", (Unit("ISO VG", 1.0, "VG"),)),
@@ -120,7 +180,7 @@ UNITS = tuple(KINDS)
 """The canonical units."""
 
 # Here a capital or small letter changes the meaning a millionfold or more: these are read only as written.
-_CASE_MATTERS = frozenset({"MN", "mg", "mPas", "Pas"})
+_CASE_MATTERS = frozenset({"MN", "mg", "mPas", "Pas", "MPa", "mbar", "mNm", "1/MPa", "/MPa", "MPa-1"})
 ALIKE = str.maketrans({
     **dict.fromkeys("\u00a0\u2000\u2001\u2002\u2003\u2004\u2005\u2006\u2007\u2008\u2009\u200a\u202f\u3000\t", " "),
     **dict.fromkeys("\u2010\u2011\u2012\u2013\u2014\u2212\ufe63\uff0d⁻", "-"),

@@ -7,7 +7,7 @@ for the others it is unknown, because they lack a value.
 from bisect import bisect_left, bisect_right
 from collections.abc import Mapping, Sequence
 
-from advisor.conditions import Bound, Coded, Condition, Either, Every, Member, Stated, Ticked
+from advisor.conditions import Bound, Coded, Condition, Either, Every, Member, Stated, Ticked, Valueless
 
 
 class Column:
@@ -73,9 +73,10 @@ def judge(condition: Condition, columns: Columns, everything: int) -> tuple[int,
             failing &= other
         return holding, failing
     column = columns.get(condition.name)
-    if isinstance(condition, Stated):
+    if isinstance(condition, Stated | Valueless):
         stated = column.present if column else 0
-        return (stated, everything & ~stated) if condition.wanted else (everything & ~stated, stated)
+        wants_it = condition.wanted is isinstance(condition, Stated)
+        return (stated, everything & ~stated) if wants_it else (everything & ~stated, stated)
     if column is None:
         return 0, 0
     met = _met(condition, column)

@@ -1,0 +1,163 @@
+"""The small files: cautions, the docket, the usual oils, the designations."""
+
+from collections.abc import Iterator
+from collections.abc import Mapping as Map
+from contextlib import suppress
+from dataclasses import dataclass
+
+from advisor.conditions import ALWAYS, Condition, Domain
+from advisor.documents import Mapping, Node, Scalar
+from advisor.knowledge.citations import Citations
+from advisor.knowledge.files import CautionsFile, DesignationsFile, DocketFile, UsualOilsFile
+from advisor.knowledge.model import Caution, DocketRow, Procedure, Table, UsualOils
+from advisor.knowledge.parsing import condition
+from advisor.knowledge.reading import list_in, mapping_in
+from advisor.knowledge.schema import CautionShape, DocketRowShape, ReferralShape
+from advisor.knowledge.values import Mistyped, Scope, value
+
+Cautions = tuple[dict[str, Caution], dict[str, Caution], dict[str, Procedure]]
+_COLUMNS = ("letter", "letters", "upper", "lower", "water_test", "rating_to", "environment", "rust")
+
+
+@dataclass(frozen=True, slots=True)
+class Particulars:
+    """Reads the small files once facts, properties and tables are known."""
+
+    facts: Map[str, Domain]
+    properties: Map[str, Domain]
+    tables: Map[str, Table]
+    citations: Citations
+    ground: Scope
+
+    def cautions(self, shape: CautionsFile, tree: Mapping) -> Cautions:
+        """Cautions, referrals, and the steps of each way of changing over."""
+        return (
+            self._warnings(shape.cautions, mapping_in(tree, "cautions"), "cautions"),
+            self._warnings(shape.referrals, mapping_in(tree, "referrals"), "referrals"),
+            self._procedures(shape, mapping_in(tree, "change_over")),
+        )
+
+    def _warnings(self, shapes: Map[str, CautionShape], parent: Mapping, part: str) -> dict[str, Caution]:
+        scope = self.ground.over({}, part)
+        return {
+            name: Caution(
+                name,
+                shape.text,
+                self.citations.read(shape.source, mapping_in(parent, name), scope.at(name)),
+                shape.to if isinstance(shape, ReferralShape) else "",
+            )
+            for name, shape in shapes.items()
+        }
+
+    def _procedures(self, shape: CautionsFile, parent: Mapping) -> dict[str, Procedure]:
+        scope = self.ground.over({}, "change_over")
+        choices = self.properties["change_over"].choices if "change_over" in self.properties else None
+        for name in shape.change_over:
+            if choices is not None and name not in choices and not scope.lost.has("names", "change_over"):
+                message = f"'{name}' is no choice of the property change_over"
+                scope.unknown(parent.key_marks[name], "names", name, message, choices)
+        return {
+            name: Procedure(
+                name,
+                each.title,
+                tuple(each.steps),
+                self.citations.read(each.source, mapping_in(parent, name), scope.at(name)),
+            )
+            for name, each in shape.change_over.items()
+        }
+
+    def docket(self, shape: DocketFile, tree: Mapping) -> tuple[DocketRow, ...]:
+        """The rows of the docket, then those of the quantities."""
+        return tuple(
+            self._docket_row(row, mapping_in(node), section)
+            for key, shapes, section in (("rows", shape.rows, "docket"), ("quantities", shape.quantities, "quantities"))
+            for row, node in zip(shapes, list_in(tree, key), strict=True)
+        )
+
+    def _docket_row(self, shape: DocketRowShape, node: Mapping, section: str) -> DocketRow:
+        scope = self.ground.over(self.facts, "rows", f"'{shape.id}'")
+        shown: Condition = ALWAYS
+        properties = [node["recommends"]] if "recommends" in node else list_in(node, "demands")
+        for each in properties:
+            self._known(each, self.properties, "property", scope)
+        for each in list_in(node, "facts"):
+            self._known(each, self.facts, "fact", scope)
+        if "shown_if" in node:
+            with suppress(Mistyped):
+                shown = condition(node["shown_if"], scope.at("shown_if"))
+        return DocketRow(
+            shape.id,
+            shape.title,
+            shape.recommends or "",
+            tuple(shape.demands or ()),
+            tuple(shape.facts or ()),
+            shown,
+            section,
+        )
+
+    def usual_oils(self, shape: UsualOilsFile, tree: Mapping) -> UsualOils:
+        """How the usual oils are made."""
+        made, node = shape.usual_oils, mapping_in(tree, "usual_oils")
+        scope = self.ground.over(self.properties, "usual_oils", what="property")
+        self.citations.read(made.source, node, scope)
+        self._known(node["family"], self.properties, "property", scope)
+        self._columns(node, ("from", "to", "index"), scope)
+        ordinary: Condition = ALWAYS
+        with suppress(Mistyped):
+            ordinary = condition(node["ordinary"], scope.at("ordinary"))
+        return UsualOils(made.table, made.family, made.low, made.high, made.index, ordinary)
+
+    def designations(self, shape: DesignationsFile, tree: Mapping) -> Mapping:
+        """The two standards as written, once everything that they name is known."""
+        written = mapping_in(tree, "designations")
+        for standard, model in (("din", shape.designations.din), ("iso", shape.designations.iso)):
+            node, scope = mapping_in(written, standard), self.ground.over(self.facts, "designations", standard)
+            self.citations.read(model.source, node, scope)
+            for key in ("need", "cold", "water", "water_test"):
+                if isinstance(node.get(key), Scalar):
+                    self._known(node[key], self.facts, "fact", scope.at(key))
+            for key in ("nlgi", "water_rating"):
+                if key in node:
+                    self._known(node[key], self.properties, "property", scope.at(key))
+            for part in _parts(node):
+                self._columns(part, _COLUMNS, scope)
+                self._values(part, scope)
+            if "none_when" in node:
+                with suppress(Mistyped):
+                    condition(node["none_when"], scope.at("none_when"))
+        return written
+
+    def _values(self, node: Mapping, scope: Scope) -> None:
+        """The property of a letter, and the values for which it stands."""
+        if "property" not in node or not self._known(node["property"], self.properties, "property", scope):
+            return
+        for each in list_in(node, "values"):
+            with suppress(Mistyped):
+                value(each, self.properties[str(node["property"])], scope)
+
+    def _columns(self, node: Mapping, keys: tuple[str, ...], scope: Scope) -> None:
+        """The table that a part names, and its columns."""
+        name = node.get("table")
+        table = self.tables.get(str(name))
+        if table is None:
+            if name is not None:
+                scope.unknown(name.mark, "tables", str(name), f"'{name}' is no table", self.tables, "see tables/")
+            return
+        for key in keys:
+            if key in node and str(node[key]) not in table.columns:
+                message = f"'{node[key]}' is no column of table {table.id}"
+                scope.unknown(node[key].mark, "tables", table.id, message, table.columns)
+
+    def _known(self, node: Node, names: Map[str, Domain], what: str, scope: Scope) -> bool:
+        if str(node) in names and not scope.lost.has("names", str(node)):
+            return True
+        scope.unknown(node.mark, "names", str(node), f"'{node}' is no {what}", names, "declare it")
+        return False
+
+
+def _parts(node: Mapping) -> Iterator[Mapping]:
+    """The mappings within a standard, at any depth."""
+    for key, child in node.items():
+        if isinstance(child, Mapping) and key != "none_when":
+            yield child
+            yield from _parts(child)

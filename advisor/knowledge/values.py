@@ -1,0 +1,134 @@
+"""Typing of values by the declared kinds of the names they stand under."""
+
+from collections.abc import Iterable
+from collections.abc import Mapping as Map
+from dataclasses import dataclass, field, replace
+
+from advisor.conditions import Domain, Value
+from advisor.documents import Mapping, Mark, Node, Problem, Problems, Scalar, Sequence, as_number, nearest
+from advisor.knowledge.lost import Lost, Space
+from advisor.knowledge.model import Band, Cell, Row, Table
+
+
+class Blank(Exception):
+    """The row has no value in a cell that the rule names: the row does not apply."""
+
+
+class Mistyped(Exception):
+    """The part has no value; a problem was recorded for it, or for what it names."""
+
+
+@dataclass(frozen=True, slots=True)
+class Scope:
+    """What names mean in one place of the knowledge."""
+
+    problems: Problems
+    names: Map[str, Domain]
+    facts: Map[str, Domain] = field(default_factory=dict)
+    table: Table | None = None
+    row: Row | None = None
+    trail: tuple[str, ...] = ()
+    what: str = "fact"
+    may_ask_stated: bool = False
+    hints: Map[str, str] = field(default_factory=dict)
+    lost: Lost = field(default_factory=Lost)
+
+    def at(self, *trail: str) -> "Scope":
+        """The same scope further down the trail."""
+        return replace(self, trail=self.trail + trail)
+
+    def over(self, names: Map[str, Domain], *trail: str, what: str = "fact") -> "Scope":
+        """The same ground with other names."""
+        return replace(self, names=names, trail=trail, what=what)
+
+    def fault(self, node: Node, message: str, hint: str = "") -> Mistyped:
+        """Record a problem at a node."""
+        self.problem(node.mark, message, hint)
+        return Mistyped()
+
+    def problem(self, mark: Mark, message: str, hint: str = "") -> None:
+        """Record a problem at a mark, once."""
+        problem = Problem.at(mark, message, hint, self.trail)
+        if problem not in tuple(self.problems):
+            self.problems.add(problem)
+
+    def unknown(
+        self, mark: Mark, space: Space, name: str, message: str, known: Iterable[str], hint: str = ""
+    ) -> Mistyped:
+        """Record that a name names nothing, unless it may have stood in what is lost."""
+        if not self.lost.may_have(space, name):
+            self.problem(mark, message, nearest(name, known).strip() or hint)
+        return Mistyped()
+
+    def domain(self, name: str, mark: Mark) -> Domain:
+        """The domain of a name, or a problem at its mark."""
+        if name in self.names and not self.lost.has("names", name):
+            return self.names[name]
+        message = f"'{name}' is no {self.what} that is known here"
+        if name in self.hints:
+            raise self.unknown(mark, "names", name, message, (), self.hints[name])
+        raise self.unknown(mark, "names", name, message, self.names, f"declare it, or use another {self.what}")
+
+
+def value(node: Node, domain: Domain, scope: Scope) -> Value:
+    """A constant of the domain."""
+    if domain.kind == "several":
+        return _ticks(node, domain, scope)
+    if not isinstance(node, Scalar):
+        raise scope.fault(node, "one value is expected here, not a list or a mapping")
+    if domain.kind == "number":
+        return _number(node, domain, scope)
+    text = str(node)
+    if domain.kind == "yes_no":
+        text = {"true": "yes", "false": "no"}.get(text, text)
+    if domain.kind == "text" or domain.accepts(text):
+        return text
+    known = list(domain.choices)
+    hint = nearest(text, known).strip() or f"known here: {', '.join(known[:12])}{' ...' if len(known) > 12 else ''}"
+    raise scope.fault(node, f"'{text}' is not one of the choices", hint)
+
+
+def _ticks(node: Node, domain: Domain, scope: Scope) -> Value:
+    if isinstance(node, Scalar) and str(node) == "none" and "none" not in domain.choices:
+        return ()
+    entries = list(node) if isinstance(node, Sequence) else [node]
+    single = replace(domain, kind="choice")
+    ticked = {str(value(entry, single, scope)) for entry in entries}
+    return tuple(choice for choice in domain.choices if choice in ticked)
+
+
+def _number(node: Scalar, domain: Domain, scope: Scope) -> float:
+    if str(node) in domain.named:
+        return domain.named[str(node)]
+    try:
+        number = as_number(node)
+    except ValueError as fault:
+        message, _, hint = str(fault).partition("; ")
+        raise scope.fault(node, message, hint) from None
+    if not domain.accepts(number):
+        if domain.places and domain.low <= number <= domain.high:
+            raise scope.fault(node, f"{number:g} is none of the grades", f"use one of {_series(domain.places)}")
+        raise scope.fault(
+            node,
+            f"{number:g} {domain.unit}".strip()
+            + f" lies outside {domain.low:g} to {domain.high:g} {domain.unit}".rstrip(),
+            "check the unit and the decimal point",
+        )
+    return number
+
+
+def _series(numbers: tuple[float, ...]) -> str:
+    return ", ".join(f"{number:g}" for number in numbers)
+
+
+def cell(node: Node, domain: Domain, scope: Scope, *, band: bool) -> Cell:
+    """A cell of a table."""
+    if not band:
+        return value(node, domain, scope)
+    if not isinstance(node, Mapping) or not set(node) <= {"from", "below"} or not node:
+        raise scope.fault(node, "a band is written {from: 1, below: 2}", "either end may be left out")
+    low = value(node["from"], domain, scope) if "from" in node else float("-inf")
+    high = value(node["below"], domain, scope) if "below" in node else float("inf")
+    if not low < high:  # type: ignore[operator]  # both are numbers by the domain
+        raise scope.fault(node, "the band is empty: 'from' is not below 'below'")
+    return Band(low, high)  # type: ignore[arg-type]  # both are numbers by the domain
