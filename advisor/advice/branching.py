@@ -3,7 +3,7 @@
 import math
 from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass, replace
-from itertools import product
+from itertools import pairwise, product
 
 from advisor.advice.model import Advice, Branch, Line, Ranked, State
 from advisor.case import Answer, Case
@@ -149,7 +149,7 @@ def _parts(span: tuple[float, float], step: float, result: Callable[[float], obj
 
     parts: list[tuple[float, float]] = []
     first = 0
-    for place, following in zip(looked_at, looked_at[1:], strict=False):
+    for place, following in pairwise(looked_at):
         if result(value(place)) == result(value(following)):
             continue
         before, after = place, following
@@ -163,7 +163,7 @@ def _parts(span: tuple[float, float], step: float, result: Callable[[float], obj
 
 
 def result_of(advice: Advice) -> object:
-    """What a user reads as the result: state, classes, verdicts, codes, cautions, referrals, whether a figure is given."""
+    """What a user reads as the result: state, classes, verdicts, codes, cautions, referrals, figures given."""
     return (
         advice.state,
         advice.withheld,
@@ -207,7 +207,8 @@ def _shared(rows: Sequence[Line]) -> Line:
     first = rows[0]
     shared = tuple(value for value in first.values if all(value in row.values for row in rows[1:]))
     differs = any(row.values != first.values for row in rows[1:])
-    return replace(first, values=shared, differs=differs, waits=tuple(dict.fromkeys(name for row in rows for name in row.waits)))
+    waits = tuple(dict.fromkeys(name for row in rows for name in row.waits))
+    return replace(first, values=shared, differs=differs, waits=waits)
 
 
 def _worst_verdicts(ends: Sequence[Advice]) -> tuple[Ranked, ...]:

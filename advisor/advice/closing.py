@@ -54,10 +54,10 @@ def _concerned(for_: Condition, recommendation: Recommendation | None, judgement
     winners = [place for places_ in recommendation.winners.values() for place in places_]
     for one, chosen in ((recommendation.oils, recommendation.oil_winners), (recommendation.choices, winners)):
         if one is not None:
-            found += [one.catalogue.items[place].title for place in chosen if _meeting(for_, one) >> place & 1]
-    return found + [
-        judgement.catalogue.items[place].code for place in places(_meeting(for_, judgement) & judgement.passing)
-    ]
+            meeting = _meeting(for_, one)
+            found += [one.catalogue.items[place].title for place in chosen if meeting >> place & 1]
+    meeting = _meeting(for_, judgement) & judgement.passing
+    return found + [judgement.catalogue.items[place].code for place in places(meeting)]
 
 
 def _meeting(for_: Condition, judgement: Judgement) -> int:

@@ -14,9 +14,17 @@ if TYPE_CHECKING:
     from advisor.explanation.workings import Working
 
 __all__ = [
-    "as_data", "as_json", "how_computed", "html", "markdown", "text", "what_would_change", "why", "why_not",
+    "as_data",
+    "as_json",
+    "how_computed",
+    "html",
+    "markdown",
+    "text",
+    "what_would_change",
+    "why",
+    "why_not",
     "why_not_rule",
-]  # fmt: skip
+]
 
 
 def text(advice: "Advice") -> str:

@@ -3,10 +3,18 @@
 from dataclasses import dataclass
 
 GLYPHS = {
-    "settled": "●", "open": "○", "conflict": "×", "referred": "→",
-    "fits": "●", "second best": "◐", "still in": "○", "unproven": "?", "falls short": "×",
-    "must": "■", "wish": "□",
-}  # fmt: skip
+    "settled": "●",
+    "open": "○",
+    "conflict": "×",
+    "referred": "→",
+    "fits": "●",
+    "second best": "◐",
+    "still in": "○",
+    "unproven": "?",
+    "falls short": "×",
+    "must": "■",
+    "wish": "□",
+}
 
 
 @dataclass(frozen=True, slots=True)

@@ -28,6 +28,8 @@ from advisor.shelf.catalogue import reads as property_reads
 
 MOST_NEAR = 5
 _KELVINS = 100.0
+_NEAR = 0.2
+"""Limits farther away than a fifth of the value, or than 20 K, are not called close."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -83,16 +85,28 @@ def what_would_change(advice: Advice) -> Changes:
     """Open questions, assumptions, musts met with nothing to spare, the closest limits, and answers set aside."""
     knowledge = advice.knowledge
     return Changes(
-        tuple(_open(advice)), tuple(_assumed(advice, name) for name in advice.assumptions), tuple(_at_limit(advice)),
-        tuple(near_limits(advice)), tuple(title_of(name, knowledge) for name in advice.set_aside))  # fmt: skip
+        tuple(_open(advice)),
+        tuple(_assumed(advice, name) for name in advice.assumptions),
+        tuple(_at_limit(advice)),
+        tuple(near_limits(advice)),
+        tuple(title_of(name, knowledge) for name in advice.set_aside),
+    )
 
 
 def _open(advice: Advice) -> Iterator[Open]:
     for each in advice.open_questions:
         question = advice.knowledge.facts[each.fact].question
-        waiting = tuple(_say_waiting(advice, name) for name in each.waiting)
+        waiting = tuple(
+            _say_waiting(advice, name) for name in dict.fromkeys(_written(advice, name) for name in each.waiting)
+        )
         ask = question.ask if question is not None else ""
         yield Open(each.fact, title_of(each.fact, advice.knowledge), ask, each.decides, each.dont_know, waiting)
+
+
+def _written(advice: Advice, name: str) -> str:
+    """The written rule of a rule for one row of a table; other names as they are."""
+    rule = name.partition("/")[0]
+    return rule if rule in advice.knowledge.rules else name
 
 
 def _say_waiting(advice: Advice, name: str) -> str:
@@ -105,7 +119,9 @@ def _assumed(advice: Advice, name: str) -> Assumed:
     sources = tuple(say_source(each, knowledge) for each in assume.source) if assume is not None else ()
     value = HIDDEN if hides(advice, name) else say_fact(advice.facts[name], knowledge)
     rows = () if advice.withheld else rows_reached(advice, name)
-    return Assumed(name, title_of(name, knowledge), value, advice.facts[name].note, sources, name in advice.keeping_open, rows)
+    return Assumed(
+        name, title_of(name, knowledge), value, advice.facts[name].note, sources, name in advice.keeping_open, rows
+    )
 
 
 def _at_limit(advice: Advice) -> Iterator[str]:
@@ -115,7 +131,8 @@ def _at_limit(advice: Advice) -> Iterator[str]:
         if each.what == "product":
             products.setdefault((_met_at_limit(advice, each.name, each.rule), each.rule), []).append(each.name)
         else:
-            yield f"{_class_title(advice, each.name)}: a little more, and it is barred by: {_say_waiting(advice, each.rule)}"
+            barred = f"a little more, and it is barred by: {_say_waiting(advice, each.rule)}"
+            yield f"{_class_title(advice, each.name)}: {barred}"
     for (said, rule), items in products.items():
         yield f"{listed(items, 'and')}: {said}, with nothing to spare ({rule})"
 
@@ -128,7 +145,8 @@ def _met_at_limit(advice: Advice, name: str, rule: str) -> str:
     return " and ".join(
         say_test(demand.test, advice.knowledge)
         for number, demand in enumerate(judgement.demands)
-        if demand.rule == rule and demand.must and at_limit(judgement, number, place))  # fmt: skip
+        if demand.rule == rule and demand.must and at_limit(judgement, number, place)
+    )
 
 
 def _class_title(advice: Advice, name: str) -> str:
@@ -143,12 +161,14 @@ def rows_reached(advice: Advice, fact: str) -> tuple[str, ...]:
     """The titles of the rows whose demands, limits or figures depend on a fact."""
     facts = facts_reached(advice, fact)
     touched = {
-        name for name, prop in advice.knowledge.properties.items()
-        if facts & {*property_reads(prop), prop.same_item}}  # fmt: skip
+        name for name, prop in advice.knowledge.properties.items() if facts & {*property_reads(prop), prop.same_item}
+    }
     for step in advice.knowledge.instances.values():
         for instance in step:
             touched |= set(_touched(instance, facts))
-    return tuple(row.title for row in advice.knowledge.docket if _looks_at(advice, row) & touched or facts & set(row.facts))
+    return tuple(
+        row.title for row in advice.knowledge.docket if _looks_at(advice, row) & touched or facts & set(row.facts)
+    )
 
 
 def _touched(instance: Instance, facts: set[str]) -> Iterator[str]:
@@ -199,12 +219,15 @@ def near_limits(advice: Advice) -> list[Near]:
             if not hides(advice, term.name):
                 scaled = _scaled(seen, limit, domain_of(term.name, advice.knowledge))
                 found.setdefault((term.name, limit), (scaled, term.sign, []))[2].append(instance.id)
-    closest = sorted(found.items(), key=lambda each: (each[1][0], each[0]))[:MOST_NEAR]
+    near = [each for each in found.items() if each[1][0] <= _NEAR]
+    closest = sorted(near, key=lambda each: (each[1][0], each[0]))[:MOST_NEAR]
     return [_near(advice, name, limit, sign, rules) for (name, limit), (_, sign, rules) in closest]
 
 
 def _matters(instance: Instance) -> bool:
-    return any(isinstance(each, Refers | Sets) or (isinstance(each, Asks) and each.level <= 1) for each in instance.then)
+    return any(
+        isinstance(each, Refers | Sets) or (isinstance(each, Asks) and each.level <= 1) for each in instance.then
+    )
 
 
 def _turning(when: Condition, record: Record, *, outcome: bool) -> Iterator[tuple[Bound, float]]:
@@ -235,5 +258,11 @@ def _near(advice: Advice, name: str, limit: float, sign: str, rules: list[str]) 
     away = margin(Bound(name, sign, limit), seen, {}) or 0.0
     wanted = f"{OPERATORS[sign]} {say_value(domain, limit)}"
     return Near(
-        name, title_of(name, advice.knowledge), say_value(domain, seen), wanted, say_margin(away, domain), away == 0,
-        tuple(rules))  # fmt: skip
+        name,
+        title_of(name, advice.knowledge),
+        say_value(domain, seen),
+        wanted,
+        say_margin(away, domain),
+        away == 0,
+        tuple(rules),
+    )

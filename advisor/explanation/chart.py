@@ -1,4 +1,4 @@
-"""The viscosity-temperature chart on Walther axes, where oils are straight lines; told apart by dashes, not by colour."""
+"""The viscosity-temperature chart on Walther axes, where oils are straight lines, told apart by dashes."""
 
 import math
 from collections.abc import Iterator
@@ -97,9 +97,18 @@ def chart(advice: Advice) -> Chart | None:
     lines += _needed_lines(axes, advice, needed) if needed is not None else []
     lines.append(_running_line(axes, running))
     return Chart(
-        WIDTH, HEIGHT, _LEFT, WIDTH - _RIGHT, _TOP, HEIGHT - _BOTTOM, "Viscosity against temperature",
-        _describe(oils, running, advice, needed), tuple(_spread(lines)), tuple(_temperatures(axes)),
-        tuple(Tick(axes.y(each), show(each, "")) for each in _GRADES if axes.thin <= each <= axes.thick))  # fmt: skip
+        WIDTH,
+        HEIGHT,
+        _LEFT,
+        WIDTH - _RIGHT,
+        _TOP,
+        HEIGHT - _BOTTOM,
+        "Viscosity against temperature",
+        _describe(oils, running, advice, needed),
+        tuple(_spread(lines)),
+        tuple(_temperatures(axes)),
+        tuple(Tick(axes.y(each), show(each, "")) for each in _GRADES if axes.thin <= each <= axes.thick),
+    )
 
 
 def _number(advice: Advice, name: str) -> float | None:
@@ -135,12 +144,15 @@ def _axes(running: float, oils: list[tuple[str, float, float]]) -> _Axes:
 def _oil_line(axes: _Axes, label: str, at_40: float, at_100: float, dash: str) -> Line:
     """A straight line on these axes, from where it enters the frame to where it leaves it."""
     inside = [
-        celsius for celsius in range(math.ceil(axes.cold), math.floor(axes.hot) + 1)
-        if axes.thin <= _at(at_40, at_100, celsius) <= axes.thick]  # fmt: skip
+        celsius
+        for celsius in range(math.ceil(axes.cold), math.floor(axes.hot) + 1)
+        if axes.thin <= _at(at_40, at_100, celsius) <= axes.thick
+    ]
     start, end = float(inside[0]), float(inside[-1])
     y = axes.y(_at(at_40, at_100, end))
     return Line(
-        axes.x(start), axes.y(_at(at_40, at_100, start)), axes.x(end), y, dash, label, axes.x(end) + 6, y + 4, "oil")  # fmt: skip
+        axes.x(start), axes.y(_at(at_40, at_100, start)), axes.x(end), y, dash, label, axes.x(end) + 6, y + 4, "oil"
+    )
 
 
 def _needed_lines(axes: _Axes, advice: Advice, needed: float) -> Iterator[Line]:
@@ -157,7 +169,12 @@ def _asked(advice: Advice) -> Iterator[tuple[str, float]]:
     found: dict[float, int] = {}
     for demand in advice.specification.plain:
         for term in leaves(demand.test):
-            if demand.property == "kappa" and isinstance(term, Bound) and term.sign == ">=" and isinstance(term.limit, float):
+            if (
+                demand.property == "kappa"
+                and isinstance(term, Bound)
+                and term.sign == ">="
+                and isinstance(term.limit, float)
+            ):
                 found[term.limit] = min(demand.level, found.get(term.limit, demand.level))
     for kappa, level in sorted(found.items()):
         yield f"kappa {show(kappa, '')}, {LEVELS[level].partition(' (')[0]}", kappa
@@ -188,5 +205,9 @@ def _temperatures(axes: _Axes) -> Iterator[Tick]:
 def _describe(oils: list[tuple[str, float, float]], running: float, advice: Advice, needed: float | None) -> str:
     """The chart in words, for those who cannot see it."""
     said = [f"{name} has {show(_at(at_40, at_100, running), 'mm²/s')}" for name, at_40, at_100 in oils]
-    asked = [f"{label} asks {show(kappa * needed, 'mm²/s')}" for label, kappa in _asked(advice)] if needed is not None else []
+    asked = (
+        [f"{label} asks {show(kappa * needed, 'mm²/s')}" for label, kappa in _asked(advice)]
+        if needed is not None
+        else []
+    )
     return f"At the running temperature of {show(running, '°C')}: {'; '.join([*said, *asked])}."

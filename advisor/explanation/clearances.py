@@ -32,22 +32,32 @@ def least_clearances(judgement: Judgement, among: Iterable[int]) -> dict[int, Cl
     return found
 
 
-def _add(judgement: Judgement, number: int, demand: Demand, limits: list[float], domain: Domain, wanted: list[int],
-         found: dict[int, Clearance]) -> None:  # fmt: skip
+def _add(
+    judgement: Judgement,
+    number: int,
+    demand: Demand,
+    limits: list[float],
+    domain: Domain,
+    wanted: list[int],
+    found: dict[int, Clearance],
+) -> None:
     column = judgement.columns.get(demand.property)
     if column is None:
         return
     _, not_for = judge(demand.for_, judgement.columns, judgement.catalogue.everything)
     met = column.present & ~not_for & ~judgement.failing[number]
+    steps_of: dict[float, tuple[float, float]] = {}
     for place in wanted:
         seen = column.values[place]
         if not met >> place & 1 or not isinstance(seen, float | int):
             continue
-        nearest = min(limits, key=lambda limit: abs(seen - limit))
-        steps = in_steps(domain, seen, nearest)
+        if seen not in steps_of:
+            nearest = min(limits, key=lambda limit: abs(seen - limit))
+            steps_of[seen] = (in_steps(domain, seen, nearest), abs(seen - nearest))
+        steps, away = steps_of[seen]
         known = found.get(place)
         if known is None or (steps, demand.rule) < (known.steps, known.rule):
-            found[place] = Clearance(number, demand.rule, float(seen), abs(seen - nearest), steps)
+            found[place] = Clearance(number, demand.rule, float(seen), away, steps)
 
 
 def limits_in(test: Condition) -> list[float]:

@@ -7,6 +7,7 @@ from difflib import get_close_matches
 from advisor.advice import Advice, Line
 from advisor.conditions import Bound, Coded, Condition, Domain, Member, Value, leaves
 from advisor.explanation.ruling import RuleReason, Rules
+from advisor.explanation.variants import deciding_end
 from advisor.explanation.weighing import Field, field_of, oil_title
 from advisor.explanation.words import (
     LEVELS,
@@ -66,7 +67,7 @@ class WhyNot:
 
 
 def why_not(advice: Advice, subject: str) -> WhyNot:
-    """Why a product (by its item code) or a class (`thickener=sodium`, or a value as the docket says it) is not recommended.
+    """Why a product (by its item code) or a class (`thickener=sodium`, or as the docket says it) is not recommended.
 
     Raises:
         NotHere: where neither the shelf nor a row has it; the message names the nearest.
@@ -82,6 +83,9 @@ def why_not(advice: Advice, subject: str) -> WhyNot:
 
 def product(advice: Advice, place: int, rules: Rules | None = None) -> WhyNot:
     """All demands that a product misses, musts first."""
+    end = deciding_end(advice, place)
+    if end is not advice:
+        return product(end, place)
     judgement = advice.judgement
     assert judgement is not None  # noqa: S101 - asked by the callers
     item = judgement.catalogue.items[place]
@@ -98,11 +102,18 @@ def _miss(rules: Rules, short: Shortfall, *, shared: bool = False) -> Miss:
     advice, demand = rules.advice, short.demand
     domain = advice.knowledge.properties[demand.property].domain
     return Miss(
-        title_of(demand.property, advice.knowledge), say_test(demand.test, advice.knowledge), demand.level, LEVELS[demand.level],
+        title_of(demand.property, advice.knowledge),
+        say_test(demand.test, advice.knowledge),
+        demand.level,
+        LEVELS[demand.level],
         isinstance(demand.test, Member) and not demand.test.wanted,
         "" if not list(leaves(demand.for_)) else say_condition(demand.for_, advice.knowledge),
         _seen(demand, short.seen, say_value(domain, short.seen)),
-        _say_apart(demand, short.seen, advice), short.steps, rules.reason(demand.rule), shared)  # fmt: skip
+        _say_apart(demand, short.seen, advice),
+        short.steps,
+        rules.reason(demand.rule),
+        shared,
+    )
 
 
 def _seen(demand: Demand, seen: Coded | None, said: str) -> str:
@@ -114,7 +125,7 @@ def _seen(demand: Demand, seen: Coded | None, said: str) -> str:
 def _say_apart(demand: Demand, seen: Coded | None, advice: Advice) -> str:
     domain = advice.knowledge.properties[demand.property].domain
     away = apart(demand.test, seen)
-    return "" if away is None else say_margin(away, domain)
+    return "" if away is None or domain.kind == "yes_no" else say_margin(away, domain)
 
 
 def apart(test: Condition, seen: Coded | None) -> float | None:
@@ -132,13 +143,17 @@ def find_class(advice: Advice, subject: str) -> tuple[Line, Coded]:
         if not row.recommends:
             continue
         domain = advice.knowledge.properties[row.recommends].domain
-        for each in domain.places or tuple(domain.choices):
+        values: tuple[Value, ...] = (*domain.places, *domain.choices)
+        for each in values:
             if wanted in _names_of(row, domain, each):
                 return line, domain.code(each)
             known.append(_subject(row, each))
     codes = advice.judgement.catalogue.place if advice.judgement is not None else ()
     near = get_close_matches(subject, [*codes, *known], n=3, cutoff=0.4)
-    raise NotHere(f"'{subject}' is no product of this shelf and no class of the docket." + (f" Nearest: {', '.join(near)}." if near else ""))
+    raise NotHere(
+        f"'{subject}' is no product of this shelf and no class of the docket."
+        + (f" Nearest: {', '.join(near)}." if near else "")
+    )
 
 
 def _subject(row: DocketRow, value: Value) -> str:
@@ -167,10 +182,22 @@ def of_class(advice: Advice, line: Line, value: Coded, rules: Rules | None = Non
         return WhyNot(subject, said, "class", "recommended", ())
     own = [place for place in field.misses if field.value(place) == value] if field is not None else []
     if field is None or not own:
-        reason = "does not apply" if line.skipped else "no usual oil has it" if field is not None else "not the conclusion of the rules: see why"
+        reason = (
+            "does not apply"
+            if line.skipped
+            else "no usual oil has it"
+            if field is not None
+            else "not the conclusion of the rules: see why"
+        )
         return WhyNot(subject, said, "class", reason, ())
     closest = min(own, key=lambda place: _distance(field, place))
-    return WhyNot(subject, said, "class", _class_verdict(field, own, closest), tuple(_against(rules if rules is not None else Rules(advice), field, closest)))
+    return WhyNot(
+        subject,
+        said,
+        "class",
+        _class_verdict(field, own, closest),
+        tuple(_against(rules if rules is not None else Rules(advice), field, closest)),
+    )
 
 
 def _distance(field: Field, place: int) -> tuple[object, ...]:
@@ -204,4 +231,3 @@ def _against(rules: Rules, field: Field, closest: int) -> Iterable[Miss]:
 def _value(judgement: Judgement, demand: Demand, place: int) -> Coded | None:
     column = judgement.columns.get(demand.property)
     return column.values[place] if column is not None else None
-

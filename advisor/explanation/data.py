@@ -3,11 +3,12 @@
 import json
 import re
 from collections.abc import Mapping
+from math import isfinite
 from typing import Any
 
 from advisor import __version__
 from advisor.advice import FORMAT, Advice
-from advisor.advice.model import Line
+from advisor.advice.model import Branch, CautionGiven, Line
 from advisor.conditions import Domain, Value
 from advisor.explanation.data_judged import oils_data, shelf_data
 from advisor.explanation.data_terms import condition_data, demand_data
@@ -15,18 +16,25 @@ from advisor.explanation.data_trace import trace_data
 from advisor.explanation.seeing import hides
 
 _UNSAFE = re.compile("[\x7f-\x9f\u200b-\u200f\u2028-\u202e\u2066-\u2069\ufeff\ud800-\udfff]")
+_ENCODER = json.JSONEncoder(ensure_ascii=False, allow_nan=False, separators=(",", ":"))
 Data = dict[str, Any]
 
 
 def as_json(advice: Advice) -> str:
     """The advice as JSON on one line; characters that steer a terminal are escaped."""
-    parts = (f"{_dumps(key)}:{_shelf(value) if key == 'shelf' else _dumps(value)}" for key, value in as_data(advice).items())
+    parts = (
+        f"{_dumps(key)}:{_shelf(value) if key == 'shelf' else _dumps(value)}" for key, value in as_data(advice).items()
+    )
     return "{" + ",".join(parts) + "}\n"
 
 
 def _dumps(value: object) -> str:
-    text = json.dumps(value, ensure_ascii=False, allow_nan=False, separators=(",", ":"))
-    return _UNSAFE.sub(lambda found: f"\\u{ord(found.group()):04x}", text)
+    text = _ENCODER.encode(value)
+    return (
+        text
+        if text.isascii() and "\x7f" not in text
+        else _UNSAFE.sub(lambda found: f"\\u{ord(found.group()):04x}", text)
+    )
 
 
 def _shelf(products: list[Data]) -> str:
@@ -38,11 +46,21 @@ def _shelf(products: list[Data]) -> str:
         for each in product["misses"]:
             text = written.get(id(each))
             if text is None:
-                text = written[id(each)] = _dumps(each)
+                text = written[id(each)] = f"{{{_members(each)}}}"
             misses.append(text)
-        head = _dumps({key: value for key, value in product.items() if key != "misses"})
-        found.append(f'{head[:-1]},"misses":[{",".join(misses)}]}}')
+        head = _members({key: value for key, value in product.items() if key != "misses"})
+        found.append(f'{{{head},"misses":[{",".join(misses)}]}}')
     return f"[{','.join(found)}]"
+
+
+def _members(data: Data) -> str:
+    """The members of a flat object; numbers are written here, since most members are numbers."""
+    return ",".join(
+        f'"{key}":{value!r}'
+        if type(value) is int or (type(value) is float and isfinite(value))
+        else f'"{key}":{_dumps(value)}'
+        for key, value in data.items()
+    )
 
 
 def as_data(advice: Advice) -> Data:
@@ -61,44 +79,67 @@ def as_data(advice: Advice) -> Data:
     return data | {
         "cautions": [_caution(advice, each) for each in advice.cautions],
         "referrals": [
-            {"to": each.to, "person": advice.knowledge.referrals[each.to].to, "rule": each.rule, "withhold": each.withhold}
-            for each in advice.referrals],
+            {
+                "to": each.to,
+                "person": advice.knowledge.referrals[each.to].to,
+                "rule": each.rule,
+                "withhold": each.withhold,
+            }
+            for each in advice.referrals
+        ],
         "assumptions": [_assumption(advice, name) for name in advice.assumptions],
         "open_questions": [
             {"fact": each.fact, "decides": each.decides, "waiting": list(each.waiting), "dont_know": each.dont_know}
-            for each in advice.open_questions],
+            for each in advice.open_questions
+        ],
         "conflicts": [{"about": each.about, "rules": list(each.rules)} for each in advice.conflicts],
         "at_limit": [{each.what: each.name, "rule": each.rule} for each in advice.at_limit],
         "set_aside": list(advice.set_aside),
-        "branches": [as_data(each) for each in advice.branches],
+        "branches": [_branch(each) for each in advice.branches],
         "trace": trace_data(advice),
-    }  # fmt: skip
+    }
 
 
 def _result(advice: Advice) -> Data:
     """What is recommended: specification, docket, oils, quantities, shelf."""
-    numbers = {demand: number for number, demand in enumerate(advice.specification.demands)}
+    numbers = {demand: number for number, demand in enumerate(advice.specification.class_demands)}
     return {
-        "specification": {
-            "demands": [demand_data(each, advice) for each in advice.specification.plain],
-            "conditional": [demand_data(each, advice) for each in advice.specification.conditional],
-            "designations": {
-                "din": list(advice.codes.din), "iso": list(advice.codes.iso),
-                "din_none": advice.codes.din_none, "iso_none": advice.codes.iso_none},
-        },
+        "specification": _specification(advice),
         "docket": [_line(advice, each, numbers) for each in advice.docket],
         "usual_oils": oils_data(advice),
         "renewal": {line.row: _quantity(advice, line) for line in advice.quantities},
         "shelf": shelf_data(advice),
         "fits": advice.fits,
-    }  # fmt: skip
+    }
+
+
+def _specification(advice: Advice) -> Data:
+    """The demands, numbered through: for every lubricant, for some, and those that no lubricant here can fall under."""
+    domains = {name: each.domain for name, each in advice.knowledge.properties.items()}
+    said = [demand_data(number, each, domains) for number, each in enumerate(advice.specification.class_demands)]
+    plain, some = len(advice.specification.plain), len(advice.specification.conditional)
+    codes = advice.codes
+    designations = {
+        "din": list(codes.din),
+        "iso": list(codes.iso),
+        "din_none": codes.din_none,
+        "iso_none": codes.iso_none,
+    }
+    return {
+        "demands": said[:plain],
+        "conditional": said[plain : plain + some],
+        "dropped": said[plain + some :],
+        "designations": designations,
+    }
 
 
 def _case(advice: Advice) -> Data:
     answers = {
-        name: {"typed": "withheld", "value": "withheld"} if hides(advice, name)
+        name: {"typed": "withheld", "value": "withheld"}
+        if hides(advice, name)
         else {"typed": answer.typed, "value": plain(answer.value)} | ({"estimate": True} if answer.estimate else {})
-        for name, answer in advice.case.answers.items()}  # fmt: skip
+        for name, answer in advice.case.answers.items()
+    }
     return {"point_kind": advice.case.point_kind, "title": advice.case.title, "answers": answers}
 
 
@@ -160,10 +201,29 @@ def _quantity(advice: Advice, line: Line) -> Data:
 
 
 def _domains(advice: Advice) -> Mapping[str, Domain]:
-    return {name: each.domain for name, each in (*advice.knowledge.facts.items(), *advice.knowledge.computations.items())}
+    facts = {name: each.domain for name, each in advice.knowledge.facts.items()}
+    return facts | {name: each.domain for name, each in advice.knowledge.computations.items()}
 
 
-def _caution(advice: Advice, caution: Any) -> Data:
+def _branch(branch: Branch) -> Data:
+    """A branch in short: what it sets, its state, its classes, its codes and verdicts; and of a range the other end."""
+    data = {"label": branch.label, "settings": {name: plain(value) for name, value in branch.settings.items()}}
+    data |= _short(branch.advice)
+    return data | ({"other_end": _short(branch.other_end)} if branch.other_end is not None else {})
+
+
+def _short(advice: Advice) -> Data:
+    if advice.withheld:
+        return {"state": advice.state.value, "withheld": True}
+    return {
+        "state": advice.state.value,
+        "recommended": {line.row: [plain(each) for each in line.values] for line in advice.docket if line.values},
+        "designations": {"din": list(advice.codes.din), "iso": list(advice.codes.iso)},
+        "shelf": {each.item: each.verdict.value for each in advice.shelf},
+    }
+
+
+def _caution(advice: Advice, caution: CautionGiven) -> Data:
     data: Data = {"caution": caution.caution, "rules": list(caution.rules)}
     return data | ({"concerns": list(caution.concerns)} if caution.concerns and not advice.withheld else {})
 
@@ -172,4 +232,3 @@ def _assumption(advice: Advice, name: str) -> Data:
     fact = advice.facts[name]
     value = "withheld" if hides(advice, name) else plain(fact.value)
     return {"fact": name, "value": value, "because": fact.note, "keeps_open": name in advice.keeping_open}
-

@@ -31,12 +31,12 @@ def shelf_data(advice: Advice) -> list[Data]:
 
 
 def _misses(judgement: Judgement) -> list[list[Data]]:
-    """For each item its misses; `demand` counts through the plain demands and then the conditional ones."""
+    """For each item its misses; `demand` is the number of the demand in the specification."""
     found: list[list[Data]] = [[] for _ in judgement.catalogue.items]
     order = sorted(range(len(judgement.demands)), key=lambda each: judgement.demands[each].level)
     for place in order:
         demand = judgement.demands[place]
-        silent = {"demand": place, "rule": demand.rule, "seen": None} | ({"steps": 1} if demand.level else {})
+        silent = {"demand": place, "seen": None} | ({"steps": 1} if demand.level else {})
         for item in places(judgement.missing[place]):
             found[item].append(silent)
         _add_failing(judgement, place, demand, found)
@@ -58,33 +58,41 @@ def _add_failing(judgement: Judgement, place: int, demand: Demand, found: list[l
 
 
 def _miss(place: int, demand: Demand, seen: Coded | None, domain: Domain, limits: list[float]) -> Data:
-    data: Data = {"demand": place, "rule": demand.rule, "seen": None if seen is None else _plain(domain, seen)}
-    if limits and isinstance(seen, float | int):
-        data["margin"] = number(min(abs(seen - limit) for limit in limits))
-    if demand.level and seen is not None:
+    if seen is None:
+        return {"demand": place, "seen": None}
+    data: Data = {"demand": place, "seen": _plain(domain, seen)}
+    if len(limits) == 1:
+        data["margin"] = abs(seen - limits[0])  # type: ignore[operator]  # limits stand on numbers only
+    elif limits:
+        data["margin"] = min(abs(seen - limit) for limit in limits)  # type: ignore[operator]  # the same
+    if demand.level:
         data["steps"] = steps_short(demand.test, seen, domain)
     return data
 
 
 def _plain(domain: Domain, coded: Coded) -> Any:
+    if domain.kind == "number":
+        return coded
     meant = domain.decode(coded)
     return list(meant) if isinstance(meant, tuple) else number(meant)
 
 
 def _closest(clear: Clearance) -> Data:
     """The must that a product meets with least to spare."""
-    return {"demand": clear.demand, "rule": clear.rule, "seen": number(clear.seen), "margin": number(clear.margin)}
+    return {"demand": clear.demand, "seen": number(clear.seen), "margin": number(clear.margin)}
 
 
 def oils_data(advice: Advice) -> list[Data]:
-    """The usual oils: the ranked ones first, the recommended marked; then the barred ones with the rules that bar them."""
+    """The usual oils: ranked ones first, the recommended marked; then barred ones with the rules that bar them."""
     judgement = advice.oils
     if judgement is None:
         return []
     chosen = {judgement.catalogue.items[place].code for place in recommended_oils(advice)}
     ranked = sorted(advice.oil_ranks.items(), key=lambda each: (each[1], judgement.catalogue.place[each[0]]))
     found: list[Data] = [
-        {"oil": code, "steps": list(steps)} | ({"recommended": True} if code in chosen else {}) for code, steps in ranked]  # fmt: skip
+        {"oil": code, "steps": list(steps)} | ({"recommended": True} if code in chosen else {})
+        for code, steps in ranked
+    ]
     barring: dict[int, list[str]] = {}
     for demand, failing in zip(judgement.demands, judgement.failing, strict=True):
         for place in places(failing) if demand.must else ():

@@ -1,38 +1,34 @@
 """Conditions and demands as plain data, in the words of the knowledge language."""
 
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from typing import Any
 
-from advisor.advice import Advice
 from advisor.conditions import (
     ALWAYS,
     Bound,
+    Coded,
     Condition,
     Domain,
     Either,
     Every,
     FactRef,
-    Member,
     Stated,
-    Ticked,
     Value,
     Valueless,
 )
-from advisor.explanation.words import say_demand
 from advisor.specification import Demand
 
 OPERATORS = {"<": "below", "<=": "at_most", ">": "above", ">=": "at_least", "=": "is", "!=": "is_not"}
 
 
-def demand_data(demand: Demand, advice: Advice) -> dict[str, Any]:
-    """A demand: property, test, level, rule, for which lubricants, and in words."""
-    domains = {name: each.domain for name, each in advice.knowledge.properties.items()}
+def demand_data(number_: int, demand: Demand, domains: Mapping[str, Domain]) -> dict[str, Any]:
+    """A demand: its number, property, test, level (0 is a must), rule, and for which lubricants."""
     data: dict[str, Any] = {
+        "number": number_,
         "property": demand.property,
         "test": condition_data(demand.test, domains),
         "level": demand.level,
         "rule": demand.rule,
-        "text": say_demand(demand, advice.knowledge),
     }
     if demand.for_ != ALWAYS:
         data["for"] = condition_data(demand.for_, domains)
@@ -48,7 +44,11 @@ def condition_data(condition: Condition, domains: Mapping[str, Domain]) -> Any:
         return [condition.name, "stated" if isinstance(condition, Stated) else "void", condition.wanted]
     if isinstance(condition, Bound):
         return [condition.name, OPERATORS[condition.sign], _limit(condition, domains)]
-    return [condition.name, "any_of" if condition.wanted else "none_of", _among(condition, domains.get(condition.name))]
+    return [
+        condition.name,
+        "any_of" if condition.wanted else "none_of",
+        in_order(condition.among, domains.get(condition.name)),
+    ]
 
 
 def _limit(term: Bound, domains: Mapping[str, Domain]) -> Any:
@@ -58,11 +58,12 @@ def _limit(term: Bound, domains: Mapping[str, Domain]) -> Any:
     return number(domain.decode(term.limit) if domain is not None else term.limit)
 
 
-def _among(term: Member | Ticked, domain: Domain | None) -> list[Any]:
+def in_order(among: Iterable[Coded], domain: Domain | None) -> list[Any]:
+    """Choices in their declared order, so that sets give the same bytes every time."""
     if domain is None:
-        return sorted(map(str, term.among))
+        return sorted(map(str, among))
     order = {choice: place for place, choice in enumerate(domain.choices)}
-    meant = [domain.decode(each) for each in term.among]
+    meant = [domain.decode(each) for each in among]
     return [number(each) for each in sorted(meant, key=lambda each: (order.get(str(each), len(order)), str(each)))]
 
 

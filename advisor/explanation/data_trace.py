@@ -4,12 +4,12 @@ from typing import Any
 
 from advisor.advice import Advice
 from advisor.advice.model import StepTrace
-from advisor.conditions import Bound, FactRef, Record, Stated, Valueless, failures, waits_for
+from advisor.conditions import Bound, Domain, FactRef, Record, Stated, Valueless, failures, waits_for
 from advisor.conditions.terms import Term, Void
-from advisor.explanation.data_terms import OPERATORS, number
+from advisor.explanation.data_terms import OPERATORS, in_order, number
 from advisor.explanation.seeing import hides, record_at
 from advisor.explanation.words import domain_of
-from advisor.explanation.workings import how_computed, put_in
+from advisor.explanation.workings import HIDDEN, how_computed, put_in
 from advisor.formulas import FORMULAS
 from advisor.knowledge import Computation, Formed
 
@@ -22,9 +22,9 @@ def trace_data(advice: Advice) -> list[Data]:
 
 
 def _step(advice: Advice, step: StepTrace) -> Data:
-    """Computed facts, and a verdict on every rule: fired, failed with what it saw, or undecided with what it waits for."""
+    """Computed facts, and every rule: fired, failed with what it saw, or undecided with what it waits for."""
     record = record_at(advice, step.step)
-    terms: dict[Term, Any] = {}
+    say = _Saying(advice, record)
     fired, failed, undecided = [], {}, {}
     for instance, outcome in zip(step.instances, step.outcomes, strict=True):
         if outcome:
@@ -32,40 +32,58 @@ def _step(advice: Advice, step: StepTrace) -> Data:
         elif outcome is None:
             undecided[instance.id] = sorted(waits_for(instance.when, record))
         else:
-            failed[instance.id] = [
-                terms[term] if term in terms else terms.setdefault(term, _saw(advice, term, record))
-                for term in dict.fromkeys(failures(instance.when, record))]  # fmt: skip
+            failed[instance.id] = [say.failed(term) for term in failures(instance.when, record)]
     drafts = [instance.id for instance in step.instances if not instance.binds]
     data: Data = {
         "step": step.step,
         "computed": [_computed(advice, name) for name in step.computed if not hides(advice, name)],
-        "fired": fired, "failed": failed, "undecided": undecided}  # fmt: skip
+        "fired": fired,
+        "failed": failed,
+        "undecided": undecided,
+    }
     return data | ({"drafts": drafts} if drafts else {})
 
 
-def _saw(advice: Advice, term: Term, record: Record) -> list[Any]:
-    """A term that failed: [name, operator, limit, what was seen]."""
-    if hides(advice, term.name):
-        return [term.name, "withheld"]
-    domain, seen = domain_of(term.name, advice.knowledge), record.get(term.name)
-    value: Any = None
-    if seen is not None and not isinstance(seen, Void):
+class _Saying:
+    """Failed terms of one step as data: [name, operator, limit, what was seen]; each is made once."""
+
+    def __init__(self, advice: Advice, record: Record) -> None:
+        self.advice, self.record = advice, record
+        self.said: dict[int, list[Any]] = {}
+        self.seen: dict[str, tuple[Domain, Any]] = {}
+
+    def failed(self, term: Term) -> list[Any]:
+        """The term with what was seen."""
+        said = self.said.get(id(term))
+        if said is None:
+            said = self.said[id(term)] = self._say(term)
+        return said
+
+    def _say(self, term: Term) -> list[Any]:
+        name = term.name
+        if name not in self.seen:
+            self.seen[name] = self._see(name)
+        domain, value = self.seen[name]
+        if value == HIDDEN:
+            return [name, HIDDEN]
+        if isinstance(term, Bound):
+            return [name, OPERATORS[term.sign], self._limit(term, domain), value]
+        if isinstance(term, Stated | Valueless):
+            return [name, "stated" if isinstance(term, Stated) else "void", term.wanted, value]
+        return [name, "any_of" if term.wanted else "none_of", in_order(term.among, domain), value]
+
+    def _see(self, name: str) -> tuple[Domain, Any]:
+        domain, seen = domain_of(name, self.advice.knowledge), self.record.get(name)
+        if hides(self.advice, name):
+            return domain, HIDDEN
+        if seen is None or isinstance(seen, Void):
+            return domain, None
         meant = domain.decode(seen)
-        value = list(meant) if isinstance(meant, tuple) else number(meant)
-    if isinstance(term, Stated | Valueless):
-        return [term.name, "stated" if isinstance(term, Stated) else "void", term.wanted, value]
-    if isinstance(term, Bound):
-        return [term.name, OPERATORS[term.sign], _limit(advice, term, record), value]
-    order = {choice: place for place, choice in enumerate(domain.choices)}
-    among = sorted((domain.decode(each) for each in term.among), key=lambda each: (order.get(str(each), 0), str(each)))
-    return [term.name, "any_of" if term.wanted else "none_of", [number(each) for each in among], value]
+        return domain, list(meant) if isinstance(meant, tuple) else number(meant)
 
-
-def _limit(advice: Advice, term: Bound, record: Record) -> Any:
-    limit = record.get(term.limit.name) if isinstance(term.limit, FactRef) else term.limit
-    if not isinstance(limit, float | int):
-        return None
-    return number(domain_of(term.name, advice.knowledge).decode(float(limit)))
+    def _limit(self, term: Bound, domain: Domain) -> Any:
+        limit = self.record.get(term.limit.name) if isinstance(term.limit, FactRef) else term.limit
+        return number(domain.decode(float(limit))) if isinstance(limit, float | int) else None
 
 
 def _computed(advice: Advice, name: str) -> Data:
@@ -83,8 +101,10 @@ def _how(advice: Advice, computation: Computation) -> Data:
         return {"table": how.table, "column": how.column, "by": dict(how.by)}
     formula = FORMULAS[how.formula]
     numbers = {
-        each: float(value) for each, bound in how.inputs.items()
-        if isinstance(value := advice.facts[bound].value if isinstance(bound, str) else bound, float | int)}  # fmt: skip
+        each: float(value)
+        for each, bound in how.inputs.items()
+        if isinstance(value := advice.facts[bound].value if isinstance(bound, str) else bound, float | int)
+    }
     data: Data = {"equation": formula.equation, "substituted": put_in(formula, numbers)}
     warnings = how_computed(advice, computation.fact).warnings if formula.outside(numbers) else ()
     return data | ({"warnings": list(warnings)} if warnings else {})

@@ -39,7 +39,9 @@ def why_section(whys: list[Why]) -> Section:
 def _by_rule(reasons: list[Reason], told: set[str]) -> Node:
     """The demands of one written rule together."""
     rule = reasons[0].rule
-    decides = " It decides: without it another class would be recommended." if any(each.decides for each in reasons) else ""
+    decides = (
+        " It decides: without it another class would be recommended." if any(each.decides for each in reasons) else ""
+    )
     because = list(dict.fromkeys(each.rule.because for each in reasons))
     under: list[Node] = []
     for each in reasons:
@@ -84,10 +86,14 @@ def why_not_sections(advice: Advice, verdicts: list[WhyNot], rules: Rules) -> li
         domain = advice.knowledge.properties[row.recommends].domain
         barred = [of_class(advice, line, domain.code(value), rules) for value in line.barred]
         nodes.append(Node(line.title, tuple(_barred(each) for each in barred)))
-    classes = Section("why_not_classes", "Why not: classes that are barred", (Tree(tuple(nodes)),) if nodes else (Para("None is."),))
+    classes = Section(
+        "why_not_classes", "Why not: classes that are barred", (Tree(tuple(nodes)),) if nodes else (Para("None is."),)
+    )
     missing = tuple(Node(f"{each.subject} {each.title}: {each.verdict}", leaf(*_missing(each))) for each in verdicts)
     more = len(advice.shelf) - len(verdicts)
-    rest = (Para(f"{more} more products fall short; gudgeon advise --json lists what each one misses."),) if more else ()
+    rest = (
+        (Para(f"{more} more products fall short; gudgeon advise --json lists what each one misses."),) if more else ()
+    )
     products = (Tree(missing), *rest) if missing else (Para("No product was judged."),)
     return [classes, Section("why_not_products", "Why not: products", products)]
 
@@ -120,7 +126,11 @@ def not_fired_section(advice: Advice) -> Section:
     nodes = []
     for step in advice.knowledge.steps:
         under = []
-        seen = [(instance, outcome) for name, instance, outcome in rules_seen(advice) if name == step.id and outcome is not True]
+        seen = [
+            (instance, outcome)
+            for name, instance, outcome in rules_seen(advice)
+            if name == step.id and outcome is not True
+        ]
         for _, group in groupby(seen, lambda each: each[0].rule.id):
             under.append(_not_fired(advice, step.id, list(group)))
         if under:
@@ -172,17 +182,28 @@ def _failed(advice: Advice, term: Term, record: Record) -> tuple[str, str]:
 def changes_section(changes: Changes) -> Section:
     """What would change the advice."""
     nodes = [
-        Node(f"Open: {each.title}, which decides the {each.decides}. {each.ask}", leaf(*(f"waits for it: {name}" for name in each.waiting)))
-        for each in changes.open]  # fmt: skip
+        Node(
+            f"Open: {each.title}, which decides the {each.decides}. {each.ask}",
+            leaf(*(f"waits for it: {name}" for name in each.waiting)),
+        )
+        for each in changes.open
+    ]
     for assumed in changes.assumed:
         rows = f"another answer might change: {', '.join(assumed.rows)}" if assumed.rows else "no row depends on it now"
-        nodes.append(Node(f"Assumed: {assumed.title} = {assumed.value}. {assumed.because}", leaf(rows, f"source: {'; '.join(assumed.sources)}")))
+        nodes.append(
+            Node(
+                f"Assumed: {assumed.title} = {assumed.value}. {assumed.because}",
+                leaf(rows, f"source: {'; '.join(assumed.sources)}"),
+            )
+        )
     nodes += [Node(f"Exactly at its limit: {each}") for each in changes.at_limit]
     for near in changes.near:
         turning = f"these rules turn ({near.limit}): {', '.join(near.rules)}"
         nodes.append(Node(f"{near.title} is {near.value}, {say_apart(near)} {turning}"))
     nodes += [Node(f"Answered, but not asked here and set aside: {each}") for each in changes.set_aside]
-    return Section("changes", "What would change it", (Tree(tuple(nodes)),) if nodes else (Para("Nothing that is known."),))
+    return Section(
+        "changes", "What would change it", (Tree(tuple(nodes)),) if nodes else (Para("Nothing that is known."),)
+    )
 
 
 def sources_section(advice: Advice) -> Section:
@@ -202,4 +223,3 @@ def sources_section(advice: Advice) -> Section:
 
 def _cited(instance: Instance) -> Iterable[Citation]:
     return (*instance.rule.source, *(instance.row.source if instance.row is not None else ()))
-

@@ -1,15 +1,17 @@
 """The findings of an advice as sections: docket, shelf, codes, quantities, change-over, cautions."""
 
 from collections import Counter
+from collections.abc import Iterator
 
 from advisor.advice import Advice
 from advisor.explanation.blocks import GLYPHS, Block, Grid, Node, Para, Section, Tree, leaf
 from advisor.explanation.contrasts import Miss, WhyNot, product
-from advisor.explanation.reasons import Why
+from advisor.explanation.reasons import WAITS, Why
 from advisor.explanation.ruling import Rules
 from advisor.explanation.seeing import hides
 from advisor.explanation.words import SHEET_SILENT, harmless, say_fact, say_source, title_of
-from advisor.explanation.workings import HIDDEN, Working
+from advisor.explanation.workings import HIDDEN, Premise, Working
+from advisor.knowledge import Formed
 from advisor.shelf import Verdict
 
 LONG_SHELF = 80
@@ -36,7 +38,9 @@ def docket_section(whys: list[Why]) -> Section:
     for each in whys:
         rules = dict.fromkeys(reason.rule.rule for reason in each.reasons if reason.decides or reason.level <= 1)
         shown = [*rules][:_SHORT] + ([f"{len(rules) - _SHORT} more"] if len(rules) > _SHORT else [])
-        said = each.conclusion + (f" (waits for: {', '.join(each.waits)})" if each.waits else "")
+        waits = f"waits for: {', '.join(each.waits)}"
+        settled = not each.waits or each.conclusion == WAITS
+        said = (waits if each.conclusion == WAITS else each.conclusion) + ("" if settled else f" ({waits})")
         rows.append((each.title, said, ", ".join(shown)))
     return Section("docket", "Docket", (Grid(("Row", "Recommended, or asked", "Rules"), tuple(rows)),))
 
@@ -51,10 +55,12 @@ def shelf_section(advice: Advice, verdicts: list[WhyNot], rules: Rules) -> Secti
     title = f"Shelf: {advice.knowledge.shelf_title}" if advice.knowledge.shelf_title else "Shelf"
     if not verdicts:
         return Section("shelf", title, (Para("No product was judged."),))
-    alive = [each for each, ranked in zip(verdicts, advice.shelf, strict=False) if ranked.verdict is not Verdict.FALLS_SHORT]
+    alive = [
+        each for each, ranked in zip(verdicts, advice.shelf, strict=False) if ranked.verdict is not Verdict.FALLS_SHORT
+    ]
     shown = alive[:_TOP] or verdicts[:_SHORT]
     blocks: list[Block] = [Grid(("Product", "Verdict", "What it misses"), tuple(_shelf_row(each) for each in shown))]
-    rest = advice.shelf[len(shown):]
+    rest = advice.shelf[len(shown) :]
     if rest:
         blocks.append(Para(f"{len(rest)} more, counted by the first demand that each one misses:"))
         counts = Counter(_main_reason(advice, each.place, rules) for each in rest)
@@ -69,7 +75,11 @@ def _shelf_row(verdict: WhyNot) -> tuple[str, str, str]:
     reasons = list(dict.fromkeys(say_miss(each) for each in deciding))
     more = f"; {len(reasons) - _SHORT} more" if len(reasons) > _SHORT else ""
     said = "; ".join(reasons[:_SHORT]) + more
-    return (f"{verdict.subject} {verdict.title}", f"{GLYPHS[word]} {word}", f"{steps}: {said}" if steps and said else said or steps)
+    return (
+        f"{verdict.subject} {verdict.title}",
+        f"{GLYPHS[word]} {word}",
+        f"{steps}: {said}" if steps and said else said or steps,
+    )
 
 
 def say_miss(miss: Miss) -> str:
@@ -90,13 +100,16 @@ def miss_lines(misses: tuple[Miss, ...]) -> list[str]:
         found.setdefault(each.strength, {}).setdefault(f"{say_miss(each)}{steps}{shared}", []).append(each.rule.id)
     return [
         f"{strength}: " + "; ".join(f"{said} ({', '.join(rules)})" for said, rules in asked.items())
-        for strength, asked in found.items()]  # fmt: skip
+        for strength, asked in found.items()
+    ]
 
 
 def _main_reason(advice: Advice, place: int, rules: Rules) -> str:
     judgement = advice.judgement
     first = judgement.shortfalls(place)[:1] if judgement is not None else []
-    return next((f"{rule.title} ({rule.rule})" for rule in (rules.reason(each.demand.rule) for each in first)), "nothing")
+    return next(
+        (f"{rule.title} ({rule.rule})" for rule in (rules.reason(each.demand.rule) for each in first)), "nothing"
+    )
 
 
 def codes_section(advice: Advice) -> Section:
@@ -104,22 +117,38 @@ def codes_section(advice: Advice) -> Section:
     codes = advice.codes
     lines = [
         f"DIN 51825: {', '.join(codes.din) or f'none, since {codes.din_none}'}",
-        f"ISO 6743-9: {', '.join(codes.iso) or f'none, since {codes.iso_none}'}"]  # fmt: skip
-    after = (Para("These are the lowest codes that suffice; a higher letter serves as well."),) if codes.din or codes.iso else ()
+        f"ISO 6743-9: {', '.join(codes.iso) or f'none, since {codes.iso_none}'}",
+    ]
+    after = (
+        (Para("These are the lowest codes that suffice; a higher letter serves as well."),)
+        if codes.din or codes.iso
+        else ()
+    )
     return Section("codes", "Designations", (Tree(leaf(*lines)), *after))
 
 
-def quantities_section(whys: list[Why]) -> Section:
+def quantities_section(advice: Advice, whys: list[Why]) -> Section:
     """Fill, quantity and interval: figure, formula, how surely its source was read, and its guard."""
     nodes = []
     for each in whys:
         under = [line for premise in each.premises if premise.working for line in working_lines(premise.working)]
+        under += dict.fromkeys(line for premise in each.premises for line in _behind(advice, premise))
         under += [f"{reason.demand}. {reason.rule.because} ({reason.rule.id})" for reason in each.reasons]
         under += each.notes
         if each.waits:
             under.append(f"waits for: {', '.join(each.waits)}")
         nodes.append(Node(f"{each.title}: {each.conclusion}", leaf(*dict.fromkeys(under))))
     return Section("quantities", "Quantities and interval", (Tree(tuple(nodes)),))
+
+
+def _behind(advice: Advice, premise: Premise) -> Iterator[str]:
+    """The formulas of the same step behind a figure."""
+    known = advice.knowledge.computations
+    for each in premise.premises:
+        if each.working is not None and known[each.fact].step == known[premise.fact].step:
+            if isinstance(known[each.fact].how, Formed):
+                yield f"{each.title} = {each.value}: {each.working.equation}; {each.working.substituted}"
+            yield from _behind(advice, each)
 
 
 def working_lines(working: Working) -> list[str]:
@@ -158,13 +187,17 @@ def last_word(advice: Advice) -> Section:
     """Whose word comes before this advice."""
     given = {each.caution for each in advice.cautions}
     texts = [advice.knowledge.cautions[name].text for name in _LAST_WORD if name in given]
-    return Section("last", "Whose word comes first", (
-        Para("This is the advice of rules. The machine maker, local codes and licensed practice come before it."),
-        Tree(leaf(*texts))))  # fmt: skip
+    return Section(
+        "last",
+        "Whose word comes first",
+        (
+            Para("This is the advice of rules. The machine maker, local codes and licensed practice come before it."),
+            Tree(leaf(*texts)),
+        ),
+    )
 
 
 def about(advice: Advice) -> str:
     """One line about the case."""
     kind = harmless(advice.knowledge.point_kind.title)
     return f"{kind}. Knowledge {advice.knowledge.fingerprint}."
-

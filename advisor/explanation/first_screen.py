@@ -63,21 +63,25 @@ def _open(advice: Advice) -> Iterator[Node]:
         titles = [title_of(each.fact, advice.knowledge) for each in deciding]
         yield Node(f"Waiting for: {listed(titles, 'and')}.")
     for name in advice.keeping_open:
-        yield Node(f"{title_of(name, advice.knowledge)} was assumed, and that keeps the case open: {advice.facts[name].note}")
+        yield Node(
+            f"{title_of(name, advice.knowledge)} was assumed, and that keeps the case open: {advice.facts[name].note}"
+        )
 
 
 def caution_section(advice: Advice, changes: Changes) -> Section:
     """Everything that weakens the advice: assumed, guessed, unsourced, exactly at a limit, or close to one."""
     nodes = [
-        Node(f"Assumed: {each.title} is {each.value}. {each.because}", leaf(*_reach(each.rows))) for each in changes.assumed]  # fmt: skip
-    estimates = [
-        title_of(fact.name, advice.knowledge) for fact in advice.facts.values() if fact.note == "an estimate"]  # fmt: skip
+        Node(f"Assumed: {each.title} is {each.value}. {each.because}", leaf(*_reach(each.rows)))
+        for each in changes.assumed
+    ]
+    estimates = [title_of(fact.name, advice.knowledge) for fact in advice.facts.values() if fact.note == "an estimate"]
     if estimates:
         nodes.append(Node(f"Estimated, not measured: {listed(estimates, 'and')}."))
     nodes += [Node(f"Exactly at its limit: {each}.") for each in changes.at_limit]
     nodes += [
         Node(f"Close: {each.title} is {each.value}, {say_apart(each)} {_rules(each.rules)} ({each.limit}).")
-        for each in changes.near[:_SHOWN_NEAR]]  # fmt: skip
+        for each in changes.near[:_SHOWN_NEAR]
+    ]
     nodes += _best_clearance(advice)
     nodes.append(Node(_how_sourced(advice)))
     return Section("weak", "Before you trust this", (Tree(tuple(nodes)),))
@@ -115,7 +119,10 @@ def _best_clearance(advice: Advice) -> Iterator[Node]:
 def _how_sourced(advice: Advice) -> str:
     fired = {each.rule.id: each.rule for _, each, outcome in rules_seen(advice) if outcome is True and each.binds}
     weak = [name for name, rule in fired.items() if not any(cited.checked == "yes" for cited in rule.source)]
-    return f"{len(weak)} of the {len(fired)} rules that fired rest on common practice or memory; no text that states them was read."
+    if not weak:
+        return f"Each of the {len(fired)} rules that fired cites a text that was read."
+    rest = "rest on common practice or memory; no text that states them was read."
+    return f"{len(weak)} of the {len(fired)} rules that fired {rest}"
 
 
 def decisive_section(whys: list[Why]) -> Section:
@@ -133,7 +140,9 @@ def decisive_section(whys: list[Why]) -> Section:
     nodes = tuple(_decisive(head, reason) for _, head, reason in ordered[:MOST_REASONS])
     more = sum(reason.decides for _, _, reason in ordered[MOST_REASONS:])
     rest = (Para(f"{more} more rules that decide stand under Why."),) if more else ()
-    return Section("decisive", "What decides", (Tree(nodes, numbered=True), *rest) if nodes else (Para("Nothing yet."),))
+    return Section(
+        "decisive", "What decides", (Tree(nodes, numbered=True), *rest) if nodes else (Para("Nothing yet."),)
+    )
 
 
 def _decisive(head: str, reason: Reason) -> Node:

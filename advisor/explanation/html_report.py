@@ -20,7 +20,8 @@ def html(advice: Advice) -> str:
 @cache
 def _template() -> jinja2.Template:
     environment = jinja2.Environment(
-        autoescape=True, undefined=jinja2.StrictUndefined, finalize=_finalized, trim_blocks=True, lstrip_blocks=True)  # fmt: skip
+        autoescape=True, undefined=jinja2.StrictUndefined, finalize=_finalized, trim_blocks=True, lstrip_blocks=True
+    )
     environment.tests |= {
         "para": lambda block: isinstance(block, Para),
         "tree": lambda block: isinstance(block, Tree),

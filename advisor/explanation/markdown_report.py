@@ -26,10 +26,10 @@ def markdown(advice: Advice) -> str:
 
 
 def escaped(text: str) -> str:
-    """The text as Markdown that shows exactly it.
+    r"""The text as Markdown that shows exactly it.
 
-    >>> escaped("a|b <b>*c*</b> [d](e) steady_need_c")
-    'a\\\\|b &lt;b&gt;\\\\*c\\\\*&lt;/b&gt; \\\\[d\\\\](e) steady_need_c'
+    >>> print(escaped("a|b <b>*c*</b> [d](e) steady_need_c"))
+    a\|b &lt;b&gt;\*c\*&lt;/b&gt; \[d\](e) steady_need_c
     """
     signs = _SIGNS.sub(lambda found: f"\\{found.group()}", harmless(text))
     signs = "".join(_ENTITIES.get(sign, sign) for sign in signs)

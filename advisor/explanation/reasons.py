@@ -11,10 +11,11 @@ from advisor.explanation.ruling import RuleReason, Rules, why_not_rule
 from advisor.explanation.weighing import Field, field_of
 from advisor.explanation.words import say_condition, say_demand, say_fact, say_test, say_value, title_of
 from advisor.explanation.workings import NotHere, Premise, premise
-from advisor.knowledge import Instance, Sets
+from advisor.knowledge import Sets
 from advisor.shelf import places
 from advisor.specification import Demand
 
+WAITS = "waits for answers"
 WITHHELD = "withheld: see the referral"
 
 
@@ -61,8 +62,15 @@ def why(advice: Advice, row_id: str, rules: Rules | None = None) -> Why:
     field, said = field_of(advice, line), rules if rules is not None else Rules(advice)
     reasons, short = _weighed(advice, field, said) if field is not None else (_plain(advice, line, said), [])
     return Why(
-        row_id, line.title, say_line(advice, line), tuple(reasons), tuple(premise(advice, name) for name in line.facts if not line.skipped),
-        tuple(short), tuple(title_of(each, advice.knowledge) for each in line.waits), _notes(advice, line, said))  # fmt: skip
+        row_id,
+        line.title,
+        say_line(advice, line),
+        tuple(reasons),
+        tuple(premise(advice, name) for name in line.facts if not line.skipped),
+        tuple(short),
+        tuple(title_of(each, advice.knowledge) for each in line.waits),
+        _notes(advice, line, said),
+    )
 
 
 def say_line(advice: Advice, line: Line) -> str:
@@ -74,12 +82,14 @@ def say_line(advice: Advice, line: Line) -> str:
     if row.recommends:
         domain = knowledge.properties[row.recommends].domain
         said = " or ".join(dict.fromkeys(say_value(domain, each) for each in line.values))
-        return said or ("waits for answers" if line.waits else "nothing is left")
+        if line.differs:
+            return f"{said}, in every variant" if said else "differs between the variants"
+        return said or (WAITS if line.waits else "nothing is left")
     if line.facts:
         return _say_facts(advice, line.facts)
     musts = [demand for demand in line.demands if demand.must] or list(line.demands)
     said = "; ".join(dict.fromkeys(_short_demand(demand, advice) for demand in musts))
-    return said or ("waits for answers" if line.waits else "nothing asked")
+    return said or (WAITS if line.waits else "nothing asked")
 
 
 def _short_demand(demand: Demand, advice: Advice) -> str:
@@ -93,7 +103,8 @@ def _say_facts(advice: Advice, names_: tuple[str, ...]) -> str:
     low_high = len(said) == 2 and names_[0].endswith("_lo")
     if low_high:
         return f"{said[0].split(' ')[0]} to {said[1]}"
-    return ", ".join(f"{title_of(name, advice.knowledge)} {each}" for name, each in zip(names_, said, strict=True))
+    rest = [f"{title_of(name, advice.knowledge)} {each}" for name, each in zip(names_[1:], said[1:], strict=True)]
+    return ", ".join([said[0], *rest])
 
 
 def _weighed(advice: Advice, field: Field, rules: Rules) -> tuple[list[Reason], list[str]]:
@@ -138,7 +149,8 @@ def _plain(advice: Advice, line: Line, rules: Rules) -> list[Reason]:
     """The demands of a row that recommends nothing, and the rules that set what it shows."""
     found = [
         Reason(say_demand(demand, advice.knowledge), demand.level, rules.reason(demand.rule), demand.must, ())
-        for demand in line.demands]  # fmt: skip
+        for demand in line.demands
+    ]
     row = next(each for each in advice.knowledge.docket if each.id == line.row)
     for name in (row.recommends, *row.facts):
         found += _setters(advice, name, line, rules)
@@ -155,7 +167,9 @@ def _setters(advice: Advice, name: str, line: Line, rules: Rules) -> Iterator[Re
         for each in instance.then if fired else ():
             if isinstance(each, Sets) and each.name == name and (not shown or each.value in shown):
                 gives_way = counting is not None and instance.id not in counting
-                said = _say_set(advice, each) + (f", which gives way: the {_combined(advice, name)} counts" if gives_way else "")
+                said = _say_set(advice, each) + (
+                    f", which gives way: the {_combined(advice, name)} counts" if gives_way else ""
+                )
                 yield Reason(said, 0, rules.reason(instance.id), decides=not gives_way, against=())
 
 

@@ -7,6 +7,7 @@ from advisor.explanation.blocks import Report, Section
 from advisor.explanation.changes import what_would_change
 from advisor.explanation.reasons import why
 from advisor.explanation.ruling import Rules
+from advisor.explanation.variants import variants_section
 
 
 def report(advice: Advice) -> Report:
@@ -37,11 +38,12 @@ def _complete(advice: Advice) -> list[Section | None]:
     return [
         first_screen.state_section(advice, rules),
         first_screen.caution_section(advice, changes),
+        variants_section(advice),
         first_screen.decisive_section(rows),
         findings.docket_section(rows),
         findings.shelf_section(advice, verdicts, rules),
         findings.codes_section(advice),
-        findings.quantities_section(figures),
+        findings.quantities_section(advice, figures),
         findings.change_over_section(advice),
         findings.cautions_section(advice),
         details.why_section([*rows, *figures]),

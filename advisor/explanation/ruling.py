@@ -56,24 +56,34 @@ def why_not_rule(advice: Advice, rule_id: str) -> RuleVerdict:
 def verdict_of(advice: Advice, step: str, instance: Instance, outcome: bool | None) -> RuleVerdict:
     """The verdict on one rule whose outcome is known."""
     record, knowledge = record_at(advice, step), advice.knowledge
+    saw: tuple[str, ...] = ()
+    waits: tuple[str, ...] = ()
     if outcome is True:
         saw = tuple(_term(advice, term, record) for term in holding(instance.when, record))
-        verdict, waits = "fired", ()
+        verdict = "fired"
     elif outcome is False:
         saw = tuple(_failure(advice, term, record) for term in dict.fromkeys(failures(instance.when, record)))
-        verdict, waits = "failed", ()
+        verdict = "failed"
     else:
         waits = tuple(title_of(name, knowledge) for name in sorted(waits_for(instance.when, record)))
-        verdict, saw = "undecided", ()
+        verdict = "undecided"
     return RuleVerdict(instance.id, instance.rule.title, step, verdict, saw, waits, not instance.binds)
 
 
 def _term(advice: Advice, term: Term, record: Record) -> str:
-    return f"{title_of(term.name, advice.knowledge)}: {HIDDEN}" if hides(advice, term.name) else say_term(term, advice.knowledge, record)
+    return (
+        f"{title_of(term.name, advice.knowledge)}: {HIDDEN}"
+        if hides(advice, term.name)
+        else say_term(term, advice.knowledge, record)
+    )
 
 
 def _failure(advice: Advice, term: Term, record: Record) -> str:
-    return f"{title_of(term.name, advice.knowledge)}: {HIDDEN}" if hides(advice, term.name) else say_failure(term, advice.knowledge, record)
+    return (
+        f"{title_of(term.name, advice.knowledge)}: {HIDDEN}"
+        if hides(advice, term.name)
+        else say_failure(term, advice.knowledge, record)
+    )
 
 
 class Rules:
@@ -103,15 +113,22 @@ class Rules:
         record = record_at(advice, step)
         sources = (*instance.rule.source, *(instance.row.source if instance.row else ()))
         return RuleReason(
-            instance.id, instance.rule.id, instance.rule.title, step,
-            self._fill(instance.rule.because, instance, record), self._fill(instance.rule.limits, instance, record),
+            instance.id,
+            instance.rule.id,
+            instance.rule.title,
+            step,
+            self._fill(instance.rule.because, instance, record),
+            self._fill(instance.rule.limits, instance, record),
             tuple(_term(advice, term, record) for term in holding(instance.when, record)),
             tuple(dict.fromkeys(say_source(each, knowledge) for each in sources)),
-            tuple(self._premise(name, record) for name in _used(instance, advice)))  # fmt: skip
+            tuple(self._premise(name, record) for name in _used(instance, advice)),
+        )
 
     def _fill(self, text: str, instance: Instance, record: Record) -> str:
         hidden = {name: fact for name, fact in self.advice.facts.items() if not hides(self.advice, name)}
-        return fill_in(text, instance, hidden if self.advice.withheld else self.advice.facts, record, self.advice.knowledge)
+        return fill_in(
+            text, instance, hidden if self.advice.withheld else self.advice.facts, record, self.advice.knowledge
+        )
 
     def _premise(self, name: str, record: Record) -> Premise:
         if name not in self._premises:

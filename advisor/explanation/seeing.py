@@ -71,8 +71,11 @@ def recommended_kappa(advice: Advice) -> float | None:
     if own is not None:
         steps[""] = own[1]
     best = min(steps.values(), default=None)
-    found = [_kappa(advice.oils, advice.oils.catalogue.place[code]) for code, each in steps.items()
-             if code and advice.oils is not None and each == best]  # fmt: skip
+    found = [
+        _kappa(advice.oils, advice.oils.catalogue.place[code])
+        for code, each in steps.items()
+        if code and advice.oils is not None and each == best
+    ]
     if own is not None and own[1] == best:
         found.append(_kappa(advice.choices, own[0]))
     return min((each for each in found if each is not None), default=None)
@@ -99,4 +102,3 @@ def recommended_oils(advice: Advice) -> list[int]:
         return []
     best = min(advice.oil_ranks.values())
     return sorted(advice.oils.catalogue.place[code] for code, each in advice.oil_ranks.items() if each == best)
-

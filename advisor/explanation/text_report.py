@@ -52,7 +52,9 @@ def _grid(grid: Grid) -> Iterator[str]:
     rows = [tuple(map(harmless, row)) for row in (grid.heads, *grid.rows)]
     widths = _widths(rows)
     for row in rows:
-        cells = [textwrap.wrap(cell, width, break_on_hyphens=False) or [""] for cell, width in zip(row, widths, strict=True)]
+        cells = [
+            textwrap.wrap(cell, width, break_on_hyphens=False) or [""] for cell, width in zip(row, widths, strict=True)
+        ]
         for place in range(max(map(len, cells))):
             line = [cell[place] if place < len(cell) else "" for cell in cells]
             yield (" " * _GAP).join(part.ljust(width) for part, width in zip(line, widths, strict=True)).rstrip()

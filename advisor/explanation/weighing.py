@@ -92,8 +92,10 @@ def _own_kind(name: str, line: Line, judgement: Judgement) -> int:
     """The choices of the row's property, and the product in use where it was a candidate."""
     own = {each.item for each in line.candidates}
     return sum(
-        1 << place for place, item in enumerate(judgement.catalogue.items)
-        if item.code.startswith(f"{name}=") or item.code in own)  # fmt: skip
+        1 << place
+        for place, item in enumerate(judgement.catalogue.items)
+        if item.code.startswith(f"{name}=") or item.code in own
+    )
 
 
 def misses_of(judgement: Judgement, among: int) -> dict[int, dict[int, int]]:

@@ -155,7 +155,8 @@ def say_failure(term: Term, knowledge: Knowledge, record: Record) -> str:
         return f"needs {title} {wanted}"
     domain, seen = domain_of(term.name, knowledge), record.get(term.name)
     away = margin(term, seen, record)
-    apart = f" ({say_margin(away, domain)} away)" if away is not None else ""
+    counts = away is not None and domain.kind != "yes_no"
+    apart = f" ({say_margin(away or 0.0, domain)} away)" if counts else ""
     return f"needs {title} {wanted}, saw {say_value(domain, seen)}{apart}"
 
 
@@ -218,8 +219,10 @@ def say_steps(steps: Sequence[int]) -> str:
     short = [(level, count) for level, count in enumerate(steps, start=1) if count]
     if not short:
         return "nothing short"
-    words = [f"{count} step{'s' * (count != 1)}{' short' * (place == 0)} at level {level}"
-             for place, (level, count) in enumerate(short)]  # fmt: skip
+    words = [
+        f"{count} step{'s' * (count != 1)}{' short' * (place == 0)} at level {level}"
+        for place, (level, count) in enumerate(short)
+    ]
     return ", ".join(words)
 
 
@@ -256,5 +259,3 @@ def say_source(citation: Citation, knowledge: Knowledge) -> str:
     sure = HOW_SURE.get(citation.checked, citation.checked)
     where = f", {citation.where}" if citation.where else ""
     return f"{title}{where}" + ("" if sure in title else f" ({sure})")
-
-

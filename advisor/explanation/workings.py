@@ -69,8 +69,7 @@ def how_computed(advice: Advice, fact: str) -> Working:
     computation = advice.knowledge.computations.get(fact)
     if computation is None or fact not in advice.facts:
         raise NotHere(f"'{fact}' was not computed in this case.")
-    working = _formed(advice, computation) if isinstance(computation.how, Formed) else _looked_up(advice, computation)
-    return working
+    return _formed(advice, computation) if isinstance(computation.how, Formed) else _looked_up(advice, computation)
 
 
 def _formed(advice: Advice, computation: Computation) -> Working:
@@ -87,8 +86,15 @@ def _formed(advice: Advice, computation: Computation) -> Working:
         symbols.append(_symbol(advice, each.symbol, each.unit, each.text, bound))
     result = say_fact(advice.facts[computation.fact], advice.knowledge)
     return Working(
-        computation.fact, computation.title, formula.equation, put_in(formula, numbers), tuple(symbols), result,
-        _sources(advice, computation.source, formula), formula.outside(numbers))  # fmt: skip
+        computation.fact,
+        computation.title,
+        formula.equation,
+        put_in(formula, numbers),
+        tuple(symbols),
+        result,
+        _sources(advice, computation.source, formula),
+        formula.outside(numbers),
+    )
 
 
 def _symbol(advice: Advice, symbol: str, unit: str, text: str, bound: str | float) -> Symbol:
@@ -131,9 +137,15 @@ def _looked_up(advice: Advice, computation: Computation) -> Working:
     which = f"row{'s' * (len(rows) != 1)} {', '.join(row.id for row in rows)}" if rows else _no_row(how, table)
     cited = computation.source + (tuple(each for row in rows for each in row.source) or table.source)
     return Working(
-        computation.fact, computation.title, f"table '{table.title}', column {how.column.replace('_', ' ')}{pick}",
-        f"{by}: {which}", symbols, say_fact(advice.facts[computation.fact], knowledge),
-        _sources(advice, cited, None), ())  # fmt: skip
+        computation.fact,
+        computation.title,
+        f"table '{table.title}', column {how.column.replace('_', ' ')}{pick}",
+        f"{by}: {which}",
+        symbols,
+        say_fact(advice.facts[computation.fact], knowledge),
+        _sources(advice, cited, None),
+        (),
+    )
 
 
 def _no_row(how: LookedUp, table: Table) -> str:
@@ -141,7 +153,11 @@ def _no_row(how: LookedUp, table: Table) -> str:
         return "the entry where they meet"
     if how.otherwise is None:
         return "no row"
-    return f"no row, so {how.otherwise:g} is taken" if isinstance(how.otherwise, float) else f"no row, so {how.otherwise} is taken"
+    return (
+        f"no row, so {how.otherwise:g} is taken"
+        if isinstance(how.otherwise, float)
+        else f"no row, so {how.otherwise} is taken"
+    )
 
 
 def rows_met(how: LookedUp, table: Table, facts: Mapping[str, Fact]) -> tuple[Row, ...]:
@@ -171,10 +187,15 @@ def premise(advice: Advice, name: str, record: Record | None = None) -> Premise:
     computation = advice.knowledge.computations.get(name)
     concluded = fact.origin is Origin.CONCLUDED
     return Premise(
-        name, title, say_fact(fact, advice.knowledge), fact.origin, "" if concluded else fact.note,
+        name,
+        title,
+        say_fact(fact, advice.knowledge),
+        fact.origin,
+        "" if concluded else fact.note,
         how_computed(advice, name) if computation else None,
         tuple(each for each in fact.note.split(", ") if each) if concluded else (),
-        tuple(premise(advice, each) for each in reads(computation)) if computation else ())  # fmt: skip
+        tuple(premise(advice, each) for each in reads(computation)) if computation else (),
+    )
 
 
 def reads(computation: Computation) -> tuple[str, ...]:

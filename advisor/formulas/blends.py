@@ -17,7 +17,7 @@ def blend(viscosities: Sequence[float], shares: Sequence[float]) -> float:
     Equation: W = Σ xᵢ·Wᵢ, W = ln ln Z. Range: shares that add up to 1. Source: basis of ASTM D7152.
 
     >>> round(blend([32, 68, 150], [0.5, 0.3, 0.2]), 1)
-    53.1
+    52.5
     """
     if len(viscosities) != len(shares) or not viscosities:
         raise OutOfRange(f"A blend needs one share for each oil, but has {len(viscosities)} oils, {len(shares)} shares.")

@@ -3,6 +3,7 @@
 from collections.abc import Iterator
 from collections.abc import Mapping as Map
 from dataclasses import dataclass
+from itertools import pairwise
 
 from advisor.conditions import FactRef
 from advisor.conditions.terms import names
@@ -27,10 +28,7 @@ def in_order(computations: Map[str, Computation], trees: Map[str, Mapping], scop
         if name in done or name not in computations:
             return
         if name in above:
-            circle = " -> ".join((*above[above.index(name) :], name))
-            mark = place_of(name, trees[above[-1]])
-            message = f"these computations need one another: {circle}"
-            scope.over({}, "computations", f"'{above[-1]}'").problem(mark, message, "break the circle")
+            _tell_circle((*above[above.index(name) :], name), trees, list(computations), scope)
             return
         for needed in inputs_of(computations[name].how):
             place(needed, (*above, name))
@@ -39,6 +37,15 @@ def in_order(computations: Map[str, Computation], trees: Map[str, Mapping], scop
     for name in computations:
         place(name, ())
     return done
+
+
+def _tell_circle(circle: tuple[str, ...], trees: Map[str, Mapping], order: list[str], scope: Scope) -> None:
+    """Tell a circle where a computation reads one that stands below it."""
+    reader, read = next(
+        (pair for pair in pairwise(circle) if order.index(pair[0]) < order.index(pair[1])), (circle[0], circle[1])
+    )
+    message = f"these computations need one another: {' -> '.join(circle)}"
+    scope.over({}, "computations", f"'{reader}'").problem(place_of(read, trees[reader]), message, "break the circle")
 
 
 def place_of(name: str, node: Node) -> Mark:

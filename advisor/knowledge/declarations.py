@@ -99,12 +99,15 @@ class FactReader:
                 f"this one has {' and '.join(kinds) or 'none'}",
             )
         self.citations.read(shape.source, tree, scope)
+        question = self._question(shape, tree, scope)
+        if scope.lost.has("names", name):
+            return Declaration(name, shape.title, domain, mark, question)
         return Declaration(
             name,
             shape.title,
             domain,
             mark,
-            question=self._question(shape, tree, scope),
+            question,
             assume=self._assumption(shape.assume, tree.get("assume"), domain, scope.at("assume")),
             unasked=self._unasked(shape, tree, domain, asked, scope.at("unasked")),
             concluded=concluded(shape.concluded, tree.get("concluded"), domain, scope.at("concluded")),
@@ -201,6 +204,7 @@ def read_properties(
         shape, tree, domain = placed.shape, placed.tree, bindings.properties[name]
         scope = ground.over(bindings.properties, "properties", name, what="property")
         citations.read(shape.source, tree, scope)
+        sound = not scope.lost.has("names", name)
         found[name] = Property(
             name,
             shape.title,
@@ -209,8 +213,8 @@ def read_properties(
             shape.of or "",
             shape.test,
             shape.hidden,
-            bindings.of_property(shape, tree, domain, scope),
-            concluded(shape.concluded, tree.get("concluded"), domain, scope.at("concluded")),
+            bindings.of_property(shape, tree, domain, scope) if sound else None,
+            concluded(shape.concluded, tree.get("concluded"), domain, scope.at("concluded")) if sound else None,
             _same_item(shape, tree, bindings.facts, scope.at("same")),
         )
     return found

@@ -137,7 +137,8 @@ class _Loader:
         """Everything resolved and cross-checked; nothing where a whole file is missing."""
         folder, steps, small = self.folder, self.folder.kept("steps.yaml", StepsFile), self._small_files()
         rules, instances = self._rules()
-        products = read_products(folder.shelf[1] if folder.shelf else None, self.properties, self.ground)
+        shelf = folder.shelf[1] if folder.shelf else None
+        products = read_products(shelf, self._stored(), self.properties, self.ground)
         if small is None or steps is None or folder.shelf is None or self.point_kind not in folder.kinds:
             return None
         cautions, docket, oils, designations = small
@@ -162,6 +163,14 @@ class _Loader:
         trees = {placed.shape.id: placed.tree for placed in reversed(folder.rules)}
         CrossChecks(knowledge, trees, self._computation_trees(), self.ground).check()
         return knowledge
+
+    def _stored(self) -> dict[str, Domain]:
+        """The properties that a sheet states, going by their declarations."""
+        return {
+            name: self.bindings.properties[name]
+            for name, placed in self.folder.properties.items()
+            if not {"formula", "looked_up", "worst_of", "concluded"} & set(placed.tree)
+        }
 
     def _small_files(self) -> tuple[Cautions, tuple[DocketRow, ...], UsualOils, Mapping] | None:
         """What the small files say; nothing where one of them could not be read."""

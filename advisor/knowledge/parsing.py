@@ -59,7 +59,7 @@ def _entry(parent: Mapping, name: str, test: Node, scope: Scope) -> Condition:
         return _all([lambda each=each: condition(each, scope) for each in test], Either)  # type: ignore[misc]
     domain = scope.domain(name, parent.key_marks[name])
     if domain.kind == "text":
-        raise scope.fault(test, f"'{name}' is text, and no condition can be put on text")
+        raise scope.fault(test, f"'{name}' is text, and no condition can be put on text", "use another name")
     return _test(name, test, domain, scope)
 
 
@@ -75,7 +75,7 @@ def _test(name: str, test: Node, domain: Domain, scope: Scope) -> Condition:
                 nearest(key, _OPERATORS).strip() or "known: " + ", ".join(_OPERATORS[:6]),
             )
         if unknown or not test:
-            raise Mistyped if unknown else scope.fault(test, "a test is missing here")
+            raise Mistyped if unknown else scope.fault(test, "a test is missing here", "{at_least: 1}")
         return _all(
             [
                 lambda op=op, operand=operand: _operation(name, op, operand, domain, scope)  # type: ignore[misc]
@@ -134,10 +134,10 @@ def operand(node: Node, domain: Domain, scope: Scope) -> Coded | FactRef:
     """A constant, `{fact: x}` or `{row: column}`, coded for the domain."""
     if isinstance(node, Mapping):
         if len(node) != 1 or not {"fact", "row"} & set(node):
-            raise scope.fault(node, "a value, {fact: x} or {row: column} is expected here")
+            raise scope.fault(node, "a value, {fact: x} or {row: column} is expected here", "write one of them")
         kind, name = next(iter(node.items()))
         if not isinstance(name, Scalar):
-            raise scope.fault(name, "a name is expected here")
+            raise scope.fault(name, "a name is expected here", "{fact: t_eff_c}")
         return _fact(name, domain, scope) if kind == "fact" else domain.code(_cell(name, domain, scope))
     return domain.code(value(node, domain, scope))
 
@@ -168,9 +168,8 @@ def _cell(node: Scalar, domain: Domain, scope: Scope) -> Value:
     if scope.table is None or scope.row is None:
         raise scope.fault(node, "{row: ...} needs 'each_row_of'", "name the table with each_row_of")
     if name not in scope.table.columns:
-        raise scope.fault(
-            node, f"'{name}' is no column of table {scope.table.id}", nearest(name, scope.table.columns).strip()
-        )
+        hint = nearest(name, scope.table.columns).strip() or f"it has {', '.join(scope.table.columns)}"
+        raise scope.fault(node, f"'{name}' is no column of table {scope.table.id}", hint)
     column = scope.table.columns[name]
     if domain.kind == "number" and (column.kind != "number" or column.unit != domain.unit):
         raise scope.fault(
@@ -182,11 +181,10 @@ def _cell(node: Scalar, domain: Domain, scope: Scope) -> Value:
     if cell is None:
         raise Blank
     if isinstance(cell, Band):
-        raise scope.fault(node, f"column '{name}' holds bands, not values")
+        raise scope.fault(node, f"column '{name}' holds bands, not values", "name another column")
     if domain.kind != "number" and not domain.accepts(cell):
         if any(problem.mark == node.mark for problem in scope.problems):
             raise Mistyped
-        raise scope.fault(
-            node, f"'{cell}' in row '{scope.row.id}' (line {scope.row.mark.line}) is not one of the choices here"
-        )
+        message = f"'{cell}' in row '{scope.row.id}' (line {scope.row.mark.line}) is not one of the choices here"
+        raise scope.fault(node, message, nearest(str(cell), domain.choices).strip() or "check both declarations")
     return cell

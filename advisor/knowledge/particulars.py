@@ -55,7 +55,7 @@ class Particulars:
         for name in shape.change_over:
             if choices is not None and name not in choices and not scope.lost.has("names", "change_over"):
                 message = f"'{name}' is no choice of the property change_over"
-                scope.unknown(parent.key_marks[name], "names", name, message, choices)
+                scope.unknown(parent.key_marks[name], "names", name, message, choices, "rename it")
         return {
             name: Procedure(
                 name,
@@ -146,7 +146,9 @@ class Particulars:
         for key in keys:
             if key in node and str(node[key]) not in table.columns:
                 message = f"'{node[key]}' is no column of table {table.id}"
-                scope.unknown(node[key].mark, "tables", table.id, message, table.columns)
+                scope.unknown(
+                    node[key].mark, "tables", table.id, message, table.columns, f"it has {', '.join(table.columns)}"
+                )
 
     def _known(self, node: Node, names: Map[str, Domain], what: str, scope: Scope) -> bool:
         if str(node) in names and not scope.lost.has("names", str(node)):

@@ -4,7 +4,7 @@ from collections.abc import Mapping as Map
 from contextlib import suppress
 from dataclasses import replace
 
-from advisor.conditions import Value
+from advisor.conditions import Domain, Value
 from advisor.documents import Mapping, Scalar
 from advisor.knowledge.model import Product, Property
 from advisor.knowledge.reading import list_in
@@ -19,10 +19,11 @@ def items_of(shelf: Mapping | None) -> dict[str, str]:
     return {str(node["item"]): f"{node['item']} {node.get('title', '')}".strip() for node in nodes}
 
 
-def read_products(shelf: Mapping | None, properties: Map[str, Property], ground: Scope) -> tuple[Product, ...]:
-    """Every product of a shelf."""
-    stored = {name: each.domain for name, each in properties.items() if each.stored}
-    derived = {name: "it is computed or looked up, not stated" for name in properties if name not in stored}
+def read_products(
+    shelf: Mapping | None, stored: Map[str, Domain], properties: Map[str, Property], ground: Scope
+) -> tuple[Product, ...]:
+    """Every product of a shelf; its sheet states the stored properties."""
+    derived = dict.fromkeys(set(properties) - set(stored), "it is computed or looked up, not stated")
     scope = replace(ground.over(stored, what="property stored on a sheet"), hints=derived)
     found: dict[str, Product] = {}
     for node in list_in(shelf, "products"):

@@ -245,10 +245,11 @@ class RuleReader:
             )
         if always:
             return
-        if "silent" not in tree or "fires" not in tree:
-            scope.problem(
-                tree.mark, "a rule with a condition needs two examples", "add 'fires:' and 'silent:' with facts"
-            )
+        lacking = [key for key in ("fires", "silent") if key not in tree]
+        if lacking:
+            beside = next((tree.key_marks[key] for key in ("fires", "silent") if key in tree), tree.mark)
+            hint = " and ".join(f"'{key}:'" for key in lacking)
+            scope.problem(beside, "a rule with a condition needs two examples", f"add {hint} with facts")
             return
         for key, facts, wanted in (("fires", rule.fires, True), ("silent", rule.silent, False)):
             record = {name: self.names.facts[name].code(each) for name, each in facts.items()}

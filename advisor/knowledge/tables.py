@@ -4,7 +4,7 @@ from collections.abc import Mapping as Map
 from contextlib import suppress
 
 from advisor.conditions import Domain, Value
-from advisor.documents import Mapping, Node, Scalar, Sequence, nearest
+from advisor.documents import Mapping, Mark, Node, Scalar, Sequence, nearest
 from advisor.knowledge.citations import Citations
 from advisor.knowledge.folder import Placed
 from advisor.knowledge.matrix import Unusable, read_matrix
@@ -128,6 +128,7 @@ def _table(
         scope.problem(tree.key_marks["rows"], "rows are a list of mappings", "- {column: value, ...}")
     if len(scope.problems) > before or any(each not in labels for each in _borrowed(tree)):
         raise Unusable
+    _undeclared(tree, columns, scope)
     source = citations.read(shape.source, tree, scope)
     rows = tuple(_rows(tree, columns, frozenset(bands), key, citations, scope))
     return Table(name, shape.title, columns, frozenset(bands), rows, key, shape.policy or "unique", tree.mark, source)
@@ -185,18 +186,28 @@ def _rows(
 def _cells(node: Mapping, columns: Map[str, Domain], bands: frozenset[str], scope: Scope) -> dict[str, Value | Band]:
     cells: dict[str, Value | Band] = {}
     for name, child in node.items():
-        if name in _ROW_EXTRAS:
-            continue
-        if name not in columns:
-            scope.problem(
-                node.key_marks[name],
-                f"'{name}' is no column of this table",
-                nearest(name, columns).strip() or "declare it under 'columns:'",
-            )
-            continue
-        with suppress(Mistyped):
-            cells[name] = cell(child, columns[name], scope, band=name in bands)
+        if name in columns:
+            with suppress(Mistyped):
+                cells[name] = cell(child, columns[name], scope, band=name in bands)
     return cells
+
+
+def _undeclared(tree: Mapping, columns: Map[str, Domain], scope: Scope) -> None:
+    """Tell the cells that stand in no column; where several rows have them, it is the column that is missing."""
+    found: dict[str, list[Mark]] = {}
+    for node in list_in(tree, "rows"):
+        for name in node if isinstance(node, Mapping) else ():
+            if name not in columns and name not in _ROW_EXTRAS:
+                found.setdefault(name, []).append(node.key_marks[name])
+    for name, marks in found.items():
+        near = nearest(name, columns).strip()
+        if len(marks) == 1:
+            scope.problem(marks[0], f"'{name}' is no column of this table", near or "declare it under 'columns:'")
+        else:
+            message = f"'{name}' is declared nowhere, and {len(marks)} rows have it, the first in line {marks[0].line}"
+            scope.problem(mapping_in(tree, "columns").mark, message, near or f"add '{name}: {{kind: ...}}'")
+    if any(len(marks) > 1 for marks in found.values()):
+        raise Unusable
 
 
 def _row_id(cells: Map[str, Value | Band], columns: Map[str, Domain], place: int) -> str:

@@ -75,7 +75,7 @@ def value(node: Node, domain: Domain, scope: Scope) -> Value:
     if domain.kind == "several":
         return _ticks(node, domain, scope)
     if not isinstance(node, Scalar):
-        raise scope.fault(node, "one value is expected here, not a list or a mapping")
+        raise scope.fault(node, "one value is expected here, not a list or a mapping", "write the value alone")
     if domain.kind == "number":
         return _number(node, domain, scope)
     text = str(node)
@@ -130,5 +130,5 @@ def cell(node: Node, domain: Domain, scope: Scope, *, band: bool) -> Cell:
     low = value(node["from"], domain, scope) if "from" in node else float("-inf")
     high = value(node["below"], domain, scope) if "below" in node else float("inf")
     if not low < high:  # type: ignore[operator]  # both are numbers by the domain
-        raise scope.fault(node, "the band is empty: 'from' is not below 'below'")
+        raise scope.fault(node, "the band is empty: 'from' is not below 'below'", "exchange them")
     return Band(low, high)  # type: ignore[arg-type]  # both are numbers by the domain

@@ -23,7 +23,7 @@ from advisor.screens.tick_list import TickList
 if TYPE_CHECKING:
     from advisor.conditions import Value
 
-_MANY = 20
+_MANY, _NAMED = 20, 4
 _MARGIN = 8
 _LEAST_WIDTH = 30
 
@@ -64,9 +64,14 @@ class QuestionPanel(Vertical):
         self.query_one("#ask", Row).show(Content.assemble((f"{number:>3}  ", "$accent"), (words(question.question.ask), "bold")))
         enough = "All that decides the lubricant is known; F8 stops here. " if session.only_quantities_left else ""
         self.query_one("#help", Row).show(Content.assemble(enough, (words(question.question.help), "$quiet")))
-        settles = ", ".join(session.helps_settle())
-        text = Content.assemble(("This answer helps to settle: ", "$quiet"), words(settles)) if settles else Content("")
-        self.query_one("#helps", Row).show(text)
+        self.query_one("#helps", Row).show(self._helps())
+
+    def _helps(self) -> Content:
+        rows = self.session.helps_settle()
+        if not rows:
+            return Content("")
+        more = f" and {len(rows) - _NAMED} more rows" if len(rows) > _NAMED else ""
+        return Content.assemble(("helps to settle: ", "$quiet"), self.glyphs.words(", ".join(rows[:_NAMED])), (more, "$quiet"))
 
     def _editor(self, question: Declaration, given: Answer | None, width: int) -> Widget:
         domain, unknown = question.domain, _unknown(question)

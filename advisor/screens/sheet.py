@@ -30,7 +30,7 @@ from advisor.screens.upcoming import Upcoming
 from advisor.screens.why import WhyTree
 
 VIEWS = ("docket", "why", "chart", "map")
-_TALL, _WIDE, _FEW, _MANY = 34, 100, 1, 5
+_TALL, _WIDE, _FEW, _MANY = 34, 100, 1, 4
 _LEFT_SHARE = 0.46
 
 
@@ -116,8 +116,8 @@ class Sheet(Screen[None]):
 
     def _to_the_question(self) -> None:
         if self.is_mounted:
-            self.query_one("#left").scroll_end(animate=False, immediate=True)
-            self.query_one(QuestionPanel).scroll_visible(animate=False, immediate=True)
+            for each in ("#question", "#ask, #outcome"):
+                self.query(each).first().scroll_visible(animate=False, immediate=True)
 
     async def on_resize(self) -> None:
         """Lay out anew; what was typed stays where the question need not be rebuilt."""

@@ -28,7 +28,7 @@ class Upcoming(Row):
         ahead = [*later, *(name for name in session.open if name != here)]
         self.names = ahead[:most]
         lines = [self._line(name) for name in self.names]
-        if len(ahead) > most:
+        if len(ahead) > most > 1:
             lines.append(Content.assemble((f"      and {len(ahead) - most} more", "$quiet")))
         self.display = bool(lines) and session.question is not None
         self.show(Content("\n").join(lines))

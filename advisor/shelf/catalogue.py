@@ -129,9 +129,12 @@ class Catalogue:
             return Column([None] * len(self.items), waiting=True)
         if isinstance(how, Formed):
             return Column(self._formed(how, columns, facts))
-        if isinstance(how, LookedUp):
-            return Column(self._looked_up(how, prop, columns, facts))
-        return Column(self._worst_of(how, prop, columns, facts))
+        parts = (how,) if isinstance(how, LookedUp) else how.parts
+        found = self._looked_up(parts, prop, columns, facts)
+        place = self.place.get(str(facts[prop.same_item].value)) if prop.same_item else None
+        if place is not None:
+            found[place] = prop.domain.code("same")
+        return Column(found)
 
     def _formed(self, how: Formed, columns: Mapping[str, Column], facts: Mapping[str, Fact]) -> list[Coded | None]:
         function = FORMULAS[how.formula].function
@@ -159,23 +162,28 @@ class Catalogue:
         return found
 
     def _looked_up(
-        self, how: LookedUp, prop: Property, columns: Mapping[str, Column], facts: Mapping[str, Fact]
+        self, parts: Sequence[LookedUp], prop: Property, columns: Mapping[str, Column], facts: Mapping[str, Fact]
     ) -> list[Coded | None]:
-        properties = [name for _, name in how.by if name in self.knowledge.properties]
-        parts = [columns[name].values if name in columns else [None] * len(self.items) for name in properties]
+        """The worst of some look-ups, by the parts that an item has; looked up once per combination of values."""
+        names = list(dict.fromkeys(name for part in parts for _, name in part.by if name in self.knowledge.properties))
+        values = [columns[name].values if name in columns else [None] * len(self.items) for name in names]
         known: dict[tuple[Coded | None, ...], Coded | None] = {}
         found: list[Coded | None] = []
-        for row in zip(*parts, strict=True) if parts else ((),) * len(self.items):
+        for row in zip(*values, strict=True) if values else ((),) * len(self.items):
             if row not in known:
-                known[row] = (
-                    None if None in row else self._look(how, prop, dict(zip(properties, row, strict=True)), facts)
-                )
+                has = dict(zip(names, row, strict=True))
+                worst = [each for part in parts if (each := self._look(part, prop, has, facts)) is not None]
+                known[row] = max(worst) if len(worst) > 1 else worst[0] if worst else None
             found.append(known[row])
         return found
 
     def _look(
         self, how: LookedUp, prop: Property, row: Mapping[str, Coded | None], facts: Mapping[str, Fact]
     ) -> Coded | None:
+        """What one look-up gives; nothing where the item lacks a property that it needs."""
+        if any(name in row and row[name] is None for _, name in how.by):
+            return None
+
         def get(name: str) -> Value | None:
             if name in row:
                 coded = row[name]
@@ -184,20 +192,6 @@ class Catalogue:
 
         outcome = looked_up(how, get, self.knowledge.tables)
         return None if outcome.value is None else prop.domain.code(outcome.value)
-
-    def _worst_of(
-        self, how: WorstOf, prop: Property, columns: Mapping[str, Column], facts: Mapping[str, Fact]
-    ) -> list[Coded | None]:
-        parts = [self._looked_up(part, prop, columns, facts) for part in how.parts]
-        found: list[Coded | None] = []
-        for row in zip(*parts, strict=True):
-            known = [value for value in row if value is not None]
-            found.append(max(known) if known else None)
-        if prop.same_item:
-            place = self.place.get(str(facts[prop.same_item].value))
-            if place is not None:
-                found[place] = prop.domain.code("same")
-        return found
 
 
 def all_reads(names: frozenset[str], properties: Mapping[str, Property]) -> frozenset[str]:

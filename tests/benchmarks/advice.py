@@ -1,0 +1,67 @@
+"""How long one advice takes with 300 different products on the shelf, as an object and as JSON.
+
+Run by hand: python -m tests.benchmarks.advice
+"""
+
+import random
+import statistics
+import time
+from collections.abc import Callable
+from dataclasses import replace
+from pathlib import Path
+
+from advisor.advice import Advisor
+from advisor.answers import read_case
+from advisor.conditions import Value
+from advisor.documents import Problems
+from advisor.explanation import as_json
+from advisor.knowledge import Knowledge, load
+
+ROOT = Path(__file__).resolve().parent.parent.parent
+ROUNDS = 60
+CASES = ("hot_wet_roller_table", "motor_keeps_its_polyurea", "vibrating_screen", "unlabelled_brown_grease")
+
+
+def generated(knowledge: Knowledge, count: int, seed: int) -> Knowledge:
+    """The knowledge with a shelf of products no two of which are alike."""
+    draw = random.Random(seed)
+    products = []
+    for number in range(count):
+        model = draw.choice(knowledge.shelf)
+        values: dict[str, Value] = {}
+        for name, value in model.values.items():
+            measure = isinstance(value, float) and not knowledge.properties[name].domain.places
+            values[name] = round(value * draw.uniform(0.97, 1.03), 3) if measure and isinstance(value, float) else value
+        products.append(replace(model, item=f"GX-{number:03}", values=values))
+    return replace(knowledge, shelf=tuple(products))
+
+
+def median_ms(work: Callable[[], object]) -> float:
+    """The median CPU time of some rounds: other work on the machine counts little."""
+    work()
+    times = []
+    for _ in range(ROUNDS):
+        start = time.process_time()
+        work()
+        times.append(time.process_time() - start)
+    return statistics.median(times) * 1000
+
+
+def main() -> None:
+    """Print the medians, case by case."""
+    knowledge = generated(load(ROOT / "knowledge"), 300, seed=1)
+    advisor = Advisor(knowledge)
+    print(f"{'case':<28} {'object ms':>10} {'JSON ms':>9} {'JSON kB':>9}   300 different products, median of {ROUNDS}")
+    for name in CASES:
+        saved = read_case(ROOT / "scenarios" / "rolling_bearing" / f"{name}.yaml", knowledge, Problems())
+        if saved is None:
+            print(f"{name:<28} names a product that the generated shelf does not have")
+            continue
+        case = saved.case
+        advice = advisor.advise(case)
+        text = as_json(advice)
+        print(f"{name:<28} {median_ms(lambda c=case: advisor.advise(c)):>10.2f} {median_ms(lambda a=advice: as_json(a)):>9.2f} {len(text.encode()) / 1000:>9.0f}")
+
+
+if __name__ == "__main__":
+    main()
