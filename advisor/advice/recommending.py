@@ -9,7 +9,7 @@ from advisor.case import Fact
 from advisor.conditions import Value
 from advisor.knowledge import DocketRow, Knowledge
 from advisor.shelf import Catalogue, Judgement, Raise, judge, places
-from advisor.specification import Conflict, Demand, Specification, smallest_cover
+from advisor.specification import Conflict, Demand, Specification, mentions, smallest_cover
 
 Steps = tuple[int, int, int, int]
 
@@ -263,15 +263,16 @@ class Recommender:
             candidates,
             about,
             (),
-            waiting.for_properties(self._looked_at(row)),
+            waiting.for_properties(self._looked_at(row, judgement)),
             barred=barred,
         )
 
-    def _looked_at(self, row: DocketRow) -> frozenset[str]:
-        """The properties on which this row's candidates are judged."""
-        if row.recommends in {"vg", self.knowledge.usual_oils.family}:
-            return self.oils.names_with(row.recommends)
-        return self.choices.names_with(row.recommends)
+    def _looked_at(self, row: DocketRow, judgement: Judgement) -> frozenset[str]:
+        """The properties on which this row's candidates are judged, and those that say which demands apply."""
+        of_oils = row.recommends in {"vg", self.knowledge.usual_oils.family}
+        own = (self.oils if of_oils else self.choices).names_with(row.recommends)
+        deciding = (mentions(demand.for_) for demand in judgement.demands if demand.property in own)
+        return own.union(*deciding)
 
     def _change_over(self, found: Recommendation, waiting: Waiting) -> None:
         """Rows on a concluded property: its value over the recommended thickeners and base oils."""

@@ -4,7 +4,7 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from enum import StrEnum
 
-from advisor.conditions import Bound, Coded, Condition, Domain, Either, Every, Member, Stated, Ticked
+from advisor.conditions import Bound, Coded, Condition, Domain, Either, Every, Member, Stated, Ticked, leaves
 from advisor.conditions.terms import SIGNS
 from advisor.shelf.catalogue import Catalogue
 from advisor.shelf.columns import Column, judge, places
@@ -58,6 +58,8 @@ class Judgement:
                 self.misses_strong |= failing | missing
 
     def _judge(self, demand: Demand, everything: int, *, missing_counts: bool) -> tuple[int, int]:
+        if self._waits(demand.for_):
+            return 0, 0
         _, not_for = judge(demand.for_, self.columns, everything)
         applies = everything & ~not_for
         if demand.void:
@@ -67,6 +69,11 @@ class Judgement:
             return 0, 0
         holding, failing = judge(demand.test, self.columns, everything)
         return applies & failing, applies & ~(holding | failing) if missing_counts else 0
+
+    def _waits(self, condition: Condition) -> bool:
+        """Whether a `for` speaks of a property that is not known for any item until questions are answered."""
+        columns = (self.columns.get(term.name) for term in leaves(condition))
+        return any(column is not None and column.waiting for column in columns)
 
     @property
     def passing(self) -> int:
