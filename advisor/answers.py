@@ -6,7 +6,7 @@ from pathlib import Path
 
 from advisor.case import Answer, Case
 from advisor.conditions import Value
-from advisor.documents import Mapping, Node, Problem, Problems, Scalar, Sequence, nearest, read_document
+from advisor.documents import Mapping, Mark, Node, Problem, Problems, Scalar, Sequence, nearest, read_document
 from advisor.knowledge import Declaration, Knowledge
 from advisor.quantities import Unreadable, parse, show
 
@@ -132,23 +132,8 @@ def read_case(path: Path, knowledge: Knowledge, problems: Problems, _above: tupl
         _fault(problems, tree, (), "a saved case is a mapping", "format: 1, answers: {...}")
         return None
     before = len(problems)
-    for key in tree:
-        if key not in _KEYS:
-            _fault(
-                problems, tree.key_marks[key], (), f"'{key}' is not known in a saved case", nearest(key, _KEYS).strip()
-            )
-    if str(tree.get("format", "")) != "1":
-        _fault(problems, tree.get("format", tree), (), "the format of the case is missing or unknown", "format: 1")
-    kind = str(tree.get("point_kind", ""))
+    _head(tree, knowledge, problems)
     base = _base(path, tree, knowledge, problems, _above)
-    if kind != knowledge.point_kind.id and not (base and not kind):
-        _fault(
-            problems,
-            tree.get("point_kind", tree),
-            (),
-            f"'{kind}' is no kind of point here",
-            f"point_kind: {knowledge.point_kind.id}",
-        )
     answers = dict(base.case.answers) if base else {}
     taken = _read_answers(tree.get("answers"), answers, knowledge, problems)
     only = _only(tree.get("shelf"), knowledge, problems)
@@ -160,6 +145,22 @@ def read_case(path: Path, knowledge: Knowledge, problems: Problems, _above: tupl
     ordered = {name: answers[name] for name in knowledge.facts if name in answers}
     case = Case(knowledge.point_kind.id, str(tree.get("title", path.stem)), ordered)
     return Saved(path, case, gaps == DONT_KNOW, only, tree, frozenset(taken))
+
+
+def _head(tree: Mapping, knowledge: Knowledge, problems: Problems) -> None:
+    """Tell what is wrong with the keys, the format, the title and the kind of point."""
+    for key in tree:
+        if key not in _KEYS:
+            hint = nearest(key, _KEYS).strip() or f"known here: {', '.join(_KEYS)}"
+            _fault(problems, tree.key_marks[key], (), f"'{key}' is not known in a saved case", hint)
+    if str(tree.get("format", "")) != "1":
+        _fault(problems, tree.get("format", tree), (), "the format of the case is missing or unknown", "format: 1")
+    if not isinstance(tree.get("title", Scalar("")), Scalar):
+        _fault(problems, tree["title"], ("title",), "the title is text", "title: Pump motor, drive end")
+    kind, wanted = str(tree.get("point_kind", "")), knowledge.point_kind.id
+    if kind != wanted and (kind or "like" not in tree):
+        message = f"'{kind}' is no kind of point here" if kind else "the kind of point is missing"
+        _fault(problems, tree.get("point_kind", tree), (), message, f"point_kind: {wanted}")
 
 
 def _base(path: Path, tree: Mapping, knowledge: Knowledge, problems: Problems, above: tuple[Path, ...]) -> Saved | None:
@@ -177,7 +178,7 @@ def _base(path: Path, tree: Mapping, knowledge: Knowledge, problems: Problems, a
             like,
             ("like",),
             f"there is no scenario '{like}' beside this file",
-            nearest(str(like), [each.stem for each in path.parent.glob("*.yaml")]).strip(),
+            nearest(str(like), [each.stem for each in path.parent.glob("*.yaml")]).strip() or "name a file beside it",
         )
         return None
     return read_case(other, knowledge, problems, (*above, path))
@@ -187,32 +188,44 @@ def _read_answers(node: Node | None, answers: dict[str, Answer], knowledge: Know
     if node is None:
         return []
     if not isinstance(node, Mapping):
-        _fault(problems, node, ("answers",), "answers are written 'fact: value'")
+        _fault(problems, node, ("answers",), "answers are written 'fact: value'", "answers: {bore_mm: 65 mm}")
         return []
     asked: Map[str, Declaration] = {name: each for name, each in knowledge.facts.items() if each.question is not None}
     taken: list[str] = []
     for name, child in node.items():
         if name not in asked:
-            hint = (
-                "it is computed or concluded, not asked"
-                if name in knowledge.facts or name in knowledge.computations
-                else nearest(name, asked).strip()
-            )
-            _fault(problems, node.key_marks[name], ("answers",), f"'{name}' is no question of this kind of point", hint)
-            continue
-        if isinstance(child, Scalar) and str(child) == UNANSWERED:
+            _no_question(name, node, asked, knowledge, problems)
+        elif isinstance(child, Scalar) and str(child) == UNANSWERED:
             answers.pop(name, None)
             taken.append(name)
-            continue
-        text = ", ".join(map(str, child)) if isinstance(child, Sequence) else str(child)
-        if isinstance(child, Mapping):
-            _fault(problems, child, ("answers", name), "an answer is a value or a list of ticks")
-            continue
-        try:
-            answers[name] = answer(asked[name], text or "none", strict=False)
-        except Unsuitable as fault:
-            _fault(problems, child, ("answers", name), str(fault))
+        else:
+            try:
+                answers[name] = answer(asked[name], _text(child, asked[name]), strict=False)
+            except Unsuitable as fault:
+                _fault(problems, child, ("answers", name), str(fault))
     return taken
+
+
+def _no_question(
+    name: str, node: Mapping, asked: Map[str, Declaration], knowledge: Knowledge, problems: Problems
+) -> None:
+    found = name in knowledge.facts or name in knowledge.computations
+    hint = "it is computed or concluded, not asked" if found else nearest(name, asked).strip()
+    message = f"'{name}' is no question of this kind of point"
+    _fault(problems, node.key_marks[name], ("answers",), message, hint or "'gudgeon facts' lists them")
+
+
+def _text(node: Node, declaration: Declaration) -> str:
+    """An answer in a file as a person would have typed it."""
+    if isinstance(node, Scalar) and str(node).strip():
+        return str(node)
+    if isinstance(node, Scalar):
+        raise Unsuitable(f"The answer is missing. Write it, {DONT_KNOW} or {UNANSWERED}.")
+    if isinstance(node, Mapping) or declaration.domain.kind != "several":
+        raise Unsuitable("One answer is expected here, not a list or a mapping. Write the value alone.")
+    if not all(isinstance(each, Scalar) for each in node):
+        raise Unsuitable("A list of ticks holds single words. Write [a, b].")
+    return ", ".join(map(str, node)) or "none"
 
 
 def _only(node: Node | None, knowledge: Knowledge, problems: Problems) -> frozenset[str] | None:
@@ -224,12 +237,11 @@ def _only(node: Node | None, knowledge: Knowledge, problems: Problems) -> frozen
     known = [product.item for product in knowledge.shelf]
     for each in node:
         if str(each) not in known:
-            _fault(
-                problems, each, ("shelf",), f"'{each}' is no product of the shelf", nearest(str(each), known).strip()
-            )
+            hint = nearest(str(each), known).strip() or "name a product of the shelf by its item code"
+            _fault(problems, each, ("shelf",), f"'{each}' is no product of the shelf", hint)
     return frozenset(str(each) for each in node)
 
 
-def _fault(problems: Problems, at: object, trail: tuple[str, ...], message: str, hint: str = "") -> None:
-    mark = getattr(at, "mark", at)
-    problems.add(Problem(mark.file, mark.line, mark.column, trail, message.rstrip("."), hint))  # type: ignore[attr-defined]  # marks and nodes
+def _fault(problems: Problems, at: Node | Mark, trail: tuple[str, ...], message: str, hint: str = "") -> None:
+    mark = at if isinstance(at, Mark) else at.mark
+    problems.add(Problem.at(mark, message.rstrip("."), hint, trail))

@@ -20,7 +20,10 @@ def test_the_list_shows_every_formula_under_its_subject() -> None:
     text = list_formulas()
     assert all(f"  {name}: {formula.title}" in text for name, formula in FORMULAS.items())
     headings = [line for line in text.splitlines() if line and not line.startswith(" ")]
-    assert headings == ["Viscosity", "Rolling bearings", "Grease", "Arithmetic"]
+    assert headings == [
+        "Viscosity", "Blends", "Conventional units", "Viscosity under pressure", "Rolling bearings", "Rating life",
+        "Films", "Friction and heat", "Grease", "Oil life", "Cold start", "Arithmetic", "Grade systems",
+    ]
 
 
 def test_a_formula_is_worked_with_the_units_that_were_typed() -> None:
@@ -116,3 +119,52 @@ def test_what_a_missing_input_advises_to_write_can_be_read(name: str) -> None:
     # Only the physics may still refuse, never the reading.
     assert not any(message.startswith(tuple(f"{key}:" for key in inputs)) for message in _complaints(name, inputs))
     assert set(inputs) == {each.name for each in FORMULAS[name].inputs}
+
+
+def test_a_look_up_answers_in_names_with_the_sentence_beside_them() -> None:
+    # SAE J300:2015: 6.5 mm²/s at 100 °C lies in grade 12 and in grade 16.
+    computed = compute("sae_j300_grades", {"viscosity_100": "6.5 cSt"})
+    assert as_data(computed)["result"]["value"] == ["12", "16"]  # type: ignore[index]
+    assert "SAE = 12 (high shear at least 2.0) or 16" in render_text(computed)
+
+
+def test_a_gap_between_grades_is_told_as_one() -> None:
+    data = json.loads(json.dumps(as_data(compute("nlgi_grade", {"penetration": "300"}))))
+    assert data["result"]["value"] == []
+    assert data["result"]["shown"] == "between 1 and 2"
+
+
+@pytest.mark.parametrize("typed", ["grease_severe", "Grease severe", "grease-severe"])
+def test_a_name_is_read_however_it_is_set(typed: str) -> None:
+    inputs = {"cleanliness": typed, "kappa": "1", "mean_diameter_mm": "70"}
+    # ISO 281:2007, annex A, grease with severe contamination, coefficients from memory.
+    assert compute("contamination_factor_of", inputs).result == pytest.approx(0.0421317, abs=1e-6)
+
+
+def test_an_unknown_name_is_refused_with_the_names_there_are() -> None:
+    with pytest.raises(ComputeFault) as refused:
+        compute("vg_of_agma", {"number": "8B"})
+    (message,) = refused.value.messages
+    assert "'8B' is not one of 0, 1, 2" in message
+    assert "Did you mean 8" in message
+
+
+def test_a_look_up_by_numbers_warns_outside_its_range_too() -> None:
+    computed = compute("sae_j306_grades", {"viscosity_100": "600"})
+    assert "3.8 to 500 mm²/s" in computed.warnings[0]
+
+
+def test_a_power_of_an_input_is_put_in_as_well() -> None:
+    text = render_text(compute("load_group_point", {"load_n": "500", "modulus_gpa": "227", "radius_mm": "5"}))
+    assert "W = 500/(227·5²)/1000" in text
+
+
+@pytest.mark.parametrize(("name", "inputs", "result"), [
+    ("viscosity_barus", {"dynamic_viscosity": "100 cP", "alpha": "20 1/GPa", "pressure_mpa": "0.5 GPa"}, 2_202_647),
+    ("film_ratio", {"film_um": "500 nm", "roughness_1_um": "0.3 µm", "roughness_2_um": "0.1"}, 1.581139),
+    ("power_loss", {"torque_nmm": "0.1 Nm", "speed_rpm": "50 Hz"}, 31.41593),
+    ("viscosity_from_engler", {"engler": "5 °E"}, 37.4),
+])
+def test_the_units_of_pressure_film_torque_and_cups_are_read(name: str, inputs: dict[str, str], result: float) -> None:
+    # Barus A125, film ratio B102, power loss B084, Vogel A110.
+    assert compute(name, inputs).result == pytest.approx(result, rel=5e-3)

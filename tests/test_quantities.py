@@ -93,6 +93,29 @@ PAIRS = [(unit, each) for unit in UNITS for each in units_for(unit)]
     ("2.", "mm", 2.0),
     (".5", "mm", 0.5),
     ("+2", "", 2.0),
+    ("1.9 GPa", "MPa", 1900.0),
+    ("200 bar", "MPa", 20.0),                      # bar: 100 kPa
+    ("1400 mbar", "MPa", 0.14),
+    ("1000 psi", "MPa", 6.894757293),              # pound-force on a square inch
+    ("207 000 N/mm²", "GPa", 207.0),
+    ("2.2e-8", "1/Pa", 2.2e-8),
+    ("22 1/GPa", "1/Pa", 2.2e-8),
+    ("0.022 mm²/N", "1/Pa", 2.2e-8),
+    ("600 ft/min", "m/s", 3.048),
+    ("16 µin", "µm", 0.4064),
+    ("250 nm", "µm", 0.25),
+    ("12 cm²", "mm²", 1200.0),
+    ("1.5 Nm", "N·mm", 1500.0),
+    ("90 mN·m", "N·mm", 90.0),
+    ("1 lbf·ft", "N·mm", 1355.8179483),            # pound-force times foot
+    ("2 kW", "W", 2000.0),
+    ("1 hp", "W", 745.69987158),                   # 550 ft·lbf/s
+    ("16 kW/m²", "W/mm²", 0.016),
+    ("150 SUS", "s", 150.0),
+    ("1.5 min", "s", 90.0),
+    ("5 E", "°E", 5.0),
+    ("15 deg", "°", 15.0),
+    ("1 rad", "°", 180 / math.pi),
 ])
 def test_reads_what_people_type(text: str, unit: str, value: float) -> None:
     assert parse(text, unit).value == pytest.approx(value, rel=1e-8, abs=1e-12)
@@ -127,6 +150,9 @@ def test_converted_values_carry_nine_digits() -> None:
     ("5 mm", "", "Write the number alone."),
     ("5 mN", "N", "The unit 'mN' is not known here."),
     ("5 Mg", "g", "The unit 'Mg' is not known here."),
+    ("5 mPa", "MPa", "The unit 'mPa' is not known here."),
+    ("5 Mbar", "MPa", "The unit 'Mbar' is not known here."),
+    ("5 MN·m", "N·mm", "The unit 'MN·m' is not known here."),
     ("nan", "mm", "not a number to work with"),
     ("-inf", "mm", "not a number to work with"),
     ("∞", "mm", "not a number to work with"),

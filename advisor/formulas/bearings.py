@@ -83,7 +83,7 @@ def kappa_on_line(intercept: float, slope: float, temperature_c: float, referenc
     return viscosity_ratio(viscosity_on_line(intercept, slope, temperature_c), reference_viscosity)
 
 
-def film_floor(  # noqa: PLR0917 -- as many inputs as the rule has, in its order
+def film_floor(
     vg: float, viscosity_index: float, temperature_c: float, reference_viscosity: float, share: float, cap: float
 ) -> float:
     """Lowest viscosity ratio, without unit, to be accepted where an oil of a given ISO viscosity grade is usual.

@@ -20,7 +20,9 @@ def blend(viscosities: Sequence[float], shares: Sequence[float]) -> float:
     52.5
     """
     if len(viscosities) != len(shares) or not viscosities:
-        raise OutOfRange(f"A blend needs one share for each oil, but has {len(viscosities)} oils, {len(shares)} shares.")
+        raise OutOfRange(
+            f"A blend needs one share for each oil, but has {len(viscosities)} oils and {len(shares)} shares."
+        )
     for share in shares:
         demand_within(share, 0, 1, "share of an oil in a blend")
     if abs(sum(shares) - 1) > WHOLE:

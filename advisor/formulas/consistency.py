@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from itertools import pairwise
 from typing import NamedTuple
 
 from advisor.formulas.formula import Choice, Input, Lookup, Named, OutOfRange, demand_positive
@@ -41,7 +42,7 @@ def nlgi_grade(penetration: float) -> Named:
     for each in NLGI_GRADES:
         if each.lowest <= penetration <= each.highest:
             return Named((each.number,), f"NLGI {each.number}")
-    for softer, stiffer in zip(NLGI_GRADES, NLGI_GRADES[1:], strict=False):
+    for softer, stiffer in pairwise(NLGI_GRADES):
         if stiffer.highest < penetration < softer.lowest:
             return Named((), f"between {softer.number} and {stiffer.number}")
     return Named((), "softer than NLGI 000" if penetration > NLGI_GRADES[0].highest else "stiffer than NLGI 6")

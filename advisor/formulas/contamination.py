@@ -49,8 +49,9 @@ def contamination_factor(kappa: float, mean_diameter_mm: float, factor: float, s
     """
     ratio = counted_ratio(kappa)
     demand_positive(mean_diameter_mm, "mean diameter", "mm")
-    share = min(1.0, factor * ratio**0.68 * mean_diameter_mm**0.55)
-    return max(0.0, min(1.0, share * (1.0 - size_constant / mean_diameter_mm ** (1.0 / 3.0))))
+    share = min(1.0, float(factor * ratio**0.68 * mean_diameter_mm**0.55))
+    clean = 1.0 - size_constant / float(mean_diameter_mm ** (1.0 / 3.0))
+    return max(0.0, min(1.0, share * clean))
 
 
 def contamination_factor_of(cleanliness: str, kappa: float, mean_diameter_mm: float) -> float:
@@ -65,8 +66,9 @@ def contamination_factor_of(cleanliness: str, kappa: float, mean_diameter_mm: fl
     if cleanliness not in CLEANLINESS:
         raise OutOfRange(f"'{cleanliness}' is no cleanliness class; they are {', '.join(CLEANLINESS)}.")
     row = CLEANLINESS[cleanliness]
-    large = row.size_constant_large is not None and mean_diameter_mm >= LARGE
-    constant = row.size_constant_large if large and row.size_constant_large is not None else row.size_constant
+    constant = row.size_constant
+    if row.size_constant_large is not None and mean_diameter_mm >= LARGE:
+        constant = row.size_constant_large
     return contamination_factor(kappa, mean_diameter_mm, row.factor, constant)
 
 

@@ -158,15 +158,17 @@ _UNIVERSAL = (
     "S = (4.6324·ν + (1 + 0.03264·ν)/((3930.2 + 262.7·ν + 23.97·ν² + 1.646·ν³)·10⁻⁵))·(1 + 0.000061·(1.8·t − 68))"
 )
 _UNIVERSAL_NOTE = (
-    f"Exact by definition of the scale. {_SAME} Usual are 100 °F (37.8 °C) and 210 °F (98.9 °C), never 40 °C: bring "
-    "the viscosity to that temperature first. From 75 mm²/s on S = 4.632·ν at 100 °F and 4.664·ν at 210 °F."
+    f"No uncertainty is stated; an open library agrees to four decimals. {_SAME} Usual are 100 °F "
+    "(37.8 °C) and 210 °F (98.9 °C), never 40 °C: bring the viscosity to that temperature first. From 75 mm²/s on "
+    "S = 4.632·ν at 100 °F and 4.664·ν at 210 °F."
 )
 _FUROL_NOTE = f"{_SAME} An open table differs by up to 4 %."
 _ENGLER_NOTE = (
-    f"Uncertain by 3 %, below 1.8 °E by up to 7 %: published tables disagree. {_SAME} Usual are 20, 50 and 100 °C."
+    f"Uncertain by 3 %, against one open table by up to 4 %, below 1.8 °E by up to 7 %. {_SAME} "
+    "Usual are 20, 50 and 100 °C."
 )
 _REDWOOD_NOTE = (
-    f"Uncertain by 5 %: published tables disagree. {_SAME} Usual are 70, 140 and 200 °F. "
+    f"Uncertain by 5 %, against one open table by up to 6 %. {_SAME} Usual are 70, 140 and 200 °F. "
     "At 100 s the two branches differ by 0.04 %."
 )
 _TEMPERATURE = Input("temperature_c", "t", "°C", -20, 180, "up", "temperature of both viscosities")

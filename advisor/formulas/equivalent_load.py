@@ -96,8 +96,8 @@ def _tangent(contact_angle_deg: float) -> float:
 
 
 _SUBJECT = "rating life"
-_RADIAL = Input("radial_n", "F_r", "N", 1, 1e8, "up", "radial load")
-_AXIAL = Input("axial_n", "F_a", "N", 0, 1e8, "up", "axial load")
+_RADIAL = Input("radial_n", "F_r", "N", 1, 1e7, "up", "radial load")
+_AXIAL = Input("axial_n", "F_a", "N", 0, 2e6, "up", "axial load")
 _ANGLE = Input("contact_angle_deg", "α", "°", 2, 45, "down", "contact angle")
 _RESULT = "equivalent dynamic load"
 _BEARING_DATA = "X and Y from the data of the bearing come first, where they are given."
@@ -106,7 +106,7 @@ FORMULAS: tuple[Formula, ...] = (
     Formula(
         "equivalent_load_deep_groove", _SUBJECT, "Equivalent load, deep groove ball bearing",
         equivalent_load_deep_groove,
-        (_RADIAL, _AXIAL, Input("static_rating_n", "C₀r", "N", 100, 1e9, "up", "static load rating"),
+        (_RADIAL, _AXIAL, Input("static_rating_n", "C₀r", "N", 1000, 1e8, "up", "static load rating"),
          Input("load_f0", "f₀", "", 12, 16, "down", "factor f₀ of the bearing, 14 where it is not known")),
         _RESULT, "P", "N",
         "P = F_r where F_a/F_r ≤ e; else P = max(F_r, 0.56·F_r + Y·F_a), e and Y of f₀·F_a/C₀r by the table",
@@ -123,7 +123,7 @@ FORMULAS: tuple[Formula, ...] = (
     Formula(
         "equivalent_load_tapered_roller", _SUBJECT, "Equivalent load, single-row tapered roller bearing",
         equivalent_load_tapered_roller, (_RADIAL, _AXIAL, _ANGLE), _RESULT, "P", "N",
-        "P = F_r where F_a/F_r ≤ 1.5·tan α; else P = 0.4·F_r + 0.4·cot α·F_a", "ISO 281:2007, radial roller bearings", "from memory",
-        f"{_BEARING_DATA} The factor 0.4 belongs to tapered roller bearings only.",
+        "P = F_r where F_a/F_r ≤ 1.5·tan α; else P = 0.4·F_r + 0.4·cot α·F_a", "ISO 281:2007, radial roller bearings",
+        "from memory", f"{_BEARING_DATA} The factor 0.4 belongs to tapered roller bearings only.",
     ),
 )

@@ -15,7 +15,7 @@ Direction = Literal["up", "down", "none"]
 Checked = Literal["yes", "from memory", "common practice"]
 
 
-class OutOfRange(ValueError):  # noqa: N818 -- it names what happened to the value, and is shown to the user
+class OutOfRange(ValueError):
     """The physics of a formula ends here; the message names the range in a plain sentence."""
 
 

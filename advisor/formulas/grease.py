@@ -104,7 +104,7 @@ def temperature_factor(temperature_c: float, from_c: float, step_k: float) -> fl
     return float(0.5 ** (max(0.0, temperature_c - from_c) / step_k))
 
 
-def interval_factor(  # noqa: PLR0917 -- as many inputs as there are influences, in the order of the equation
+def interval_factor(
     temperature: float, load: float, dust: float, water: float, shock_vibration: float, position: float, air: float
 ) -> float:
     """All that shortens a grease interval, as one factor without unit.

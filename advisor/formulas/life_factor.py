@@ -140,13 +140,16 @@ def _load_ratio(contamination_factor: float, fatigue_limit_n: float, load_n: flo
 def _ball(kappa: float, ratio: float) -> float:
     counted = counted_ratio(kappa)
     branch = _branch(counted)
-    return _factor(1.0 - (2.5671 - branch.ball / counted**branch.exponent) ** 0.83 * ratio ** (1.0 / 3.0), 9.3)
+    film = max(0.0, 2.5671 - branch.ball / counted**branch.exponent)
+    return _factor(1.0 - film**0.83 * ratio ** (1.0 / 3.0), 9.3)
 
 
 def _roller(kappa: float, ratio: float) -> float:
     counted = counted_ratio(kappa)
     branch = _branch(counted)
-    return _factor(1.0 - (1.5859 - branch.roller / counted**branch.exponent) * ratio**0.4, 9.185)
+    # At κ = 0.1 the printed digits leave q at −0.00005 instead of 0, which a large ratio would make felt.
+    film = max(0.0, 1.5859 - branch.roller / counted**branch.exponent)
+    return _factor(1.0 - film * ratio**0.4, 9.185)
 
 
 def _branch(counted: float) -> Branch:

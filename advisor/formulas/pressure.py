@@ -122,7 +122,8 @@ def alpha_so_klaus(viscosity: float, slope: float, density: float) -> float:
 def alpha_gold(viscosity: float, factor: float, exponent: float) -> float:
     """Estimate of the pressure-viscosity coefficient in 1/Pa, from the viscosity in mm²/s and the oil family.
 
-    Equation: α = s·ν^t·10⁻⁹, s and t of the family. Range: secant to 0.2 GPa. Source: Gold and others 2001, from memory.
+    Equation: α = s·ν^t·10⁻⁹, s and t of the family. Range: secant to 0.2 GPa.
+    Source: Gold and others 2001, from memory.
 
     >>> f"{alpha_gold(68, *GOLD['mineral']):.3g}"
     '1.78e-08'
@@ -197,22 +198,22 @@ FORMULAS: tuple[Formula, ...] = (
     Formula(
         "viscosity_barus", _SUBJECT, "Viscosity under pressure, exponential", viscosity_barus,
         (_ETA, _ALPHA, Input("pressure_mpa", "p", "MPa", 0, 500, "up", "pressure")),
-        "dynamic viscosity under pressure", "η", "mPa·s", "η = η₀·exp(α·p), p in Pa", "Barus 1893, textbooks, no clause",
-        "from memory", "Too high above 300 to 500 MPa: the Roelands equation then.",
+        "dynamic viscosity under pressure", "η", "mPa·s", "η = η₀·exp(α·p·10⁶)",
+        "Barus 1893, textbooks, no clause", "from memory", "Too high above 300 to 500 MPa: the Roelands equation then.",
     ),
     Formula(
         "viscosity_roelands", _SUBJECT, "Viscosity under pressure, Roelands", viscosity_roelands,
         (_ETA, Input("roelands_z", "Z", "", 0.2, 1, "up", "exponent of the oil"),
          Input("pressure_mpa", "p", "MPa", 0, 1000, "up", "pressure")),
         "dynamic viscosity under pressure", "η", "mPa·s",
-        "η = η₀·exp((ln η₀ + 9.67)·((1 + 5.1·10⁻⁹·p)^Z − 1)), η₀ in Pa·s and p in Pa inside the exponent",
+        "η = η₀·exp((ln(η₀/1000) + 9.67)·((1 + 0.0051·p)^Z − 1))",
         "Roelands 1966, constants in textbooks, no clause", "yes", "The range of Z and pressure is from memory.",
     ),
     Formula(
         "roelands_z", _SUBJECT, "Exponent of the Roelands equation", roelands_z,
         (Input("dynamic_viscosity", "η₀", "mPa·s", 0.5, 100_000, "down", "dynamic viscosity at ambient pressure"),
          _ALPHA),
-        "exponent", "Z", "", "Z = α/(5.1·10⁻⁹·(ln η₀ + 9.67)), η₀ in Pa·s",
+        "exponent", "Z", "", "Z = α/(5.1·10⁻⁹·(ln(η₀/1000) + 9.67))",
         "Roelands 1966, constants in textbooks, no clause", "yes",
     ),
     Formula(
@@ -228,7 +229,8 @@ FORMULAS: tuple[Formula, ...] = (
          Input("slope", "B", "", 2.5, 4.5, "up", "slope of the viscosity-temperature line"),
          Input("density", "ρ", "kg/m³", 750, 1000, "down", "density at the temperature")),
         "pressure-viscosity coefficient", "α", "1/Pa",
-        "α = (1.216 + 4.143·g^3.0627 + 2.848·10⁻⁴·B^5.1903·g^1.5976 − 3.999·g^3.0975·(ρ/1000)^0.1162)·10⁻⁸, g = log10 ν",
+        "α = (1.216 + 4.143·g^3.0627 + 2.848·10⁻⁴·B^5.1903·g^1.5976 − 3.999·g^3.0975·(ρ/1000)^0.1162)·10⁻⁸, "
+        "g = log10 ν",
         "So and Klaus 1980, no clause", "from memory", _DISAGREE,
     ),
     Formula(

@@ -2,15 +2,20 @@
 
 from __future__ import annotations
 
+from itertools import pairwise
+
 from advisor.formulas.formula import Formula, Input, demand_positive, demand_within
 
 LIFE_EXPONENT: dict[str, float] = {"ball": 3.0, "roller": 10.0 / 3.0}
 # ISO 281:2007, table 12, from memory. The edition of 1990 had 0.62, 0.53, 0.44, 0.33 and 0.21.
 RELIABILITY: dict[float, float] = {90: 1.0, 95: 0.64, 96: 0.55, 97: 0.47, 98: 0.37, 99: 0.25}
+
+
 def fatigue_limit_ball(static_rating_n: float, mean_diameter_mm: float) -> float:
     """Fatigue load limit C_u of a ball bearing in N, from its static rating in N and its mean diameter in mm.
 
-    Equation: C_u = C₀/22·(100/max(d_m, 100))^0.5. Range: any size. Source: ISO 281:2007, B.3.3, simplified, from memory.
+    Equation: C_u = C₀/22·(100/max(d_m, 100))^0.5. Range: any size.
+    Source: ISO 281:2007, B.3.3, simplified, from memory.
 
     >>> round(fatigue_limit_ball(11200, 46), 1)
     509.1
@@ -22,7 +27,8 @@ def fatigue_limit_ball(static_rating_n: float, mean_diameter_mm: float) -> float
 def fatigue_limit_roller(static_rating_n: float, mean_diameter_mm: float) -> float:
     """Fatigue load limit C_u of a roller bearing in N, from its static rating in N and its mean diameter in mm.
 
-    Equation: C_u = C₀/8.2·(100/max(d_m, 100))^0.3. Range: any size. Source: ISO 281:2007, B.3.3, simplified, from memory.
+    Equation: C_u = C₀/8.2·(100/max(d_m, 100))^0.3. Range: any size.
+    Source: ISO 281:2007, B.3.3, simplified, from memory.
 
     >>> round(fatigue_limit_roller(37500, 46), 1)
     4573.2
@@ -34,7 +40,8 @@ def fatigue_limit_roller(static_rating_n: float, mean_diameter_mm: float) -> flo
 def rating_life(dynamic_rating_n: float, load_n: float, exponent: float) -> float:
     """Basic rating life L₁₀ in million revolutions, from the dynamic rating and the equivalent load in N.
 
-    Equation: L₁₀ = (C/P)^p, p = 3 for ball and 10/3 for roller bearings. Range: P up to about C/2. Source: ISO 281:2007.
+    Equation: L₁₀ = (C/P)^p, p = 3 for ball and 10/3 for roller bearings. Range: P up to about C/2.
+    Source: ISO 281:2007.
 
     >>> rating_life(20_000, 2000, 3)
     1000.0
@@ -66,10 +73,9 @@ def reliability_factor(reliability_percent: float) -> float:
     (0.64, 0.25)
     """
     demand_within(reliability_percent, 90, 99, "reliability", "%")
-    rows = list(RELIABILITY.items())
-    for (low, at_low), (high, at_high) in zip(rows, rows[1:], strict=False):
-        if reliability_percent <= high:
-            break
+    (low, at_low), (high, at_high) = next(
+        pair for pair in pairwise(RELIABILITY.items()) if reliability_percent <= pair[1][0]
+    )
     return at_low + (at_high - at_low) * (reliability_percent - low) / (high - low)
 
 
@@ -105,8 +111,8 @@ FORMULAS: tuple[Formula, ...] = (
     ),
     Formula(
         "rating_life", _SUBJECT, "Basic rating life", rating_life, (_DYNAMIC, _LOAD, _EXPONENT),
-        "life of 90 % of the bearings in million revolutions", "L₁₀", "", "L₁₀ = (C/P)^p", "ISO 281:2007", "from memory",
-        "p is 3 for ball and 10/3 for roller bearings. The equation ends at about P = C/2.",
+        "life of 90 % of the bearings in million revolutions", "L₁₀", "", "L₁₀ = (C/P)^p", "ISO 281:2007",
+        "from memory", "p is 3 for ball and 10/3 for roller bearings. The equation ends at about P = C/2.",
     ),
     Formula(
         "rating_life_hours", _SUBJECT, "Basic rating life in hours", rating_life_hours,

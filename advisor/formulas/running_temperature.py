@@ -91,7 +91,7 @@ def running_temperature_doubts(
     Range: radial bearings with a balance below 400 °C. Source: Palmgren; ISO 15312 for the cooling, from memory.
 
     >>> print(running_temperature_doubts(10_000, 30, 62, 16, 68, 8.7, 1000, 2, 0.0002, 20, 0).text)
-    estimate 72 °C ± 15 K; f₀ −30 % 63 °C, +30 % 79 °C; load −20 % 71 °C, +20 % 73 °C; cooling −30 % 82 °C, +30 % 65 °C
+    estimate 72 °C ± 15 K; f₀ −30 % 64 °C, +30 % 78 °C; load −20 % 71 °C, +20 % 73 °C; cooling −30 % 82 °C, +30 % 65 °C
     """
     bearing = Bearing(
         speed_rpm, bore_mm, outside_mm, width_mm, viscosity_40, viscosity_100, load_n, f0, f1, ambient_c,
@@ -200,7 +200,7 @@ FORMULAS: tuple[Formula, ...] = (
 LOOKUPS: tuple[Lookup, ...] = (
     Lookup(
         "running_temperature_doubts", _SUBJECT, "Estimate of the running temperature and its doubts",
-        running_temperature_doubts, _INPUTS, "estimated running temperature and its doubts", "t", "", _EQUATION, _SOURCE,
-        "from memory", _NOTE,
+        running_temperature_doubts, _INPUTS, "estimated running temperature and its doubts", "t", "", _EQUATION,
+        _SOURCE, "from memory", _NOTE,
     ),
 )

@@ -10,7 +10,7 @@ from advisor.interview.keeping import (
     open_interview,
 )
 from advisor.interview.session import Session
-from advisor.interview.wording import RowShown, answer_shown, codes_text, product_reason, quantities_text, row_shown, rows_shown
+from advisor.interview.wording import RowShown, answer_shown, codes_text, product_reasons, quantities_text, row_shown, rows_shown
 
 __all__ = [
     "Damaged",
@@ -24,7 +24,7 @@ __all__ = [
     "kept_interviews",
     "new_interview",
     "open_interview",
-    "product_reason",
+    "product_reasons",
     "quantities_text",
     "row_shown",
     "rows_shown",

@@ -175,6 +175,8 @@ class Session:
 
     def changed_rows(self) -> frozenset[str]:
         """The docket rows that read differently since the last change."""
+        if self.advice.withheld or self.before.withheld:
+            return frozenset()
         return frozenset(_differences(_texts(self.before), _texts(self.advice)))
 
     def settled_rows(self) -> tuple[str, ...]:

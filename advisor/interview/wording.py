@@ -1,19 +1,23 @@
 """Short words for what stands: docket rows, quantities, codes, answers, and the reason beside a product."""
 
 import math
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass
 
 from advisor.advice import Advice, Line, Ranked, State, falls_on
+from advisor.answers import DONT_KNOW
 from advisor.case import Answer
 from advisor.conditions import Bound, Coded, Condition, Domain, Either, Every, Member, Stated, Ticked, Value
 from advisor.explanation.contrasts import VERDICTS
 from advisor.explanation.seeing import instances_of
 from advisor.explanation.words import fill_in, say_value
-from advisor.knowledge import Declaration, Knowledge
+from advisor.knowledge import Declaration, Instance, Knowledge
 from advisor.quantities import show
 from advisor.shelf import Shortfall, Verdict
 from advisor.specification import STRONG, Demand
+Known = Mapping[str, tuple[str, Instance, bool | None]]
+"""Step, rule instance and outcome by the instance's id."""
+
 
 @dataclass(frozen=True, slots=True)
 class RowShown:
@@ -154,7 +158,13 @@ def _term(domain: Domain, term: Condition) -> str:
 # ---- products, quantities, codes, answers ----------------------------------------------------------------------
 
 
-def product_reason(advice: Advice, ranked: Ranked) -> str:
+def product_reasons(advice: Advice) -> list[str]:
+    """For each product of the shelf what decides about it, in the order of the shelf."""
+    known = instances_of(advice)
+    return [_product_reason(advice, each, known) for each in advice.shelf]
+
+
+def _product_reason(advice: Advice, ranked: Ranked, known: Known) -> str:
     """What decides about a product, with the numbers: the first thing it misses, else the film it makes."""
     assert advice.judgement is not None  # noqa: S101 - products are ranked by it
     missed = advice.judgement.shortfalls(ranked.place)
@@ -162,7 +172,7 @@ def product_reason(advice: Advice, ranked: Ranked) -> str:
     if ranked.verdict is Verdict.FALLS_SHORT:
         wanted = [each for each in wanted if each.seen is not None] or wanted
     if wanted and ranked.verdict in {Verdict.FALLS_SHORT, Verdict.UNPROVEN, Verdict.SECOND_BEST}:
-        return _missed(advice, wanted[0])
+        return _missed(advice, wanted[0], known)
     kappa = advice.judgement.columns.get("kappa")
     seen = kappa.values[ranked.place] if kappa else None
     floor = asked(advice.knowledge.domain("kappa"), [each.test for each in advice.specification.demands if each.must and each.property == "kappa"])
@@ -171,7 +181,7 @@ def product_reason(advice: Advice, ranked: Ranked) -> str:
     return "nothing missed so far" if ranked.verdict is Verdict.STILL_IN else "misses nothing"
 
 
-def _missed(advice: Advice, shortfall: Shortfall) -> str:
+def _missed(advice: Advice, shortfall: Shortfall, known: Known) -> str:
     demand = shortfall.demand
     domain = advice.knowledge.properties[demand.property].domain
     title, limit = _title(advice.knowledge, demand.property), asked(domain, [demand.test])
@@ -181,14 +191,16 @@ def _missed(advice: Advice, shortfall: Shortfall) -> str:
     if seen is None:
         return f"sheet does not state {title}, asked {limit}"
     if isinstance(demand.test, Member | Ticked) and not demand.test.wanted:
-        return _because(advice, demand.rule) or f"{title} {limit}"
+        return _because(advice, demand.rule, known) or f"{title} {limit}"
     return f"{title} {say_value(domain, seen)}, {'asked' if demand.must else 'better'} {limit}"
 
 
-def _because(advice: Advice, rule: str) -> str:
+def _because(advice: Advice, rule: str, known: Known) -> str:
     """The sentence of a rule, filled in."""
-    _, instance, _ = instances_of(advice).get(rule, ("", None, None))
-    return fill_in(instance.rule.because, instance, advice.facts, advice.record, advice.knowledge) if instance else ""
+    if rule not in known:
+        return ""
+    _, instance, _ = known[rule]
+    return fill_in(instance.rule.because, instance, advice.facts, advice.record, advice.knowledge)
 
 
 def count_text(advice: Advice) -> str:
@@ -205,7 +217,7 @@ def quantities_text(advice: Advice) -> str:
     parts = [f"{title} {text}" for title, text in known]
     if waits:
         parts.append(f"the rest waits for {_first_waited(advice.knowledge, waits)}" if parts else f"waits for {_first_waited(advice.knowledge, waits)}")
-    return ", ".join(parts) or "none shown here"
+    return "; ".join(parts) or "none shown here"
 
 
 def _facts(advice: Advice, names: Sequence[str]) -> str:
@@ -224,6 +236,8 @@ def codes_text(advice: Advice) -> str:
 
 def answer_shown(declaration: Declaration, given: Answer) -> str:
     """An answer as one line: what was typed, what it reads as, or what stands for a don't know."""
+    if given.value is None and given.typed != DONT_KNOW:
+        return given.typed
     if given.value is None:
         assumed = declaration.assume
         return f"don't know, taken as {shown_value(declaration, assumed.value)}" if assumed else "don't know"

@@ -26,6 +26,7 @@ from advisor.knowledge.rules import Names, RuleReader
 from advisor.knowledge.tables import choices_of, read_tables
 from advisor.knowledge.values import Scope
 
+MOST_ALIKE = 4
 CLOSING_FACTS: Map[str, Domain] = {
     "recommended_kappa": Domain("number"),
     "recommended_form": Domain("choice", choices={"grease": "grease", "oil": "oil"}),
@@ -63,8 +64,22 @@ def examine(root: Path, point_kind: str, shelf: Path | None, problems: Problems)
     folder = read_folder(root, point_kind, shelf, found)
     knowledge = _Loader(folder, point_kind).knowledge() if folder is not None else None
     known = set(problems)
-    problems.extend(problem for problem in found if problem not in known)
+    problems.extend(problem for problem in _thinned(found) if problem not in known)
     return None if found.errors else knowledge
+
+
+def _thinned(problems: Problems) -> list[Problem]:
+    """The problems; of many that say the same, as after the loss of a declaration, the first few."""
+    alike: dict[str, list[Problem]] = {}
+    for problem in problems:
+        alike.setdefault(problem.message, []).append(problem)
+    kept: list[Problem] = []
+    for same in alike.values():
+        kept += same[:MOST_ALIKE]
+        if len(same) > MOST_ALIKE:
+            more = f"{len(same) - MOST_ALIKE} more places say the same"
+            kept[-1] = replace(kept[-1], hint=f"{more}. {kept[-1].hint}")
+    return kept
 
 
 class _Loader:

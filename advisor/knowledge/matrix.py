@@ -73,7 +73,8 @@ def _complete(tree: Mapping, cells: Map[tuple[str, str], Value], sides: Map[str,
     for place, left in enumerate(order):
         blank = [right for right in order[place:] if (left, right) not in cells]
         if blank and not (left in rows and not isinstance(rows[left], Mapping)):
-            mark = rows.key_marks[left] if left in rows else tree.key_marks["rows"]
+            at = next((each for each in order[place:] if each in rows), None)
+            mark = rows.key_marks[at] if at else tree.key_marks["rows"]
             pairs = ", ".join(f"{left} x {right}" for right in blank[:3])
             more = f" and {len(blank) - 3} more" if len(blank) > 3 else ""
             scope.problem(mark, f"the matrix has no cell for {pairs}{more}", "every pair needs its value")

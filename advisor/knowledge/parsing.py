@@ -83,7 +83,7 @@ def _test(name: str, test: Node, domain: Domain, scope: Scope) -> Condition:
             ],
             Every,
         )
-    if isinstance(test, Sequence):
+    if isinstance(test, Sequence) and (test or domain.kind != "several"):
         raise scope.fault(test, "a list is no test", "write {any_of: [...]} or {none_of: [...]}")
     return _equals(name, operand(test, domain, scope), domain)
 

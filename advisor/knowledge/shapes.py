@@ -1,6 +1,7 @@
 """Faults of shape in plain words: what pydantic found becomes problems on the damaged line."""
 
 import re
+from collections import Counter
 from collections.abc import Iterator
 from types import UnionType
 from typing import Annotated, Any, Union, get_args, get_origin
@@ -12,6 +13,8 @@ from advisor.documents import Mapping, Mark, Node, Problem, Problems, Sequence, 
 from advisor.knowledge.schema import Shape
 
 Loc = tuple[str | int, ...]
+_FEW = 3
+"""More strange keys than these in one mapping are one fault."""
 
 
 _PLAIN = {
@@ -33,10 +36,15 @@ def tell(tree: Node, shape: type[Shape], fault: ValidationError, problems: Probl
     """Add a problem for each independent fault."""
     errors = fault.errors()
     strange = {tuple(error["loc"]) for error in errors if error["type"] == "extra_forbidden"}
+    foreign = _foreign(strange)
+    if foreign:
+        problems.add(_misplaced(tree, shape, foreign, strange))
     missing: dict[Loc, list[str]] = {}
     told: set[tuple[Mark, str]] = set()
     for error in errors:
         loc = tuple(error["loc"])
+        if any(loc[: len(each)] == each for each in foreign):
+            continue
         if error["type"] == "missing":
             if not _meant(loc, strange):
                 missing.setdefault(loc[:-1], []).append(str(loc[-1]))
@@ -47,7 +55,28 @@ def tell(tree: Node, shape: type[Shape], fault: ValidationError, problems: Probl
             told.add((mark, message))
             problems.add(Problem.at(mark, message, hint, _trail(tree, loc)))
     for loc, keys in missing.items():
-        problems.add(_missing(tree, loc, keys))
+        problems.add(_missing(tree, shape, loc, keys))
+
+
+def _foreign(strange: set[Loc]) -> list[Loc]:
+    """The entries with so many strange keys that it is the entry that stands in the wrong place."""
+    entries = Counter(loc[:-1] for loc in strange)
+    return sorted((loc for loc, keys in entries.items() if loc and keys > _FEW), key=str)
+
+
+def _misplaced(tree: Node, shape: type[Shape], foreign: list[Loc], strange: set[Loc]) -> Problem:
+    """One problem for all of them; the hint names the section whose heading may be missing above."""
+    first = min(foreign, key=lambda loc: locate(tree, loc).line)
+    keys = [str(loc[-1]) for loc in strange if loc[:-1] == first]
+    suits = [
+        name
+        for name, annotation in _fields(shape).items()
+        if (inner := _entry_shape(annotation)) is not None and set(keys) <= set(_fields(inner))
+    ]
+    more = f", nor do the {len(foreign) - 1} after it" if len(foreign) > 1 else ""
+    message = f"this entry with {', '.join(sorted(keys)[:3])} and more does not belong here{more}"
+    hint = f"is the line '{suits[0]}:' missing above?" if suits else "check the indentation, and the lines above"
+    return Problem.at(locate(tree, first), message, hint, _trail(tree, first))
 
 
 def _meant(loc: Loc, strange: set[Loc]) -> bool:
@@ -65,8 +94,11 @@ def _shared(one: Loc, other: Loc) -> bool:
     return longer[: len(shorter)] == shorter
 
 
-def _missing(tree: Node, loc: Loc, keys: list[str]) -> Problem:
-    """The problem of required keys that are not there; a key that stands one level away is told at its place."""
+def _missing(tree: Node, shape: type[Shape], loc: Loc, keys: list[str]) -> Problem:
+    """The problem of required keys that are not there, told where the first would stand.
+
+    A key that stands one level away is told at its place.
+    """
     mark = locate(tree, loc)
     trail = _trail(tree, loc)
     if len(keys) == 1 and (stray := _one_level_away(tree, loc, keys[0])):
@@ -74,11 +106,19 @@ def _missing(tree: Node, loc: Loc, keys: list[str]) -> Problem:
         return Problem.at(stray, f"'{keys[0]}' stands in the wrong place", hint, trail)
     named = " and ".join(f"'{key}'" for key in keys)
     return Problem.at(
-        mark,
+        _would_stand(tree, shape, loc, keys[0]) or mark,
         f"{named} {'is' if len(keys) == 1 else 'are'} missing here",
-        " and ".join(f"add a line '{key}:'" for key in keys[:1]) if len(keys) == 1 else "add a line for each",
+        f"add '{keys[0]}:'" if len(keys) == 1 else "add each of them",
         trail,
     )
+
+
+def _would_stand(tree: Node, shape: type[Shape], loc: Loc, key: str) -> Mark | None:
+    """The place of the next key in the usual order."""
+    here, node = _shape_at(shape, loc), list(_path(tree, loc))[-1]
+    order = list(_fields(here)) if here else []
+    after = order[order.index(key) + 1 :] if key in order else []
+    return next((node.key_marks[each] for each in after if isinstance(node, Mapping) and each in node), None)
 
 
 def _one_level_away(tree: Node, loc: Loc, key: str) -> Mark | None:
@@ -155,6 +195,12 @@ def _steps_into(annotation: Any, part: str | int) -> Iterator[Any]:
         yield inner[-1]
     elif isinstance(annotation, type) and issubclass(annotation, Shape) and part in _fields(annotation):
         yield _fields(annotation)[str(part)]
+
+
+def _entry_shape(annotation: Any) -> type[Shape] | None:
+    """The shape of the entries of a section."""
+    inner = get_args(annotation)
+    return _shape_of(inner[-1]) if get_origin(annotation) in {list, dict} else None
 
 
 def _shape_of(annotation: Any) -> type[Shape] | None:

@@ -196,16 +196,18 @@ def _undeclared(tree: Mapping, columns: Map[str, Domain], scope: Scope) -> None:
     """Tell the cells that stand in no column; where several rows have them, it is the column that is missing."""
     found: dict[str, list[Mark]] = {}
     for node in list_in(tree, "rows"):
-        for name in node if isinstance(node, Mapping) else ():
+        for name, mark in node.key_marks.items() if isinstance(node, Mapping) else ():
             if name not in columns and name not in _ROW_EXTRAS:
-                found.setdefault(name, []).append(node.key_marks[name])
+                found.setdefault(name, []).append(mark)
     for name, marks in found.items():
         near = nearest(name, columns).strip()
         if len(marks) == 1:
             scope.problem(marks[0], f"'{name}' is no column of this table", near or "declare it under 'columns:'")
         else:
+            declared = mapping_in(tree, "columns")
+            at = next((mark for column, mark in declared.key_marks.items() if f"'{column}'" in near), declared.mark)
             message = f"'{name}' is declared nowhere, and {len(marks)} rows have it, the first in line {marks[0].line}"
-            scope.problem(mapping_in(tree, "columns").mark, message, near or f"add '{name}: {{kind: ...}}'")
+            scope.problem(at, message, near or f"add '{name}: {{kind: ...}}'")
     if any(len(marks) > 1 for marks in found.values()):
         raise Unusable
 

@@ -159,7 +159,12 @@ KINDS = {
         Unit("kW", 1000.0, "kilowatt kilowatts"),
         Unit("hp", 550 * 12 * _POUND_FORCE * _INCH / 1000, "horsepower"),
     )),
-    "W/mm²": Kind("a heat flow density", (Unit("W/mm²"), Unit("W/cm²", 0.01), Unit("kW/m²", 0.001), Unit("W/m²", 1e-6))),
+    "W/mm²": Kind("a heat flow density", (
+        Unit("W/mm²"),
+        Unit("W/cm²", 0.01),
+        Unit("kW/m²", 0.001),
+        Unit("W/m²", 1e-6),
+    )),
     "s": Kind("a time of flow", (
         Unit("s", 1.0, "sec second seconds SUS SSU SFS"),
         Unit("min", 60.0, "minute minutes mins"),

@@ -8,7 +8,7 @@ from advisor.screens.given import Opened
 from advisor.screens.glyphs import Glyphs
 from advisor.screens.row import Row
 
-_TITLE = 26
+_TITLE = 22
 
 
 class Answered(Row):
@@ -20,16 +20,14 @@ class Answered(Row):
         self.lines: list[str] = []
 
     def show_last(self, most: int) -> None:
-        """Show the last lines up to a question, so many at most, the first one saying how many stand above."""
+        """Show the last lines up to a question, so many at most."""
         names = list(self.session.answered)
         here = self.session.question.name if self.session.question else ""
         if here in names:
             names = names[:names.index(here)]
         hidden = max(0, len(names) - most)
         self.lines = names[hidden:]
-        lines = [Content.assemble((f"{hidden:>4} answered before, F5 lists them", "$quiet"))] if hidden else []
-        lines += [self._line(number, name) for number, name in enumerate(self.lines, start=hidden + 1)]
-        self.lines = ([""] if hidden else []) + self.lines
+        lines = [self._line(number, name) for number, name in enumerate(self.lines, start=hidden + 1)]
         self.display = bool(lines)
         self.show(Content("\n").join(lines))
 
@@ -42,5 +40,5 @@ class Answered(Row):
 
     def on_click(self, event: events.Click) -> None:
         """Open the question of the clicked line again."""
-        if 0 <= event.y < len(self.lines) and self.lines[event.y]:
+        if 0 <= event.y < len(self.lines):
             self.post_message(Opened(self.lines[event.y]))

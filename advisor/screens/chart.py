@@ -46,9 +46,10 @@ class Chart(Vertical):
         heading = self.query_one("#chart_heading", Row)
         drawing = self.query_one("#drawing", Row)
         if chart is None or width < _LEAST_WIDTH or height < _LEAST_HEIGHT:
-            heading.show(Content.assemble(("CHART", "bold $accent"), ("  when speed, size and temperature are known", "$quiet")))
+            when = "withheld: see the referral" if self.advice.withheld else "when speed, size and temperature are known"
+            heading.show(Content.assemble(("CHART", "bold $accent"), (f"  {when}", "$quiet")))
             drawing.show(Content(""))
             return
-        words = self.glyphs.words("  mm²/s against °C, double-log scale of ASTM D341: oils are straight lines")
+        words = self.glyphs.words("  mm²/s against °C, on the double-log scale of ASTM D341")
         heading.show(Content.assemble(("CHART", "bold $accent"), (words, "$quiet")))
         drawing.show(drawn(chart, width, height, self.glyphs))

@@ -18,10 +18,17 @@ if TYPE_CHECKING:
 class ChoiceList(OptionList):
     """The choices in order, numbered from one; the last entry says that nobody knows."""
 
-    def __init__(self, choices: Mapping[str, str], unknown: str, chosen: str, width: int, glyphs: "Glyphs") -> None:
+    def __init__(self, glyphs: "Glyphs") -> None:
+        super().__init__(classes="editor", markup=False)
+        self.glyphs, self.width, self.digits = glyphs, 0, ""
+        self.ids: list[str] = []
+        self.labels: list[str] = []
+
+    def load(self, choices: Mapping[str, str], unknown: str, chosen: str, width: int) -> None:
+        """Show these choices; the one chosen before is highlighted."""
         self.ids, self.labels = list(choices), [*choices.values(), unknown]
-        self.width, self.glyphs, self.digits = width, glyphs, ""
-        super().__init__(*self._entries(), id="editor", markup=False)
+        self.width, self.digits = width, ""
+        self.set_options(self._entries())
         self.highlighted = self.ids.index(chosen) if chosen in self.ids else 0
 
     def _entries(self) -> list[Option]:

@@ -9,7 +9,7 @@ from textual.content import Content
 from textual.widgets import OptionList
 from textual.widgets.option_list import Option
 
-from advisor.interview import Session
+from advisor.interview import Session, codes_text, quantities_text
 from advisor.interview.wording import cautions_told, outcome_text, referrals_told
 from advisor.screens.given import Chosen
 from advisor.screens.row import Row
@@ -30,26 +30,37 @@ NEXT = {
 class Ending(Vertical):
     """The outcome in a sentence, referrals and cautions in full, and the next steps to pick from."""
 
-    def __init__(self, session: Session, glyphs: "Glyphs", *, stopped: bool) -> None:
-        super().__init__(id="ending")
-        self.session, self.glyphs, self.stopped = session, glyphs, stopped
+    def __init__(self, session: Session, glyphs: "Glyphs") -> None:
+        super().__init__(classes="editor")
+        self.session, self.glyphs = session, glyphs
 
     def compose(self) -> ComposeResult:
         """The outcome first, then what next, then what to mind."""
         yield Row(id="outcome")
-        left = self.stopped and bool(self.session.open)
-        entries = [(what, text) for what, text in NEXT.items() if what != "go_on" or left]
-        yield OptionList(
-            *(Option(Content(f" {number}  {text}"), id=what) for number, (what, text) in enumerate(entries, start=1)),
-            id="editor", markup=False)
+        yield OptionList(markup=False)
         yield Row(id="minding")
 
-    def on_mount(self) -> None:
+    def load(self, *, stopped: bool) -> None:
         """Fill in the texts."""
-        advice, words = self.session.advice, self.glyphs.words
-        self.query_one("#outcome", Row).show(Content.assemble((words(outcome_text(advice)), "bold")))
+        left = stopped and bool(self.session.open)
+        entries = [(what, text) for what, text in NEXT.items() if what != "go_on" or left]
+        options = self.query_one(OptionList)
+        options.set_options([Option(Content(f" {number}  {text}"), id=what) for number, (what, text) in enumerate(entries, start=1)])
+        options.highlighted = 0
+        self.query_one("#outcome", Row).show(Content("\n").join(self._outcome()))
         self.query_one("#minding", Row).show(Content("\n").join(self._minding()))
-        self.query_one(OptionList).highlighted = 0
+
+    def focus(self, scroll_visible: bool = True) -> "Ending":  # noqa: FBT001, FBT002 - as textual calls it
+        """The list takes the keys."""
+        self.query_one(OptionList).focus(scroll_visible)
+        return self
+
+    def _outcome(self) -> Iterator[Content]:
+        advice, words = self.session.advice, self.glyphs.words
+        yield Content.assemble((words(outcome_text(advice)), "bold"))
+        if not advice.withheld:
+            yield Content.assemble(("Code: ", "$quiet"), words(codes_text(advice)))
+            yield Content.assemble(("Quantities: ", "$quiet"), words(quantities_text(advice)))
 
     def _minding(self) -> Iterator[Content]:
         advice, words = self.session.advice, self.glyphs.words

@@ -25,24 +25,29 @@ class FindList(Vertical):
     BINDINGS: ClassVar[list[BindingType]] = [
         Binding("up", "move(-1)", show=False, priority=True), Binding("down", "move(1)", show=False, priority=True)]
 
-    def __init__(self, choices: Mapping[str, str], unknown: str, chosen: str, width: int, glyphs: "Glyphs") -> None:
-        super().__init__(id="editor")
-        own = {name: label for name, label in choices.items() if not label.startswith(name)}
-        self.choices = {**own, **choices, _UNKNOWN: unknown}
-        self.chosen, self.width, self.glyphs = chosen, width, glyphs
+    def __init__(self, glyphs: "Glyphs") -> None:
+        super().__init__(classes="editor")
+        self.glyphs, self.width = glyphs, 0
+        self.choices: dict[str, str] = {}
 
     def compose(self) -> ComposeResult:
         """The field and the list."""
-        yield Input(placeholder=f"type a part of the name; {len(self.choices) - 1} entries", compact=True)
+        yield Input(compact=True)
         options = OptionList(markup=False)
         options.can_focus = False
         yield options
 
-    def on_mount(self) -> None:
-        """Start with all entries and with the one chosen before."""
+    def load(self, choices: Mapping[str, str], unknown: str, chosen: str, width: int) -> None:
+        """Show these choices, those that are no products first; the one chosen before is highlighted."""
+        own = {name: label for name, label in choices.items() if not label.startswith(name)}
+        self.choices, self.width = {**own, **choices, _UNKNOWN: unknown}, width
+        field = self.query_one(Input)
+        field.placeholder = f"type a part of the name; {len(choices)} entries"
+        with field.prevent(Input.Changed):
+            field.value = ""
         self._list("")
         names = list(self.choices)
-        self.query_one(OptionList).highlighted = names.index(self.chosen) if self.chosen in names else 0
+        self.query_one(OptionList).highlighted = names.index(chosen) if chosen in names else 0
 
     def focus(self, scroll_visible: bool = True) -> "FindList":  # noqa: FBT001, FBT002 - as textual calls it
         """Typing goes to the field."""
@@ -58,8 +63,7 @@ class FindList(Vertical):
         words = typed.casefold().split()
         found = {name: label for name, label in self.choices.items() if all(word in label.casefold() for word in words)}
         options = self.query_one(OptionList)
-        options.clear_options()
-        options.add_options([
+        options.set_options([
             Option(Content(self.glyphs.words(hanging(" ? " if name == _UNKNOWN else "   ", label, self.width))), id=name)
             for name, label in found.items()])
         options.highlighted = 0 if found else None

@@ -29,23 +29,29 @@ class NumberField(Vertical):
     BINDINGS: ClassVar[list[BindingType]] = [
         Binding("up", "cycle(-1)", show=False, priority=True), Binding("down", "cycle(1)", show=False, priority=True)]
 
-    def __init__(self, domain: "Domain", unknown: str, typed: str, echo: Echo, glyphs: "Glyphs") -> None:
-        super().__init__(id="editor")
-        self.unknown, self.typed, self.echo, self.glyphs = unknown, typed, echo, glyphs
-        self.words = [word.replace("_", " ") for word in domain.named]
-        self.units = [unit for unit in units_for(domain.unit) if unit]
-        self.unit = self.units[0] if self.units else ""
+    def __init__(self, glyphs: "Glyphs", echo: Echo) -> None:
+        super().__init__(classes="editor")
+        self.glyphs, self.echo, self.unit = glyphs, echo, ""
+        self.words: list[str] = []
+        self.units: list[str] = []
 
     def compose(self) -> ComposeResult:
         """The field, the strip of units, the echo, and what a don't know does."""
-        yield Input(self.typed, compact=True)
+        yield Input(compact=True)
         yield Row(id="units")
         yield Row(id="echo")
         yield Row(id="unknown")
 
-    def on_mount(self) -> None:
-        """Show the units and the first echo."""
-        self.query_one("#unknown", Row).show(Content(self.glyphs.words(f"?  {self.unknown}")))
+    def load(self, domain: "Domain", unknown: str, typed: str) -> None:
+        """Ask for a number of this domain; what was typed before stands there."""
+        self.words = [word.replace("_", " ") for word in domain.named]
+        self.units = [unit for unit in units_for(domain.unit) if unit]
+        self.unit = self.units[0] if self.units else ""
+        field = self.query_one(Input)
+        with field.prevent(Input.Changed):
+            field.value = typed
+        field.cursor_position = len(typed)
+        self.query_one("#unknown", Row).show(Content(self.glyphs.words(f"?  {unknown}")))
         self._show()
 
     def focus(self, scroll_visible: bool = True) -> "NumberField":  # noqa: FBT001, FBT002 - as textual calls it

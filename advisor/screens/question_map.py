@@ -23,7 +23,7 @@ class QuestionMap(OptionList):
 
     def show(self) -> None:
         """List all questions anew."""
-        self.clear_entries()
+        self.clear_options()
         self.add_options(list(self._entries()))
         here = self.session.question.name if self.session.question else ""
         places = [place for place in range(self.option_count) if self.get_option_at_index(place).id == here]

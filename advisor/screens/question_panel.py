@@ -2,11 +2,12 @@
 
 from typing import TYPE_CHECKING
 
+from textual.app import ComposeResult
 from textual.containers import Vertical
 from textual.content import Content
-from textual.widget import Widget
+from textual.widgets import OptionList
 
-from advisor.answers import Unsuitable
+from advisor.answers import DONT_KNOW, Unsuitable
 from advisor.case import Answer
 from advisor.interview import Session
 from advisor.interview.wording import exactly, shown_value
@@ -23,38 +24,65 @@ from advisor.screens.tick_list import TickList
 if TYPE_CHECKING:
     from advisor.conditions import Value
 
+Editor = ChoiceList | TickList | FindList | NumberField | TextField | Ending
 _MANY, _NAMED = 20, 4
-_MARGIN = 8
+_MARGIN, _NEIGHBOURS, _LEAST_LIST, _FIELD_LINES = 8, 4, 5, 5
 _LEAST_WIDTH = 30
 
 
 class QuestionPanel(Vertical):
-    """Rebuilt only when another question comes into place."""
+    """Holds one editor of each kind, of which one shows: nothing is built anew when the question changes."""
 
     def __init__(self, session: Session, glyphs: Glyphs) -> None:
         super().__init__(id="question")
         self.session, self.glyphs = session, glyphs
         self.stopped = False
+        self.lines = 0
         self._shown: object = None
+        self.choices, self.ticks, self.find = ChoiceList(glyphs), TickList(glyphs), FindList(glyphs)
+        self.number, self.text, self.ending = NumberField(glyphs, self._echo), TextField(), Ending(session, glyphs)
+        self.editors: tuple[Editor, ...] = (self.choices, self.ticks, self.find, self.number, self.text, self.ending)
+        self.editor: Editor = self.ending
 
-    async def show(self, width: int) -> None:
+    def compose(self) -> ComposeResult:
+        """Question, help, editors, and what the answer helps to settle."""
+        yield Row(id="ask")
+        yield Row(id="help")
+        yield from self.editors
+        yield Row(id="helps")
+
+    def show(self, width: int, height: int) -> None:
         """Show the question in place, or the ending."""
         question = None if self.stopped else self.session.question
         given = self.session.case.answers.get(question.name) if question else None
-        key = (question.name, given, width) if question else (self.session.advice, width)
+        key = (question.name, given, width, height) if question else (self.session.advice, width)
         if key == self._shown:
             return
         self._shown = key
-        await self.remove_children()
         if question is None:
-            await self.mount(Ending(self.session, self.glyphs, stopped=self.stopped))
+            self.ending.load(stopped=self.stopped)
+            self.editor = self.ending
         else:
-            await self.mount(*self._parts(question, given, max(_LEAST_WIDTH, width - _MARGIN)))
+            self.editor = self._loaded(question, given, max(_LEAST_WIDTH, width - _MARGIN))
             self._heads(question)
-        self.query_one("#editor").focus()
+            self._limit(question, width, height)
+        for each in self.editors:
+            each.display = each is self.editor
+        for each in self.query("#ask, #help, #helps"):
+            each.display = question is not None
+        self.editor.focus()
 
-    def _parts(self, question: Declaration, given: Answer | None, width: int) -> list[Widget]:
-        return [Row(id="ask"), Row(id="help"), self._editor(question, given, width), Row(id="helps")]
+    def _limit(self, question: Declaration, width: int, height: int) -> None:
+        """Leave room above and below a long list for the question itself and its neighbours."""
+        asked = question.question
+        texts = (asked.ask, asked.help) if asked else ()
+        lines = sum(-(-len(text) // max(1, width - _MARGIN)) for text in texts)
+        most = max(_LEAST_LIST, height - lines - _NEIGHBOURS)
+        self.lines = lines + _FIELD_LINES
+        options = self.editor if isinstance(self.editor, OptionList) else next(iter(self.editor.query(OptionList)), None)
+        if options is not None:
+            options.styles.max_height = most
+            self.lines = lines + 1 + min(most, sum(str(each.prompt).count("\n") + 1 for each in options.options))
 
     def _heads(self, question: Declaration) -> None:
         assert question.question is not None  # noqa: S101 - asked facts only
@@ -64,27 +92,31 @@ class QuestionPanel(Vertical):
         self.query_one("#ask", Row).show(Content.assemble((f"{number:>3}  ", "$accent"), (words(question.question.ask), "bold")))
         enough = "All that decides the lubricant is known; F8 stops here. " if session.only_quantities_left else ""
         self.query_one("#help", Row).show(Content.assemble(enough, (words(question.question.help), "$quiet")))
-        self.query_one("#helps", Row).show(self._helps())
+        self.query_one("#helps", Row).show(self._helps(question))
 
-    def _helps(self) -> Content:
+    def _helps(self, question: Declaration) -> Content:
         rows = self.session.helps_settle()
-        if not rows:
-            return Content("")
-        more = f" and {len(rows) - _NAMED} more rows" if len(rows) > _NAMED else ""
-        return Content.assemble(("helps to settle: ", "$quiet"), self.glyphs.words(", ".join(rows[:_NAMED])), (more, "$quiet"))
+        named = rows if len(rows) <= _NAMED + 1 else rows[:_NAMED]
+        more = f" and {len(rows) - len(named)} more rows" if len(rows) > len(named) else ""
+        keys = "space ticks, Enter accepts; " if question.domain.kind == "several" else ""
+        what = "helps to settle: " if rows else "decides about cautions and who must be asked"
+        return Content.assemble((keys + what, "$quiet"), self.glyphs.words(", ".join(named)), (more, "$quiet"))
 
-    def _editor(self, question: Declaration, given: Answer | None, width: int) -> Widget:
+    def _loaded(self, question: Declaration, given: Answer | None, width: int) -> "Editor":
         domain, unknown = question.domain, _unknown(question)
         value = given.value if given else None
         if domain.kind == "number":
-            typed = given.typed if given and given.value is not None else ""
-            return NumberField(domain, unknown, typed.replace("_", " "), self._echo, self.glyphs)
+            self.number.load(domain, unknown, given.typed.replace("_", " ") if given and given.typed != DONT_KNOW else "")
+            return self.number
         if domain.kind == "several":
-            return TickList(domain.choices, unknown, value if isinstance(value, tuple) else (), width, self.glyphs)
+            self.ticks.load(domain.choices, unknown, value if isinstance(value, tuple) else (), width)
+            return self.ticks
         if domain.kind == "text":
-            return TextField(given.typed if given else "")
-        widget = FindList if len(domain.choices) > _MANY else ChoiceList
-        return widget(domain.choices, unknown, str(value or ""), width, self.glyphs)
+            self.text.load(given.typed if given else "")
+            return self.text
+        picking = self.find if len(domain.choices) > _MANY else self.choices
+        picking.load(domain.choices, unknown, str(value or ""), width)
+        return picking
 
     def _echo(self, text: str) -> str:
         question = self.session.question
@@ -96,7 +128,7 @@ class QuestionPanel(Vertical):
             return f"! {fault}"
         value: Value | None = given.value
         if not isinstance(value, float):
-            return ""
+            return "reads as a range" if given.span else ""
         return f"reads as {exactly(value, question.domain.unit)}{', an estimate' if given.estimate else ''}"
 
 

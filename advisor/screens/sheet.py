@@ -7,7 +7,6 @@ from textual.app import ComposeResult
 from textual.binding import Binding, BindingType
 from textual.containers import Horizontal, Vertical, VerticalScroll
 from textual.screen import Screen
-from textual.widgets import Footer
 
 from advisor.answers import Unsuitable
 from advisor.documents import Unwritable
@@ -20,6 +19,7 @@ from advisor.screens.docket import Docket
 from advisor.screens.foot import Foot
 from advisor.screens.given import Chosen, DontKnow, Given, Opened
 from advisor.screens.glyphs import Glyphs
+from advisor.screens.key_bar import KeyBar
 from advisor.screens.notice import Notice
 from advisor.screens.question_map import QuestionMap
 from advisor.screens.question_panel import QuestionPanel
@@ -31,7 +31,7 @@ from advisor.screens.why import WhyTree
 
 VIEWS = ("docket", "why", "chart", "map")
 _TALL, _WIDE, _FEW, _MANY = 34, 100, 1, 4
-_LEFT_SHARE = 0.46
+_LEFT_SHARE, _AROUND_WIDE, _AROUND_NARROW = 0.46, 2, 5
 
 
 class Sheet(Screen[None]):
@@ -40,12 +40,14 @@ class Sheet(Screen[None]):
     BINDINGS: ClassVar[list[BindingType]] = [
         Binding("pageup", "back", "Back", key_display="PgUp", priority=True, id="back"),
         Binding("pagedown", "later", "Later", key_display="PgDn", priority=True, id="later"),
-        Binding("f2", "view('docket')", "Docket", id="docket"),
-        Binding("f3", "view('why')", "Why", id="why"),
-        Binding("f4", "view('chart')", "Chart", id="chart"),
-        Binding("f5", "view('map')", "Map", id="map"),
-        Binding("f8", "stop_here", "Stop here", id="stop_here"),
         Binding("escape", "undo", "Undo", key_display="Esc", id="undo"),
+        Binding("f2", "view('docket')", "Docket", key_display="F2", id="docket"),
+        Binding("f3", "view('why')", "Why", key_display="F3", id="why"),
+        Binding("f4", "view('chart')", "Chart", key_display="F4", id="chart"),
+        Binding("f5", "view('map')", "Map", key_display="F5", id="map"),
+        Binding("f8", "stop_here", "Stop", key_display="F8", id="stop_here"),
+        Binding("ctrl+p", "app.command_palette", "All", key_display="^p", priority=True, id="palette"),
+        Binding("ctrl+q", "app.quit", "Quit", key_display="^q", priority=True, id="quit"),
         Binding("ctrl+s", "save_as", "Save as", key_display="^s", id="save_as"),
         Binding("question_mark", "dont_know", "Don't know", key_display="?", priority=True, show=False, id="dont_know"),
     ]
@@ -72,57 +74,60 @@ class Sheet(Screen[None]):
                 yield QuestionMap(session, glyphs)
                 yield Chart(glyphs)
         yield Foot(session, glyphs)
-        yield Footer(show_command_palette=True, compact=True)
+        yield KeyBar()
         yield TooSmall()
 
     async def on_mount(self) -> None:
         """Show what the session holds, and what it has to say."""
         self.query_one(Notice).say(*self.session.notices)
-        await self.show()
+        self.show()
 
-    async def show(self) -> None:
+    def show(self) -> None:
         """Show the session; parts that read the same are not drawn again."""
         with self.app.batch_update():
-            self.set_classes(" ".join((f"-view-{self.view or 'none'}", *self._size_classes())))
             self.query_one(TitleLine).show()
-            await self.query_one(QuestionPanel).show(self._left_width())
+            self.query_one(QuestionPanel).show(self._left_width(), self._left_height())
             self._show_neighbours()
-            self.query_one(Docket).show()
-            self.query_one(Shelf).show(self.session.advice)
-            self.query_one(Chart).show(self.session.advice)
             self.query_one(Foot).show()
-            self._show_view()
+            self._show_beside()
         self.call_after_refresh(self._to_the_question)
-
-    def _size_classes(self) -> list[str]:
-        return [each for each in self.classes if not each.startswith("-view-")]
 
     def _left_width(self) -> int:
         width = self.app.size.width
         return int(width * _LEFT_SHARE) if width >= _WIDE else width
 
+    def _left_height(self) -> int:
+        return self.app.size.height - (_AROUND_WIDE if self.app.size.width >= _WIDE else _AROUND_NARROW)
+
     def _show_neighbours(self) -> None:
         tall = self.app.size.height >= _TALL
         ended = self.session.question is None or self.query_one(QuestionPanel).stopped
         narrow = self.app.size.width < _WIDE
-        self.query_one(Answered).show_last(0 if ended and narrow else self.app.size.height if tall else _FEW)
+        spare = self._left_height() - self.query_one(QuestionPanel).lines - _FEW
+        most = 0 if ended and narrow else self.app.size.height if tall else max(_FEW, spare)
+        self.query_one(Answered).show_last(most)
         self.query_one(Upcoming).show_next(0 if ended else _MANY if tall else _FEW)
 
-    def _show_view(self) -> None:
+    def _show_beside(self) -> None:
+        """Show what stands beside the interview, or instead of it; what is out of sight is left alone."""
         if self.view == "why":
             self.query_one(WhyTree).show()
         elif self.view == "map":
             self.query_one(QuestionMap).show()
+        elif self.view or self.app.size.width >= _WIDE:
+            self.query_one(Docket).show()
+            self.query_one(Shelf).show(self.session.advice)
+            self.query_one(Chart).show(self.session.advice)
 
     def _to_the_question(self) -> None:
-        if self.is_mounted:
-            for each in ("#question", "#ask, #outcome"):
-                self.query(each).first().scroll_visible(animate=False, immediate=True)
+        if self.is_mounted and self.query_one("#left").max_scroll_y > 0:
+            for each in ("#question", "#ask", "#outcome"):
+                self.query_one(each).scroll_visible(animate=False, immediate=True)
 
     async def on_resize(self) -> None:
         """Lay out anew; what was typed stays where the question need not be rebuilt."""
         if self.is_mounted and self.query(TitleLine):
-            await self.show()
+            self.show()
 
     # ---- answers -----------------------------------------------------------------------------------------------
 
@@ -158,7 +163,7 @@ class Sheet(Screen[None]):
 
     async def _changed(self) -> None:
         self.query_one(Notice).say(*([f"! {self.session.trouble}"] if self.session.trouble else []))
-        await self.show()
+        self.show()
 
     # ---- moving about ------------------------------------------------------------------------------------------
 
@@ -177,33 +182,38 @@ class Sheet(Screen[None]):
         self.query_one(QuestionPanel).stopped = False
         assert callable(go)  # noqa: S101 - a method of the session
         go()
-        await self.show()
+        self.show()
 
     async def on_opened(self, event: Opened) -> None:
         """Open a question out of turn."""
         self.session.revise(event.name)
-        self.view, self.query_one(QuestionPanel).stopped = "", False
-        await self.show()
+        self._see("")
+        self.query_one(QuestionPanel).stopped = False
+        self.show()
         self._focus_editor()
 
     async def action_view(self, name: str) -> None:
         """Open a view, or close it where it is open."""
-        self.view = "" if name == self.view else name
-        await self.show()
+        self._see("" if name == self.view else name)
+        self.show()
         target = {"docket": "#products", "chart": "#chart", "why": "#why", "map": "#map"}.get(self.view)
         if target is None:
             self._focus_editor()
         else:
             self.query_one(target).focus()
 
+    def _see(self, view: str) -> None:
+        for each in VIEWS:
+            self.set_class(each == view, f"-view-{each}")
+        self.view = view
+
     def _focus_editor(self) -> None:
-        for editor in self.query("#editor"):
-            editor.focus()
+        self.query_one(QuestionPanel).editor.focus()
 
     async def action_stop_here(self) -> None:
         """End before the questions that only tune quantity and interval."""
         self.query_one(QuestionPanel).stopped = True
-        await self.show()
+        self.show()
 
     def check_action(self, action: str, parameters: tuple[object, ...]) -> bool | None:
         """Which keys do something now; the others stay out of the footer."""
@@ -225,7 +235,7 @@ class Sheet(Screen[None]):
             await self.action_view("map")
         elif event.what == "go_on":
             self.query_one(QuestionPanel).stopped = False
-            await self.show()
+            self.show()
         else:
             self.app.exit()
 

@@ -5,7 +5,7 @@ from textual.containers import Vertical, VerticalScroll
 from textual.content import Content
 
 from advisor.advice import Advice, Ranked
-from advisor.interview import product_reason
+from advisor.interview import product_reasons
 from advisor.explanation.contrasts import VERDICTS
 from advisor.interview.wording import count_text
 from advisor.screens.glyphs import Glyphs
@@ -33,13 +33,13 @@ class Shelf(Vertical):
         count = "withheld" if advice.withheld else count_text(advice)
         self.query_one("#shelf_heading", Row).show(Content.assemble(
             ("SHELF", "bold $accent"), f"  {count}  ", self.glyphs.words("") + bar(advice, self.glyphs)))
-        lines = [self._line(advice, each) for each in advice.shelf]
+        reasons = product_reasons(advice)
+        lines = [self._line(each, reason) for each, reason in zip(advice.shelf, reasons, strict=True)]
         self.query_one("#product_lines", Row).show(Content("\n").join(lines))
 
-    def _line(self, advice: Advice, ranked: Ranked) -> Content:
+    def _line(self, ranked: Ranked, reason: str) -> Content:
         glyph, style = _sign(ranked.verdict, self.glyphs)
-        reason = self.glyphs.words(product_reason(advice, ranked))
-        return Content.assemble(f"{glyph} ", (f"{ranked.item:<8}", style), f"{VERDICTS[ranked.verdict]:<12}", (reason, "$quiet"))
+        return Content.assemble(f"{glyph} ", (f"{ranked.item:<8}", style), f"{VERDICTS[ranked.verdict]:<12}", (self.glyphs.words(reason), "$quiet"))
 
 
 def _sign(verdict: Verdict, glyphs: Glyphs) -> tuple[str, str]:

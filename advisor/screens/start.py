@@ -9,9 +9,10 @@ from textual.containers import Vertical
 from textual.content import Content
 from textual.message import Message
 from textual.screen import Screen
-from textual.widgets import Footer, Input, OptionList
+from textual.widgets import Input, OptionList
 from textual.widgets.option_list import Option
 
+from advisor.screens.key_bar import KeyBar
 from advisor.screens.row import Row
 from advisor.screens.too_small import TooSmall
 
@@ -54,7 +55,7 @@ class Start(Screen[None]):
             yield Input(placeholder="such as: Fan 3, drive end", compact=True, id="name")
             yield Row(id="state")
             yield OptionList(id="kept", markup=False)
-        yield Footer(show_command_palette=False, compact=True)
+        yield KeyBar()
         yield TooSmall()
 
     def on_mount(self) -> None:

@@ -8,8 +8,12 @@ from advisor.screens.given import Given
 class TextField(Input):
     """A field whose text is the answer."""
 
-    def __init__(self, typed: str = "") -> None:
-        super().__init__(typed, compact=True, id="editor")
+    def __init__(self) -> None:
+        super().__init__(compact=True, classes="editor")
+
+    def load(self, typed: str) -> None:
+        """Show what was typed before."""
+        self.value = typed
 
     def on_input_submitted(self, event: Input.Submitted) -> None:
         """Enter answers."""

@@ -8,8 +8,7 @@ _PAPER = {"quiet": "#4c5863", "rule": "#c4c0b4", "strip": "#e6e3da"}
 
 def _variables(own: dict[str, str], accent: str, foreground: str, background: str) -> dict[str, str]:
     return {
-        **own, "footer-background": own["strip"], "footer-key-foreground": accent, "footer-description-foreground": foreground,
-        "block-cursor-background": foreground, "block-cursor-foreground": background, "block-cursor-text-style": "none",
+        **own, "block-cursor-background": foreground, "block-cursor-foreground": background, "block-cursor-text-style": "none",
         "input-cursor-background": foreground, "input-cursor-foreground": background, "input-selection-background": accent,
         "scrollbar": own["rule"], "scrollbar-hover": accent, "scrollbar-active": accent, "scrollbar-background": background,
         "border": accent, "border-blurred": own["rule"]}

@@ -21,11 +21,19 @@ class TickList(OptionList):
 
     BINDINGS: ClassVar[list[BindingType]] = [Binding("space", "tick", "Tick", show=False)]
 
-    def __init__(self, choices: Mapping[str, str], unknown: str, ticked: Collection[str], width: int, glyphs: "Glyphs") -> None:
+    def __init__(self, glyphs: "Glyphs") -> None:
+        super().__init__(classes="editor", markup=False)
+        self.glyphs, self.unknown, self.width, self.digits = glyphs, "", 0, ""
+        self.ids: list[str] = []
+        self.labels: list[str] = []
+        self.ticked: set[str] = set()
+
+    def load(self, choices: Mapping[str, str], unknown: str, ticked: Collection[str], width: int) -> None:
+        """Show these choices, with those ticked that were before."""
         self.ids, self.labels, self.unknown = list(choices), list(choices.values()), unknown
         self.ticked = {each for each in ticked if each in choices}
-        self.width, self.glyphs, self.digits = width, glyphs, ""
-        super().__init__(*self._entries(), id="editor", markup=False)
+        self.width, self.digits = width, ""
+        self.set_options(self._entries())
         self.highlighted = 0
 
     def _entries(self) -> list[Option]:

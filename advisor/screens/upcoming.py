@@ -8,7 +8,7 @@ from advisor.screens.given import Opened
 from advisor.screens.glyphs import Glyphs
 from advisor.screens.row import Row
 
-_TITLE = 26
+_TITLE = 22
 
 
 class Upcoming(Row):

@@ -59,8 +59,8 @@ def _recommended(advice: Advice) -> Iterator[Oil]:
     for code, steps in advice.oil_ranks.items():
         values = catalogue.items[catalogue.place[code]].values if catalogue else {}
         grade, at_40, at_100 = values.get("vg"), values.get("viscosity_40"), values.get("viscosity_100")
-        if steps == best and isinstance(grade, float) and isinstance(at_40, float) and isinstance(at_100, float):
-            found.setdefault(grade, Oil(f"VG {grade:g}", at_40, at_100))
+        if steps == best and isinstance(grade, float) and isinstance(at_40, float | int) and isinstance(at_100, float | int):
+            found.setdefault(grade, Oil(f"VG {grade:g}", float(at_40), float(at_100)))
     grades = sorted(found)
     step = max(1, math.ceil(len(grades) / _MOST_OILS))
     yield from (found[grade] for grade in grades[::step])
@@ -72,7 +72,7 @@ def _first_product(advice: Advice) -> Iterator[Oil]:
         return
     columns = advice.judgement.columns
     seen = [columns[name].values[first.place] if name in columns else None for name in ("viscosity_40", "viscosity_100")]
-    if isinstance(seen[0], float) and isinstance(seen[1], float):
+    if isinstance(seen[0], float | int) and isinstance(seen[1], float | int):
         yield Oil(first.item, seen[0], seen[1], strong=True)
 
 

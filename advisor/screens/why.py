@@ -4,8 +4,9 @@ from rich.text import Text
 from textual.widgets import Tree
 from textual.widgets.tree import TreeNode
 
-from advisor.explanation.contrasts import VERDICTS, why_not
-from advisor.explanation.reasons import Why, why
+from advisor.explanation import why, why_not
+from advisor.explanation.contrasts import VERDICTS
+from advisor.explanation.reasons import Why, say_line
 from advisor.explanation.ruling import RuleReason
 from advisor.explanation.workings import Premise
 from advisor.interview import Session, rows_shown
@@ -35,11 +36,11 @@ class WhyTree(Tree[Subject]):
         self._shown = advice
         self.clear()
         for to, text in referrals_told(advice):
-            self.root.add_leaf(self._label(f"goes to {to}", text))
+            self._leaf(self.root.add(self._label("goes to", to), expand=True), text)
         for row in () if advice.withheld else rows_shown(advice):
             self.root.add(self._label(row.title, row.full), data=("row", row.id), expand=False)
         for line in advice.quantities:
-            self.root.add(self._label(line.title, ""), data=("row", line.row), expand=False)
+            self.root.add(self._label(line.title, say_line(advice, line)), data=("row", line.row), expand=False)
         if advice.shelf:
             shelf = self.root.add(self._label("Shelf", "what each product misses"), expand=False)
             for ranked in advice.shelf:

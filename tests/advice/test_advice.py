@@ -188,3 +188,11 @@ def test_no_size_speed_or_temperature_breaks_the_advice(celsius: int, rpm: int, 
         assert isinstance(advice.facts["interval_h"].value, float)
         assert advice.facts["interval_h"].value >= 100
         assert "interval_formula_source" in {caution.caution for caution in advice.cautions}
+
+
+def test_a_demand_for_thin_films_waits_until_the_film_is_known(advisor: Advisor, make_case: MakeCase) -> None:
+    """EP is asked of a spherical roller bearing only where kappa is below 1: before that, nothing may fall short of it."""
+    whole = make_case(bearing_type="spherical_roller", cage="pressed_steel")
+    advice = advisor.advise(Case(whole.point_kind, "", {"bearing_type": whole.answers["bearing_type"]}))
+    assert {each.verdict.value for each in advice.shelf} == {"still_in"}
+    assert "speed_rpm" in advice.line("additive").waits

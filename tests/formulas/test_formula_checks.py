@@ -3,9 +3,13 @@
 import csv
 import re
 from collections.abc import Callable
+from decimal import Decimal
 from pathlib import Path
 
 import pytest
+from checked_bearings import CALLS as OF_BEARINGS
+from checked_viscosity import CALLS as OF_VISCOSITY
+from checked_viscosity import NAMED
 
 from advisor.formulas import bearings, density, grease, viscosity
 from advisor.formulas.formula import OutOfRange
@@ -107,25 +111,41 @@ CALLS: dict[str, Callable[[], float]] = {
     "B116": lambda: grease.temperature_factor(85, 70, 15),
     "B117": lambda: grease.temperature_factor(100, 70, 15),
     "B121": lambda: grease.bearing_free_volume(30, 62, 16, 0.2),
+    **OF_VISCOSITY,
+    **OF_BEARINGS,
 }
-
-# Half of the last digit printed, where the check value is printed to fewer digits than its tolerance.
-PRINTED = {"B112": 0.005, "B121": 0.000005}
 
 
 def test_every_check_value_is_put_to_a_formula_and_names_its_source() -> None:
-    assert set(CALLS) == set(ROWS)
+    assert set(CALLS) | set(NAMED) == set(ROWS)
+    assert not set(CALLS) & set(NAMED)
     assert all(row["source"] and row["confidence"] for row in ROWS.values())
 
 
-@pytest.mark.parametrize("row", ROWS.values(), ids=ROWS)
+@pytest.mark.parametrize("row", [ROWS[each] for each in NAMED], ids=NAMED)
+def test_tables_give_the_names_of_the_check_values(row: dict[str, str]) -> None:
+    assert row["tolerance"] == "exact"
+    assert repr(list(NAMED[row["id"]]().names)) == _as_list(row["expected"]), row["source"]
+
+
+def _as_list(expected: str) -> str:
+    """The names of a row as a list: a bare name is the only one, None is none."""
+    return expected if expected.startswith("[") else "[]" if expected == "None" else f"['{expected}']"
+
+
+@pytest.mark.parametrize("row", [ROWS[each] for each in CALLS], ids=CALLS)
 def test_formulas_agree_with_the_check_values(row: dict[str, str]) -> None:
     expected, tolerance = float(row["expected"]), row["tolerance"]
-    if tolerance.endswith("%"):
+    if tolerance == "exact":
+        allowed = 0.0
+    elif tolerance.endswith("%"):
         allowed = abs(expected) * float(tolerance.removesuffix("%")) / 100
+        printed = Decimal(row["expected"]).as_tuple()
+        if len(printed.digits) >= 6:
+            # Some long check values are printed to fewer digits than their tolerance asks for.
+            allowed = max(allowed, 0.5 * 10.0 ** int(printed.exponent))
     else:
         allowed = float(tolerance.removeprefix("+/-"))
-    allowed = max(allowed, PRINTED.get(row["id"], 0))
     assert CALLS[row["id"]]() == pytest.approx(expected, rel=0, abs=allowed), row["source"]
 
 

@@ -2,16 +2,24 @@
 
 import doctest
 import inspect
+import re
+from collections.abc import Callable
+from importlib import import_module
+from pathlib import Path
+from types import ModuleType
 
 import pytest
 
 from advisor import formulas
-from advisor.formulas import FORMULAS, Formula, Input, OutOfRange, arithmetic, bearings, density, grades, grease
-from advisor.formulas import viscosity as viscosity_room
-from advisor.formulas import viscosity_index as index_room
+from advisor.formulas import FORMULAS, LOOKUPS, Choice, Formula, Input, Lookup, Named, OutOfRange
 from advisor.quantities import UNITS
 
-MODULES = [arithmetic, bearings, density, grades, grease, viscosity_room, index_room]
+MODULES = [
+    import_module(f"advisor.formulas.{path.stem}")
+    for path in sorted(Path(formulas.__file__).parent.glob("*.py"))
+    if path.stem not in {"__init__", "formula", "solving"}
+]
+LOOKED_UP = pytest.mark.parametrize("lookup", LOOKUPS.values(), ids=list(LOOKUPS))
 EACH = pytest.mark.parametrize("formula", FORMULAS.values(), ids=list(FORMULAS))
 
 
@@ -57,18 +65,86 @@ def test_a_formula_has_a_worked_example_with_range_and_source(formula: Formula) 
 
 
 def test_every_function_of_numbers_is_listed() -> None:
+    helpers = {"counted_ratio"}  # what both annex A and the life factor take for the viscosity ratio
     public = {
-        name
+        function.__name__
         for module in MODULES
+        for function, signature in _own_functions(module)
+        if signature.return_annotation == "float" and _taken(signature) == {"float"}
+    }
+    assert public - helpers == set(FORMULAS)
+
+
+def test_every_function_that_takes_or_gives_a_name_is_listed() -> None:
+    public = {
+        function.__name__
+        for module in MODULES
+        for function, signature in _own_functions(module)
+        if signature.return_annotation == "Named"
+        or (signature.return_annotation == "float" and "str" in _taken(signature))
+    }
+    assert public == set(LOOKUPS)
+
+
+def _taken(signature: inspect.Signature) -> set[str]:
+    return {each.annotation for each in signature.parameters.values()}
+
+
+def _own_functions(module: ModuleType) -> list[tuple[Callable[..., object], inspect.Signature]]:
+    return [
+        (function, inspect.signature(function))
         for name, function in inspect.getmembers(module, inspect.isfunction)
         if not name.startswith("_") and function.__module__ == module.__name__
-        and inspect.signature(function).return_annotation == "float"
-    }
-    assert public == set(FORMULAS)
+    ]
 
 
 def test_no_name_is_given_twice() -> None:
-    assert len(FORMULAS) == sum(len(module.FORMULAS) for module in MODULES)
+    assert len(FORMULAS) == sum(len(getattr(module, "FORMULAS", ())) for module in MODULES)
+    assert len(LOOKUPS) == sum(len(getattr(module, "LOOKUPS", ())) for module in MODULES)
+    assert not set(FORMULAS) & set(LOOKUPS)
+
+
+@LOOKED_UP
+def test_a_lookup_is_as_whole_as_a_formula(lookup: Lookup) -> None:
+    assert lookup.name == lookup.function.__name__
+    assert [each.name for each in lookup.inputs] == list(inspect.signature(lookup.function).parameters)
+    assert all((lookup.subject, lookup.title, lookup.equation, lookup.source, lookup.result))
+    assert lookup.checked in {"yes", "from memory", "common practice"}
+    assert not ("no source" in lookup.source and lookup.checked == "yes")
+    assert {lookup.result_unit, *(each.unit for each in lookup.inputs if isinstance(each, Input))} <= set(UNITS)
+    text = inspect.getdoc(lookup.function) or ""
+    assert "Source:" in text
+    assert doctest.DocTestParser().get_examples(text)
+
+
+@LOOKED_UP
+def test_a_lookup_answers_for_every_option_and_refuses_another_by_naming_them(lookup: Lookup) -> None:
+    middle = {
+        each.name: each.options[0] if isinstance(each, Choice) else (each.low + each.high) / 2 for each in lookup.inputs
+    }
+    for each in lookup.inputs:
+        if not isinstance(each, Choice):
+            continue
+        assert len(set(each.options)) == len(each.options)
+        for option in each.options:
+            answer = lookup(**{**middle, each.name: option})
+            assert answer.text if isinstance(answer, Named) else answer >= 0
+        with pytest.raises(OutOfRange, match=re.escape(", ".join(each.options))):
+            lookup(**{**middle, each.name: "of no kind"})
+
+
+@LOOKED_UP
+@pytest.mark.parametrize("value", [float("inf"), float("-inf"), float("nan"), 1e300, -1e300, 0.0])
+def test_no_number_at_all_brings_another_fault_than_a_refusal(lookup: Lookup, value: float) -> None:
+    middle = {
+        each.name: each.options[0] if isinstance(each, Choice) else (each.low + each.high) / 2 for each in lookup.inputs
+    }
+    for each in lookup.inputs:
+        if isinstance(each, Input):
+            try:
+                lookup(**{**middle, each.name: value})
+            except OutOfRange as refused:
+                assert str(refused)  # noqa: PT017 -- a refusal is one of two good ends
 
 
 def test_the_list_cannot_be_changed() -> None:
