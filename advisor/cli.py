@@ -54,6 +54,7 @@ def interview(**options: Any) -> None:
 @gudgeon.command()
 @click.argument("file", type=click.Path(path_type=Path))
 @click.option("--assume", is_flag=True, help="Treat every question without an answer as a don't know.")
+@click.option("--full", is_flag=True, help="With why, why not, every computation, and the rules that did not fire.")
 @click.option("--json", "as_json", is_flag=True, help="The whole advice as JSON.")
 @click.option("--markdown", is_flag=True, help="The explanation as Markdown.")
 @click.option("--html", type=click.Path(path_type=Path), help="Write a report as an HTML file.")

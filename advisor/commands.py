@@ -65,7 +65,7 @@ This was the advice for the bundled demonstration case, {file}
 
 
 def interview(
-    file: Path | None, plain: bool, plain_glyphs: bool, knowledge: Path | None, shelf: Path | None  # noqa: FBT001 - flags as click gives them
+    file: Path | None, plain: bool, plain_glyphs: bool, knowledge: Path | None, shelf: Path | None
 ) -> int:
     """Start or resume an interview: the sheet on a terminal that can show it, else line by line."""
     from functools import partial
@@ -112,6 +112,7 @@ def _kinds(root: Path) -> list[str]:
 def advise(
     file: Path,
     assume: bool,
+    full: bool,
     as_json: bool,
     markdown: bool,
     html: Path | None,
@@ -134,7 +135,7 @@ def advise(
         if as_json
         else explanation.markdown(advice)
         if markdown
-        else explanation.text(advice)
+        else explanation.text(advice, full=full)
     )
     _print(text)
     return _exit_code(advice)
@@ -153,7 +154,7 @@ def _exit_code(advice: "Advice") -> int:
     return DONE if advice.state is State.SETTLED and advice.fits else NOT_SETTLED
 
 
-def facts(words: tuple[str, ...], as_json: bool, knowledge: Path | None) -> int:  # noqa: FBT001 - flags as click gives them
+def facts(words: tuple[str, ...], as_json: bool, knowledge: Path | None) -> int:
     """List the facts."""
     from advisor.listing import fact_rows, facts_text
 
@@ -162,7 +163,7 @@ def facts(words: tuple[str, ...], as_json: bool, knowledge: Path | None) -> int:
     return DONE
 
 
-def rules(words: tuple[str, ...], as_json: bool, knowledge: Path | None) -> int:  # noqa: FBT001 - flags as click gives them
+def rules(words: tuple[str, ...], as_json: bool, knowledge: Path | None) -> int:
     """List the rules."""
     from advisor.listing import rule_rows, rules_text
 
@@ -171,7 +172,7 @@ def rules(words: tuple[str, ...], as_json: bool, knowledge: Path | None) -> int:
     return DONE
 
 
-def compute(name: str | None, inputs: tuple[str, ...], as_json: bool) -> int:  # noqa: FBT001 - flags as click gives them
+def compute(name: str | None, inputs: tuple[str, ...], as_json: bool) -> int:
     """List the formulas, or work one out."""
     from advisor import computing
 

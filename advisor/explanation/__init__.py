@@ -27,11 +27,11 @@ __all__ = [
 ]
 
 
-def text(advice: "Advice") -> str:
-    """The report as plain text for a terminal."""
+def text(advice: "Advice", *, full: bool = True) -> str:
+    """The report as plain text for a terminal; the short one leaves the derivations out."""
     from advisor.explanation.text_report import text as write
 
-    return write(advice)
+    return write(advice, full=full)
 
 
 def markdown(advice: "Advice") -> str:

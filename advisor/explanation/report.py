@@ -3,18 +3,23 @@
 from advisor import __version__
 from advisor.advice import Advice
 from advisor.explanation import details, findings, first_screen
-from advisor.explanation.blocks import Report, Section
+from advisor.explanation.blocks import Para, Report, Section
 from advisor.explanation.changes import what_would_change
 from advisor.explanation.reasons import why
 from advisor.explanation.ruling import Rules
 from advisor.explanation.variants import variants_section
 
+_THE_REST = (
+    "Why each row stands, why not each class and product, every computation with its numbers, the rules that did not "
+    "fire, what would change it, and the sources: add --full, or --markdown, --html FILE, --json."
+)
 
-def report(advice: Advice) -> Report:
-    """The whole report; what is withheld is not in it."""
+
+def report(advice: Advice, *, full: bool = True) -> Report:
+    """The report; what is withheld is not in it. The short one leaves the derivations out and says where they are."""
     title = advice.case.title or "A lubrication point without a name"
     about = f"{findings.about(advice)} gudgeon {__version__}."
-    sections = _withheld(advice) if advice.withheld else _complete(advice)
+    sections = _withheld(advice) if advice.withheld else _complete(advice) if full else _short(advice)
     return Report(title, about, advice.state.value, tuple(each for each in sections if each is not None))
 
 
@@ -26,6 +31,26 @@ def _withheld(advice: Advice) -> list[Section | None]:
         findings.answers_section(advice),
         details.not_fired_section(advice),
         details.sources_section(advice),
+        findings.last_word(advice),
+    ]
+
+
+def _short(advice: Advice) -> list[Section | None]:
+    rules, changes = Rules(advice), what_would_change(advice)
+    rows = [why(advice, line.row, rules) for line in advice.docket]
+    figures = [why(advice, line.row, rules) for line in advice.quantities]
+    return [
+        first_screen.state_section(advice, rules),
+        first_screen.caution_section(advice, changes),
+        variants_section(advice),
+        first_screen.decisive_section(rows),
+        findings.docket_section(rows),
+        findings.shelf_section(advice, findings.shelf_verdicts(advice, rules), rules),
+        findings.codes_section(advice),
+        findings.quantities_section(advice, figures),
+        findings.change_over_section(advice),
+        findings.cautions_section(advice),
+        Section("rest", "The rest", (Para(_THE_REST),)),
         findings.last_word(advice),
     ]
 

@@ -13,9 +13,9 @@ _GAP = 2
 _LEAST = 10
 
 
-def text(advice: Advice) -> str:
-    """The whole report as plain text."""
-    made = report(advice)
+def text(advice: Advice, *, full: bool = True) -> str:
+    """The report as plain text, whole or short."""
+    made = report(advice, full=full)
     lines = [*_wrapped(made.title), "=" * min(WIDTH, max(_LEAST, len(harmless(made.title)))), *_wrapped(made.about)]
     for section in made.sections:
         lines += ["", *_wrapped(section.title), "-" * min(WIDTH, len(harmless(section.title)))]

@@ -219,7 +219,8 @@ CASES = [
         "fact in for",
         VISCOSITY,
         "    then:\n      - should: {vg: {at_most: {fact: thickest_usual_vg}}}\n        level: 1\n",
-        "    then:\n      - should: {vg: {at_most: {fact: thickest_usual_vg}}}\n        level: 1\n        for: {supply: central}\n",
+        "    then:\n      - should: {vg: {at_most: {fact: thickest_usual_vg}}}\n        level: 1\n"
+        "        for: {supply: central}\n",
         "'supply' is no property",
         offset=3,
         hint="that is a fact",

@@ -62,7 +62,7 @@ KINDS: tuple[Callable[[list[str], int, random.Random], Damaged], ...] = (delete,
 
 def damages(file: str) -> list[tuple[str, str, int]]:
     """What was done, the damaged text, and the line of the damage, counted from one."""
-    chance = random.Random(f"{SEED} {file}")
+    chance = random.Random(f"{SEED} {file}")  # noqa: S311 - damages are drawn again the same, nothing is kept secret
     lines = (SHIPPED / file).read_text(encoding="utf-8").splitlines()
     telling = [place for place, line in enumerate(lines) if line.strip() and not line.lstrip().startswith("#")]
     found = []
@@ -117,7 +117,7 @@ def test_random_damage(tmp_path: Path) -> None:
 
 
 def assert_harmless(knowledge: Knowledge, what: str) -> None:
-    """The loader took it: then a whole advice can be made with it, or the case itself is told to need another answer."""
+    """What the loader took makes a whole advice, or tells that a saved case now needs another answer."""
     problems = Problems()
     saved = read_case(DEMONSTRATION, knowledge, problems)
     if saved is None:

@@ -1,4 +1,4 @@
-"""A small made-up folder for every construction of the knowledge language, and what it becomes in memory."""
+"""What every construction of the knowledge language becomes in memory, read from the made-up folder beside this."""
 
 from collections.abc import Callable
 from pathlib import Path
@@ -111,138 +111,14 @@ def test_all_faults_of_one_condition_are_told() -> None:
     assert len(problems) == 5
 
 
-# ---- a folder of our own ----------------------------------------------------------------------------------------------
+# ---- a folder of our own ------------------------------------------------------------
 
-SMALL = {
-    "sources.yaml": """\
-sources:
-  practice: {title: Practice, kind: common practice, checked: no source}
-  standard: {title: A standard, kind: standard, year: 2007, checked: from memory}
-""",
-    "point_kinds.yaml": "kinds: {hinge: {title: Hinge, folder: hinge}}\n",
-    "steps.yaml": "steps: {heat: {title: Heat, for: a}, choice: {title: Choice, for: b}, closing: {title: End, for: c}}\n",
-    "facts.yaml": """\
-facts:
-  margin_k: {title: margin, kind: number, unit: K, limits: [0, 50], tunable: {value: 10, because: usual, source: [{id: practice}]}}
-  cap: {title: cap, kind: number, unit: ISO VG, concluded: {otherwise: 1500, combine: lowest}}
-""",
-    "hinge/facts.yaml": """\
-facts:
-  now: {title: product in use, kind: item, choices: {none: none}, question: {ask: Which product?}}
-  now_thickener:
-    title: thickener in use
-    kind: choice
-    choices_of: thickeners
-    choices: {not_known: not known}
-    question: {ask: Which thickener?, when: {now: none}}
-    unasked: {item: now, property: thickener, otherwise: not_known}
-  t: {title: temperature, kind: number, unit: "°C", limits: [-50, 300], question: {ask: How warm?}}
-  seal: {title: seal, kind: several, choices: [NBR, FKM], question: {ask: Which seals?}, assume: {value: [NBR], because: common}}
-  again: {title: again, kind: number, unit: "°C", question: {ask: Again?, when: {seal: NBR}}, unasked: {fact: t}}
-""",
-    "properties.yaml": """\
-properties:
-  form: {title: form, kind: choice, choices: [grease, oil]}
-  thickener: {title: thickener, kind: choice, choices_of: thickeners, of: grease}
-  vg: {title: ISO VG, kind: number, unit: ISO VG, places: [32, 46], step: {places: yes}}
-  base_oil: {title: base oil, kind: choice, choices_of: oils}
-  viscosity_40: {title: at 40, kind: number, unit: "mm²/s"}
-  viscosity_100: {title: at 100, kind: number, unit: "mm²/s"}
-  intercept: {title: intercept, kind: number, formula: walther_intercept, in: {viscosity_40: viscosity_40, viscosity_100: 9}}
-  cont: {title: steady limit, kind: number, unit: "°C", looked_up: {table: thickeners, by: {id: thickener}, column: cont_c}}
-  special: {title: special, kind: number, worst_of: [{looked_up: {table: thickeners, by: {id: thickener}, column: rank}}, {looked_up: {table: oils, by: {id: base_oil}, column: rank}}]}
-  mixes: {title: mixes, kind: scale, choices: [C, I], same: {item: now}, looked_up: {table: mixing, by: [now_thickener, thickener], otherwise: I}}
-  work: {title: work, kind: scale, choices: [none, much], concluded: {otherwise: none, combine: highest}}
-""",
-    "tables/all.yaml": """\
-tables:
-  thickeners:
-    title: Thickeners
-    key: id
-    columns: {id: {kind: choice}, title: {kind: text}, cont_c: {kind: number, unit: "°C"}, rank: {kind: number}, wet: {kind: choice, choices: [yes, no]}}
-    rows:
-      - {id: soap, title: plain soap, cont_c: 100, rank: 1, wet: no}
-      - {id: complex, cont_c: 130, rank: 2, wet: yes}
-      - {id: clay, rank: 3, wet: yes}
-  oils:
-    title: Oils
-    columns: {id: {kind: choice}, rank: {kind: number}, from_vg: {kind: number, unit: ISO VG}, to_vg: {kind: number, unit: ISO VG}, vi: {kind: number}}
-    rows: [{id: mineral, rank: 0, from_vg: 32, to_vg: 46, vi: 95}]
-  letters:
-    title: Letters
-    columns: {letter: {kind: choice}, top_c: {kind: number, unit: "°C"}}
-    rows: [{letter: A, top_c: 60}]
-  add:
-    title: Additions
-    columns: {t: {kind: band, unit: "°C"}, more: {kind: number, unit: K}}
-    rows: [{t: {below: 50}, more: 5}, {t: {from: 50}, more: 10}]
-  mixing: {title: Mixing, matrix: symmetric, of: {choices_of: thickeners}, values: {choices: [C, I]}, rows: {soap: {soap: C, complex: C, clay: I}, complex: {complex: C, clay: I}, clay: {clay: C}}}
-""",
-    "common/heat.yaml": """\
-computations:
-  - {fact: more_k, title: addition, looked_up: {table: add, by: {t: t}, column: more}}
-  - {fact: need_c, title: need, formula: total, in: {a: t, b: margin_k}, limits: [-50, 400]}
-rules:
-  - id: too_hot
-    title: Too hot
-    status: agreed
-    each_row_of: thickeners
-    where: {wet: yes}
-    when: {need_c: {above: {row: cont_c}}}
-    unless: {seal: FKM, t: {below: 0}}
-    then:
-      - must: {thickener: {none_of: [{row: id}]}}
-        for: {form: grease, viscosity_40: stated}
-      - should: {vg: {at_least: 46}}
-        level: 2
-      - set: {cap: 46}
-      - set: {work: much}
-        for: {mixes: I}
-      - caution: careful
-      - refer: someone
-        withhold: yes
-    because: "{row.title} at {need_c}"
-    source: [{id: practice, where: shop}, {id: standard}]
-    fires: {need_c: 140, seal: [], t: 130}
-    silent: {need_c: 90, seal: [], t: 80}
-  - {id: sketch, title: Sketch, status: draft, when: always, then: [{caution: careful}], because: so, source: [{id: practice}]}
-  - {id: old, title: Old, status: retired, when: always, then: [{caution: careful}], because: so, source: [{id: practice}]}
-""",
-    "hinge/closing.yaml": """\
-rules:
-  - {id: end, title: End, status: agreed, when: {shelf_fits: no}, then: [{refer: someone}], because: so, source: [{id: practice}], fires: {shelf_fits: no}, silent: {shelf_fits: yes}}
-""",
-    "designations.yaml": """\
-designations:
-  din:
-    {title: D, kind: K, written: how, need: need_c, cold: t, water_test: t, water_rating: cont, rating_at_most: 1, nlgi: vg,
-     upper: {table: letters, letter: letter, upper: top_c}, lower: {table: letters, lower: top_c},
-     additive: {P: {property: form, values: [grease]}}, base_oil: {table: oils, property: base_oil, letters: id}}
-  iso:
-    {title: I, prefix: X, written: how, need: need_c, cold: t, water: t, nlgi: vg,
-     upper: {table: letters, letter: letter, upper: top_c}, lower: {table: letters, lower: top_c},
-     water_grid: {table: letters, letter: letter}, load: {property: form, values: [grease], with: B, without: A}}
-""",
-    "usual_oils.yaml": "usual_oils: {table: oils, family: base_oil, from: from_vg, to: to_vg, index: vi, ordinary: {special: {at_most: 1}}}\n",
-    "docket.yaml": "rows:\n  - {id: form, title: Form, recommends: form, shown_if: {t: {above: 0}}}\n",
-    "cautions.yaml": "cautions: {careful: {text: Careful.}}\nreferrals: {someone: {to: someone, text: Ask.}}\n",
-    "shelf/demo.yaml": "shelf: Shelf\nproducts:\n  - {item: A-1, title: First, form: grease, thickener: soap, vg: 46}\n",
-}
+SMALL = Path(__file__).with_name("small")
 
 
 @pytest.fixture
-def folder(tmp_path: Path) -> Path:
-    root = tmp_path / "small"
-    for name, text in SMALL.items():
-        path = root / name
-        path.parent.mkdir(parents=True, exist_ok=True)
-        path.write_text(f"format: 1\n{text}", encoding="utf-8")
-    return root
-
-
-@pytest.fixture
-def small(folder: Path) -> Knowledge:
-    return load(folder, "hinge")
+def small() -> Knowledge:
+    return load(SMALL, "hinge")
 
 
 def test_every_kind_of_domain(small: Knowledge) -> None:
@@ -357,7 +233,7 @@ def test_the_small_files(small: Knowledge) -> None:
     assert small.shelf_title == "Shelf"
 
 
-# ---- the shipped folder ------------------------------------------------------------------------------------------------
+# ---- the shipped folder ------------------------------------------------------------
 
 
 def test_the_fingerprint_is_the_same_anywhere(knowledge: Knowledge, tmp_path: Path) -> None:
@@ -394,7 +270,7 @@ def test_any_change_of_a_file_changes_the_fingerprint(
     assert load(folder).fingerprint != knowledge.fingerprint
 
 
-def test_another_shelf_can_be_named(knowledge: Knowledge, tmp_path: Path) -> None:
+def test_another_shelf_can_be_named(tmp_path: Path) -> None:
     shelf = tmp_path / "ours.yaml"
     shelf.write_text(
         "format: 1\nshelf: Ours\nproducts:\n  - {item: X-1, title: Ours, form: oil, vg: 46}\n", encoding="utf-8"
