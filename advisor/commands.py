@@ -54,7 +54,7 @@ def start() -> int:
     from advisor import explanation
 
     file = demonstration_case()
-    _print(explanation.text(_advice(file, _loaded(None, None))))
+    _print(explanation.text(_advice(file, _loaded(None, None)), full=False))
     _print(f"""
 This was the advice for the bundled demonstration case, {file}
   gudgeon interview            choose a lubricant for a point of your own (on a terminal)

@@ -4,12 +4,14 @@ from textual.app import ComposeResult
 from textual.containers import Vertical
 from textual.content import Content
 
+from advisor.advice import State
 from advisor.interview import RowShown, Session, codes_text, quantities_text, rows_shown
 from advisor.interview.wording import care_text
 from advisor.screens.glyphs import Glyphs
 from advisor.screens.row import Row
 
 _TITLE = 17
+_STATES = {State.OPEN: "open", State.REFERRED: "referred to a person", State.CONFLICT: "in conflict", State.SETTLED: "settled"}
 
 
 class Docket(Vertical):
@@ -34,7 +36,8 @@ class Docket(Vertical):
         advice, changed = self.session.advice, self.session.changed_rows()
         shown = {each.id: each for each in rows_shown(advice)}
         settled = sum(not each.waits_for for each in shown.values())
-        state = "withheld: see the referral" if advice.withheld else f"{settled} of {len(self.titles)} rows settled, {advice.state.value}"
+        state = "withheld: see the referral" if advice.withheld else f"{settled} of {len(self.titles)} rows settled"
+        state += "" if advice.withheld or advice.state is State.SETTLED else f", the case is {_STATES[advice.state]}"
         self.query_one("#docket_heading", Row).show(Content.assemble(("DOCKET", "bold $accent"), (f"  {state}", "$quiet")))
         for row, title in self.titles:
             each = shown.get(row) or RowShown(row, title, "withheld", ())

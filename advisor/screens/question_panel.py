@@ -79,8 +79,8 @@ class QuestionPanel(Vertical):
         lines = sum(-(-len(text) // max(1, width - _MARGIN)) for text in texts)
         most = max(_LEAST_LIST, height - lines - _NEIGHBOURS)
         self.lines = lines + _FIELD_LINES
-        options = self.editor if isinstance(self.editor, OptionList) else next(iter(self.editor.query(OptionList)), None)
-        if options is not None:
+        inside: list[OptionList] = [self.editor] if isinstance(self.editor, OptionList) else list(self.editor.query(OptionList))
+        for options in inside:
             options.styles.max_height = most
             self.lines = lines + 1 + min(most, sum(str(each.prompt).count("\n") + 1 for each in options.options))
 

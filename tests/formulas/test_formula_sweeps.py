@@ -56,6 +56,7 @@ DIPS: dict[str, Callable[[float], float]] = {
     "viscous_torque": lambda result: 0.008 * result,
     "thermal_reference_speed": lambda result: 0.008 * result,
     "running_temperature_estimate": lambda result: 0.01 * (abs(result) + 50),
+    "running_temperature_spread": lambda _: 4,
     # The printed rows of X, Y and e meet within 0.6 %.
     "equivalent_load_deep_groove": lambda result: 0.006 * result,
     # The curves meet at a viscosity ratio of 0.4 within the last digit of their coefficients, a tall power of it.

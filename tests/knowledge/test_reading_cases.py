@@ -4,7 +4,7 @@ from collections.abc import Callable
 from pathlib import Path
 
 import pytest
-from hypothesis import given
+from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from advisor.answers import Saved, Unsuitable, answer, read_case, show_answer
@@ -152,6 +152,7 @@ UNITS = [
 
 
 @pytest.mark.parametrize(("name", "written", "low", "high"), UNITS, ids=lambda part: str(part)[:25])
+@settings(deadline=None)
 @given(share=st.floats(0, 1))
 def test_any_unit_gives_the_same_case(
     name: str, written: Callable[[float], str], low: float, high: float, share: float, knowledge: Knowledge
@@ -165,6 +166,7 @@ def test_any_unit_gives_the_same_case(
     assert plain.value == value
 
 
+@settings(deadline=None)
 @given(data=st.data())
 def test_an_answer_shown_and_typed_back_is_the_same(data: st.DataObject, knowledge: Knowledge) -> None:
     """What the sheet prints of a choice or a tick list can be typed back; a number to the digits shown."""
