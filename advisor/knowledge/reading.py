@@ -42,10 +42,17 @@ def _recovered(tree: Mapping, shape: type[Filed], problems: Problems, lost: Lost
         return shape.model_validate(tree), tree
     except ValidationError as fault:
         tell(tree, shape, fault, problems)
-        places = [error["loc"][:2] for error in fault.errors()]
+        errors = fault.errors()
+    unknown = [error["loc"] for error in errors if error["type"] == "extra_forbidden"]
+    strange = {str(loc[0]) for loc in unknown if len(loc) == 1}
+    places = {error["loc"][:2] for error in errors if error["loc"][0] not in strange}
     if any(len(place) < 2 or place[0] not in shape.sections for place in places):
         return None
-    rest = _without(tree, set(places), shape, lost)
+    if strange:
+        lost.lose_whole(*(space for name, space in shape.sections.items() if space and name not in tree))
+    rest = _without(tree, places, shape, lost)
+    for key in strange:
+        del rest[key]
     try:
         return shape.model_validate(rest), rest
     except ValidationError:
