@@ -1,5 +1,6 @@
 """Answers as people type them, and saved cases: typed by the declared facts, kept with the text that was typed."""
 
+import re
 from collections.abc import Mapping as Map
 from dataclasses import dataclass, field
 from pathlib import Path
@@ -12,6 +13,9 @@ from advisor.quantities import Unreadable, parse, show
 
 DONT_KNOW = "dont_know"
 UNANSWERED = "unanswered"
+OR = " or "
+_NUMBER = re.compile(r"^[+\-−]?[\d.,'’\s]+")
+_CODE = re.compile(r"[A-Za-z]*\d+(?:/\d+)?")
 
 
 class Unsuitable(ValueError):
@@ -28,6 +32,10 @@ def answer(declaration: Declaration, typed: str, *, strict: bool = True) -> Answ
     if text in {"?", DONT_KNOW, "don't know"}:
         return Answer(None, DONT_KNOW)
     domain = declaration.domain
+    if domain.kind == "number" and ".." in text:
+        return _span(declaration, text, strict=strict)
+    if domain.kind in {"choice", "scale", "yes_no"} and OR in text and not _named(declaration, text):
+        return _alternatives(declaration, text)
     if domain.kind == "number":
         return _number(declaration, text, strict=strict)
     if domain.kind == "text":
@@ -56,22 +64,47 @@ def _number(declaration: Declaration, text: str, *, strict: bool) -> Answer:
     return Answer(value, text)
 
 
+def _span(declaration: Declaration, text: str, *, strict: bool) -> Answer:
+    """A range such as `70..90 °C`: the unit of its end serves for both."""
+    low_text, _, high_text = (part.strip() for part in text.partition(".."))
+    high = _number(declaration, high_text, strict=strict)
+    unit = _NUMBER.sub("", high_text).strip()
+    bare = not any(letter.isalpha() or letter in '%"°' for letter in low_text)
+    low = _number(declaration, f"{low_text} {unit}" if bare and low_text else low_text, strict=strict)
+    if not isinstance(low.value, float) or not isinstance(high.value, float) or not low.value < high.value:
+        raise Unsuitable(f"'{text}' is no range: write the lower value first, as in 70..90.")
+    return Answer(None, text, span=(low.value, high.value))
+
+
+def _alternatives(declaration: Declaration, text: str) -> Answer:
+    """Several choices left open, such as `pressed_steel or polyamide`."""
+    named = tuple(dict.fromkeys(_choice(declaration, part.strip()) for part in text.split(OR)))
+    return Answer(named[0], text) if len(named) == 1 else Answer(None, text, alternatives=named)
+
+
 def _choice(declaration: Declaration, text: str) -> str:
+    if found := _named(declaration, text) or _code(text, declaration.domain.choices):
+        return found
     choices = declaration.domain.choices
-    wanted = (
-        {"true": "yes", "false": "no", "y": "yes", "n": "no"}.get(text, text)
-        if declaration.domain.kind == "yes_no"
-        else text
-    )
+    near = nearest(text, choices)
+    known = near or f" Choose one of {', '.join(list(choices)[:12])}{' ...' if len(choices) > 12 else ''}."
+    raise Unsuitable(f"'{text}' is not one of the choices of {declaration.title}.{known}")
+
+
+def _named(declaration: Declaration, text: str) -> str:
+    """The choice that a text names by its id or its label; empty if none."""
+    choices, yes_no = declaration.domain.choices, declaration.domain.kind == "yes_no"
+    wanted = {"true": "yes", "false": "no", "y": "yes", "n": "no"}.get(text, text) if yes_no else text
     if wanted in choices:
         return wanted
     folded = wanted.casefold()
-    for one, label in choices.items():
-        if folded in {one.casefold(), label.casefold()}:
-            return one
-    near = nearest(wanted, choices)
-    known = near or f" Choose one of {', '.join(list(choices)[:12])}{' ...' if len(choices) > 12 else ''}."
-    raise Unsuitable(f"'{text}' is not one of the choices of {declaration.title}.{known}")
+    return next((one for one, label in choices.items() if folded in {one.casefold(), label.casefold()}), "")
+
+
+def _code(text: str, choices: Map[str, str]) -> str:
+    """The code with which a designation begins, blanks and suffixes aside: `NU 208 ECP` is NU208."""
+    found = _CODE.match(text.replace(" ", "").upper())
+    return found.group() if found and found.group() in choices else ""
 
 
 def _ticks(declaration: Declaration, text: str) -> tuple[str, ...]:

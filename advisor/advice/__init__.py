@@ -1,10 +1,12 @@
 """From a case to advice: `Advisor(knowledge).advise(case)`."""
 
 from advisor.advice.advising import Advisor
+from advisor.advice.branching import TooOpen
 from advisor.advice.model import (
     FORMAT,
     Advice,
     AtLimit,
+    Branch,
     Candidate,
     CautionGiven,
     Line,
@@ -21,6 +23,7 @@ __all__ = [
     "Advice",
     "Advisor",
     "AtLimit",
+    "Branch",
     "Candidate",
     "CautionGiven",
     "Line",
@@ -29,5 +32,6 @@ __all__ = [
     "Referral",
     "State",
     "StepTrace",
+    "TooOpen",
     "falls_on",
 ]

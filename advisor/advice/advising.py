@@ -2,6 +2,7 @@
 
 from collections.abc import Sequence
 
+from advisor.advice.branching import advise_over, is_open
 from advisor.advice.closing import cautions, maker_verdict, musts_at_limit
 from advisor.advice.model import Advice, Line, Ranked, State
 from advisor.advice.recommending import Recommendation, Recommender
@@ -61,9 +62,17 @@ class Advisor:
         """The advice for a case.
 
         `assume_gaps` treats every question without an answer as a don't know; `only` keeps to these products.
+        What the case leaves open (forks, alternatives, a range) is run once per value, into branches.
+
+        Raises:
+            TooOpen: where too much is left open at once.
         """
-        run = Run(self.knowledge, self.rules, self.setters, case, assume_gaps=assume_gaps)
-        return self._complete(run, self.shelf(only)) if run.steps() else self._withheld(run)
+
+        def run_once(case: Case) -> Advice:
+            run = Run(self.knowledge, self.rules, self.setters, case, assume_gaps=assume_gaps)
+            return self._complete(run, self.shelf(only)) if run.steps() else self._withheld(run)
+
+        return advise_over(case, self.knowledge, run_once) if is_open(case, self.knowledge) else run_once(case)
 
     def _withheld(self, run: Run) -> Advice:
         """A referral that hides products and grades: nothing is specified, nothing is judged."""

@@ -3,10 +3,10 @@
 from collections.abc import Iterable, Mapping
 
 from advisor.case import Case, Fact, Origin
-from advisor.computations import compute
+from advisor.computations import compute, looked_up
 from advisor.conditions import VOID, Coded, FactRef, Value, holds, waits_for
 from advisor.conditions.terms import Void
-from advisor.knowledge import Computation, Declaration, FromItem, Knowledge
+from advisor.knowledge import Computation, Declaration, FromItem, Knowledge, LookedUp
 
 
 class Facts:
@@ -57,10 +57,27 @@ class Facts:
             )
         elif answer is not None and answer.value is not None:
             self.put(Fact(name, answer.value, Origin.ANSWERED, "an estimate" if answer.estimate else ""))
+        elif declaration.filled is not None and self._filled(declaration, declaration.filled):
+            return
+        elif declaration.question.optional and answer is None:
+            self._stand_in(declaration)
         elif (answer is not None or assume_gaps) and declaration.assume is not None:
             self.put(Fact(name, declaration.assume.value, Origin.ASSUMED, declaration.assume.because))
         else:
             self.put(Fact(name, None, Origin.UNANSWERED), (name,))
+
+    def _filled(self, declaration: Declaration, how: LookedUp) -> bool:
+        """Fill the answer in from a table, where a fact asked earlier allows; else it waits, or is asked itself."""
+        waits = [name for _, name in how.by if self.facts[name].value is None]
+        if waits:
+            questions = self.questions_behind(waits)
+            self.put(Fact(declaration.name, None, Origin.UNANSWERED), questions)
+            return bool(questions)
+        found = looked_up(how, lambda name: self.facts[name].value, self.knowledge.tables).value
+        if found is not None:
+            told = ", ".join(str(self.facts[name].value) for _, name in how.by)
+            self.put(Fact(declaration.name, found, Origin.LOOKED_UP, f"from table {how.table}, {told}"))
+        return found is not None
 
     def _stand_in(self, declaration: Declaration) -> None:
         name, unasked = declaration.name, declaration.unasked

@@ -9,9 +9,9 @@ from advisor.documents import Mapping, Node, Scalar
 from advisor.knowledge.bindings import Bindings
 from advisor.knowledge.citations import Citations
 from advisor.knowledge.folder import Placed
-from advisor.knowledge.model import Assumption, Concluded, Declaration, FromItem, Property, Question
+from advisor.knowledge.model import Assumption, Concluded, Declaration, FromItem, LookedUp, Property, Question
 from advisor.knowledge.parsing import condition
-from advisor.knowledge.reading import mapping_in
+from advisor.knowledge.reading import list_in, mapping_in
 from advisor.knowledge.schema import AssumeShape, ConcludedShape, FactShape, PropertyShape
 from advisor.knowledge.tables import column_domain
 from advisor.knowledge.values import Mistyped, Scope, value
@@ -29,9 +29,7 @@ def domains_of(
         before = len(scope.problems)
         domain = column_domain(shape, placed.tree, labels, scope)
         if domain.kind == "item":
-            domain = replace(
-                domain, choices={**items, **domain.choices}, open_choices=scope.lost.may_have("items", "")
-            )
+            domain = replace(domain, choices={**items, **domain.choices}, open_choices=scope.lost.may_have("items", ""))
         borrowed = shape.choices_of is None or shape.choices_of in labels
         if domain.kind in {"choice", "scale", "several"} and not domain.choices and borrowed:
             scope.problem(placed.tree["kind"].mark, f"a {domain.kind} needs its choices", "list them under 'choices:'")
@@ -74,6 +72,7 @@ class FactReader:
 
     domains: Map[str, Domain]
     properties: Map[str, Domain]
+    bindings: Bindings
     citations: Citations
     ground: Scope
 
@@ -110,6 +109,7 @@ class FactReader:
             question,
             assume=self._assumption(shape.assume, tree.get("assume"), domain, scope.at("assume")),
             unasked=self._unasked(shape, tree, domain, asked, scope.at("unasked")),
+            filled=self._filled(shape, tree, domain, asked, scope.at("filled")),
             concluded=concluded(shape.concluded, tree.get("concluded"), domain, scope.at("concluded")),
             tunable=self._assumption(shape.tunable, tree.get("tunable"), domain, scope.at("tunable")),
         )
@@ -124,24 +124,37 @@ class FactReader:
                 when = condition(node["when"], scope.at("question", "when"))
             except Mistyped:
                 when = ALWAYS
-            if "unasked" not in tree:
-                scope.problem(
-                    node.key_marks["when"],
-                    "a question with 'when' needs the value that stands where it is not asked",
-                    "add 'unasked:' to the fact",
-                )
-        return Question(shape.question.ask, shape.question.help, shape.question.section, shape.question.decides, when)
+        key = next((each for each in ("when", "optional") if isinstance(node, Mapping) and each in node), None)
+        if key is not None and isinstance(node, Mapping) and "unasked" not in tree:
+            message = f"a question with '{key}' needs the value that stands where it is not asked"
+            scope.problem(node.key_marks[key], message, "add 'unasked:' to the fact")
+        asked = shape.question
+        return Question(asked.ask, asked.help, asked.section, asked.decides, when, asked.optional)
+
+    def _filled(
+        self, shape: FactShape, tree: Mapping, domain: Domain, asked: Map[str, Domain], scope: Scope
+    ) -> LookedUp | None:
+        """The look-up that fills the answer in, where a fact asked earlier allows."""
+        if shape.filled is None:
+            return None
+        earlier = Bindings(self.bindings.tables, asked, {})
+        return earlier.looked_up(shape.filled, mapping_in(tree, "filled"), domain, scope)
 
     def _assumption(
         self, shape: AssumeShape | None, node: Node | None, domain: Domain, scope: Scope
     ) -> Assumption | None:
         if shape is None or not isinstance(node, Mapping):
             return None
+        if ("value" in node) is ("each" in node):
+            scope.problem(node.mark, "an assumption is one value, or each of several", "value: ..., or each: [...]")
+            return None
         try:
-            assumed = value(node["value"], domain, scope)
+            each = tuple(value(one, domain, scope.at("each")) for one in list_in(node, "each"))
+            assumed = each[0] if each else value(node["value"], domain, scope)
         except Mistyped:
             return None
-        return Assumption(assumed, shape.because, self.citations.read(shape.source, node, scope), shape.state == "open")
+        source = self.citations.read(shape.source, node, scope)
+        return Assumption(assumed, shape.because, source, shape.state == "open", each)
 
     def _unasked(
         self, shape: FactShape, tree: Mapping, domain: Domain, asked: Map[str, Domain], scope: Scope
@@ -149,10 +162,9 @@ class FactReader:
         node = tree.get("unasked")
         if node is None:
             return None
-        if shape.question is None or shape.question.when is None:
-            scope.problem(
-                tree.key_marks["unasked"], "'unasked' stands only beside a question with 'when'", "take it out"
-            )
+        if shape.question is None or (shape.question.when is None and not shape.question.optional):
+            message = "'unasked' stands only beside a question with 'when', or an optional one"
+            scope.problem(tree.key_marks["unasked"], message, "take it out")
         try:
             if isinstance(node, Mapping) and "fact" in node:
                 name = str(node["fact"])

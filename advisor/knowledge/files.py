@@ -12,6 +12,7 @@ from advisor.knowledge.schema import (
     ComputationShape,
     DocketRowShape,
     FactShape,
+    ForkShape,
     Id,
     Name,
     Number,
@@ -193,6 +194,12 @@ class DesignationsFile(File):
     designations: DesignationsShape
 
 
+class ForksFile(File):
+    """forks.yaml; a folder may do without it."""
+
+    forks: dict[Name, ForkShape]
+
+
 class ShelfFile(File):
     """A shelf."""
 
@@ -213,3 +220,6 @@ SHAPES: Mapping[str, type[File]] = {
     "designations.yaml": DesignationsFile,
 }
 """The files that every folder has."""
+
+MAY_HAVE: Mapping[str, type[File]] = {"forks.yaml": ForksFile}
+"""The files that a folder may do without."""

@@ -9,6 +9,7 @@ from typing import Generic, TypeVar
 
 from advisor.documents import Mapping, Problem, Problems, nearest
 from advisor.knowledge.files import (
+    MAY_HAVE,
     SHAPES,
     FactsFile,
     File,
@@ -92,8 +93,9 @@ def read_folder(root: Path, point_kind: str, shelf: Path | None, problems: Probl
         problems.add(Problem(str(root), 1, 1, (), "this is no folder", "name a knowledge folder"))
         return None
     folder = Folder(root, problems)
-    for name, shape in SHAPES.items():
-        folder.keep(name, shape)
+    for name, shape in {**SHAPES, **MAY_HAVE}.items():
+        if name in SHAPES or (root / name).exists():
+            folder.keep(name, shape)
     _read_tables(folder)
     _read_properties(folder)
     _read_facts(folder, "facts.yaml")
@@ -140,9 +142,7 @@ def _kind_known(folder: Folder, shape: PointKindsFile, tree: Mapping, point_kind
 
 def _clash(folder: Folder, known: Map[str, object], name: str, parent: Mapping) -> bool:
     if name in known:
-        folder.problems.add(
-            Problem.at(parent.key_marks[name], f"'{name}' is declared twice", "give each its own id")
-        )
+        folder.problems.add(Problem.at(parent.key_marks[name], f"'{name}' is declared twice", "give each its own id"))
     return name in known
 
 
@@ -196,7 +196,7 @@ def _strays(folder: Folder) -> None:
             continue
         place = parts[0] if len(parts) == 2 else ""
         known = (
-            parts[0] in SHAPES
+            parts[0] in SHAPES or parts[0] in MAY_HAVE
             if len(parts) == 1
             else path.suffix == ".yaml" and (place in {"tables", "shelf"} or (place in places and path.stem in stems))
         )

@@ -14,12 +14,13 @@ from advisor.knowledge.files import (
     CautionsFile,
     DesignationsFile,
     DocketFile,
+    ForksFile,
     SourcesFile,
     StepsFile,
     UsualOilsFile,
 )
 from advisor.knowledge.folder import Folder, fingerprint, read_folder
-from advisor.knowledge.model import Computation, DocketRow, Instance, Knowledge, PointKind, Rule, Step, UsualOils
+from advisor.knowledge.model import Computation, DocketRow, Fork, Instance, Knowledge, PointKind, Rule, Step, UsualOils
 from advisor.knowledge.particulars import Cautions, Particulars
 from advisor.knowledge.products import items_of, read_products
 from advisor.knowledge.rules import Names, RuleReader
@@ -98,7 +99,7 @@ class _Loader:
         self._both_kinds(facts, properties)
         self.bindings = Bindings(self.tables, {**facts, **self._computed(facts, properties)}, properties)
         self.computations = self._computations()
-        self.facts = FactReader(facts, properties, self.citations, self.ground).read(folder.facts)
+        self.facts = FactReader(facts, properties, self.bindings, self.citations, self.ground).read(folder.facts)
         self.properties = read_properties(folder.properties, self.bindings, self.citations, self.ground)
 
     def _both_kinds(self, facts: Map[str, Domain], properties: Map[str, Domain]) -> None:
@@ -174,6 +175,7 @@ class _Loader:
             folder.shelf[0].shelf,
             products,
             fingerprint(folder.root),
+            self._forks(),
         )
         trees = {placed.shape.id: placed.tree for placed in reversed(folder.rules)}
         CrossChecks(knowledge, trees, self._computation_trees(), self.ground).check()
@@ -195,9 +197,16 @@ class _Loader:
         docket = part.docket(*found) if (found := kept("docket.yaml", DocketFile)) else None
         oils = part.usual_oils(*made) if (made := kept("usual_oils.yaml", UsualOilsFile)) else None
         codes = part.designations(*written) if (written := kept("designations.yaml", DesignationsFile)) else None
-        return None if cautions is None or docket is None or oils is None or codes is None else (
-            cautions, docket, oils, codes
+        return (
+            None
+            if cautions is None or docket is None or oils is None or codes is None
+            else (cautions, docket, oils, codes)
         )
+
+    def _forks(self) -> dict[str, Fork]:
+        kept, ground = self.folder.kept("forks.yaml", ForksFile), replace(self.ground, facts=self.bindings.facts)
+        part = Particulars(self.bindings.facts, self.bindings.properties, self.tables, self.citations, ground)
+        return part.forks(*kept) if kept else {}
 
     def _rules(self) -> tuple[dict[str, Rule], dict[str, tuple[Instance, ...]]]:
         rules: dict[str, Rule] = {}

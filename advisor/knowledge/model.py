@@ -37,6 +37,7 @@ class Question:
     section: str
     decides: str
     when: Condition
+    optional: bool = False
 
 
 @dataclass(frozen=True, slots=True)
@@ -94,6 +95,7 @@ class Declaration:
     question: Question | None = None
     assume: Assumption | None = None
     unasked: Value | FactRef | FromItem | None = None
+    filled: "LookedUp | None" = None
     concluded: Concluded | None = None
     tunable: Assumption | None = None
 
@@ -291,6 +293,7 @@ class Caution:
     text: str
     source: tuple[Citation, ...]
     to: str = ""
+    standing: bool = False
 
 
 @dataclass(frozen=True, slots=True)

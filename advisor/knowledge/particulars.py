@@ -5,14 +5,14 @@ from collections.abc import Mapping as Map
 from contextlib import suppress
 from dataclasses import dataclass
 
-from advisor.conditions import ALWAYS, Condition, Domain
+from advisor.conditions import ALWAYS, Condition, Domain, Value
 from advisor.documents import Mapping, Node, Scalar
 from advisor.knowledge.citations import Citations
-from advisor.knowledge.files import CautionsFile, DesignationsFile, DocketFile, UsualOilsFile
-from advisor.knowledge.model import Caution, DocketRow, Procedure, Table, UsualOils
+from advisor.knowledge.files import CautionsFile, DesignationsFile, DocketFile, ForksFile, UsualOilsFile
+from advisor.knowledge.model import Caution, DocketRow, Fork, Procedure, Table, UsualOils
 from advisor.knowledge.parsing import condition
 from advisor.knowledge.reading import list_in, mapping_in
-from advisor.knowledge.schema import CautionShape, DocketRowShape, ReferralShape
+from advisor.knowledge.schema import CautionShape, DocketRowShape, ForkBranchShape, ReferralShape
 from advisor.knowledge.values import Mistyped, Scope, value
 
 Cautions = tuple[dict[str, Caution], dict[str, Caution], dict[str, Procedure]]
@@ -45,6 +45,7 @@ class Particulars:
                 shape.text,
                 self.citations.read(shape.source, mapping_in(parent, name), scope.at(name)),
                 shape.to if isinstance(shape, ReferralShape) else "",
+                shape.standing,
             )
             for name, shape in shapes.items()
         }
@@ -65,6 +66,32 @@ class Particulars:
             )
             for name, each in shape.change_over.items()
         }
+
+    def forks(self, shape: ForksFile, tree: Mapping) -> dict[str, Fork]:
+        """The contested points."""
+        found: dict[str, Fork] = {}
+        for name, each in shape.forks.items():
+            node = mapping_in(mapping_in(tree, "forks"), name)
+            scope = self.ground.over(self.facts, "forks", name)
+            if not self._known(node["fact"], self.facts, "fact", scope):
+                continue
+            with suppress(Mistyped):
+                branches = tuple(
+                    (branch.label, self._branch(branch, mapping_in(at), self.facts[each.fact], scope))
+                    for branch, at in zip(each.branches, list_in(node, "branches"), strict=True)
+                )
+                when = condition(node["when"], scope.at("when"))
+                source = self.citations.read(each.source, node, scope)
+                found[name] = Fork(name, each.title, when, each.fact, branches, each.because, source)
+        return found
+
+    def _branch(self, shape: ForkBranchShape, node: Mapping, domain: Domain, scope: Scope) -> Value:
+        """The value of a branch: for tick lists the ticks that it leaves out."""
+        several = domain.kind == "several"
+        wanted = "without" if several else "value"
+        if (shape.value is None) is not several or (shape.without is None) is several:
+            raise scope.fault(node, f"a branch of this fact has '{wanted}'", f"{wanted}: ...")
+        return value(node[wanted], domain, scope.at(wanted))
 
     def docket(self, shape: DocketFile, tree: Mapping) -> tuple[DocketRow, ...]:
         """The rows of the docket, then those of the quantities."""

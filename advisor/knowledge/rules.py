@@ -86,9 +86,7 @@ class RuleReader:
     def _table(self, shape: RuleShape, tree: Mapping, scope: Scope) -> Table | None:
         if shape.each_row_of is None:
             if "where" in tree:
-                scope.problem(
-                    tree.key_marks["where"], "'where' chooses rows and needs 'each_row_of'", "name the table"
-                )
+                scope.problem(tree.key_marks["where"], "'where' chooses rows and needs 'each_row_of'", "name the table")
             return None
         table = self.names.tables.get(shape.each_row_of)
         if table is None or table.matrix:

@@ -129,13 +129,15 @@ class QuestionShape(Shape):
     help: Text = ""
     section: Text = ""
     decides: Literal["lubricant", "quantity"] = "lubricant"
+    optional: YesNo = False
     when: Tree = None
 
 
 class AssumeShape(Shape):
     """What stands for a don't know."""
 
-    value: Tree
+    value: Tree = None
+    each: list[Tree] | None = None
     because: Text
     source: Citations = []
     state: Literal["open"] | None = None
@@ -148,17 +150,6 @@ class ConcludedShape(Shape):
     combine: Literal["highest", "lowest", "one"]
 
 
-class FactShape(DomainShape):
-    """A declared fact."""
-
-    title: Text
-    question: QuestionShape | None = None
-    assume: AssumeShape | None = None
-    unasked: Tree = None
-    concluded: ConcludedShape | None = None
-    tunable: AssumeShape | None = None
-
-
 class LookUpShape(Shape):
     """A look-up in a table."""
 
@@ -167,6 +158,18 @@ class LookUpShape(Shape):
     column: Id | None = None
     combine: Literal["highest", "lowest"] | None = None
     otherwise: Tree = None
+
+
+class FactShape(DomainShape):
+    """A declared fact."""
+
+    title: Text
+    question: QuestionShape | None = None
+    assume: AssumeShape | None = None
+    unasked: Tree = None
+    filled: LookUpShape | None = None
+    concluded: ConcludedShape | None = None
+    tunable: AssumeShape | None = None
 
 
 class WorstPartShape(Shape):
@@ -272,6 +275,26 @@ class CautionShape(Shape):
     """A caution."""
 
     text: Text
+    standing: YesNo = False
+    source: Citations = []
+
+
+class ForkBranchShape(Shape):
+    """One branch of a fork: a value for the fact, or ticks to leave out."""
+
+    label: Text
+    value: Tree = None
+    without: Tree = None
+
+
+class ForkShape(Shape):
+    """A contested point that is run once per branch."""
+
+    title: Text
+    when: Tree
+    fact: Name
+    branches: Annotated[list[ForkBranchShape], Field(min_length=2, max_length=6)]
+    because: Text
     source: Citations = []
 
 

@@ -20,7 +20,8 @@ _FEW = 3
 _PLAIN = {
     "literal_error": ("one value is expected here, not a list or a mapping", "write the value alone"),
     "string_pattern_mismatch": (
-        "'{seen}' is no id", "use small letters, digits and underscores, beginning with a letter"
+        "'{seen}' is no id",
+        "use small letters, digits and underscores, beginning with a letter",
     ),
     "model_type": ("a mapping (key: value) is expected here", "indent the lines below it, each as 'key: value'"),
     "dict_type": ("a mapping (key: value) is expected here", "indent the lines below it, each as 'key: value'"),

@@ -153,8 +153,8 @@ def test_a_result_moves_as_declared_when_one_input_rises(
     assert high >= low - dip - 1e-9 * abs(low)
 
 
-# Steps that are no fault of the formula: whole numbers, joints that move with another input, divisors of both signs.
-STEPS = {"reported_viscosity_index", "effective_temperature", "quotient"}
+# Steps that are no fault of the formula: whole numbers, and joints that move with another input.
+STEPS = {"reported_viscosity_index", "effective_temperature"}
 
 
 @EACH
@@ -164,7 +164,8 @@ def test_a_result_is_continuous_but_for_declared_joints(
 ) -> None:
     moved = formula.inputs[which % len(formula.inputs)]
     values = _values(formula, places)
-    if formula.name in STEPS or moved.unit == "ISO VG":
+    # Plain arithmetic on billions steps by the last digit of the machine, and a divisor changes its sign.
+    if formula.name in STEPS or formula.subject == "arithmetic" or moved.unit == "ISO VG":
         return
     step = _steepest_step(formula, values, moved, sorted(_moved(moved, values[moved.name], end) for end in ends))
     if step is None:
