@@ -3,21 +3,19 @@
 from collections.abc import Sequence
 
 from advisor.advice.branching import advise_over, is_open
-from advisor.advice.closing import cautions, maker_verdict, musts_at_limit
+from advisor.advice.closing import cautions, closing_record, musts_at_limit
 from advisor.advice.model import Advice, Line, Ranked, State
 from advisor.advice.recommending import Recommendation, Recommender
 from advisor.advice.running import CLOSING, Run
 from advisor.case import Case
-from advisor.conditions import VOID, Coded, holds
-from advisor.conditions.terms import Void
+from advisor.conditions import holds
 from advisor.designations import CodesFound, Designer
 from advisor.inference import StepRules
 from advisor.knowledge import CLOSING_FACTS, Knowledge, Sets
-from advisor.shelf import Catalogue, Item, Judgement, Verdict, choices, products, usual_oils
+from advisor.shelf import Catalogue, Item, Judgement, choices, products, usual_oils
 from advisor.specification import Conflict, Specification, combine, mentions
 
 _WITHHELD = "withheld: see the referral"
-_IN = {Verdict.FITS, Verdict.SECOND_BEST, Verdict.STILL_IN}
 
 
 class Advisor:
@@ -102,6 +100,8 @@ class Advisor:
             at_limit=(),
             set_aside=tuple(run.facts.set_aside),
             trace=tuple(run.trace),
+            closing={},
+            kappa=None,
         )
 
     def _complete(self, run: Run, catalogue: Catalogue) -> Advice:
@@ -118,7 +118,8 @@ class Advisor:
         questions = run.open_questions()
         is_open = any(each.decides == "lubricant" for each in questions)
         shelf = _ranked(judgement, is_open=is_open)
-        self._close(run, found, shelf)
+        closing = closing_record(run, found, shelf)
+        run.fire(CLOSING, (), closing)
         assumed, keeping = run.assumptions()
         conflicts = _conflicts(specification, found, run)
         return Advice(
@@ -146,17 +147,9 @@ class Advisor:
             at_limit=musts_at_limit(run, found, judgement),
             set_aside=tuple(run.facts.set_aside),
             trace=tuple(run.trace),
+            closing=closing,
+            kappa=found.kappa,
         )
-
-    def _close(self, run: Run, found: Recommendation, shelf: Sequence[Ranked]) -> None:
-        """The closing step sees the result and may only caution and refer."""
-        record: dict[str, Coded | Void] = dict(run.facts.record)
-        record["recommended_kappa"] = VOID if found.kappa is None else found.kappa
-        record["recommended_form"] = found.form or VOID
-        record["shelf_fits"] = float(any(each.verdict in _IN for each in shelf))
-        if "maker_item" not in run.facts.basis:
-            record["maker_verdict"] = maker_verdict(run, shelf)
-        run.fire(CLOSING, (), record)
 
     def _docket(self, run: Run, found: Recommendation, specification: Specification) -> tuple[Line, ...]:
         lines = []

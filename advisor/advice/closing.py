@@ -5,19 +5,36 @@ from collections.abc import Sequence
 from advisor.advice.model import AtLimit, CautionGiven, Ranked
 from advisor.advice.recommending import Recommendation
 from advisor.advice.running import Run
-from advisor.conditions import ALWAYS, Bound, Condition, failures
+from advisor.conditions import ALWAYS, VOID, Bound, Coded, Condition, failures
+from advisor.conditions.terms import Void
 from advisor.knowledge import Asks, Instance
 from advisor.shelf import Judgement, Verdict, at_limit, judge, places
 from advisor.specification import mentions, with_limits
 
+IN = frozenset({Verdict.FITS, Verdict.SECOND_BEST, Verdict.STILL_IN})
+"""Verdicts of products that may be used."""
 
-def maker_verdict(run: Run, shelf: Sequence[Ranked]) -> str:
-    """What became of the lubricant that the machine maker names."""
-    fact = run.facts.facts.get("maker_item")
-    named = str(fact.value) if fact is not None else "none_named"
-    ranked = next((each for each in shelf if each.item == named), None)
+
+def closing_record(run: Run, found: Recommendation, shelf: Sequence[Ranked]) -> dict[str, Coded | Void]:
+    """What the closing step sees: the facts, and named results."""
+    record: dict[str, Coded | Void] = dict(run.facts.record)
+    record["recommended_kappa"] = VOID if found.kappa is None else found.kappa
+    record["recommended_form"] = found.form or VOID
+    record["shelf_fits"] = float(any(each.verdict in IN for each in shelf))
+    for fact, result, none in (
+        ("maker_item", "maker_verdict", "none_named"),
+        ("incumbent", "incumbent_verdict", "none"),
+    ):
+        if fact not in run.facts.basis and fact in run.facts.facts:
+            record[result] = _verdict_on(str(run.facts.facts[fact].value), none, shelf)
+    return record
+
+
+def _verdict_on(item: str, none: str, shelf: Sequence[Ranked]) -> str:
+    """What became of a named product: that of the machine maker, or the one in use."""
+    ranked = next((each for each in shelf if each.item == item), None)
     if ranked is None:
-        return "none_named" if named == "none_named" else "not_on_the_shelf"
+        return "none_named" if item == none else "not_on_the_shelf"
     return Verdict.FITS.value if ranked.verdict is Verdict.STILL_IN else ranked.verdict.value
 
 

@@ -143,6 +143,8 @@ class Advice:
     at_limit: tuple[AtLimit, ...]
     set_aside: tuple[str, ...]
     trace: tuple[StepTrace, ...]
+    closing: Record
+    kappa: float | None
     branches: tuple[Branch, ...] = ()
     held_over: str = ""
 

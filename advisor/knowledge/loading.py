@@ -28,16 +28,18 @@ from advisor.knowledge.tables import choices_of, read_tables
 from advisor.knowledge.values import Scope
 
 MOST_ALIKE = 4
+_VERDICT = Domain(
+    "choice",
+    choices={
+        name: name.replace("_", " ")
+        for name in ("none_named", "not_on_the_shelf", "fits", "second_best", "falls_short", "unproven")
+    },
+)
 CLOSING_FACTS: Map[str, Domain] = {
     "recommended_kappa": Domain("number"),
     "recommended_form": Domain("choice", choices={"grease": "grease", "oil": "oil"}),
-    "maker_verdict": Domain(
-        "choice",
-        choices={
-            name: name.replace("_", " ")
-            for name in ("none_named", "not_on_the_shelf", "fits", "second_best", "falls_short", "unproven")
-        },
-    ),
+    "maker_verdict": _VERDICT,
+    "incumbent_verdict": _VERDICT,
     "shelf_fits": Domain("yes_no", choices={"no": "no", "yes": "yes"}),
 }
 

@@ -18,7 +18,6 @@ from advisor.conditions import (
     holds,
     leaves,
 )
-from advisor.explanation.seeing import recommended_kappa
 from advisor.specification import Demand, mentions
 
 Demands = tuple[Demand, ...]
@@ -39,7 +38,7 @@ def falling(advice: Advice, name: str) -> list[Demands]:
 def _recommended(advice: Advice, name: str) -> list[Coded]:
     """The recommended values of a property, as conditions see them."""
     if name == "kappa":
-        kappa = recommended_kappa(advice)
+        kappa = advice.kappa
         return [] if kappa is None else [kappa]
     shown = [row.id for row in advice.knowledge.docket if row.recommends == name]
     domain = advice.knowledge.properties[name].domain
