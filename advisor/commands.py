@@ -142,10 +142,13 @@ def advise(
 
 
 def _advice(file: Path, knowledge: "Knowledge", *, assume: bool = False) -> "Advice":
-    from advisor.advice import Advisor
+    from advisor.advice import Advisor, TooOpen
 
     saved = _saved(file, knowledge)
-    return Advisor(knowledge).advise(saved.case, assume_gaps=assume or saved.assume_gaps, only=saved.only)
+    try:
+        return Advisor(knowledge).advise(saved.case, assume_gaps=assume or saved.assume_gaps, only=saved.only)
+    except TooOpen as fault:
+        raise Refusal(f"{file}: {fault}") from None
 
 
 def _exit_code(advice: "Advice") -> int:

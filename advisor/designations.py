@@ -78,26 +78,26 @@ class Designer:
         specification: Specification,
         recommended: Recommended,
         *,
-        incomplete: bool,
+        lacking: str,
     ) -> "CodesFound":
         """The codes asked for, one for each recommended NLGI grade; or the reasons why there are none."""
         din, din_none = self._each(
-            lambda nlgi: self.din_code(facts, specification, recommended, nlgi), recommended, incomplete=incomplete
+            lambda nlgi: self.din_code(facts, specification, recommended, nlgi), recommended, lacking=lacking
         )
         iso, iso_none = self._each(
             lambda nlgi: self.iso_code(facts, record, specification, recommended, nlgi),
             recommended,
-            incomplete=incomplete,
+            lacking=lacking,
         )
         return CodesFound(tuple(map(str, din)), tuple(map(str, iso)), din_none, iso_none)
 
-    def _each(self, write: Any, recommended: Recommended, *, incomplete: bool) -> tuple[list[Any], str]:
+    def _each(self, write: Any, recommended: Recommended, *, lacking: str) -> tuple[list[Any], str]:
         if recommended.form == "oil":
             return [], "an oil is recommended, and these codes are for greases"
         if recommended.form != "grease":
             return [], "the form is not settled"
-        if incomplete:
-            return [], "answers are missing"
+        if lacking:
+            return [], lacking
         grades = recommended.lines["nlgi"].values if "nlgi" in recommended.lines else ()
         if not grades:
             return [], "no NLGI grade is left"

@@ -136,7 +136,7 @@ class Advisor:
             oils=found.oils,
             choices=found.choices,
             oil_ranks=found.oil_ranks,
-            codes=self.designer.codes(facts, record, specification, found, incomplete=is_open),
+            codes=self.designer.codes(facts, record, specification, found, lacking=_lacking(is_open=is_open, conflicts=conflicts)),
             withheld=False,
             cautions=cautions(run, found, judgement),
             referrals=tuple(run.drawn.refers),
@@ -206,6 +206,13 @@ def _conflicts(specification: Specification, found: Recommendation, run: Run) ->
     told = {each.about for each in specification.conflicts}
     more = tuple(each for each in found.conflicts if each.about not in told and each.rules)
     return (*specification.conflicts, *more, *run.disagreements())
+
+
+def _lacking(*, is_open: bool, conflicts: Sequence[Conflict]) -> str:
+    """Why no codes can be given yet; empty where they can."""
+    if is_open:
+        return "answers are missing"
+    return "the demands cannot be had together" if conflicts else ""
 
 
 def _state(run: Run, conflicts: Sequence[Conflict], *, is_open: bool) -> State:

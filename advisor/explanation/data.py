@@ -78,6 +78,7 @@ def as_data(advice: Advice) -> Data:
         data |= _result(advice)
     return data | {
         "cautions": [_caution(advice, each) for each in advice.cautions],
+        "standing_cautions": [name for name, each in advice.knowledge.cautions.items() if each.standing],
         "referrals": [
             {
                 "to": each.to,

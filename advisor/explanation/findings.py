@@ -180,7 +180,14 @@ def cautions_section(advice: Advice) -> Section | None:
         source = f"source: {'; '.join(say_source(cited, advice.knowledge) for cited in caution.source)}"
         rules = f"rules: {', '.join(each.rules)}"
         nodes.append(Node(caution.text, leaf(*concerns, f"{rules}; {source}")))
-    return Section("cautions", "Cautions", (Tree(tuple(nodes)),)) if nodes else None
+    given = {each.caution for each in advice.cautions}
+    standing = [
+        each.text for name, each in advice.knowledge.cautions.items() if each.standing and name not in given
+    ]
+    blocks: list[Block] = [Tree(tuple(nodes))] if nodes else []
+    if standing:
+        blocks += [Para("At every point:"), Tree(leaf(*standing))]
+    return Section("cautions", "Cautions", tuple(blocks)) if blocks else None
 
 
 def last_word(advice: Advice) -> Section:

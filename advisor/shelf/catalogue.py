@@ -260,16 +260,21 @@ def usual_oils(knowledge: Knowledge) -> Catalogue:
         low, high, index = (row.cells.get(column) for column in (how.low, how.high, how.index))
         if not all(isinstance(each, float) for each in (low, high, index)):
             continue
-        grades = knowledge.properties["vg"].domain.places
-        items += [_usual_oil(row.id, grade, float(index), how.family) for grade in grades if low <= grade <= high]  # type: ignore[arg-type, operator]  # floats by the check above
+        label = knowledge.properties[how.family].domain.label(row.id)
+        for grade in knowledge.properties["vg"].domain.places:
+            if low <= grade <= high:  # type: ignore[operator]  # floats by the check above
+                values = {how.family: row.id, "vg": grade, **_viscosities(grade, float(index))}  # type: ignore[arg-type]  # a float
+                items.append(Item(f"{row.id} {grade:g}", f"{label}, ISO VG {grade:g}", values))
     return Catalogue(items, knowledge)
 
 
-def _usual_oil(family: str, grade: float, index: float, name: str) -> Item:
-    values: dict[str, Value] = {name: family, "vg": grade, "viscosity_40": FORMULAS["grade_midpoint"].function(grade)}
+def _viscosities(grade: float, index: float) -> dict[str, Value]:
+    """The two viscosities of an oil at the midpoint of its grade."""
+    midpoint = float(FORMULAS["grade_midpoint"].function(grade))
+    found: dict[str, Value] = {"viscosity_40": midpoint}
     with suppress(OutOfRange):
-        values["viscosity_100"] = FORMULAS["viscosity_100_from_index"].function(values["viscosity_40"], index)
-    return Item(f"{family} {grade:g}", f"{family.replace('_', ' ')} ISO VG {grade:g}", values)
+        found["viscosity_100"] = FORMULAS["viscosity_100_from_index"].function(midpoint, index)
+    return found
 
 
 def choices(knowledge: Knowledge, incumbent: Item | None = None) -> Catalogue:

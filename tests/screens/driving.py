@@ -17,7 +17,11 @@ _NAMES = {" ": "space", ",": "comma", ".": "full_stop", "-": "minus", "/": "slas
           "]": "right_square_bracket", "$": "dollar_sign", "°": "°"}
 
 # The keys of an ordinary motor bearing, question by question, each ended by Enter.
-MOTOR = ("1", "", "1", "4", "GR-301", "65", "140", "1480 rpm", "1", "167 °F", "1", "1", "5", "0.06", "1", "2", "1", "", "33")
+MOTOR_BY_NAME = {
+    "bearing_type": "1", "dangers": "", "site": "1", "supply": "4", "incumbent": "GR-301", "bore_mm": "65", "outside_mm": "140",
+    "speed_rpm": "1480 rpm", "motion": "1", "running_temperature_c": "167 °F", "measured_where": "1", "excursions": "1",
+    "start_temperature_c": "5", "load_ratio": "0.06", "shock": "1", "water_exposure": "2", "dust": "1", "seal": "", "width_mm": "33"}
+MOTOR = tuple(MOTOR_BY_NAME.values())
 
 Script = Callable[[Gudgeon, Pilot[None]], Awaitable[None]]
 
