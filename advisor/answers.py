@@ -146,6 +146,7 @@ _KEYS = (
     "expect",
     "knowledge",
     "history",
+    "approved",
 )
 
 

@@ -67,6 +67,7 @@ def advise(**options: Any) -> None:
 
 @gudgeon.command()
 @click.argument("folder", type=click.Path(path_type=Path), required=False)
+@click.option("--all", "everything", is_flag=True, help="Also accepted conflicts, and whole witnesses.")
 @shelf_option
 def check(**options: Any) -> None:
     """Everything that is wrong with a knowledge folder, at once."""
@@ -76,13 +77,37 @@ def check(**options: Any) -> None:
 @gudgeon.command()
 @click.argument("files", type=click.Path(path_type=Path), nargs=-1)
 @click.option("--json", "as_json", is_flag=True, help="The outcome as JSON.")
+@click.option("--markdown", is_flag=True, help="The outcome as Markdown, for a merge request.")
 @click.option("--junit", type=click.Path(path_type=Path), help="Write the outcome as JUnit XML.")
 @click.option("--coverage", is_flag=True, help="Also list rules that no scenario fires.")
 @knowledge_option
 @shelf_option
 def replay(**options: Any) -> None:
-    """Replay scenarios and compare with what is expected of them."""
+    """Replay scenarios and compare with what is expected of them; or advice saved as JSON, with what it said."""
     _run("replay", options)
+
+
+@gudgeon.command()
+@click.argument("group", required=False)
+@click.option("--by", help="Name of the person who signs.")
+@click.option("--because", help="Why the change is right.")
+@click.option("--scenarios", type=click.Path(path_type=Path), help="Folder of the scenarios.")
+@click.option("--knowledge", type=click.Path(path_type=Path), help="Folder of the knowledge.")
+def approve(**options: Any) -> None:
+    """Sign for one GROUP of changed expectations; without GROUP list what is to be signed."""
+    _run("approve", options)
+
+
+@gudgeon.command()
+@click.argument("files", type=click.Path(path_type=Path), nargs=-1)
+@click.option("--rule", "rules", multiple=True, help="Only the mutants of this rule; may be given several times.")
+@click.option("--tries", type=click.IntRange(min=0), help="How many cases are tried for each survivor.")
+@click.option("--json", "as_json", is_flag=True, help="The result as JSON.")
+@knowledge_option
+@shelf_option
+def mutate(**options: Any) -> None:
+    """Change every agreed rule in one place after the other, and list what no scenario in FILES notices."""
+    _run("mutate", options)
 
 
 @gudgeon.command()
@@ -96,11 +121,20 @@ def facts(**options: Any) -> None:
 
 @gudgeon.command()
 @click.argument("words", nargs=-1)
+@click.option("--show", metavar="ID", help="Show one rule in words, with its scenarios and what changes without it.")
 @click.option("--json", "as_json", is_flag=True, help="The list as JSON.")
 @knowledge_option
 def rules(**options: Any) -> None:
-    """List the rules; WORDS filter."""
+    """List the rules, WORDS filter; or show one as its reader meets it."""
     _run("rules", options)
+
+
+@gudgeon.command()
+@click.argument("file", required=False)
+@click.option("--out", type=click.Path(path_type=Path), help="Write the schemas of all files into this folder.")
+def schema(**options: Any) -> None:
+    """The JSON Schema of a knowledge FILE, for editors; without FILE a list of them."""
+    _run("schema", options)
 
 
 @gudgeon.command()

@@ -68,9 +68,13 @@ def interview(
     file: Path | None, plain: bool, plain_glyphs: bool, knowledge: Path | None, shelf: Path | None
 ) -> int:
     """Start or resume an interview: the sheet on a terminal that can show it, else line by line."""
-    from functools import partial
 
-    load = partial(_loaded, knowledge, shelf)
+    def load() -> "Knowledge":
+        from advisor.answers import point_kind_of
+
+        known = file is not None and file.is_file()
+        return _loaded(knowledge, shelf, point_kind_of(file) if known and file is not None else "rolling_bearing")
+
     if plain or os.environ.get("TERM", "dumb") == "dumb" or not (sys.stdin.isatty() and sys.stdout.isatty()):
         from advisor.screens import plain as lines
 
@@ -80,25 +84,42 @@ def interview(
     return running.run(load, file, plain_glyphs=plain_glyphs)
 
 
-def check(folder: Path | None, shelf: Path | None) -> int:
-    """Print every problem of a knowledge folder."""
+def check(folder: Path | None, shelf: Path | None, everything: bool = False) -> int:
+    """Print every problem of a knowledge folder; where there is none, what its meaning holds against itself."""
     from advisor.documents import Problems
     from advisor.knowledge import examine
 
     root = folder or knowledge_folder()
     problems = Problems()
-    knowledge = None
-    for kind in _kinds(root):
-        knowledge = examine(root, kind, shelf, problems)
+    bodies = [knowledge for kind in _kinds(root) if (knowledge := examine(root, kind, shelf, problems)) is not None]
     for problem in problems:
         _print(str(problem))
     if len(problems):
         sys.stderr.write(f"{_count(len(problems))}.\n")
         return USAGE
-    if knowledge is not None:
+    if _print_findings(bodies, everything=everything):
+        return USAGE
+    for knowledge in bodies[-1:]:
         counts = f"{len(knowledge.rules)} rules, {len(knowledge.facts)} facts, {len(knowledge.tables)} tables"
         _print(f"{root}: no problems. {counts}, {len(knowledge.shelf)} products; fingerprint {knowledge.fingerprint}.")
     return DONE
+
+
+def _print_findings(bodies: "list[Knowledge]", *, everything: bool) -> int:
+    """Print what the meaning holds against itself, each with its witness; the result counts what must be mended."""
+    from advisor.anomalies import examine_together
+
+    findings = examine_together(bodies)
+    for finding in findings:
+        if everything or not finding.silenced:
+            _print(str(finding))
+            _print(f"    {finding.shown(bodies[-1], whole=everything)}")
+    faults = sum(finding.must_be_mended for finding in findings)
+    accepted = sum(1 for finding in findings if finding.silenced)
+    if findings:
+        listed = f"{len(findings)} findings: {faults} to be mended, {len(findings) - faults - accepted} to be weighed"
+        sys.stderr.write(f"{listed}, {accepted} accepted with a reason.\n")
+    return faults
 
 
 def _kinds(root: Path) -> list[str]:
@@ -166,12 +187,52 @@ def facts(words: tuple[str, ...], as_json: bool, knowledge: Path | None) -> int:
     return DONE
 
 
-def rules(words: tuple[str, ...], as_json: bool, knowledge: Path | None) -> int:
-    """List the rules."""
+def rules(words: tuple[str, ...], show: str | None, as_json: bool, knowledge: Path | None) -> int:
+    """List the rules, or show one as its reader meets it."""
     from advisor.listing import rule_rows, rules_text
 
+    if show is not None:
+        return _rule(show, as_json, knowledge)
     rows = rule_rows(_loaded(knowledge, None), words)
     _print(_json(rows) if as_json else rules_text(rows))
+    return DONE
+
+
+def _rule(name: str, as_json: bool, knowledge: Path | None) -> int:
+    """One rule with its scenarios; faulty scenarios are told and passed over."""
+    from advisor import replay as replaying
+    from advisor import rule_sheet
+
+    found = replaying.find(())
+    advisors = _advisors(replaying.kinds_of(found), knowledge, None)
+    advisor = next((each for each in advisors.values() if name in each.knowledge.rules), next(iter(advisors.values())))
+    sheet = rule_sheet.rule_sheet(name, advisor, replaying.replay(found, advisors))
+    _print(_json(rule_sheet.as_data(sheet)) if as_json else rule_sheet.as_text(sheet))
+    return DONE
+
+
+def schema(file: str | None, out: Path | None) -> int:
+    """Print the schema of a knowledge file, list the schemas, or write them all into a folder."""
+    from advisor.documents import Unwritable, nearest, write_text_safely
+    from advisor.knowledge import editor_schema
+
+    if out is not None:
+        try:
+            out.mkdir(parents=True, exist_ok=True)
+            for name in editor_schema.NAMES:
+                write_text_safely(out / f"{name}.schema.json", editor_schema.schema_text(name))
+        except (Unwritable, OSError) as fault:
+            raise Refusal(f"The schemas were not written: {fault}") from None
+        _print(f"{out}: {len(editor_schema.NAMES)} schemas.")
+        return DONE
+    if file is None:
+        _print("\n".join(f"{name:<14} {editor_schema.schema(name)['description']}" for name in editor_schema.NAMES))
+        return DONE
+    name = file if file in editor_schema.NAMES else editor_schema.schema_of(file) if file.endswith(".yaml") else ""
+    if not name:
+        near = nearest(file, editor_schema.NAMES) or f" There are schemas for {', '.join(editor_schema.NAMES)}."
+        raise Refusal(f"There is no schema for '{file}'.{near}")
+    _print(editor_schema.schema_text(name))
     return DONE
 
 
@@ -201,11 +262,15 @@ def replay(
     coverage: bool,
     knowledge: Path | None,
     shelf: Path | None,
+    markdown: bool = False,
 ) -> int:
-    """Replay scenarios and tell where their advice differs from what is expected."""
+    """Replay scenarios, or advice that was saved as JSON, and tell what differs."""
+    from advisor import approval
     from advisor import replay as replaying
     from advisor.documents import Unwritable, write_text_safely
 
+    if any(each.suffix == ".json" for each in files):
+        return _replay_saved(files, as_json, knowledge, shelf)
     found = replaying.find(files)
     if not found:
         raise Refusal("There is no scenario to replay here. Name a file or a folder that holds some.")
@@ -217,10 +282,107 @@ def replay(
             write_text_safely(junit, replaying.as_junit(outcome))
         except Unwritable as fault:
             raise Refusal(str(fault)) from None
-    for problem in outcome.problems:
+    review, faults = approval.review_of(found, outcome, advisors)
+    for problem in (*outcome.problems, *faults):
         print(problem, file=sys.stderr)  # noqa: T201 - words beside the output
-    _print(_json(replaying.as_data(outcome, covered)) if as_json else replaying.as_text(outcome, covered))
-    return USAGE if outcome.problems else NOT_SETTLED if outcome.differing else DONE
+    if as_json:
+        signing = {"to_be_signed": approval.as_data(review)} if review else {}
+        _print(_json(replaying.as_data(outcome, covered) | signing))
+    elif markdown:
+        _print(replaying.as_markdown(outcome, covered) + (f"\n{approval.as_markdown(review)}" if review else ""))
+    else:
+        _print(replaying.as_text(outcome, covered) + (f"\n\n{approval.as_text(review)}".rstrip() if review else ""))
+    if outcome.problems or len(faults):
+        return USAGE
+    return NOT_SETTLED if outcome.differing or (review and review.groups) else DONE
+
+
+def _replay_saved(files: tuple[Path, ...], as_json: bool, knowledge: Path | None, shelf: Path | None) -> int:
+    """Replay advice that was saved as JSON."""
+    from advisor.advice import Advisor
+    from advisor.replay import saved_advice
+
+    advisors: dict[str, Advisor] = {}
+
+    def advisor_for(kind: str) -> "Advisor":
+        if kind not in advisors:
+            advisors[kind] = Advisor(_loaded(knowledge, shelf, kind))
+        return advisors[kind]
+
+    found = [saved_advice.replay(file, advisor_for) for file in files]
+    _print(_json([saved_advice.as_data(each) for each in found]) if as_json else saved_advice.as_text(found))
+    return DONE if all(each.same for each in found) else NOT_SETTLED
+
+
+def approve(
+    group: str | None, by: str | None, because: str | None, scenarios: Path | None, knowledge: Path | None
+) -> int:
+    """Sign for one group of changed expectations; without a group: list what is to be signed."""
+    from datetime import UTC, datetime
+
+    from advisor import approval
+    from advisor import replay as replaying
+    from advisor.places import scenario_folder
+
+    root = (scenarios or scenario_folder()).absolute()
+
+    def advisors() -> "dict[str, Advisor]":
+        return _advisors_of(knowledge or knowledge_folder(), replaying.kinds_of(replaying.find([root])))
+
+    if group is None:
+        if by is not None or because is not None:
+            raise Refusal("Name the group that you sign for. 'gudgeon approve' alone lists them.")
+        review = approval.review(root, advisors())
+        _print(approval.as_text(review) or "Nothing is to be signed.")
+        return NOT_SETTLED if review.groups else DONE
+    signature = approval.signature(by or "", because or "")
+    entry = approval.approve(root, group, signature, datetime.now(UTC).date().isoformat(), advisors)
+    _print(f"{root / approval.NAME}\n{entry.text()}")
+    return DONE
+
+
+def _advisors_of(folder: Path, kinds: list[str]) -> "dict[str, Advisor]":
+    """Advisors on the knowledge of this folder with its own shelf, whatever the settings say: what is signed for."""
+    from advisor.advice import Advisor
+    from advisor.documents import Faulty
+    from advisor.knowledge import load
+
+    known = _kinds(folder)
+    try:
+        chosen = [kind for kind in kinds if kind in known] or known[:1]
+        return {kind: Advisor(load(folder, kind, None)) for kind in chosen}
+    except Faulty as fault:
+        raise Refusal(f"{fault}\n{_count(len(fault.problems))} in the knowledge; nothing was done.") from None
+
+
+def mutate(
+    files: tuple[Path, ...],
+    rules: tuple[str, ...],
+    tries: int | None,
+    as_json: bool,
+    knowledge: Path | None,
+    shelf: Path | None,
+) -> int:
+    """Change every agreed rule in one place after the other; 1 where a change goes unnoticed."""
+    from advisor import mutation
+    from advisor import replay as replaying
+
+    found = replaying.find(files)
+    if not found:
+        raise Refusal("There is no scenario here, so nothing would notice a change. Name a file or a folder with some.")
+    root = knowledge or knowledge_folder()
+    kinds = [kind for kind in replaying.kinds_of(found) if kind in _kinds(root)] or _kinds(root)[:1]
+    for kind in kinds:
+        known = _loaded(root, shelf, kind).rules
+        unknown = [rule for rule in rules if rule not in known]
+        if unknown:
+            raise Refusal(f"'{unknown[0]}' is no rule of {kind}. 'gudgeon rules' lists them.")
+    measured = [
+        mutation.measure(root, kind, shelf, found, rules=rules, tries=mutation.TRIES if tries is None else tries)
+        for kind in kinds
+    ]
+    _print(_json(list(map(mutation.as_data, measured))) if as_json else "\n\n".join(map(mutation.as_text, measured)))
+    return NOT_SETTLED if any(len(each.survivors) > each.equivalent for each in measured) else DONE
 
 
 def _advisors(kinds: list[str], knowledge: Path | None, shelf: Path | None) -> "dict[str, Advisor]":

@@ -1,6 +1,6 @@
 """Formulas and look-ups bound to facts: what they give, what they wait for, and why they are void."""
 
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass
 
 from advisor.case import Fact, Origin
@@ -65,7 +65,7 @@ def looked_up(how: LookedUp, get: Get, tables: Mapping[str, Table]) -> Outcome:
     if table.matrix:
         found = table.matrix.get((str(seen[0][1]), str(seen[1][1])))
         return _or_otherwise(found, how, f"no entry for {seen[0][1]} with {seen[1][1]}")
-    cells = [row.cells[how.column] for row in table.rows if how.column in row.cells and _meets(row, seen)]
+    cells = [row.cells[how.column] for row in _candidates(table, seen) if how.column in row.cells and _meets(row, seen)]
     values = [cell for cell in cells if not isinstance(cell, Band)]
     if not values:
         return _or_otherwise(None, how, f"table {table.id} has no row for " + ", ".join(f"{c} {v}" for c, v in seen))
@@ -76,6 +76,15 @@ def looked_up(how: LookedUp, get: Get, tables: Mapping[str, Table]) -> Outcome:
     if any(value != values[0] for value in values):
         return Outcome(void=f"table {table.id} has rows that disagree")
     return Outcome(value=values[0])
+
+
+def _candidates(table: Table, seen: list[tuple[str, Value | None]]) -> Iterable[Row]:
+    """The rows that may meet: all, or the one of the key where the key is given."""
+    for column, value in seen:
+        if column == table.key and isinstance(value, str):
+            row = table.row_of.get(value)
+            return () if row is None else (row,)
+    return table.rows
 
 
 def _or_otherwise(value: Value | None, how: LookedUp, reason: str) -> Outcome:

@@ -123,6 +123,6 @@ def _standing(rows: Sequence[dict[str, Any]]) -> list[str]:
         memory += "yes" not in marks and "from memory" in marks
         practice += marks == {"no source"}
     return [
-        f"{len(rows)} rules: {wholly} rest wholly on sources that were read, {partly} in part (the rest of them on memory",
-        f"or common practice), {memory} on sources remembered, {practice} on common practice without a source.",
+        f"{len(rows)} rules: {wholly} rest wholly on sources that were read, {partly} in part (the rest of them on",
+        f"memory or common practice), {memory} on sources remembered, {practice} on common practice without a source.",
     ]

@@ -30,7 +30,12 @@ def settings(file: Path | None = None) -> Settings:
         _fault(problems, tree.mark, "the configuration is a mapping", "knowledge: /path/to/folder")
     for key, value in entries.items():
         if key not in _KEYS:
-            _fault(problems, entries.key_marks[key], f"'{key}' is no setting", nearest(key, _KEYS) or "known: knowledge, shelf")
+            _fault(
+                problems,
+                entries.key_marks[key],
+                f"'{key}' is no setting",
+                nearest(key, _KEYS) or "known: knowledge, shelf",
+            )
         elif not isinstance(value, Scalar) or not value:
             _fault(problems, value.mark, f"'{key}' is one path")
     if len(problems):

@@ -16,12 +16,28 @@ SCENARIOS = ROOT / "scenarios" / "rolling_bearing"
 
 # An ordinary pump motor bearing on grease, as a fitter would answer.
 ORDINARY = {
-    "bearing_type": "deep_groove_ball", "dangers": "none", "site": "none", "supply": "nipple_through",
-    "incumbent": "other", "incumbent_thickener": "lithium_12OH", "incumbent_base_oil": "mineral_II",
-    "maker_item": "none_named", "bore_mm": "65 mm", "outside_mm": "140 mm", "speed_rpm": "1480 rpm", "motion": "turning",
-    "running_temperature_c": "70 °C", "measured_where": "outer_ring_probe", "excursions": "no",
-    "start_temperature_c": "5 °C", "load_ratio": "0.06", "shock": "none", "water_exposure": "humid", "dust": "none",
-    "seal": "none", "width_mm": "33 mm",
+    "bearing_type": "deep_groove_ball",
+    "dangers": "none",
+    "site": "none",
+    "supply": "nipple_through",
+    "incumbent": "other",
+    "incumbent_thickener": "lithium_12OH",
+    "incumbent_base_oil": "mineral_II",
+    "maker_item": "none_named",
+    "bore_mm": "65 mm",
+    "outside_mm": "140 mm",
+    "speed_rpm": "1480 rpm",
+    "motion": "turning",
+    "running_temperature_c": "70 °C",
+    "measured_where": "outer_ring_probe",
+    "excursions": "no",
+    "start_temperature_c": "5 °C",
+    "load_ratio": "0.06",
+    "shock": "none",
+    "water_exposure": "humid",
+    "dust": "none",
+    "seal": "none",
+    "width_mm": "33 mm",
 }
 
 
@@ -42,7 +58,9 @@ def make_case(knowledge: Knowledge) -> Callable[..., Case]:
     def make(**changed: str | None) -> Case:
         answers = {**ORDINARY, **changed}
         typed = {name: answer(knowledge.facts[name], text) for name, text in answers.items() if text is not None}
-        return Case("rolling_bearing", "made for a test", {name: typed[name] for name in knowledge.facts if name in typed})
+        return Case(
+            "rolling_bearing", "made for a test", {name: typed[name] for name in knowledge.facts if name in typed}
+        )
 
     return make
 

@@ -1,6 +1,7 @@
 """The path of one case: answers, facts step by step, rules, specification, docket, shelf, closing, advice."""
 
 from collections.abc import Sequence
+from dataclasses import replace
 
 from advisor.advice.branching import advise_over, is_open
 from advisor.advice.closing import cautions, closing_record, musts_at_limit
@@ -31,7 +32,7 @@ class Advisor:
             )
             for step in knowledge.steps
         }
-        self.setters = _setters(knowledge)
+        self.setters = setters_of(knowledge)
         self.oils = usual_oils(knowledge)
         self.designer = Designer(knowledge)
         self.always_needed = frozenset(
@@ -70,7 +71,8 @@ class Advisor:
             run = Run(self.knowledge, self.rules, self.setters, case, assume_gaps=assume_gaps)
             return self._complete(run, self.shelf(only)) if run.steps() else self._withheld(run)
 
-        return advise_over(case, self.knowledge, run_once) if is_open(case, self.knowledge) else run_once(case)
+        found = advise_over(case, self.knowledge, run_once) if is_open(case, self.knowledge) else run_once(case)
+        return replace(found, assume_gaps=assume_gaps, only=only) if assume_gaps or only is not None else found
 
     def _withheld(self, run: Run) -> Advice:
         """A referral that hides products and grades: nothing is specified, nothing is judged."""
@@ -136,7 +138,9 @@ class Advisor:
             oils=found.oils,
             choices=found.choices,
             oil_ranks=found.oil_ranks,
-            codes=self.designer.codes(facts, record, specification, found, lacking=_lacking(is_open=is_open, conflicts=conflicts)),
+            codes=self.designer.codes(
+                facts, record, specification, found, lacking=_lacking(is_open=is_open, conflicts=conflicts)
+            ),
             withheld=False,
             cautions=cautions(run, found, judgement),
             referrals=tuple(run.drawn.refers),
@@ -181,7 +185,7 @@ class Advisor:
         )
 
 
-def _setters(knowledge: Knowledge) -> dict[str, list[str]]:
+def setters_of(knowledge: Knowledge) -> dict[str, list[str]]:
     """For each step, the concluded facts that are complete after it: it is the last with a rule that sets them."""
     last: dict[str, str] = {}
     for step in knowledge.steps:

@@ -5,7 +5,7 @@ from collections.abc import Callable, Iterable, Sequence
 from dataclasses import dataclass, replace
 from itertools import pairwise, product
 
-from advisor.advice.model import Advice, Branch, Line, Ranked, State
+from advisor.advice.model import Advice, Branch, CautionGiven, Line, Ranked, State
 from advisor.case import Answer, Case
 from advisor.conditions import Value, holds
 from advisor.designations import CodesFound
@@ -147,19 +147,17 @@ def _parts(span: tuple[float, float], step: float, result: Callable[[float], obj
     def value(place: int) -> float:
         return high if place == count else round(low + place * step, 9)
 
-    parts: list[tuple[float, float]] = []
-    first = 0
-    for place, following in pairwise(looked_at):
-        if result(value(place)) == result(value(following)):
-            continue
-        before, after = place, following
-        while after - before > 1:
-            middle = (before + after) // 2
-            before, after = (middle, after) if result(value(middle)) == result(value(place)) else (before, middle)
-        parts.append((value(first), value(before)))
-        first = after
-    parts.append((value(first), value(count)))
-    return parts
+    def changes(before: int, after: int) -> list[int]:
+        """The places between two where another result begins."""
+        if result(value(before)) == result(value(after)):
+            return []
+        if after - before == 1:
+            return [after]
+        middle = (before + after) // 2
+        return changes(before, middle) + changes(middle, after)
+
+    starts = [0, *(place for before, after in pairwise(looked_at) for place in changes(before, after)), count + 1]
+    return [(value(first), value(following - 1)) for first, following in pairwise(starts)]
 
 
 def result_of(advice: Advice) -> object:
@@ -179,26 +177,26 @@ def result_of(advice: Advice) -> object:
 def _merged(case: Case, branches: tuple[Branch, ...]) -> Advice:
     """One advice over all branches: the worst state, what the classes share, every product's worst verdict."""
     ends = [end for branch in branches for end in (branch.advice, branch.other_end) if end is not None]
+    referrals = _once((each for end in ends for each in end.referrals), lambda each: each.to + each.rule)
+    if withheld := [end for end in ends if end.withheld]:
+        return replace(withheld[0], case=case, referrals=referrals, cautions=_cautions(withheld))
     order = list(State)
     worst = min(ends, key=lambda each: order.index(each.state))
-    withheld = any(each.withheld for each in ends)
-    if withheld:
-        worst = next(each for each in ends if each.withheld)
     return replace(
         worst,
         case=case,
-        withheld=withheld,
-        docket=() if withheld else tuple(_shared(rows) for rows in zip(*(each.docket for each in ends), strict=True)),
-        shelf=() if withheld else _worst_verdicts(ends),
-        codes=worst.codes if withheld else _shared_codes(ends),
-        cautions=_once((each for end in ends for each in end.cautions), lambda each: each.caution),
-        referrals=_once((each for end in ends for each in end.referrals), lambda each: each.to + each.rule),
+        docket=tuple(_shared(rows) for rows in zip(*(each.docket for each in ends), strict=True)),
+        quantities=tuple(_figures(each, ends) for each in worst.quantities),
+        shelf=_worst_verdicts(ends),
+        codes=_shared_codes(ends),
+        cautions=_cautions(ends),
+        referrals=referrals,
         assumptions=_once((each for end in ends for each in end.assumptions), str),
         keeping_open=_once((each for end in ends for each in end.keeping_open), str),
         open_questions=_once((each for end in ends for each in end.open_questions), lambda each: each.fact),
         conflicts=_once((each for end in ends for each in end.conflicts), str),
         at_limit=_once((each for end in ends for each in end.at_limit), str),
-        branches=() if withheld else branches,
+        branches=branches,
     )
 
 
@@ -209,6 +207,26 @@ def _shared(rows: Sequence[Line]) -> Line:
     differs = any(row.values != first.values for row in rows[1:])
     waits = tuple(dict.fromkeys(name for row in rows for name in row.waits))
     return replace(first, values=shared, differs=differs, waits=waits)
+
+
+def _figures(line: Line, ends: Sequence[Advice]) -> Line:
+    """A row of figures, marked where the branches do not agree on them."""
+    seen = {(end.line(line.row).skipped, *(end.facts[name].value for name in line.facts)) for end in ends}
+    return replace(line, differs=len(seen) > 1)
+
+
+def _cautions(ends: Sequence[Advice]) -> tuple[CautionGiven, ...]:
+    """Every caution once; one that is given for everything in any branch is given for everything."""
+    given: dict[str, list[CautionGiven]] = {}
+    for each in (each for end in ends for each in end.cautions):
+        given.setdefault(each.caution, []).append(each)
+    merged = []
+    for caution, found in given.items():
+        rules = dict.fromkeys(rule for each in found for rule in each.rules)
+        concerns = dict.fromkeys(one for each in found for one in each.concerns)
+        for_all = any(not each.concerns for each in found)
+        merged.append(CautionGiven(caution, tuple(rules), () if for_all else tuple(concerns)))
+    return tuple(merged)
 
 
 def _worst_verdicts(ends: Sequence[Advice]) -> tuple[Ranked, ...]:

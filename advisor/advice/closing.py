@@ -9,7 +9,7 @@ from advisor.conditions import ALWAYS, VOID, Bound, Coded, Condition, failures
 from advisor.conditions.terms import Void
 from advisor.knowledge import Asks, Instance
 from advisor.shelf import Judgement, Verdict, at_limit, judge, places
-from advisor.specification import mentions, with_limits
+from advisor.specification import MUST, mentions, with_limits
 
 IN = frozenset({Verdict.FITS, Verdict.SECOND_BEST, Verdict.STILL_IN})
 """Verdicts of products that may be used."""
@@ -91,7 +91,7 @@ def musts_at_limit(run: Run, recommendation: Recommendation, judgement: Judgemen
     """Musts met with nothing to spare: by products that no must rules out, and by recommended classes."""
     found: list[AtLimit] = []
     for place, demand in enumerate(judgement.demands):
-        if demand.must and _is_measure(judgement, demand.property):
+        if demand.level == MUST and _is_measure(judgement, demand.property):
             items = places(at_limit(judgement, place, judgement.passing))
             found += [AtLimit("product", judgement.catalogue.items[each].code, demand.rule) for each in items]
     recommended = {value for line in recommendation.lines.values() for value in line.values}
@@ -99,9 +99,9 @@ def musts_at_limit(run: Run, recommendation: Recommendation, judgement: Judgemen
         for instance, outcome in zip(step.instances, step.outcomes, strict=True):
             if (
                 outcome is False
-                and instance.binds
                 and instance.row is not None
                 and instance.row.id in recommended
+                and instance.binds
                 and _missed_by_nothing(run, instance)
             ):
                 found.append(AtLimit("class", instance.row.id, instance.id))

@@ -147,6 +147,8 @@ class Advice:
     kappa: float | None
     branches: tuple[Branch, ...] = ()
     held_over: str = ""
+    assume_gaps: bool = False
+    only: frozenset[str] | None = None
 
     @property
     def fits(self) -> bool:

@@ -9,7 +9,7 @@ from advisor.case import Fact
 from advisor.conditions import Value
 from advisor.knowledge import DocketRow, Knowledge
 from advisor.shelf import Catalogue, Judgement, Raise, judge, places
-from advisor.specification import Conflict, Demand, Specification, mentions, smallest_cover
+from advisor.specification import MUST, Conflict, Demand, Specification, mentions, smallest_cover
 
 Steps = tuple[int, int, int, int]
 
@@ -143,7 +143,7 @@ class Recommender:
         musts = [
             (demand, failing)
             for demand, failing in zip(oils.demands, oils.failing, strict=True)
-            if demand.must and failing
+            if demand.level == MUST and failing
         ]
         chosen = smallest_cover(
             [frozenset(map(float, places(failing))) for _, failing in musts],
@@ -161,7 +161,7 @@ class Recommender:
             rules = {
                 demand.rule
                 for demand, failing in zip(oils.demands, oils.failing, strict=True)
-                if demand.must and failing & items
+                if demand.level == MUST and failing & items
             }
             barred[self.domains[name].decode(coded)] = tuple(sorted(rules))
         return barred
@@ -196,7 +196,7 @@ class Recommender:
                     {
                         demand.rule
                         for demand, failing in zip(judgement.demands, judgement.failing, strict=True)
-                        if demand.must and failing >> place & 1
+                        if demand.level == MUST and failing >> place & 1
                     }
                 )
             )
@@ -214,7 +214,7 @@ class Recommender:
         musts = [
             (demand, failing & family)
             for demand, failing in zip(judgement.demands, judgement.failing, strict=True)
-            if demand.must and failing & family
+            if demand.level == MUST and failing & family
         ]
         chosen = smallest_cover(
             [frozenset(map(float, places(failing))) for _, failing in musts], frozenset(map(float, places(family)))
@@ -263,12 +263,14 @@ class Recommender:
             candidates,
             about,
             (),
-            waiting.for_properties(self._looked_at(row, judgement)),
+            waiting.for_properties(self._looked_at(row, judgement, waiting)),
             barred=barred,
         )
 
-    def _looked_at(self, row: DocketRow, judgement: Judgement) -> frozenset[str]:
+    def _looked_at(self, row: DocketRow, judgement: Judgement, waiting: Waiting) -> frozenset[str]:
         """The properties on which this row's candidates are judged, and those that say which demands apply."""
+        if not waiting.by_property:
+            return frozenset()
         of_oils = row.recommends in {"vg", self.knowledge.usual_oils.family}
         own = (self.oils if of_oils else self.choices).names_with(row.recommends)
         deciding = (mentions(demand.for_) for demand in judgement.demands if demand.property in own)

@@ -106,6 +106,9 @@ class Run:
         found: list[Demand] = []
         record = self.facts.record
         for instance, each in self.drawn.asks:
+            if not each.refers:
+                found.append(Demand(each.property, each.test, each.level, each.for_, instance.id))
+                continue
             test, waits, void = with_limits(each.test, record)
             for_, more, void_too = with_limits(each.for_, record)
             if waits | more:

@@ -4,11 +4,12 @@ from advisor.documents.problems import Faulty, Mark, Problem, Problems, nearest
 from advisor.documents.reading import read_document, read_text
 from advisor.documents.saving import Unwritable, write_text_safely
 from advisor.documents.scalars import as_number, as_yes_no
+from advisor.documents.spans import Uneditable, removed, replaced
 from advisor.documents.tree import Mapping, Node, Scalar, Sequence, locate, trail
 from advisor.documents.writing import to_yaml
 
 __all__ = [
-    "Faulty", "Mapping", "Mark", "Node", "Problem", "Problems", "Scalar", "Sequence", "Unwritable",
-    "as_number", "as_yes_no", "locate", "nearest", "read_document", "read_text", "to_yaml", "trail",
-    "write_text_safely",
+    "Faulty", "Mapping", "Mark", "Node", "Problem", "Problems", "Scalar", "Sequence", "Uneditable", "Unwritable",
+    "as_number", "as_yes_no", "locate", "nearest", "read_document", "read_text", "removed", "replaced", "to_yaml",
+    "trail", "write_text_safely",
 ]

@@ -13,7 +13,7 @@ _REFUSED = Scalar("")
 """Stands for a key whose value is dropped."""
 
 
-class TooBig(Exception):  # noqa: N818 - named for what the document is
+class TooBig(Exception):
     """A document that nobody wrote by hand."""
 
     def __init__(self, mark: Mark, message: str, hint: str) -> None:

@@ -49,7 +49,7 @@ class Problem:
         return f"{self.file}:{self.line}:{self.column}: {within}{_sentence(self.message)}{hint}"
 
 
-class Faulty(Exception):  # noqa: N818 - named for the state of the documents
+class Faulty(Exception):
     """Documents that cannot be used, with every problem found in them."""
 
     def __init__(self, problems: Iterable[Problem]) -> None:

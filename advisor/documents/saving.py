@@ -8,7 +8,7 @@ import stat
 from pathlib import Path
 
 
-class Unwritable(Exception):  # noqa: N818 - named for what the file is
+class Unwritable(Exception):
     """A file that could not be written; the message says why and what to do."""
 
 

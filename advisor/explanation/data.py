@@ -141,7 +141,12 @@ def _case(advice: Advice) -> Data:
         else {"typed": answer.typed, "value": plain(answer.value)} | ({"estimate": True} if answer.estimate else {})
         for name, answer in advice.case.answers.items()
     }
-    return {"point_kind": advice.case.point_kind, "title": advice.case.title, "answers": answers}
+    data: Data = {"point_kind": advice.case.point_kind, "title": advice.case.title, "answers": answers}
+    if advice.assume_gaps:
+        data["gaps"] = "dont_know"
+    if advice.only is not None and not advice.withheld:
+        data["shelf"] = sorted(advice.only)
+    return data
 
 
 def _facts(advice: Advice) -> list[Data]:

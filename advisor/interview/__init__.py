@@ -1,5 +1,6 @@
-"""The interview itself, free of any screen: questions in turn, answers kept after each one, and words for what stands."""
+"""The interview itself, free of any screen: questions in turn, answers kept after each one, words for it all."""
 
+from advisor.explanation.contrasts import VERDICTS
 from advisor.interview.keeping import (
     Damaged,
     Keeper,
@@ -9,23 +10,48 @@ from advisor.interview.keeping import (
     new_interview,
     open_interview,
 )
+from advisor.interview.outcome import (
+    care_text,
+    cautions_told,
+    count_text,
+    outcome_text,
+    product_reasons,
+    referrals_told,
+)
 from advisor.interview.session import Session
-from advisor.interview.wording import RowShown, answer_shown, codes_text, product_reasons, quantities_text, row_shown, rows_shown
+from advisor.interview.wording import (
+    RowShown,
+    answer_shown,
+    codes_text,
+    exactly,
+    quantities_text,
+    row_shown,
+    rows_shown,
+    shown_value,
+)
 
 __all__ = [
+    "VERDICTS",
     "Damaged",
     "Keeper",
     "Kept",
     "RowShown",
     "Session",
     "answer_shown",
+    "care_text",
+    "cautions_told",
     "codes_text",
     "copy_of",
+    "count_text",
+    "exactly",
     "kept_interviews",
     "new_interview",
     "open_interview",
+    "outcome_text",
     "product_reasons",
     "quantities_text",
+    "referrals_told",
     "row_shown",
     "rows_shown",
+    "shown_value",
 ]

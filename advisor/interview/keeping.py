@@ -27,7 +27,7 @@ if TYPE_CHECKING:
     from advisor.interview.session import Session
 
 
-class Damaged(Exception):  # noqa: N818 - named for the state of the file
+class Damaged(Exception):
     """A file that is no interview; the message says what became of it."""
 
 
@@ -43,7 +43,7 @@ class Kept:
     @property
     def touched(self) -> str:
         """When it was saved last."""
-        return f"{datetime.fromtimestamp(self.when):%Y-%m-%d %H:%M}"  # noqa: DTZ006 - the clock on the user's wall
+        return f"{datetime.fromtimestamp(self.when):%Y-%m-%d %H:%M}"
 
 
 class Keeper:
@@ -143,8 +143,13 @@ def document(case: Case, advice: Advice, history: Sequence[str]) -> dict[str, Pl
     """The kept interview: readable as a saved case, with its changes and what the docket said."""
     docket: dict[str, Plain] = {} if advice.withheld else {each.id: each.full for each in rows_shown(advice)}
     return {
-        "format": 1, "title": _writable(case.title), "point_kind": case.point_kind, "answers": as_plain(case, advice.knowledge),
-        "knowledge": {"fingerprint": advice.knowledge.fingerprint, "docket": docket}, "history": [_writable(each) for each in history]}
+        "format": 1,
+        "title": _writable(case.title),
+        "point_kind": case.point_kind,
+        "answers": as_plain(case, advice.knowledge),
+        "knowledge": {"fingerprint": advice.knowledge.fingerprint, "docket": docket},
+        "history": [_writable(each) for each in history],
+    }
 
 
 def _writable(text: str) -> str:
@@ -201,7 +206,11 @@ def open_interview(advisor: Advisor, path: Path) -> "Session":
         raise Damaged(_moved_aside(path, problems))
     case, notices = _case(path, tree, advisor.knowledge)
     if "expect" in tree or "like" in tree:
-        return copy_of(advisor, case, (f"'{path.name}' is a scenario and stays as it is; this interview is kept beside the others.", *notices))
+        return copy_of(
+            advisor,
+            case,
+            (f"'{path.name}' is a scenario and stays as it is; this interview is kept beside the others.", *notices),
+        )
     keeper = Keeper(path)
     keeper.take()
     session = Session(advisor, keeper, case, history=_texts(tree.get("history")), notices=(*_held(keeper), *notices))
@@ -228,10 +237,12 @@ def _case(path: Path, tree: Mapping, knowledge: Knowledge) -> tuple[Case, tuple[
     told = tree.get("answers")
     for name, node in told.items() if isinstance(told, Mapping) else ():
         declaration = knowledge.facts.get(name)
+        if declaration is None or declaration.question is None:
+            notices.append(f"The answer to {name} was left out. This is no question here.")
+            continue
+        text = ", ".join(_texts(node)) if isinstance(node, Listed) else str(node)
         try:
-            if declaration is None or declaration.question is None:
-                raise Unsuitable("This is no question here.")
-            answers[name] = answer(declaration, ", ".join(_texts(node)) if isinstance(node, Listed) else str(node), strict=False)
+            answers[name] = answer(declaration, text, strict=False)
         except Unsuitable as fault:
             notices.append(f"The answer to {name} was left out. {fault}")
     return Case(knowledge.point_kind.id, str(tree.get("title", path.stem)), answers), tuple(notices)
@@ -244,9 +255,9 @@ def _texts(node: Node | None) -> list[str]:
 def _held(keeper: Keeper) -> tuple[str, ...]:
     if keeper.holds:
         return ()
-    return (
-        f"This interview is open elsewhere (process {keeper.holder or 'unknown'}): look and try, nothing is saved here. "
-        f"If no other gudgeon runs, delete '{keeper.lock}'.",)
+    who = f"process {keeper.holder}" if keeper.holder else "another process"
+    told = f"This interview is open elsewhere ({who}): look and try, nothing is saved here."
+    return (f"{told} If no other gudgeon runs, delete '{keeper.lock}'.",)
 
 
 def _moved_aside(path: Path, problems: Problems) -> str:
@@ -273,5 +284,7 @@ def _changed_since(node: Node | None, advice: Advice) -> tuple[str, ...]:
     docket = node.get("docket")
     was = {row: str(text) for row, text in docket.items()} if isinstance(docket, Mapping) else {}
     changed = [each.title for each in rows_shown(advice) if each.id in was and was[each.id] != each.full]
-    what = f"these rows of the docket read differently: {', '.join(changed)}" if changed else "the docket reads the same"
+    what = (
+        f"these rows of the docket read differently: {', '.join(changed)}" if changed else "the docket reads the same"
+    )
     return (f"The knowledge has changed since; {what}.",)

@@ -5,9 +5,10 @@ from dataclasses import dataclass
 from datetime import datetime
 from pathlib import Path
 
-from advisor.advice import Advice, Advisor
+from advisor.advice import Advice, Advisor, TooOpen
 from advisor.answers import DONT_KNOW, Unsuitable, answer
-from advisor.case import Answer, Case
+from advisor.case import Answer, Case, Origin
+from advisor.conditions import holds
 from advisor.documents import Unwritable, to_yaml, write_text_safely
 from advisor.documents.writing import Plain
 from advisor.interview.keeping import Keeper, as_plain, document
@@ -32,8 +33,14 @@ class Session:
     """
 
     def __init__(
-        self, advisor: Advisor, keeper: Keeper | None = None, case: Case | None = None, *,
-        history: Sequence[str] = (), notices: Sequence[str] = (), clock: Clock = datetime.now,
+        self,
+        advisor: Advisor,
+        keeper: Keeper | None = None,
+        case: Case | None = None,
+        *,
+        history: Sequence[str] = (),
+        notices: Sequence[str] = (),
+        clock: Clock = datetime.now,
     ) -> None:
         self.advisor, self.knowledge, self.keeper, self.clock = advisor, advisor.knowledge, keeper, clock
         self.case = case or Case(advisor.knowledge.point_kind.id)
@@ -68,6 +75,27 @@ class Session:
     def answered(self) -> tuple[str, ...]:
         """The answered questions in the order of asking, without those set aside."""
         return tuple(name for name in self.case.answers if name not in self.advice.set_aside)
+
+    @property
+    def may_be_asked(self) -> tuple[str, ...]:
+        """Questions that nothing waits for, which may be answered all the same: optional, or filled in from a table."""
+        found = []
+        for name, declaration in self.knowledge.facts.items():
+            fact, question = self.advice.facts.get(name), declaration.question
+            if fact is None or question is None or name in self.case.answers:
+                continue
+            filled = declaration.filled is not None and fact.origin is Origin.LOOKED_UP
+            if filled or (question.optional and holds(question.when, self.advice.record) is True):
+                found.append(name)
+        return tuple(found)
+
+    def fills(self, name: str) -> tuple[str, ...]:
+        """The facts that this answer has filled in from a table."""
+        return tuple(
+            other
+            for other, each in self.knowledge.facts.items()
+            if each.filled is not None and name in dict(each.filled.by).values() and other in self.may_be_asked
+        )
 
     @property
     def finished(self) -> bool:
@@ -112,20 +140,23 @@ class Session:
         if not self._changes:
             return False
         last = self._changes.pop()
-        self._note(f"undo {last.name}")
         case = self.case.without(last.name) if last.before is None else self.case.with_answer(last.name, last.before)
-        self._become(case, chosen=last.name)
+        self._become(case, f"undo {last.name}", chosen=last.name)
         return True
 
     def _put(self, name: str, given: Answer) -> None:
-        self._changes.append(Change(name, self.case.answers.get(name)))
-        self._note(f"{name}: {given.typed}")
-        self._become(self.case.with_answer(name, given))
+        before = self.case.answers.get(name)
+        self._become(self.case.with_answer(name, given), f"{name}: {given.typed}")
+        self._changes.append(Change(name, before))
 
-    def _become(self, case: Case, chosen: str | None = None) -> None:
-        self.before = self.advice
-        self.case = case
-        self.advice = self.advisor.advise(case)
+    def _become(self, case: Case, what: str, chosen: str | None = None) -> None:
+        """Take a case over, with its advice; where there is none nothing has changed."""
+        try:
+            advice = self.advisor.advise(case)
+        except TooOpen as fault:
+            raise Unsuitable(str(fault)) from None
+        self.before, self.advice, self.case = self.advice, advice, case
+        self.history.append(f"{self.clock():%Y-%m-%d %H:%M} {what}")
         self._postponed = [name for name in self._postponed if name in self.open]
         self._chosen = chosen
         self.save()
@@ -156,7 +187,7 @@ class Session:
 
     def revise(self, name: str) -> None:
         """Open one question: an answered one to change it, or an open one out of turn."""
-        if name in self.case.answers or name in self.open:
+        if name in self.case.answers or name in self.open or name in self.may_be_asked:
             self._chosen = name
 
     def go_on(self) -> None:
@@ -208,17 +239,21 @@ class Session:
         if self.advice.withheld:
             expect["withheld"] = "yes"
         scenario: dict[str, Plain] = {
-            "format": 1, "title": title, "point_kind": self.case.point_kind, "guards": guards, "status": "draft",
-            "answers": as_plain(self.case, self.knowledge), "gaps": "open", "expect": expect}
+            "format": 1,
+            "title": title,
+            "point_kind": self.case.point_kind,
+            "guards": guards,
+            "status": "draft",
+            "answers": as_plain(self.case, self.knowledge),
+            "gaps": "open",
+            "expect": expect,
+        }
         write_text_safely(path, to_yaml(scenario))
 
     def close(self) -> None:
         """Let others open the kept file."""
         if self.keeper is not None:
             self.keeper.release()
-
-    def _note(self, what: str) -> None:
-        self.history.append(f"{self.clock():%Y-%m-%d %H:%M} {what}")
 
     def _remembered(self) -> Iterator[Change]:
         """The changes that the history tells, where it leads to the very answers of the case."""
@@ -238,7 +273,9 @@ class Session:
                     answers[name] = answer(self.knowledge.facts[name], typed, strict=False)
                 except Unsuitable:
                     return
-        if {name: each.value for name, each in answers.items()} == {name: each.value for name, each in self.case.answers.items()}:
+        if {name: each.value for name, each in answers.items()} == {
+            name: each.value for name, each in self.case.answers.items()
+        }:
             self.case = Case(self.case.point_kind, self.case.title, answers)
             yield from changes
 

@@ -1,10 +1,11 @@
 """The shape of every knowledge file as a whole."""
 
 from collections.abc import Mapping
-from typing import ClassVar, Literal
+from typing import Annotated, ClassVar, Literal
 
-from pydantic import Field
+from pydantic import Field, WithJsonSchema
 
+from advisor.knowledge.kinds import Id, Name, Number, Text, Tree
 from advisor.knowledge.lost import Space
 from advisor.knowledge.schema import (
     CautionShape,
@@ -13,9 +14,6 @@ from advisor.knowledge.schema import (
     DocketRowShape,
     FactShape,
     ForkShape,
-    Id,
-    Name,
-    Number,
     PointKindShape,
     ProcedureShape,
     PropertyShape,
@@ -25,8 +23,6 @@ from advisor.knowledge.schema import (
     Shape,
     SourceShape,
     TableShape,
-    Text,
-    Tree,
     UsualOilsShape,
 )
 
@@ -112,7 +108,7 @@ class DesignationsShape(Shape):
 class File(Shape):
     """What every file begins with."""
 
-    format: Literal["1"]
+    format: Annotated[Literal["1"], WithJsonSchema({"enum": [1, "1"]})]
     sections: ClassVar[Sections] = {}
     """The collections of the file and what their names name; one damaged entry leaves the others readable."""
 

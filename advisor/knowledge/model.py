@@ -3,7 +3,7 @@
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 
-from advisor.conditions import ALWAYS, Coded, Condition, Domain, FactRef, Value
+from advisor.conditions import ALWAYS, Bound, Coded, Condition, Domain, FactRef, Value, leaves
 from advisor.documents import Mark
 
 
@@ -180,6 +180,10 @@ class Table:
     source: tuple[Citation, ...] = ()
     matrix: Mapping[tuple[str, str], Value] = field(default_factory=dict)
     values: Domain | None = None
+    row_of: Mapping[str, Row] = field(default_factory=dict, init=False, repr=False, compare=False)
+
+    def __post_init__(self) -> None:
+        object.__setattr__(self, "row_of", {row.id: row for row in self.rows} if self.key else {})
 
 
 @dataclass(frozen=True, slots=True)
@@ -211,6 +215,13 @@ class Asks:
     test: Condition
     level: int
     for_: Condition = ALWAYS
+    refers: bool = field(default=False, init=False, repr=False, compare=False)
+    """Whether a fact stands for a limit."""
+
+    def __post_init__(self) -> None:
+        terms = (*leaves(self.test), *leaves(self.for_))
+        refers = any(isinstance(term, Bound) and isinstance(term.limit, FactRef) for term in terms)
+        object.__setattr__(self, "refers", refers)
 
 
 @dataclass(frozen=True, slots=True)

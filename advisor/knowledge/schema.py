@@ -3,68 +3,19 @@
 Conditions, table cells and values stay trees here; they are typed by the declared kinds in the next stage.
 """
 
-from typing import Annotated, Any, Literal
+from typing import Annotated, Literal
 
-from pydantic import BaseModel, BeforeValidator, ConfigDict, Field, StringConstraints
+from pydantic import BaseModel, BeforeValidator, ConfigDict, Field
 
-from advisor.documents import as_number, as_yes_no
+from advisor.knowledge.kinds import Id, Level, Name, Number, Present, Text, Tree, YesNo
 
-
-def _number(value: object) -> float:
-    if not isinstance(value, str):
-        raise ValueError("a number is expected here, not a list or a mapping")
-    return as_number(value)
-
-
-def _whole(value: object) -> int:
-    number = _number(value)
-    if number != int(number):
-        raise ValueError("a whole number is expected here")
-    return int(number)
-
-
-def _yes_no(value: object) -> bool:
-    if not isinstance(value, str):
-        raise ValueError("yes or no is expected here")
-    return as_yes_no(value)
-
-
-def _text(value: object) -> str:
-    if not isinstance(value, str):
-        raise ValueError("text is expected here, not a list or a mapping")
-    if not value.strip():
-        raise ValueError("text is missing here")
-    return str(value)
-
-
-Number = Annotated[float, BeforeValidator(_number)]
-Whole = Annotated[int, BeforeValidator(_whole)]
-YesNo = Annotated[bool, BeforeValidator(_yes_no)]
-Text = Annotated[str, BeforeValidator(_text)]
-Id = Annotated[str, BeforeValidator(_text), StringConstraints(pattern=r"^[A-Za-z0-9_][A-Za-z0-9_.\-]{0,79}$")]
-Name = Annotated[str, BeforeValidator(_text), StringConstraints(pattern=r"^[a-z][a-z0-9_]{0,63}$")]
-Tree = Any
-"""A part that is typed later by the kind of the name it stands under."""
-
-Unit = Literal[
-    "°C",
-    "K",
-    "mm",
-    "1/min",
-    "mm/min",
-    "mm²/s",
-    "mPa·s",
-    "kg/m³",
-    "N",
-    "h",
-    "g",
-    "cm³",
-    "kg",
-    "%",
-    "",
-    "ISO VG",
-    "months",
-]
+Unit = Annotated[
+    Literal[
+        "°C", "K", "mm", "1/min", "mm/min", "mm²/s", "mPa·s", "kg/m³", "N", "h", "g", "cm³", "kg", "%", "", "ISO VG",
+        "months",
+    ],
+    Present,
+]  # fmt: skip
 SourceKind = Literal["standard", "handbook", "paper", "government", "common practice"]
 Checked = Literal["yes", "from memory", "no source"]
 Kind = Literal["number", "choice", "scale", "several", "item", "yes_no", "text"]
@@ -217,12 +168,16 @@ class ConclusionShape(Shape):
 
     must: Tree = None
     should: Tree = None
-    level: Whole | None = Field(default=None, ge=1, le=4)
+    level: Level | None = None
     set: Tree = None
     caution: Id | None = None
     refer: Id | None = None
     withhold: YesNo = False
     for_: Tree = Field(default=None, alias="for")
+
+
+OR_ONE = "or_one"
+"""Marks a list of which one entry may stand alone."""
 
 
 def _listed(value: object) -> object:
@@ -252,7 +207,9 @@ class RuleShape(Shape):
     source: Annotated[Citations, Field(min_length=1)]
     fires: Tree = None
     silent: Tree = None
-    may_conflict: Annotated[list[MayConflictShape], BeforeValidator(_listed)] = []
+    may_conflict: Annotated[list[MayConflictShape], BeforeValidator(_listed)] = Field(
+        default=[], json_schema_extra={OR_ONE: True}
+    )
     note: Text = ""
 
 
@@ -261,7 +218,7 @@ class TableShape(Shape):
 
     title: Text
     key: Id | None = None
-    policy: Literal["unique", "all"] | None = None
+    policy: Literal["unique", "all", "complete"] | None = None
     columns: dict[Id, Tree] | None = None
     matrix: Literal["symmetric"] | None = None
     of: Tree = None

@@ -8,7 +8,7 @@ from advisor.quantities.showing import show
 from advisor.quantities.units import ALIKE, KINDS, SPELLINGS, nine_digits, unit_meant, units_for
 
 
-class Unreadable(ValueError):  # noqa: N818 - named for what the text is
+class Unreadable(ValueError):
     """A text that is no quantity of the unit asked for; the message says what was seen and how to mend it."""
 
 

@@ -8,6 +8,7 @@ from advisor.quantities import show
 from advisor.replay import reasons
 from advisor.replay.differing import Difference
 from advisor.replay.expectations import (
+    ASKING,
     INTERVAL_ROW,
     AsksAtLeast,
     AsksFor,
@@ -129,16 +130,27 @@ def _barring(advice: Advice, name: str, value: Value) -> list[str]:
 def asks_for(expected: AsksFor, advice: Advice) -> Difference | None:
     """Whether a must or a should asks for the value, turns against it, or leaves it free."""
     found = _strengths(advice, expected.property, expected.value)
-    if expected.strength in found:
+    if expected.strength in found or _at_level(expected, advice):
         return None
     about = f" {_word(expected.value)}" if expected.value is not None else ""
     return Difference(
         "demands",
         expected.property,
-        f"{expected.strength}{about}",
+        f"{_strength_words(expected.strength)}{about}",
         f"{' and '.join(found)}{about}",
         reasons.of_property(advice, expected.property),
         expected.mark,
+    )
+
+
+def _at_level(expected: AsksFor, advice: Advice) -> bool:
+    """Whether a should of the expected level asks for the value, whatever is recommended."""
+    if expected.value is None or not expected.strength.startswith("should_") or advice.withheld:
+        return False
+    domain, levels = advice.knowledge.properties[expected.property].domain, ASKING[expected.strength]
+    return all(
+        any(asks((demand,), expected.value, domain) for demand in demands if demand.level in levels)
+        for demands in falling(advice, expected.property)
     )
 
 
@@ -177,10 +189,12 @@ def asks_at_least(expected: AsksAtLeast, advice: Advice) -> Difference | None:
     said = [demand for demand in advice.specification.demands if demand.property == name]
     got = "; ".join(
         dict.fromkeys(
-            f"{'must' if each.must else 'should'} be {say_test(each.test, advice.knowledge)}" for each in said
+            f"{_strength_words('must' if each.must else f'should_{each.level}')} be "
+            f"{say_test(each.test, advice.knowledge)}"
+            for each in said
         )
     )
-    wanted = f"{'must' if expected.strength == 'must' else 'should'} be {expected.written}"
+    wanted = f"{_strength_words(expected.strength)} be {expected.written}"
     return Difference(
         "demands",
         name,
@@ -191,11 +205,17 @@ def asks_at_least(expected: AsksAtLeast, advice: Advice) -> Difference | None:
     )
 
 
+def _strength_words(strength: str) -> str:
+    word, _, level = strength.partition("_")
+    return f"{word} (level {level})" if level else word
+
+
 def _says(expected: AsksAtLeast, demands: Demands, advice: Advice) -> bool:
     domain = advice.knowledge.properties[expected.property].domain
     if expected.strength == "must":
         return say_at_least(_musts(demands), expected.test, domain)
-    return any(say_at_least((demand,), expected.test, domain) for demand in demands if not demand.must)
+    levels = ASKING[expected.strength]
+    return any(say_at_least((demand,), expected.test, domain) for demand in demands if demand.level in levels)
 
 
 def code_serves(expected: CodeServes, advice: Advice) -> Difference | None:

@@ -1,7 +1,8 @@
 """What a scenario may expect of an advice, kind by kind; each expectation knows the line that wrote it."""
 
+from collections.abc import Mapping
 from dataclasses import dataclass
-from typing import Literal
+from typing import Final, Literal
 
 from advisor.advice import State
 from advisor.conditions import Condition, Value
@@ -9,7 +10,18 @@ from advisor.documents import Mark
 from advisor.shelf import Verdict
 
 Standard = Literal["din", "iso"]
-Strength = Literal["must", "should", "unwanted", "allowed"]
+Strength = Literal["must", "should", "should_1", "should_2", "should_3", "should_4", "unwanted", "allowed"]
+"""How a demand stands to a value; `should` is a should of any level."""
+
+ASKING: Final[Mapping[str, tuple[int, ...]]] = {
+    "must": (0,),
+    "should": (1, 2, 3, 4),
+    "should_1": (1,),
+    "should_2": (2,),
+    "should_3": (3,),
+    "should_4": (4,),
+}
+"""The strengths that ask for something, with the levels of demand that have them."""
 
 
 @dataclass(frozen=True, slots=True)

@@ -2,6 +2,7 @@
 
 from collections.abc import Callable
 from dataclasses import dataclass, field, replace
+from typing import cast
 
 from advisor.advice import State
 from advisor.answers import Saved
@@ -11,6 +12,7 @@ from advisor.documents import Mapping, Node, Problems, Scalar, Sequence, nearest
 from advisor.knowledge import Knowledge, Mistyped, condition, value
 from advisor.replay.checking import Checker
 from advisor.replay.expectations import (
+    ASKING,
     INTERVAL_ROW,
     AsksAtLeast,
     AsksFor,
@@ -218,9 +220,9 @@ class _Reader(Checker):
                 hint = "Write a test, such as {at_least: 3}"
                 raise self.problem(node.mark, f"'{text}' is for properties with a choice 'none' or 'no'", hint, name)
             return [AsksFor(node.mark, name, "unwanted" if text == "unwanted" else "allowed", None)]
-        if strength not in {"must", "should"}:
+        if strength not in ASKING:
             return [self._test(name, "must", node, domain)]
-        how: Strength = "must" if strength == "must" else "should"
+        how = cast(Strength, strength)
         operator, _, limit = wanted.strip().partition(" ")
         if limit or not (domain.choices or domain.places):
             whole = Mapping(node.mark)

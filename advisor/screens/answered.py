@@ -3,12 +3,19 @@
 from textual import events
 from textual.content import Content
 
-from advisor.interview import Session, answer_shown
+from advisor.interview import Session, answer_shown, shown_value
+from advisor.knowledge import Declaration
 from advisor.screens.given import Opened
 from advisor.screens.glyphs import Glyphs
 from advisor.screens.row import Row
 
-_TITLE = 22
+_WIDE, _SHORT_TITLE, _LONG_TITLE = 100, 22, 34
+
+
+def titled(title: str, window: int) -> str:
+    """A title cut and filled up to the width that suits the window."""
+    width = _LONG_TITLE if window < _WIDE else _SHORT_TITLE
+    return f"{title if len(title) <= width else title[: width - 3] + '...':<{width}}"
 
 
 class Answered(Row):
@@ -24,7 +31,7 @@ class Answered(Row):
         names = list(self.session.answered)
         here = self.session.question.name if self.session.question else ""
         if here in names:
-            names = names[:names.index(here)]
+            names = names[: names.index(here)]
         hidden = max(0, len(names) - most)
         self.lines = names[hidden:]
         lines = [self._line(number, name) for number, name in enumerate(self.lines, start=hidden + 1)]
@@ -33,10 +40,20 @@ class Answered(Row):
 
     def _line(self, number: int, name: str) -> Content:
         declaration = self.session.knowledge.facts[name]
-        answer = self.glyphs.words(answer_shown(declaration, self.session.case.answers[name]))
-        title = self.glyphs.words(declaration.title)
-        title = title if len(title) < _TITLE else title[:_TITLE - 3] + "..."
-        return Content.assemble((f"{number:>4}  ", "$quiet"), f"{title:<{_TITLE}} ", (answer, "bold"))
+        answer = self.glyphs.words(self._answer(declaration))
+        title = titled(self.glyphs.words(declaration.title), self.app.size.width)
+        return Content.assemble((f"{number:>4}  ", "$quiet"), f"{title} ", (answer, "bold"))
+
+    def _answer(self, declaration: Declaration) -> str:
+        """The answer, with what it filled in from a table."""
+        session = self.session
+        told = answer_shown(declaration, session.case.answers[declaration.name])
+        filled = [
+            (session.knowledge.facts[name], session.advice.facts[name].value)
+            for name in session.fills(declaration.name)
+        ]
+        parts = [shown_value(each, value) for each, value in filled if value is not None]
+        return f"{told}: {', '.join(parts)}" if parts else told
 
     def on_click(self, event: events.Click) -> None:
         """Open the question of the clicked line again."""

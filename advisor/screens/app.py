@@ -1,4 +1,4 @@
-"""The application around the sheet: start, load in the background, sheet, orderly end."""
+"""The application around the sheet: themes, first screen, orderly end."""
 
 from collections.abc import Callable
 from pathlib import Path
@@ -7,36 +7,37 @@ from typing import TYPE_CHECKING, ClassVar
 from textual.app import App
 from textual.command import Provider
 
-from advisor.mishaps import INTERNAL, USAGE, Refusal, write_log
+from advisor.mishaps import INTERNAL, write_log
+from advisor.screens.ascii_driver import ascii_driver
 from advisor.screens.ends import end_on_signals
 from advisor.screens.glyphs import Glyphs
+from advisor.screens.opening import Opening
 from advisor.screens.palette import Actions
 from advisor.screens.start import Start
 from advisor.screens.themes import NIGHT, PAPER
 
 if TYPE_CHECKING:
-    from advisor.advice import Advisor
-    from advisor.interview import Kept, Session
+    from advisor.interview import Session
     from advisor.knowledge import Knowledge
 
 
 class Gudgeon(App[None]):
-    """The knowledge is loaded in a thread; the engine then lives in the thread of the screen alone."""
+    """Shows the first screen at once; everything heavy comes after it."""
 
     CSS_PATH = "sheet.tcss"
     TITLE = "gudgeon"
     COMMANDS: ClassVar[set[type[Provider] | Callable[[], type[Provider]]]] = {Actions}
-    HORIZONTAL_BREAKPOINTS = [(0, "-tiny"), (60, "-one"), (100, "-two")]
-    VERTICAL_BREAKPOINTS = [(0, "-flat"), (18, "-short"), (34, "-tall")]
 
     def __init__(self, load: "Callable[[], Knowledge]", file: Path | None, glyphs: Glyphs) -> None:
         super().__init__()
-        self.load, self.file, self.glyphs = load, file, glyphs
+        if glyphs.plain:
+            self.driver_class = ascii_driver(self.driver_class)
+        self.glyphs = glyphs
+        self.opening = Opening(self, load, file)
         self.session: Session | None = None
-        self.advisor: Advisor | None = None
-        self.kept: list[Kept] = []
-        self.wanted: str | None = None
         self.farewell = ""
+        self.HORIZONTAL_BREAKPOINTS = [(0, "-tiny"), (60, "-one"), (100, "-two")]
+        self.VERTICAL_BREAKPOINTS = [(0, "-flat"), (18, "-short"), (34, "-tall")]
         self.register_theme(NIGHT)
         self.register_theme(PAPER)
         self.theme = "night"
@@ -48,67 +49,16 @@ class Gudgeon(App[None]):
     def on_mount(self) -> None:
         """Paint the first screen, then load."""
         end_on_signals(self)
-        opening = f"Opening {self.glyphs.words(self.file.name)}" if self.file else ""
-        self.push_screen(Start(self.glyphs, opening))
-        self.call_after_refresh(self.run_worker, self._load, thread=True)
-
-    def _load(self) -> None:
-        try:
-            from advisor.screens import sheet  # noqa: F401, PLC0415 - imported here so that the first text need not wait for it
-
-            knowledge = self.load()
-        except Refusal as fault:
-            self.call_from_thread(self.leave, str(fault), USAGE)
-        else:
-            self.call_from_thread(self._loaded, knowledge)
-
-    def _loaded(self, knowledge: "Knowledge") -> None:
-        from advisor.advice import Advisor
-        from advisor.interview import kept_interviews
-
-        self.advisor = Advisor(knowledge)
-        if self.file is not None:
-            self._open(self.file)
-            return
-        self.kept = kept_interviews()
-        if isinstance(self.screen, Start):
-            self.screen.ready(self.kept)
-        if self.wanted is not None:
-            self._begin(self.wanted)
+        self.push_screen(Start(self.glyphs, self.opening.file.name if self.opening.file else ""))
+        self.call_after_refresh(self.run_worker, self.opening.load, thread=True)
 
     def on_start_named(self, event: Start.Named) -> None:
-        """A new point; it waits until the knowledge is there."""
-        self.wanted = event.title
-        if self.advisor is not None:
-            self._begin(event.title)
+        """A new point."""
+        self.opening.begin(event.title)
 
     def on_start_resumed(self, event: Start.Resumed) -> None:
         """Go on with a kept interview."""
-        self._open(self.kept[event.number].path)
-
-    def _begin(self, title: str) -> None:
-        from advisor.interview import new_interview
-
-        assert self.advisor is not None  # noqa: S101 - asked by the callers
-        self._show(new_interview(self.advisor, title))
-
-    def _open(self, path: Path) -> None:
-        from advisor.interview import Damaged, new_interview, open_interview
-
-        assert self.advisor is not None  # noqa: S101 - asked by the callers
-        try:
-            self._show(open_interview(self.advisor, path) if path.exists() else new_interview(self.advisor, path.stem, path))
-        except Damaged as fault:
-            if self.file is not None:
-                self.leave(str(fault), USAGE)
-            elif isinstance(self.screen, Start):
-                self.screen.say(str(fault))
-
-    def _show(self, session: "Session") -> None:
-        from advisor.screens.sheet import Sheet
-
-        self.session = session
-        self.switch_screen(Sheet(session, self.glyphs))
+        self.opening.resume(event.number)
 
     def leave(self, farewell: str, code: int) -> None:
         """End with a sentence for the terminal that stays behind."""
@@ -122,7 +72,8 @@ class Gudgeon(App[None]):
     def _fatal_error(self) -> None:
         """Instead of a traceback with everybody's values: a log, and a sentence."""
         self.farewell = (
-            f"Something went wrong inside gudgeon. The details are in {write_log()}; please send that file with your case. "
-            "Your answers are kept.")
+            f"Something went wrong inside gudgeon. The details are in {write_log()}; send it with your case. "
+            "Your answers are kept."
+        )
         self._return_code = INTERNAL
         self._close_messages_no_wait()

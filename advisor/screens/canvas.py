@@ -1,4 +1,4 @@
-"""A canvas of braille dots in the cells of a terminal, two across and four down in each; ASCII where there is no braille."""
+"""A canvas of braille dots, two across and four down in each cell; ASCII where there is no braille."""
 
 from collections.abc import Iterable
 from itertools import groupby

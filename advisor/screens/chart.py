@@ -46,7 +46,9 @@ class Chart(Vertical):
         heading = self.query_one("#chart_heading", Row)
         drawing = self.query_one("#drawing", Row)
         if chart is None or width < _LEAST_WIDTH or height < _LEAST_HEIGHT:
-            when = "withheld: see the referral" if self.advice.withheld else "when speed, size and temperature are known"
+            when = (
+                "withheld: see the referral" if self.advice.withheld else "when speed, size and temperature are known"
+            )
             heading.show(Content.assemble(("CHART", "bold $accent"), (f"  {when}", "$quiet")))
             drawing.show(Content(""))
             return

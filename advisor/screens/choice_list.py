@@ -24,6 +24,11 @@ class ChoiceList(OptionList):
         self.ids: list[str] = []
         self.labels: list[str] = []
 
+    @property
+    def keys_go_to(self) -> OptionList:
+        """The widget that takes the keys."""
+        return self
+
     def load(self, choices: Mapping[str, str], unknown: str, chosen: str, width: int) -> None:
         """Show these choices; the one chosen before is highlighted."""
         self.ids, self.labels = list(choices), [*choices.values(), unknown]
@@ -31,12 +36,19 @@ class ChoiceList(OptionList):
         self.set_options(self._entries())
         self.highlighted = self.ids.index(chosen) if chosen in self.ids else 0
 
+    def fit(self, width: int) -> None:
+        """Break the entries at another width; the highlight stays."""
+        here, self.width = self.highlighted, width
+        self.set_options(self._entries())
+        self.highlighted = here
+
     def _entries(self) -> list[Option]:
         numbers = [*(str(place) for place in range(1, len(self.ids) + 1)), "?"]
         wide = len(str(len(self.ids)))
         return [
             Option(Content(self.glyphs.words(hanging(f" {number:>{wide}}  ", label, self.width))), id=str(place))
-            for place, (number, label) in enumerate(zip(numbers, self.labels, strict=True))]
+            for place, (number, label) in enumerate(zip(numbers, self.labels, strict=True))
+        ]
 
     def on_key(self, event: events.Key) -> None:
         """A digit goes to the choice of that number, a letter to the next one that begins with it."""

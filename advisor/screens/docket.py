@@ -5,13 +5,17 @@ from textual.containers import Vertical
 from textual.content import Content
 
 from advisor.advice import State
-from advisor.interview import RowShown, Session, codes_text, quantities_text, rows_shown
-from advisor.interview.wording import care_text
+from advisor.interview import RowShown, Session, care_text, codes_text, quantities_text, rows_shown
 from advisor.screens.glyphs import Glyphs
 from advisor.screens.row import Row
 
 _TITLE = 17
-_STATES = {State.OPEN: "open", State.REFERRED: "referred to a person", State.CONFLICT: "in conflict", State.SETTLED: "settled"}
+_STATES = {
+    State.OPEN: "open",
+    State.REFERRED: "referred to a person",
+    State.CONFLICT: "in conflict",
+    State.SETTLED: "settled",
+}
 
 
 class Docket(Vertical):
@@ -38,12 +42,16 @@ class Docket(Vertical):
         settled = sum(not each.waits_for for each in shown.values())
         state = "withheld: see the referral" if advice.withheld else f"{settled} of {len(self.titles)} rows settled"
         state += "" if advice.withheld or advice.state is State.SETTLED else f", the case is {_STATES[advice.state]}"
-        self.query_one("#docket_heading", Row).show(Content.assemble(("DOCKET", "bold $accent"), (f"  {state}", "$quiet")))
+        self.query_one("#docket_heading", Row).show(
+            Content.assemble(("DOCKET", "bold $accent"), (f"  {state}", "$quiet"))
+        )
         for row, title in self.titles:
             each = shown.get(row) or RowShown(row, title, "withheld", ())
             self.query_one(f"#row_{row}", Row).show(self._line(each, changed=row in changed))
         self.query_one("#codes", Row).show(self._plain("Code", codes_text(advice)))
-        self.query_one("#quantities", Row).show(self._plain("Quantities", "" if advice.withheld else quantities_text(advice)))
+        self.query_one("#quantities", Row).show(
+            self._plain("Quantities", "" if advice.withheld else quantities_text(advice))
+        )
         self.query_one("#care", Row).show(self._plain("Care", care_text(advice)))
 
     def _line(self, row: RowShown, *, changed: bool) -> Content:
@@ -51,7 +59,9 @@ class Docket(Vertical):
         lead = (f"{self.glyphs.changed if changed else ' '} {words(row.title):<{_TITLE}} ", "")
         if row.waits_for:
             blank = row.text or self.glyphs.blank * 9
-            return Content.assemble(lead, (f"{words(blank)}", "$quiet"), (f"  waits for {words(row.waits_for)}", "$quiet"))
+            return Content.assemble(
+                lead, (f"{words(blank)}", "$quiet"), (f"  waits for {words(row.waits_for)}", "$quiet")
+            )
         return Content.assemble(lead, (words(row.text), "bold"), (f"  {_rules(row)}", "$quiet"))
 
     def _plain(self, title: str, text: str) -> Content:

@@ -9,8 +9,7 @@ from textual.content import Content
 from textual.widgets import OptionList
 from textual.widgets.option_list import Option
 
-from advisor.interview import Session, codes_text, quantities_text
-from advisor.interview.wording import cautions_told, outcome_text, referrals_told
+from advisor.interview import Session, cautions_told, codes_text, outcome_text, quantities_text, referrals_told
 from advisor.screens.given import Chosen
 from advisor.screens.row import Row
 
@@ -45,15 +44,17 @@ class Ending(Vertical):
         left = stopped and bool(self.session.open)
         entries = [(what, text) for what, text in NEXT.items() if what != "go_on" or left]
         options = self.query_one(OptionList)
-        options.set_options([Option(Content(f" {number}  {text}"), id=what) for number, (what, text) in enumerate(entries, start=1)])
+        options.set_options(
+            [Option(Content(f" {number}  {text}"), id=what) for number, (what, text) in enumerate(entries, start=1)]
+        )
         options.highlighted = 0
         self.query_one("#outcome", Row).show(Content("\n").join(self._outcome()))
         self.query_one("#minding", Row).show(Content("\n").join(self._minding()))
 
-    def focus(self, scroll_visible: bool = True) -> "Ending":  # noqa: FBT001, FBT002 - as textual calls it
-        """The list takes the keys."""
-        self.query_one(OptionList).focus(scroll_visible)
-        return self
+    @property
+    def keys_go_to(self) -> OptionList:
+        """The widget that takes the keys."""
+        return self.query_one(OptionList)
 
     def _outcome(self) -> Iterator[Content]:
         advice, words = self.session.advice, self.glyphs.words

@@ -4,8 +4,7 @@ from textual.app import ComposeResult
 from textual.containers import Vertical
 from textual.content import Content
 
-from advisor.interview import Session
-from advisor.interview.wording import count_text
+from advisor.interview import Session, count_text
 from advisor.screens.glyphs import Glyphs
 from advisor.screens.row import Row
 from advisor.screens.shelf import bar
@@ -30,6 +29,8 @@ class Foot(Vertical):
         settled = [line.title for line in advice.docket if not line.waits]
         rows = f"{len(settled)} of {len(advice.docket)} docket rows settled"
         text = f"{self.glyphs.changed} settled just now: {', '.join(now)}" if now else rows
-        self.query_one("#settled", Row).show(Content.assemble(words("No product is named here." if advice.withheld else text)))
+        self.query_one("#settled", Row).show(
+            Content.assemble(words("No product is named here." if advice.withheld else text))
+        )
         count = "" if advice.withheld else f"{bar(advice, self.glyphs)}  {count_text(advice)}"
         self.query_one("#count", Row).show(Content.assemble(count, ("   F2 docket and shelf", "$quiet")))

@@ -34,16 +34,47 @@ class Glyphs:
 ASCII = Glyphs("*", "o", "?", ">", ".", "#", "-", "x", "_", "@", "-", plain=True)
 
 _SPELLED = {"≥": ">=", "≤": "<=", "±": "+/-", "→": "->", "…": "...", "°C": "degC", "°F": "degF", "µ": "u"}
-ONE_FOR_ONE = str.maketrans({
-    **dict.fromkeys("─━═┄┈╌▔▁▂", "-"), **dict.fromkeys("│┃║┆┊▏▕▎▌▐", "|"), **dict.fromkeys("┌┐└┘├┤┬┴┼╭╮╰╯┗┛┏┓", "+"),
-    **dict.fromkeys("█▉▊▋▇▆▅▄▃▀■", "#"), **dict.fromkeys("·⋅•", "."), **dict.fromkeys("−–—‐", "-"), "×": "x", "²": "2", "³": "3",
-    "°": "'", "µ": "u", "…": "~", "▼": "v", "▶": ">", "▸": ">", "●": "*", "○": "o", "◌": "?", "□": "-", "◉": "@", "≥": ">", "≤": "<",
-    "’": "'", "“": '"', "”": '"', "ä": "a", "ö": "o", "ü": "u", "é": "e",
-})
+ONE_FOR_ONE = str.maketrans(
+    {
+        **dict.fromkeys("─━═┄┈╌▔▁▂", "-"),
+        **dict.fromkeys("│┃║┆┊▏▕▎▌▐", "|"),
+        **dict.fromkeys("┌┐└┘├┤┬┴┼╭╮╰╯┗┛┏┓", "+"),
+        **dict.fromkeys("█▉▊▋▇▆▅▄▃▀■", "#"),
+        **dict.fromkeys("·⋅•", "."),
+        **dict.fromkeys("−–—‐", "-"),
+        "×": "x",
+        "²": "2",
+        "³": "3",
+        "°": " ",
+        "µ": "u",
+        "…": "~",
+        "▼": "v",
+        "▶": ">",
+        "▸": ">",
+        "●": "*",
+        "○": "o",
+        "◌": "?",
+        "□": "-",
+        "◉": "@",
+        "≥": ">",
+        "≤": "<",
+        "’": "'",
+        "“": '"',
+        "”": '"',
+        "ä": "a",
+        "ö": "o",
+        "ü": "u",
+        "é": "e",
+    }
+)
 """One ASCII sign for one that is drawn by the screen itself."""
 
 
 def glyphs_for(*, plain: bool) -> Glyphs:
     """The signs for this terminal: ASCII where asked for, or where the locale cannot show others."""
     encoding = locale.getpreferredencoding(do_setlocale=False).replace("-", "").casefold()
-    return ASCII if plain or encoding not in {"utf8", "utf16", "cp65001"} or os.environ.get("TERM") == "linux" else Glyphs()
+    return (
+        ASCII
+        if plain or encoding not in {"utf8", "utf16", "cp65001"} or os.environ.get("TERM") == "linux"
+        else Glyphs()
+    )

@@ -4,10 +4,10 @@ import textwrap
 
 
 def hanging(lead: str, text: str, width: int) -> str:
-    """The text after its lead, broken at the width.
+    r"""The text after its lead, broken at the width.
 
     >>> hanging(" 1  ", "grease or oil", 12)
-    ' 1  grease\\n    or oil'
+    ' 1  grease\n    or oil'
     """
     lines = textwrap.wrap(text, max(10, width - len(lead))) or [""]
     return lead + ("\n" + " " * len(lead)).join(lines)

@@ -11,6 +11,7 @@ from textual.content import Content
 from textual.widgets import Input
 
 from advisor.quantities import units_for
+from advisor.screens.field import Field
 from advisor.screens.given import DontKnow, Given
 from advisor.screens.row import Row
 
@@ -27,7 +28,9 @@ class NumberField(Vertical):
     """A field, the units to choose from (or the words that stand for numbers), and the echo."""
 
     BINDINGS: ClassVar[list[BindingType]] = [
-        Binding("up", "cycle(-1)", show=False, priority=True), Binding("down", "cycle(1)", show=False, priority=True)]
+        Binding("up", "cycle(-1)", show=False, priority=True),
+        Binding("down", "cycle(1)", show=False, priority=True),
+    ]
 
     def __init__(self, glyphs: "Glyphs", echo: Echo) -> None:
         super().__init__(classes="editor")
@@ -37,7 +40,7 @@ class NumberField(Vertical):
 
     def compose(self) -> ComposeResult:
         """The field, the strip of units, the echo, and what a don't know does."""
-        yield Input(compact=True)
+        yield Field()
         yield Row(id="units")
         yield Row(id="echo")
         yield Row(id="unknown")
@@ -54,10 +57,10 @@ class NumberField(Vertical):
         self.query_one("#unknown", Row).show(Content(self.glyphs.words(f"?  {unknown}")))
         self._show()
 
-    def focus(self, scroll_visible: bool = True) -> "NumberField":  # noqa: FBT001, FBT002 - as textual calls it
-        """Typing goes to the field."""
-        self.query_one(Input).focus(scroll_visible)
-        return self
+    @property
+    def keys_go_to(self) -> Input:
+        """The widget that takes the keys."""
+        return self.query_one(Input)
 
     @property
     def text(self) -> str:

@@ -20,8 +20,16 @@ class Actions(Provider):
 
     def _entries(self) -> list[tuple[str, str]]:
         keys: list[Binding] = [active.binding for active in self.screen.active_bindings.values() if active.enabled]
-        own = {f"screen.{each.action}": f"{each.description}  {self.app.get_key_display(each)}" for each in keys if each.id in _OWN}
-        more = _MORE if "screen.view('docket')" in own else {name: text for name, text in _MORE.items() if name.startswith("app.")}
+        own = {
+            f"screen.{each.action}": f"{each.description}  {self.app.get_key_display(each)}"
+            for each in keys
+            if each.id in _OWN
+        }
+        more = (
+            _MORE
+            if "screen.view('docket')" in own
+            else {name: text for name, text in _MORE.items() if name.startswith("app.")}
+        )
         return [*own.items(), *more.items()]
 
     async def discover(self) -> Hits:

@@ -1,4 +1,4 @@
-"""The interview line by line: for screen readers, plain terminals and scripts. No boxes, no colours, no cursor motion."""
+"""The interview line by line: for screen readers, plain terminals and scripts."""
 
 import sys
 from collections.abc import Callable, Iterator
@@ -12,11 +12,16 @@ if TYPE_CHECKING:
     from advisor.interview import Session
     from advisor.knowledge import Declaration, Knowledge
 
-_HELP = "? don't know, < the question before, > later, undo takes the last answer back, quit leaves; answers are kept after each one."
+_HELP = (
+    "? don't know, < the question before, > later, undo takes the last answer back, quit leaves. "
+    "Answers are kept after each one."
+)
 _MANY = 20
 
 
-def run(load: "Callable[[], Knowledge]", file: Path | None, source: TextIO | None = None, sink: TextIO | None = None) -> int:
+def run(
+    load: "Callable[[], Knowledge]", file: Path | None, source: TextIO | None = None, sink: TextIO | None = None
+) -> int:
     """Ask until nothing is left to ask, or the user leaves."""
     from advisor.advice import Advisor
 
@@ -72,7 +77,9 @@ def _ask_all(session: "Session", talk: _Talk) -> None:
     while (question := session.question) is not None:
         if session.only_quantities_left and not told_enough:
             told_enough = True
-            talk.say("All that decides the lubricant is known. What follows tunes quantity and interval; quit stops here.")
+            talk.say(
+                "All that decides the lubricant is known. What follows tunes quantity and interval; quit stops here."
+            )
         for line in _asked(session, question):
             talk.say(line)
         typed = talk.ask("> ")
@@ -82,7 +89,7 @@ def _ask_all(session: "Session", talk: _Talk) -> None:
 
 
 def _asked(session: "Session", question: "Declaration") -> Iterator[str]:
-    from advisor.interview import answer_shown
+    from advisor.interview import answer_shown, shown_value
 
     assert question.question is not None  # noqa: S101 - asked facts only
     asked = session.answered
@@ -99,6 +106,8 @@ def _asked(session: "Session", question: "Declaration") -> Iterator[str]:
         yield "  Several numbers apart by commas; an empty line for none."
     if domain.named:
         yield f"  A word will do: {', '.join(word.replace('_', ' ') for word in domain.named)}."
+    if question.assume is not None:
+        yield f"  ?  don't know: taken as {shown_value(question, question.assume.value)}"
     if question.name in session.case.answers:
         yield f"  Answered: {answer_shown(question, session.case.answers[question.name])}. An empty line leaves it so."
 
@@ -126,7 +135,7 @@ def _take(session: "Session", question: "Declaration", typed: str, talk: _Talk) 
 
 
 def _changes(session: "Session", talk: _Talk) -> None:
-    from advisor.interview.wording import count_text
+    from advisor.interview import count_text
 
     settled = session.settled_rows()
     if settled:
@@ -147,12 +156,19 @@ def _meant(question: "Declaration", typed: str) -> str:
     if len(choices) <= _MANY:
         return _numbered(list(choices), typed)
     found = [name for name, label in choices.items() if typed.casefold() in {name.casefold(), label.casefold()}] or [
-        name for name, label in choices.items() if typed and all(word in label.casefold() for word in typed.casefold().split())]
+        name
+        for name, label in choices.items()
+        if typed and all(word in label.casefold() for word in typed.casefold().split())
+    ]
     if len(found) == 1:
         return found[0]
-    if len(found) > _MANY or not found:
-        raise Unsuitable(f"{len(found) or 'No'} entries hold '{typed}'. Type more of the name." if found else f"No entry holds '{typed}'. Try another part.")
-    raise Unsuitable(f"'{typed}' may be any of these; type more of the name: {'; '.join(choices[name] for name in found)}.")
+    if not found:
+        return typed
+    if len(found) > _MANY:
+        raise Unsuitable(f"{len(found)} entries hold '{typed}'. Type more of the name.")
+    raise Unsuitable(
+        f"'{typed}' may be any of these; type more of the name: {'; '.join(choices[name] for name in found)}."
+    )
 
 
 def _numbered(names: list[str], typed: str) -> str:

@@ -6,7 +6,7 @@ from textual.content import Content
 from textual.widgets import OptionList
 from textual.widgets.option_list import Option
 
-from advisor.interview import Session, answer_shown
+from advisor.interview import Session, answer_shown, shown_value
 from advisor.knowledge import Declaration
 from advisor.screens.given import Opened
 from advisor.screens.glyphs import Glyphs
@@ -50,7 +50,15 @@ class QuestionMap(OptionList):
             return Option(Content.assemble(title, (answer, "bold"), (aside, "$quiet")), id=name)
         if name in session.open:
             return Option(Content.assemble(title, self.glyphs.blank * 5), id=name)
+        if name in session.may_be_asked:
+            return Option(Content.assemble(title, (self._unasked(declaration), "$quiet")), id=name)
         return Option(Content.assemble((f"{title}not needed so far", "$quiet")), id=name, disabled=True)
+
+    def _unasked(self, declaration: Declaration) -> str:
+        fact = self.session.advice.facts[declaration.name]
+        if declaration.filled is not None and fact.value is not None:
+            return self.glyphs.words(f"{shown_value(declaration, fact.value)}, {fact.note}")
+        return "optional"
 
     def on_option_list_option_selected(self, event: OptionList.OptionSelected) -> None:
         """Jump to the question."""

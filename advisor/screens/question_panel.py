@@ -1,4 +1,4 @@
-"""The question in place: what is asked, help, the editor for its kind of answer, and what the answer helps to settle."""
+"""The question in place: what is asked, help, the editor for its kind of answer, what it helps to settle."""
 
 from typing import TYPE_CHECKING
 
@@ -9,8 +9,7 @@ from textual.widgets import OptionList
 
 from advisor.answers import DONT_KNOW, Unsuitable
 from advisor.case import Answer
-from advisor.interview import Session
-from advisor.interview.wording import exactly, shown_value
+from advisor.interview import Session, exactly, shown_value
 from advisor.knowledge import Declaration
 from advisor.screens.choice_list import ChoiceList
 from advisor.screens.ending import Ending
@@ -39,6 +38,7 @@ class QuestionPanel(Vertical):
         self.stopped = False
         self.lines = 0
         self._shown: object = None
+        self._fitted = (0, 0)
         self.choices, self.ticks, self.find = ChoiceList(glyphs), TickList(glyphs), FindList(glyphs)
         self.number, self.text, self.ending = NumberField(glyphs, self._echo), TextField(), Ending(session, glyphs)
         self.editors: tuple[Editor, ...] = (self.choices, self.ticks, self.find, self.number, self.text, self.ending)
@@ -52,25 +52,34 @@ class QuestionPanel(Vertical):
         yield Row(id="helps")
 
     def show(self, width: int, height: int) -> None:
-        """Show the question in place, or the ending."""
+        """Show the question in place, or the ending; what is half typed survives another size of the window."""
         question = None if self.stopped else self.session.question
         given = self.session.case.answers.get(question.name) if question else None
-        key = (question.name, given, width, height) if question else (self.session.advice, width)
-        if key == self._shown:
-            return
-        self._shown = key
+        key, size = (question.name, given) if question else self.session.advice, (width, height)
+        if key != self._shown:
+            self._show(question, given, max(_LEAST_WIDTH, width - _MARGIN))
+        elif size != self._fitted and isinstance(self.editor, ChoiceList | TickList | FindList):
+            self.editor.fit(max(_LEAST_WIDTH, width - _MARGIN))
+        if question is not None and (key, size) != (self._shown, self._fitted):
+            self._limit(question, width, height)
+        self._shown, self._fitted = key, size
+
+    def _show(self, question: Declaration | None, given: Answer | None, width: int) -> None:
         if question is None:
             self.ending.load(stopped=self.stopped)
             self.editor = self.ending
         else:
-            self.editor = self._loaded(question, given, max(_LEAST_WIDTH, width - _MARGIN))
+            self.editor = self._loaded(question, given, width)
             self._heads(question)
-            self._limit(question, width, height)
         for each in self.editors:
             each.display = each is self.editor
-        for each in self.query("#ask, #help, #helps"):
-            each.display = question is not None
-        self.editor.focus()
+        for row in self.query("#ask, #help, #helps"):
+            row.display = question is not None
+        self.take_keys()
+
+    def take_keys(self) -> None:
+        """Give the keys to the editor at once, so that nothing typed ahead goes astray."""
+        self.screen.set_focus(self.editor.keys_go_to)
 
     def _limit(self, question: Declaration, width: int, height: int) -> None:
         """Leave room above and below a long list for the question itself and its neighbours."""
@@ -79,7 +88,9 @@ class QuestionPanel(Vertical):
         lines = sum(-(-len(text) // max(1, width - _MARGIN)) for text in texts)
         most = max(_LEAST_LIST, height - lines - _NEIGHBOURS)
         self.lines = lines + _FIELD_LINES
-        inside: list[OptionList] = [self.editor] if isinstance(self.editor, OptionList) else list(self.editor.query(OptionList))
+        inside: list[OptionList] = (
+            [self.editor] if isinstance(self.editor, OptionList) else list(self.editor.query(OptionList))
+        )
         for options in inside:
             options.styles.max_height = most
             self.lines = lines + 1 + min(most, sum(str(each.prompt).count("\n") + 1 for each in options.options))
@@ -89,7 +100,9 @@ class QuestionPanel(Vertical):
         words, session = self.glyphs.words, self.session
         asked = session.answered
         number = asked.index(question.name) + 1 if question.name in asked else len(asked) + 1
-        self.query_one("#ask", Row).show(Content.assemble((f"{number:>3}  ", "$accent"), (words(question.question.ask), "bold")))
+        self.query_one("#ask", Row).show(
+            Content.assemble((f"{number:>3}  ", "$accent"), (words(question.question.ask), "bold"))
+        )
         enough = "All that decides the lubricant is known; F8 stops here. " if session.only_quantities_left else ""
         self.query_one("#help", Row).show(Content.assemble(enough, (words(question.question.help), "$quiet")))
         self.query_one("#helps", Row).show(self._helps(question))
@@ -106,7 +119,9 @@ class QuestionPanel(Vertical):
         domain, unknown = question.domain, _unknown(question)
         value = given.value if given else None
         if domain.kind == "number":
-            self.number.load(domain, unknown, given.typed.replace("_", " ") if given and given.typed != DONT_KNOW else "")
+            self.number.load(
+                domain, unknown, given.typed.replace("_", " ") if given and given.typed != DONT_KNOW else ""
+            )
             return self.number
         if domain.kind == "several":
             self.ticks.load(domain.choices, unknown, value if isinstance(value, tuple) else (), width)

@@ -18,20 +18,20 @@ def run(load: "Callable[[], Knowledge]", file: Path | None, *, plain_glyphs: boo
     app = Gudgeon(load, file, glyphs_for(plain=plain_glyphs))
     try:
         app.run()
+        code = app.return_code or 0
+        if app.farewell:
+            sys.stderr.write(app.farewell + "\n")
+        if app.session is not None and not code:
+            sys.stdout.write("\n".join(parting(app.session)) + "\n")
     finally:
         if app.session is not None:
             app.session.close()
-    code = app.return_code or 0
-    if app.farewell:
-        sys.stderr.write(app.farewell + "\n")
-    if app.session is not None and not code:
-        sys.stdout.write("\n".join(parting(app.session)) + "\n")
     return code
 
 
 def parting(session: "Session") -> list[str]:
     """What stays in the terminal: the outcome in a sentence, and how to go on."""
-    from advisor.interview.wording import outcome_text
+    from advisor.interview import outcome_text
 
     lines = [outcome_text(session.advice)]
     if session.trouble:

@@ -128,6 +128,8 @@ class Sheet(Screen[None]):
         """Lay out anew; what was typed stays where the question need not be rebuilt."""
         if self.is_mounted and self.query(TitleLine):
             self.show()
+            if not self.view:
+                self.call_after_refresh(self._focus_editor)
 
     # ---- answers -----------------------------------------------------------------------------------------------
 
@@ -200,7 +202,7 @@ class Sheet(Screen[None]):
         if target is None:
             self._focus_editor()
         else:
-            self.query_one(target).focus()
+            self.set_focus(self.query_one(target))
 
     def _see(self, view: str) -> None:
         for each in VIEWS:
@@ -208,14 +210,14 @@ class Sheet(Screen[None]):
         self.view = view
 
     def _focus_editor(self) -> None:
-        self.query_one(QuestionPanel).editor.focus()
+        self.query_one(QuestionPanel).take_keys()
 
     async def action_stop_here(self) -> None:
         """End before the questions that only tune quantity and interval."""
         self.query_one(QuestionPanel).stopped = True
         self.show()
 
-    def check_action(self, action: str, parameters: tuple[object, ...]) -> bool | None:
+    def check_action(self, action: str, parameters: tuple[object, ...]) -> bool | None:  # noqa: ARG002 - as textual asks
         """Which keys do something now; the others stay out of the footer."""
         if action == "stop_here":
             return self.session.only_quantities_left and not self.query_one(QuestionPanel).stopped
@@ -253,7 +255,9 @@ class Sheet(Screen[None]):
     def action_report(self, kind: str) -> None:
         """Ask where to, and write the report."""
         name = f"{reports.file_stem(self.session.case.title)}.{'md' if kind == 'markdown' else 'html'}"
-        self.app.push_screen(Dialog("Write the report", {"file": name}, self.glyphs), lambda given: self._report(kind, given))
+        self.app.push_screen(
+            Dialog("Write the report", {"file": name}, self.glyphs), lambda given: self._report(kind, given)
+        )
 
     def _report(self, kind: str, given: dict[str, str] | None) -> None:
         if given is not None:

@@ -5,9 +5,7 @@ from textual.containers import Vertical, VerticalScroll
 from textual.content import Content
 
 from advisor.advice import Advice, Ranked
-from advisor.interview import product_reasons
-from advisor.explanation.contrasts import VERDICTS
-from advisor.interview.wording import count_text
+from advisor.interview import VERDICTS, count_text, product_reasons
 from advisor.screens.glyphs import Glyphs
 from advisor.screens.row import Row
 from advisor.shelf import Verdict
@@ -31,15 +29,23 @@ class Shelf(Vertical):
     def show(self, advice: Advice) -> None:
         """Show this advice."""
         count = "withheld" if advice.withheld else count_text(advice)
-        self.query_one("#shelf_heading", Row).show(Content.assemble(
-            ("SHELF", "bold $accent"), f"  {count}  ", self.glyphs.words("") + bar(advice, self.glyphs)))
+        self.query_one("#shelf_heading", Row).show(
+            Content.assemble(
+                ("SHELF", "bold $accent"), f"  {count}  ", self.glyphs.words("") + bar(advice, self.glyphs)
+            )
+        )
         reasons = product_reasons(advice)
         lines = [self._line(each, reason) for each, reason in zip(advice.shelf, reasons, strict=True)]
         self.query_one("#product_lines", Row).show(Content("\n").join(lines))
 
     def _line(self, ranked: Ranked, reason: str) -> Content:
         glyph, style = _sign(ranked.verdict, self.glyphs)
-        return Content.assemble(f"{glyph} ", (f"{ranked.item:<8}", style), f"{VERDICTS[ranked.verdict]:<12}", (self.glyphs.words(reason), "$quiet"))
+        return Content.assemble(
+            f"{glyph} ",
+            (f"{ranked.item:<8}", style),
+            f"{VERDICTS[ranked.verdict]:<12}",
+            (self.glyphs.words(reason), "$quiet"),
+        )
 
 
 def _sign(verdict: Verdict, glyphs: Glyphs) -> tuple[str, str]:

@@ -1,4 +1,4 @@
-"""The first screen: the name of the point, or a kept interview to go on with. It needs no knowledge, so it shows at once."""
+"""The first screen: the name of the point, or a kept interview to go on with. It needs no knowledge."""
 
 from collections.abc import Sequence
 from typing import TYPE_CHECKING, ClassVar
@@ -41,7 +41,9 @@ class Start(Screen[None]):
             super().__init__()
 
     BINDINGS: ClassVar[list[BindingType]] = [
-        Binding("down", "into_list", "Kept interviews", show=False), Binding("ctrl+q", "app.quit", "Quit", key_display="^q")]
+        Binding("down", "into_list", "Kept interviews", show=False),
+        Binding("ctrl+q", "app.quit", "Quit", key_display="^q"),
+    ]
 
     def __init__(self, glyphs: "Glyphs", opening: str = "") -> None:
         super().__init__()
@@ -60,8 +62,11 @@ class Start(Screen[None]):
 
     def on_mount(self) -> None:
         """Show what can be shown before the knowledge is there."""
-        self.query_one("#welcome", Row).show(Content.assemble(("gudgeon", "bold $accent"), "  a lubricant for a lubrication point, with the reasons"))
-        self.query_one("#ask", Row).show(Content.assemble((self.opening or "What is the point called?", "bold")))
+        self.query_one("#welcome", Row).show(
+            Content.assemble(("gudgeon", "bold $accent"), "  a lubricant for a lubrication point, with the reasons")
+        )
+        ask = f"Opening {self.glyphs.words(self.opening)}" if self.opening else "What is the point called?"
+        self.query_one("#ask", Row).show(Content.assemble((ask, "bold")))
         self.query_one("#state", Row).show(Content.assemble(("reading the knowledge ...", "$quiet")))
         self.query_one("#kept").display = False
         name = self.query_one("#name", Input)
@@ -71,12 +76,23 @@ class Start(Screen[None]):
     def ready(self, kept: Sequence["Kept"]) -> None:
         """The knowledge is there: offer the kept interviews."""
         words = self.glyphs.words
-        hint = "Enter starts. Down: go on with a kept interview" if kept else "Enter starts. Answers are kept after each one."
+        hint = (
+            "Enter starts. Down: go on with a kept interview"
+            if kept
+            else "Enter starts. Answers are kept after each one."
+        )
         self.query_one("#state", Row).show(Content.assemble((hint, "$quiet")))
         options = self.query_one("#kept", OptionList)
-        options.add_options([
-            Option(Content.assemble(f" {words(each.title[:40]):<41}", (f"{each.answered} answered, {each.touched}", "$quiet")))
-            for each in kept[:_SHOWN]])
+        options.add_options(
+            [
+                Option(
+                    Content.assemble(
+                        f" {words(each.title[:40]):<41}", (f"{each.answered} answered, {each.touched}", "$quiet")
+                    )
+                )
+                for each in kept[:_SHOWN]
+            ]
+        )
         options.display = bool(kept)
 
     def say(self, text: str) -> None:
@@ -85,8 +101,10 @@ class Start(Screen[None]):
 
     def action_into_list(self) -> None:
         """From the field into the list."""
-        if self.query_one("#kept").display:
-            self.query_one("#kept").focus()
+        kept = self.query_one("#kept", OptionList)
+        if kept.display and not kept.has_focus:
+            kept.highlighted = 0
+            self.set_focus(kept)
 
     def on_input_submitted(self, event: Input.Submitted) -> None:
         """A new point."""

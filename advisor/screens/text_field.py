@@ -11,6 +11,11 @@ class TextField(Input):
     def __init__(self) -> None:
         super().__init__(compact=True, classes="editor")
 
+    @property
+    def keys_go_to(self) -> Input:
+        """The widget that takes the keys."""
+        return self
+
     def load(self, typed: str) -> None:
         """Show what was typed before."""
         self.value = typed

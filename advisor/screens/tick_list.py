@@ -28,6 +28,11 @@ class TickList(OptionList):
         self.labels: list[str] = []
         self.ticked: set[str] = set()
 
+    @property
+    def keys_go_to(self) -> OptionList:
+        """The widget that takes the keys."""
+        return self
+
     def load(self, choices: Mapping[str, str], unknown: str, ticked: Collection[str], width: int) -> None:
         """Show these choices, with those ticked that were before."""
         self.ids, self.labels, self.unknown = list(choices), list(choices.values()), unknown
@@ -36,19 +41,33 @@ class TickList(OptionList):
         self.set_options(self._entries())
         self.highlighted = 0
 
+    def fit(self, width: int) -> None:
+        """Break the entries at another width; ticks and highlight stay."""
+        here, self.width = self.highlighted, width
+        self.set_options(self._entries())
+        self.highlighted = here
+
     def _entries(self) -> list[Option]:
         wide = len(str(len(self.ids)))
         entries = [
             (f" {self._box(each)} {place:>{wide}}  ", label)
-            for place, (each, label) in enumerate(zip(self.ids, self.labels, strict=True), start=1)]
+            for place, (each, label) in enumerate(zip(self.ids, self.labels, strict=True), start=1)
+        ]
         entries += [(f"   {'':>{wide}}  ", self._accepts()), (f"   {'?':>{wide}}  ", self.unknown)]
-        return [Option(Content(self.glyphs.words(hanging(*entry, self.width))), id=str(place)) for place, entry in enumerate(entries)]
+        return [
+            Option(Content(self.glyphs.words(hanging(*entry, self.width))), id=str(place))
+            for place, entry in enumerate(entries)
+        ]
 
     def _box(self, choice: str) -> str:
         return self.glyphs.ticked if choice in self.ticked else self.glyphs.unticked
 
     def _accepts(self) -> str:
-        return f"Enter: accept these {len(self.ticked)}" if len(self.ticked) > 1 else f"Enter: {'accept this one' if self.ticked else 'none of these'}"
+        return (
+            f"Enter: accept these {len(self.ticked)}"
+            if len(self.ticked) > 1
+            else f"Enter: {'accept this one' if self.ticked else 'none of these'}"
+        )
 
     def on_key(self, event: events.Key) -> None:
         """A digit ticks the choice of that number; a second digit corrects it to a two-digit number."""

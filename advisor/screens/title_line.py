@@ -28,7 +28,7 @@ class TitleLine(Horizontal):
         """Show the session."""
         session = self.session
         title = self.glyphs.words(harmless(session.case.title))
-        title = title if len(title) <= _LONGEST else title[:_LONGEST - 3] + "..."
+        title = title if len(title) <= _LONGEST else title[: _LONGEST - 3] + "..."
         count = f"   {len(session.answered)} answered, {len(session.open)} to come"
         self.query_one("#title", Row).show(Content.assemble((title, "bold"), count))
         self.query_one("#saved", Row).show(Content(self._saved()))

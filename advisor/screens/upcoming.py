@@ -4,11 +4,10 @@ from textual import events
 from textual.content import Content
 
 from advisor.interview import Session
+from advisor.screens.answered import titled
 from advisor.screens.given import Opened
 from advisor.screens.glyphs import Glyphs
 from advisor.screens.row import Row
-
-_TITLE = 22
 
 
 class Upcoming(Row):
@@ -24,7 +23,7 @@ class Upcoming(Row):
         session = self.session
         here = session.question.name if session.question else ""
         later = list(session.answered)
-        later = later[later.index(here) + 1:] if here in later else []
+        later = later[later.index(here) + 1 :] if here in later else []
         ahead = [*later, *(name for name in session.open if name != here)]
         self.names = ahead[:most]
         lines = [self._line(name) for name in self.names]
@@ -34,9 +33,9 @@ class Upcoming(Row):
         self.show(Content("\n").join(lines))
 
     def _line(self, name: str) -> Content:
-        title = self.glyphs.words(self.session.knowledge.title(name))
+        title = titled(self.glyphs.words(self.session.knowledge.title(name)), self.app.size.width)
         mark = "answered" if name in self.session.case.answers else self.glyphs.blank * 5
-        return Content.assemble((f"      {title:<{_TITLE}} {mark}", "$quiet"))
+        return Content.assemble((f"      {title} {mark}", "$quiet"))
 
     def on_click(self, event: events.Click) -> None:
         """Open the clicked question out of turn."""

@@ -59,7 +59,12 @@ def _recommended(advice: Advice) -> Iterator[Oil]:
     for code, steps in advice.oil_ranks.items():
         values = catalogue.items[catalogue.place[code]].values if catalogue else {}
         grade, at_40, at_100 = values.get("vg"), values.get("viscosity_40"), values.get("viscosity_100")
-        if steps == best and isinstance(grade, float) and isinstance(at_40, float | int) and isinstance(at_100, float | int):
+        if (
+            steps == best
+            and isinstance(grade, float)
+            and isinstance(at_40, float | int)
+            and isinstance(at_100, float | int)
+        ):
             found.setdefault(grade, Oil(f"VG {grade:g}", float(at_40), float(at_100)))
     grades = sorted(found)
     step = max(1, math.ceil(len(grades) / _MOST_OILS))
@@ -71,7 +76,9 @@ def _first_product(advice: Advice) -> Iterator[Oil]:
     if first is None or advice.judgement is None or first.verdict.value in {"falls_short", "unproven", "still_in"}:
         return
     columns = advice.judgement.columns
-    seen = [columns[name].values[first.place] if name in columns else None for name in ("viscosity_40", "viscosity_100")]
+    seen = [
+        columns[name].values[first.place] if name in columns else None for name in ("viscosity_40", "viscosity_100")
+    ]
     if isinstance(seen[0], float | int) and isinstance(seen[1], float | int):
         yield Oil(first.item, seen[0], seen[1], strong=True)
 
@@ -136,7 +143,7 @@ def _oil(canvas: Canvas, axes: _Axes, oil: Oil) -> None:
     place = axes.width + _LEFT + 1
     rows = sorted(range(axes.height), key=lambda row: abs(row - int(end)))
     row = next((each for each in rows if canvas.free(place, each, 1)), 0)
-    canvas.text(place, row, oil.label[:_RIGHT - 1], layer)
+    canvas.text(place, row, oil.label[: _RIGHT - 1], layer)
 
 
 def _labels(canvas: Canvas, axes: _Axes, chart: Charted, glyphs: Glyphs) -> None:

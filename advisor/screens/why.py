@@ -1,16 +1,14 @@
-"""Why: the derivation of every row, conclusion on top, down to the numbered answers; and what stands against products."""
+"""Why: the derivation of every row down to the numbered answers, and what stands against products."""
 
 from rich.text import Text
 from textual.widgets import Tree
 from textual.widgets.tree import TreeNode
 
 from advisor.explanation import why, why_not
-from advisor.explanation.contrasts import VERDICTS
 from advisor.explanation.reasons import Why, say_line
 from advisor.explanation.ruling import RuleReason
 from advisor.explanation.workings import Premise
-from advisor.interview import Session, rows_shown
-from advisor.interview.wording import cautions_told, referrals_told
+from advisor.interview import VERDICTS, Session, cautions_told, referrals_told, rows_shown
 from advisor.screens.glyphs import Glyphs
 
 Subject = tuple[str, str]
@@ -86,7 +84,10 @@ class WhyTree(Tree[Subject]):
         self._leaf(node, f"rule {rule.id}: {rule.title}")
         for premise in rule.premises:
             self._premise(node, premise)
-        for each in (f"limits: {rule.limits}" if rule.limits else "", *(f"source: {source}" for source in rule.sources)):
+        for each in (
+            f"limits: {rule.limits}" if rule.limits else "",
+            *(f"source: {source}" for source in rule.sources),
+        ):
             if each:
                 self._leaf(node, each)
 

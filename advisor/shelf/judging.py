@@ -8,7 +8,7 @@ from advisor.conditions import Bound, Coded, Condition, Domain, Either, Every, M
 from advisor.conditions.terms import SIGNS
 from advisor.shelf.catalogue import Catalogue
 from advisor.shelf.columns import Column, judge, places
-from advisor.specification import STRONG, Demand
+from advisor.specification import MUST, STRONG, Demand
 
 
 class Verdict(StrEnum):
@@ -47,11 +47,12 @@ class Judgement:
         self.failing: list[int] = []
         self.missing: list[int] = []
         self.fails_must = self.unproven = self.misses_strong = 0
+        self._waiting = frozenset(name for name, column in columns.items() if column.waiting)
         for demand in self.demands:
             failing, missing = self._judge(demand, everything, missing_counts=missing_counts)
             self.failing.append(failing)
             self.missing.append(missing)
-            if demand.must:
+            if demand.level == MUST:
                 self.fails_must |= failing
                 self.unproven |= missing
             elif demand.level <= STRONG:
@@ -72,8 +73,7 @@ class Judgement:
 
     def _waits(self, condition: Condition) -> bool:
         """Whether a `for` speaks of a property that is not known for any item until questions are answered."""
-        columns = (self.columns.get(term.name) for term in leaves(condition))
-        return any(column is not None and column.waiting for column in columns)
+        return bool(self._waiting) and any(term.name in self._waiting for term in leaves(condition))
 
     @property
     def passing(self) -> int:
@@ -94,7 +94,7 @@ class Judgement:
         """For the items among these: the whole steps short of the shoulds, added level by level."""
         short = {place: [0, 0, 0, 0] for place in places(among)}
         for demand, failing, missing in zip(self.demands, self.failing, self.missing, strict=True):
-            if demand.must:
+            if demand.level == MUST:
                 continue
             level = demand.level - 1
             for place in places(missing & among):

@@ -27,13 +27,19 @@ def test_an_oxidiser_is_referred_and_nothing_is_shown(advise: Advise) -> None:
     advice = advise(dangers="oxidiser")
     assert advice.state is State.REFERRED
     assert advice.withheld
-    assert (advice.docket, advice.shelf, advice.codes.din, advice.codes.iso, advice.specification.demands) == ((), (), (), (), ())
+    assert (advice.docket, advice.shelf, advice.codes.din, advice.codes.iso, advice.specification.demands) == (
+        (),
+        (),
+        (),
+        (),
+        (),
+    )
 
 
 @given(data=st.data())
 @FIXED
 def test_an_oxidiser_is_referred_whatever_else_is_answered(
-    data: st.DataObject, advisor: Advisor, make_case: MakeCase, knowledge: Knowledge
+    data: st.DataObject, advisor: Advisor, make_case: MakeCase
 ) -> None:
     case = make_case(dangers="oxidiser")
     for name in data.draw(st.lists(st.sampled_from([name for name in case.answers if name != "dangers"]), max_size=12)):
@@ -52,7 +58,7 @@ def test_every_fact_with_an_assumption_may_be_unknown_and_is_then_listed(
     case = make_case(**dict.fromkeys(with_assumption, "?"))
     advice = advisor.advise(case)
     asked = [name for name in with_assumption if advice.facts[name].origin is not Origin.NOT_ASKED]
-    assert [name for name in advice.assumptions] == asked
+    assert list(advice.assumptions) == asked
     for name in with_assumption:
         alone = advisor.advise(make_case(**{name: "?"}))
         assert name in alone.assumptions or alone.facts[name].origin is Origin.NOT_ASKED
@@ -191,7 +197,7 @@ def test_no_size_speed_or_temperature_breaks_the_advice(celsius: int, rpm: int, 
 
 
 def test_a_demand_for_thin_films_waits_until_the_film_is_known(advisor: Advisor, make_case: MakeCase) -> None:
-    """EP is asked of a spherical roller bearing only where kappa is below 1: before that, nothing may fall short of it."""
+    """EP is asked of a spherical roller only where kappa is below 1: until kappa is known nothing falls short of it."""
     whole = make_case(bearing_type="spherical_roller", cage="pressed_steel")
     advice = advisor.advise(Case(whole.point_kind, "", {"bearing_type": whole.answers["bearing_type"]}))
     assert {each.verdict.value for each in advice.shelf} == {"still_in"}

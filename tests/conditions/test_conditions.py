@@ -79,9 +79,15 @@ VALUES = st.one_of(st.none(), st.just(VOID), st.floats(-10, 10))
 
 
 @given(VALUES, VALUES)
-def test_unless_holds_exactly_where_its_condition_fails_void_facts_included(one: float | None, other: float | None) -> None:
+def test_unless_holds_exactly_where_its_condition_fails_void_facts_included(
+    one: float | None, other: float | None
+) -> None:
     record = {name: value for name, value in (("a", one), ("b", other)) if value is not None}
-    for condition in (Bound("a", ">=", 1.0), Bound("a", "<", FactRef("b")), Every((Bound("a", ">", 0.0), Bound("b", ">", 0.0)))):
+    for condition in (
+        Bound("a", ">=", 1.0),
+        Bound("a", "<", FactRef("b")),
+        Every((Bound("a", ">", 0.0), Bound("b", ">", 0.0))),
+    ):
         outcome = holds(condition, record)
         opposite = holds(negated(condition, {"a", "b"}), record)
         assert opposite is (None if outcome is None else not outcome)

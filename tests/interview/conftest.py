@@ -28,4 +28,4 @@ def kept(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> Path:
 
 @pytest.fixture
 def clock() -> object:
-    return lambda: datetime(2025, 12, 1, 14, 2)  # noqa: DTZ001 - the clock on the user's wall
+    return lambda: datetime(2025, 12, 1, 14, 2)

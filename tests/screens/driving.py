@@ -13,26 +13,73 @@ from advisor.screens.glyphs import Glyphs
 from advisor.screens.sheet import Sheet
 
 NARROW, WIDE = (80, 24), (120, 40)
-_NAMES = {" ": "space", ",": "comma", ".": "full_stop", "-": "minus", "/": "slash", "?": "question_mark", "[": "left_square_bracket",
-          "]": "right_square_bracket", "$": "dollar_sign", "°": "°"}
+_NAMES = {
+    " ": "space",
+    ",": "comma",
+    ".": "full_stop",
+    "-": "minus",
+    "/": "slash",
+    "?": "question_mark",
+    "[": "left_square_bracket",
+    "]": "right_square_bracket",
+    "$": "dollar_sign",
+    "°": "°",
+}
 
-# The keys of an ordinary motor bearing, question by question, each ended by Enter.
-MOTOR_BY_NAME = {
-    "bearing_type": "1", "dangers": "", "site": "1", "supply": "4", "incumbent": "GR-301", "bore_mm": "65", "outside_mm": "140",
-    "speed_rpm": "1480 rpm", "motion": "1", "running_temperature_c": "167 °F", "measured_where": "1", "excursions": "1",
-    "start_temperature_c": "5", "load_ratio": "0.06", "shock": "1", "water_exposure": "2", "dust": "1", "seal": "", "width_mm": "33"}
-MOTOR = tuple(MOTOR_BY_NAME.values())
+KEYS = {
+    "designation": "other",
+    "bearing_type": "1",
+    "dangers": "",
+    "site": "1",
+    "supply": "4",
+    "incumbent": "GR-301",
+    "bore_mm": "65",
+    "outside_mm": "140",
+    "speed_rpm": "1480 rpm",
+    "motion": "1",
+    "running_temperature_c": "167 °F",
+    "measured_where": "1",
+    "excursions": "1",
+    "start_temperature_c": "5",
+    "load_ratio": "0.06",
+    "shock": "1",
+    "water_exposure": "2",
+    "dust": "1",
+    "seal": "",
+    "width_mm": "33",
+}
+"""An ordinary motor bearing: the keys for each question, each ended by Enter."""
+VALUES = {
+    **KEYS,
+    "bearing_type": "deep_groove_ball",
+    "site": "converter_fed",
+    "supply": "nipple_through",
+    "motion": "turning",
+    "measured_where": "outer_ring_probe",
+    "excursions": "no",
+    "shock": "none",
+    "water_exposure": "humid",
+    "dust": "none",
+}
+"""The same answers as the session takes them."""
 
 Script = Callable[[Gudgeon, Pilot[None]], Awaitable[None]]
 
 
-def drive(knowledge: Knowledge, size: tuple[int, int], script: Script, *, file: Path | None = None, glyphs: Glyphs | None = None) -> Gudgeon:
+def drive(
+    knowledge: Knowledge,
+    size: tuple[int, int],
+    script: Script,
+    *,
+    file: Path | None = None,
+    glyphs: Glyphs | None = None,
+) -> Gudgeon:
     """Run the sheet in this size until the script has ended."""
     app = Gudgeon(lambda: knowledge, file, glyphs or Glyphs())
 
     async def run() -> None:
         async with app.run_test(size=size) as pilot:
-            await until(pilot, lambda: app.advisor is not None)
+            await until(pilot, lambda: app.opening.advisor is not None)
             await script(app, pilot)
 
     try:
@@ -65,6 +112,29 @@ async def begin(app: Gudgeon, pilot: Pilot[None], title: str = "Fan 3, drive end
     await pilot.pause()
     assert app.session is not None
     return app.session
+
+
+async def ask(app: Gudgeon, pilot: Pilot[None], name: str) -> None:
+    """Bring a question into place."""
+    assert app.session is not None
+    app.session.revise(name)
+    await show(app, pilot)
+
+
+async def fill(app: Gudgeon, pilot: Pilot[None], *, until: str = "") -> None:
+    """Answer the questions of the motor bearing without typing, up to this one."""
+    assert app.session is not None
+    app.session.go_on()
+    while app.session.question is not None and app.session.question.name != until:
+        app.session.answer(VALUES[app.session.question.name])
+    await show(app, pilot)
+
+
+async def show(app: Gudgeon, pilot: Pilot[None]) -> None:
+    """Show what the session has come to."""
+    assert isinstance(app.screen, Sheet)
+    app.screen.show()
+    await pilot.pause()
 
 
 def lines(app: Gudgeon) -> list[str]:

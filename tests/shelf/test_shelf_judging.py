@@ -14,7 +14,13 @@ from advisor.shelf import Verdict, steps_short
 from advisor.specification import Conflict, Demand, combine
 
 FIXED = settings(max_examples=60, deadline=None, suppress_health_check=[HealthCheck.function_scoped_fixture])
-NAMES = ["hot_wet_roller_table", "bridge_trunnion_parked", "motor_keeps_its_polyurea", "vibrating_screen", "unlabelled_brown_grease"]
+NAMES = [
+    "hot_wet_roller_table",
+    "bridge_trunnion_parked",
+    "motor_keeps_its_polyurea",
+    "vibrating_screen",
+    "unlabelled_brown_grease",
+]
 
 
 def one_by_one(advice: Advice, place: int) -> tuple[Verdict, set[str]]:
@@ -69,7 +75,9 @@ def test_other_products_never_change_the_order_of_two(
     assert part == [item for item in whole if item in kept]
 
 
-def test_a_product_that_breaks_a_must_is_never_above_one_that_does_not(advisor: Advisor, saved: Callable[[str], Case]) -> None:
+def test_a_product_that_breaks_a_must_is_never_above_one_that_does_not(
+    advisor: Advisor, saved: Callable[[str], Case]
+) -> None:
     order = list(Verdict)
     for name in NAMES:
         places = [order.index(each.verdict) for each in advisor.advise(saved(name)).shelf]
@@ -90,8 +98,8 @@ RATIO = Domain("number", step=Step("ratio", 1.5))
         (Bound("t", ">=", 130.0), 120.0, KELVIN, 1),
         (Bound("t", ">=", 130.0), 119.9, KELVIN, 2),
         (Bound("kappa", ">=", 1.5), 1.0, RATIO, 1),
-        (Bound("kappa", ">=", 1.5), 0.25, RATIO, 5),       # log(6)/log(1.5) = 4.42
-        (Bound("kappa", ">=", 1.5), 0.35, RATIO, 4),       # log(4.286)/log(1.5) = 3.59
+        (Bound("kappa", ">=", 1.5), 0.25, RATIO, 5),  # log(6)/log(1.5) = 4.42
+        (Bound("kappa", ">=", 1.5), 0.35, RATIO, 4),  # log(4.286)/log(1.5) = 3.59
         (Bound("vg", "<=", 220.0), 460.0, VG, 2),
         (Member("nlgi", frozenset({2.0, 3.0})), 4.0, NLGI, 1),
         (Member("nlgi", frozenset({2.0, 3.0})), 0.0, NLGI, 2),
@@ -106,23 +114,48 @@ def test_whole_steps(test: Bound, value: Coded, domain: Domain, steps: int) -> N
 
 DOMAINS = {"vg": VG, "nlgi": NLGI, "t": KELVIN}
 DEMANDS = st.one_of(
-    st.builds(lambda sign, limit, level: Demand("vg", Bound("vg", sign, limit), level, ALWAYS, f"vg{sign}{limit}"),
-              st.sampled_from(["<=", ">="]), st.sampled_from(VG.places), st.integers(0, 4)),
-    st.builds(lambda among, wanted, level: Demand("nlgi", Member("nlgi", among, wanted), level, ALWAYS, f"nlgi{wanted}{sorted(among)}"),
-              st.frozensets(st.sampled_from([0.0, 1.0, 2.0, 3.0, 4.0, 5.0]), min_size=1), st.booleans(), st.integers(0, 4)),
-    st.builds(lambda among, limit: Demand("vg", Bound("vg", "<=", limit), 0, Member("nlgi", among), f"vg for {sorted(among)}"),
-              st.frozensets(st.sampled_from([0.0, 1.0, 2.0]), min_size=1), st.sampled_from(VG.places)),
-    st.builds(lambda sign, limit: Demand("t", Bound("t", sign, float(limit)), 0, ALWAYS, f"t{sign}{limit}"),
-              st.sampled_from(["<=", ">="]), st.integers(-40, 200)),
+    st.builds(
+        lambda sign, limit, level: Demand("vg", Bound("vg", sign, limit), level, ALWAYS, f"vg{sign}{limit}"),
+        st.sampled_from(["<=", ">="]),
+        st.sampled_from(VG.places),
+        st.integers(0, 4),
+    ),
+    st.builds(
+        lambda among, wanted, level: Demand(
+            "nlgi", Member("nlgi", among, wanted), level, ALWAYS, f"nlgi{wanted}{sorted(among)}"
+        ),
+        st.frozensets(st.sampled_from([0.0, 1.0, 2.0, 3.0, 4.0, 5.0]), min_size=1),
+        st.booleans(),
+        st.integers(0, 4),
+    ),
+    st.builds(
+        lambda among, limit: Demand(
+            "vg", Bound("vg", "<=", limit), 0, Member("nlgi", among), f"vg for {sorted(among)}"
+        ),
+        st.frozensets(st.sampled_from([0.0, 1.0, 2.0]), min_size=1),
+        st.sampled_from(VG.places),
+    ),
+    st.builds(
+        lambda sign, limit: Demand("t", Bound("t", sign, float(limit)), 0, ALWAYS, f"t{sign}{limit}"),
+        st.sampled_from(["<=", ">="]),
+        st.integers(-40, 200),
+    ),
 )
-LUBRICANTS = [{"vg": vg, "nlgi": float(nlgi), "t": t} for vg in VG.places for nlgi in range(6) for t in (-30.0, 20.0, 90.0, 150.0)]
+LUBRICANTS = [
+    {"vg": vg, "nlgi": float(nlgi), "t": t} for vg in VG.places for nlgi in range(6) for t in (-30.0, 20.0, 90.0, 150.0)
+]
 
 
 def admitted(demands: list[Demand]) -> list[int]:
     specification = combine(demands, DOMAINS)
     return [
-        place for place, lubricant in enumerate(LUBRICANTS)
-        if all(holds(demand.test, lubricant) for demand in specification.demands if demand.must and holds(demand.for_, lubricant))
+        place
+        for place, lubricant in enumerate(LUBRICANTS)
+        if all(
+            holds(demand.test, lubricant)
+            for demand in specification.demands
+            if demand.must and holds(demand.for_, lubricant)
+        )
     ]
 
 
@@ -147,7 +180,8 @@ def test_the_order_of_demands_does_not_matter(demands: list[Demand], order) -> N
 @settings(max_examples=300, deadline=None)
 def test_combining_admits_exactly_what_the_demands_admit(demands: list[Demand]) -> None:
     plainly = [
-        place for place, lubricant in enumerate(LUBRICANTS)
+        place
+        for place, lubricant in enumerate(LUBRICANTS)
         if all(holds(demand.test, lubricant) for demand in demands if demand.must and holds(demand.for_, lubricant))
     ]
     assert admitted(demands) == plainly

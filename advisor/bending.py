@@ -1,0 +1,121 @@
+"""A case bent so that a fact takes a wanted value, by changing the answer to one question behind it."""
+
+from collections.abc import Callable, Iterator
+
+from advisor.advice import Advisor
+from advisor.advice.running import Run
+from advisor.case import Answer, Case
+from advisor.conditions import Coded, Record, Value
+from advisor.conditions.terms import Void, names
+from advisor.knowledge import Formed, Knowledge, Sets
+
+_TRIES = 8
+_CLOSE = 1e-9
+
+
+class Bender:
+    """Finds answers for wanted values; what the facts of a case are is worked out without the shelf."""
+
+    def __init__(self, advisor: Advisor) -> None:
+        self.advisor = advisor
+        self.knowledge = advisor.knowledge
+        self._behind: dict[str, tuple[str, ...]] = {}
+
+    def record(self, case: Case, *, assume_gaps: bool = False) -> Record:
+        """What the rules of the case would see; a closing step sees the result too, which is not worked out here."""
+        run = Run(self.knowledge, self.advisor.rules, self.advisor.setters, case, assume_gaps=assume_gaps)
+        run.steps()
+        return run.facts.record
+
+    def behind(self, fact: str) -> tuple[str, ...]:
+        """The questions on whose answers a fact rests, the nearest first."""
+        if fact not in self._behind:
+            self._behind[fact] = ()
+            self._behind[fact] = tuple(dict.fromkeys(self._questions(fact)))
+        return self._behind[fact]
+
+    def _questions(self, fact: str) -> Iterator[str]:
+        declaration = self.knowledge.facts.get(fact)
+        if declaration is not None and declaration.question is not None:
+            yield fact
+        elif fact in self.knowledge.computations:
+            how = self.knowledge.computations[fact].how
+            inputs = how.inputs.values() if isinstance(how, Formed) else [name for _, name in how.by]
+            for name in inputs:
+                if isinstance(name, str):
+                    yield from self.behind(name)
+        else:
+            for name in _deciding(fact, self.knowledge):
+                yield from self.behind(name)
+
+    def bent(self, case: Case, fact: str, wanted: Coded, *, assume_gaps: bool = False) -> Iterator[Case]:
+        """The case with one answer changed so that the fact has the wanted value, for each question that can do it."""
+        for question in self.behind(fact):
+            if question == fact:
+                yield answered(case, question, self.knowledge.domain(fact).decode(wanted), self.knowledge)
+            elif isinstance(wanted, float) and self.knowledge.domain(question).kind == "number":
+                found = self._solved(case, question, fact, wanted, assume_gaps=assume_gaps)
+                if found is not None:
+                    yield answered(case, question, found, self.knowledge)
+
+    def _solved(self, case: Case, question: str, fact: str, wanted: float, *, assume_gaps: bool) -> float | None:
+        """The answer for which a computed number is as wanted, by the secant, rounded to the step where that serves."""
+        domain = self.knowledge.domain(question)
+        given = case.answers.get(question)
+        if given is None or not isinstance(given.value, float):
+            return None
+
+        def off(answer: float) -> float | None:
+            if not domain.low <= answer <= domain.high:
+                return None
+            bent = answered(case, question, answer, self.knowledge)
+            seen = self.record(bent, assume_gaps=assume_gaps).get(fact)
+            return None if seen is None or isinstance(seen, Void | str | frozenset) else seen - wanted
+
+        step = domain.step.size if domain.step else 1.0
+        return _root(off, given.value, step)
+
+
+def _root(off: Callable[[float], float | None], start: float, step: float) -> float | None:
+    """Where `off` is zero, by the secant from `start`; a value on the grid of the step wins.
+
+    >>> _root(lambda value: 2 * value - 50.0, 10.0, 1.0)
+    25.0
+    """
+    one, other = start, start + step
+    for _ in range(_TRIES):
+        at_one, at_other = off(one), off(other)
+        if at_one is None or at_other is None:
+            return None
+        for value, away in ((one, at_one), (other, at_other)):
+            rounded = round(round(value / step) * step, 9)
+            if abs(away) <= _CLOSE * max(1.0, abs(value)):
+                return rounded if off(rounded) == 0 else value
+        if at_one == at_other:
+            return None
+        one, other = other, other - at_other * (other - one) / (at_other - at_one)
+    return None
+
+
+def _deciding(fact: str, knowledge: Knowledge) -> Iterator[str]:
+    """The facts on which the rules that conclude a fact depend."""
+    for instances in knowledge.instances.values():
+        for instance in instances:
+            if any(isinstance(each, Sets) and each.name == fact for each in instance.then):
+                yield from names(instance.when)
+
+
+def answered(case: Case, question: str, value: Value, knowledge: Knowledge) -> Case:
+    """The case with one answer as if it had been typed, the answers in the order of asking."""
+    answers = {**case.answers, question: Answer(value, typed(value, question, knowledge))}
+    return Case(case.point_kind, case.title, {name: answers[name] for name in knowledge.facts if name in answers})
+
+
+def typed(value: Value, question: str, knowledge: Knowledge) -> str:
+    """A value as one would type it into a file."""
+    if isinstance(value, tuple):
+        return f"[{', '.join(value)}]"
+    if isinstance(value, float):
+        unit = knowledge.domain(question).unit
+        return f"{value:.12g} {unit}".strip()
+    return str(value)

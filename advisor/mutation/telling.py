@@ -1,0 +1,111 @@
+"""What an advice tells, part by part, so that two advices can be held against each other in a scenario's words."""
+
+from collections.abc import Iterator, Mapping
+
+from advisor.advice import Advice, Ranked
+from advisor.case import Origin
+from advisor.conditions import Bound, Condition, FactRef, Value, leaves
+from advisor.knowledge import Knowledge
+from advisor.replay.falling import falling
+from advisor.shelf import Judgement, Verdict
+
+Part = tuple[str, ...]
+"""A part of an expectation: its key, and the names below it."""
+
+_WORDS = {"<": "below", "<=": "at_most", ">": "above", ">=": "at_least"}
+
+
+def told(advice: Advice) -> dict[Part, str]:
+    """Everything that a scenario can expect of the advice, and what it would have to say."""
+    parts = dict[Part, str]()
+    parts["state",] = str(advice.state)
+    parts["withheld",] = "yes" if advice.withheld else "no"
+    for caution in advice.cautions:
+        parts["cautions", caution.caution] = caution.caution
+    for referral in advice.referrals:
+        parts["referrals", referral.to] = referral.to
+    for question in advice.open_questions:
+        parts["open_questions", question.fact] = question.fact
+    for conflict in advice.conflicts:
+        parts["conflicts", *conflict.rules] = _listed(tuple(conflict.rules))
+    parts |= _facts(advice)
+    if not advice.withheld:
+        parts |= {("codes", "din"): _listed(advice.codes.din), ("codes", "iso"): _listed(advice.codes.iso)}
+        parts |= _docket(advice)
+        parts |= dict(_products(advice))
+        parts |= dict(_demands(advice))
+    return parts
+
+
+def _facts(advice: Advice) -> dict[Part, str]:
+    """The facts that rules conclude or formulas give, and which figures are shown."""
+    found: dict[Part, str] = {}
+    for name, fact in advice.facts.items():
+        if name in advice.knowledge.facts and advice.knowledge.facts[name].concluded is None:
+            continue
+        if fact.value is not None or fact.origin is Origin.VOID:
+            found["facts", name] = written(fact.value)
+    for line in advice.quantities:
+        found["shown", line.row] = "no" if line.skipped else "yes"
+    return found
+
+
+def _docket(advice: Advice) -> dict[Part, str]:
+    found: dict[Part, str] = {}
+    rows = {row.id: row.recommends for row in advice.knowledge.docket}
+    for line in advice.docket:
+        if name := rows[line.row]:
+            found["recommended", name] = _listed(line.values)
+            for value, rules in (line.barred or {}).items():
+                found |= {("barred", name, written(value), rule): rule.partition("/")[0] for rule in rules}
+    return found
+
+
+def _products(advice: Advice) -> Iterator[tuple[Part, str]]:
+    for ranked in advice.shelf:
+        rules = _deciding(advice.judgement, ranked) if advice.judgement else ()
+        yield ("products", ranked.item), ranked.verdict.value
+        for rule in rules:
+            yield ("products", ranked.item, rule), f"{ranked.verdict.value} by {rule}"
+
+
+def _deciding(judgement: Judgement, ranked: Ranked) -> tuple[str, ...]:
+    """The written rules whose musts a product misses."""
+    if ranked.verdict not in {Verdict.FALLS_SHORT, Verdict.UNPROVEN}:
+        return ()
+    unproven = ranked.verdict is Verdict.UNPROVEN
+    missed = [each for each in judgement.shortfalls(ranked.place) if each.demand.must]
+    chosen = [each for each in missed if (each.seen is None or bool(each.demand.void)) is unproven]
+    return tuple(dict.fromkeys(each.demand.rule.partition("/")[0] for each in chosen))
+
+
+def _demands(advice: Advice) -> Iterator[tuple[Part, str]]:
+    """The demands that fall on everything that is recommended."""
+    for name in dict.fromkeys(each.property for each in advice.specification.demands):
+        combinations = falling(advice, name)
+        common = [each for each in combinations[0] if all(each in other for other in combinations)]
+        for demand in common:
+            strength = "must" if demand.must else f"should_{demand.level}"
+            yield ("demands", name, strength, repr(demand.test)), f"{strength} {_test(demand.test, advice.knowledge)}"
+
+
+def _test(test: Condition, knowledge: Knowledge) -> str:
+    """A demand's test where a scenario can write it in one piece."""
+    terms = list(leaves(test))
+    if len(terms) == 1 and isinstance(term := terms[0], Bound) and not isinstance(term.limit, FactRef):
+        limit = written(knowledge.properties[term.name].domain.decode(float(term.limit)))
+        return f"{_WORDS[term.sign]} {limit}" if term.sign in _WORDS else limit
+    return ""
+
+
+def _listed(values: tuple[Value, ...]) -> str:
+    return f"[{', '.join(map(written, values))}]"
+
+
+def written(value: Value | None) -> str:
+    """A value as a scenario writes it."""
+    if value is None:
+        return "void"
+    if isinstance(value, float):
+        return f"{value:.12g}"
+    return _listed(value) if isinstance(value, tuple) else value
