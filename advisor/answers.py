@@ -157,8 +157,19 @@ def point_kind_of(path: Path) -> str:
     return str(kind) if isinstance(kind, Scalar) else "rolling_bearing"
 
 
-def read_case(path: Path, knowledge: Knowledge, problems: Problems, _above: tuple[Path, ...] = ()) -> Saved | None:
-    """Read a saved case or scenario; every fault is collected, and then there is none."""
+def read_case(
+    path: Path,
+    knowledge: Knowledge,
+    problems: Problems,
+    read: dict[Path, Saved] | None = None,
+    _above: tuple[Path, ...] = (),
+) -> Saved | None:
+    """Read a saved case or scenario; every fault is collected, and then there is none.
+
+    `read` keeps what was read, so that a case whose answers many take over is read once.
+    """
+    if read is not None and path in read:
+        return read[path]
     tree = read_document(path, problems)
     if tree is None:
         return None
@@ -167,7 +178,7 @@ def read_case(path: Path, knowledge: Knowledge, problems: Problems, _above: tupl
         return None
     before = len(problems)
     _head(tree, knowledge, problems)
-    base = _base(path, tree, knowledge, problems, _above)
+    base = _base(path, tree, knowledge, problems, read, _above)
     answers = dict(base.case.answers) if base else {}
     taken = _read_answers(tree.get("answers"), answers, knowledge, problems)
     only = _only(tree.get("shelf"), knowledge, problems)
@@ -178,7 +189,10 @@ def read_case(path: Path, knowledge: Knowledge, problems: Problems, _above: tupl
         return None
     ordered = {name: answers[name] for name in knowledge.facts if name in answers}
     case = Case(knowledge.point_kind.id, str(tree.get("title", path.stem)), ordered)
-    return Saved(path, case, gaps == DONT_KNOW, only, tree, frozenset(taken))
+    saved = Saved(path, case, gaps == DONT_KNOW, only, tree, frozenset(taken))
+    if read is not None:
+        read[path] = saved
+    return saved
 
 
 def _head(tree: Mapping, knowledge: Knowledge, problems: Problems) -> None:
@@ -197,7 +211,14 @@ def _head(tree: Mapping, knowledge: Knowledge, problems: Problems) -> None:
         _fault(problems, tree.get("point_kind", tree), (), message, f"point_kind: {wanted}")
 
 
-def _base(path: Path, tree: Mapping, knowledge: Knowledge, problems: Problems, above: tuple[Path, ...]) -> Saved | None:
+def _base(
+    path: Path,
+    tree: Mapping,
+    knowledge: Knowledge,
+    problems: Problems,
+    read: dict[Path, Saved] | None,
+    above: tuple[Path, ...],
+) -> Saved | None:
     """The scenario whose answers this one takes over."""
     like = tree.get("like")
     if like is None:
@@ -215,7 +236,7 @@ def _base(path: Path, tree: Mapping, knowledge: Knowledge, problems: Problems, a
             nearest(str(like), [each.stem for each in path.parent.glob("*.yaml")]).strip() or "name a file beside it",
         )
         return None
-    return read_case(other, knowledge, problems, (*above, path))
+    return read_case(other, knowledge, problems, read, (*above, path))
 
 
 def _read_answers(node: Node | None, answers: dict[str, Answer], knowledge: Knowledge, problems: Problems) -> list[str]:

@@ -111,6 +111,20 @@ def mutate(**options: Any) -> None:
 
 
 @gudgeon.command()
+@click.argument("old")
+@click.argument("new")
+@click.option(
+    "--scenarios", type=click.Path(path_type=Path), help="Folder of the scenarios; without it the shipped ones."
+)
+@click.option("--kind", default="rolling_bearing", help="The kind of point to compare; rolling_bearing if not said.")
+@click.option("--json", "as_json", is_flag=True, help="The comparison as JSON.")
+@click.option("--markdown", is_flag=True, help="The comparison as Markdown, for a merge request.")
+def compare(**options: Any) -> None:
+    """What changes between two editions of the knowledge: OLD and NEW are folders or git revisions."""
+    _run("compare", options)
+
+
+@gudgeon.command()
 @click.argument("words", nargs=-1)
 @click.option("--json", "as_json", is_flag=True, help="The list as JSON.")
 @knowledge_option

@@ -385,6 +385,34 @@ def mutate(
     return NOT_SETTLED if any(len(each.survivors) > each.equivalent for each in measured) else DONE
 
 
+def compare(old: str, new: str, scenarios: Path | None, kind: str, as_json: bool, markdown: bool) -> int:
+    """Tell what changes between two editions of the knowledge; 1 where a scenario or a region does."""
+    from advisor import comparison
+    from advisor import replay as replaying
+
+    with comparison.edition(old) as before, comparison.edition(new) as after:
+        editions = _edition(before, kind, old), _edition(after, kind, new)
+        files = replaying.find([scenarios] if scenarios else [])
+        if replaying.kinds_of(files) != [kind]:
+            files = [each for each in files if replaying.kinds_of([each]) == [kind]]
+        compared = comparison.compare(*editions, files)
+    for problem in compared.problems:
+        print(problem, file=sys.stderr)  # noqa: T201 - words beside the output
+    write = comparison.as_markdown if markdown else comparison.as_text
+    _print(_json(comparison.as_data(compared)) if as_json else write(compared))
+    return NOT_SETTLED if compared.changed or compared.regions else DONE
+
+
+def _edition(root: Path, kind: str, named: str) -> "Knowledge":
+    from advisor.documents import Faulty
+    from advisor.knowledge import load
+
+    try:
+        return load(root, kind, None)
+    except Faulty as fault:
+        raise Refusal(f"{fault}\n{_count(len(fault.problems))} in {named}; nothing was compared.") from None
+
+
 def _advisors(kinds: list[str], knowledge: Path | None, shelf: Path | None) -> "dict[str, Advisor]":
     """One advisor for each kind of point that the knowledge has; a kind that it lacks is told where a file names it."""
     from advisor.advice import Advisor

@@ -1,5 +1,6 @@
 """The ground on which rules are compared: the domains, the regions in which they speak, and what a case can reach."""
 
+import math
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, field
 
@@ -18,6 +19,7 @@ from advisor.conditions import (
     Ticked,
     Value,
     Valueless,
+    branches,
     negated,
 )
 from advisor.knowledge import (
@@ -36,7 +38,7 @@ from advisor.knowledge import (
 
 _MOST_ROWS = 60
 _MOST_TRIES = 2000
-_MOST_SETTERS = 8
+_MOST_ALTERNATIVES = 60
 
 
 @dataclass(frozen=True, slots=True)
@@ -153,8 +155,9 @@ class Ground:
             for each in instance.then
             if isinstance(each, Sets) and each.name == name
         ]
-        exactly = len(setters) <= _MOST_SETTERS
-        silent = tuple(negated(when, self.voidable) for when, _ in setters) if exactly else ()
+        silent = tuple(negated(when, self.voidable) for when, _ in setters)
+        exactly = math.prod(len(branches(each)) for each in silent) <= _MOST_ALTERNATIVES
+        silent = silent if exactly else ()
         ways: list[Condition] = [Every((equals(name, how.otherwise, domain), *silent))]
         for when, value in setters:
             above = [_outdone(name, how.combine, value, *other, self.voidable) for other in setters] if exactly else []

@@ -88,9 +88,13 @@ class Proving:
         knowledge = self.ground.knowledge
         matter = frozenset({*record, *(name for each in conditions for name in names(each))})
         lubricant = {name: value for name, value in record.items() if name in knowledge.properties}
+        try:
+            rules = self._step_rules()
+        except UnfitCondition:
+            return None
         for answers in _answers(record, self.ground, conditions):
             case = _case_of(answers, knowledge)
-            run = Run(knowledge, self._step_rules(), setters_of(knowledge), case, assume_gaps=True)
+            run = Run(knowledge, rules, setters_of(knowledge), case, assume_gaps=True)
             run.steps()
             seen = {**run.facts.record, **lubricant}
             if [holds(each, seen) for each in conditions] == list(wanted):

@@ -7,6 +7,7 @@ A fact missing from the record is unanswered; a fact that is `VOID` makes every 
 import operator
 from collections.abc import Callable, Container, Iterator, Mapping
 from dataclasses import dataclass
+from math import prod
 from typing import Final
 
 from advisor.conditions.domains import Coded
@@ -239,3 +240,16 @@ def branches(condition: Condition) -> list[tuple[Term, ...]]:
             product = [done + more for done in product for more in branches(part)]
         return product
     return [(condition,)]
+
+
+def alternatives(condition: Condition) -> int:
+    """How many conjunctions the condition is when every choice is written out, without building them.
+
+    >>> alternatives(Every((Member("cage", frozenset({"steel", "brass"})), Member("seal", frozenset({"NBR", "FKM"})))))
+    4
+    """
+    if isinstance(condition, Every):
+        return prod(alternatives(part) for part in condition.parts)
+    if isinstance(condition, Either):
+        return sum(alternatives(part) for part in condition.parts)
+    return len(condition.among) if isinstance(condition, Member | Ticked) and condition.wanted else 1

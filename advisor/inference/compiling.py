@@ -1,12 +1,23 @@
 """From conditions to the engine's rule sets: conjunctions of tests, dealt out so that no limit of the engine is met."""
 
-import math
 from collections import Counter
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import Final, NamedTuple
 
-from advisor.conditions import Bound, Condition, Domain, Either, Every, FactRef, Member, Stated, Ticked, Valueless
+from advisor.conditions import (
+    Bound,
+    Condition,
+    Domain,
+    Either,
+    Every,
+    FactRef,
+    Member,
+    Stated,
+    Ticked,
+    Valueless,
+    alternatives,
+)
 from advisor.inference.attributes import Attributes, Spelling, number, text
 from advisor.inference.faults import TooManyBranches, UnfitCondition, Unsendable
 
@@ -89,7 +100,7 @@ def compile_conditions(conditions: Sequence[Condition], domains: Mapping[str, Do
 
 
 def _compiled(index: int, condition: Condition, domains: Mapping[str, Domain], attributes: Attributes) -> Branches:
-    count = _count(condition)
+    count = alternatives(condition)
     if count > MOST_BRANCHES:
         raise TooManyBranches(
             index,
@@ -103,15 +114,6 @@ def _compiled(index: int, condition: Condition, domains: Mapping[str, Domain], a
     if any(len(_attributes(branch)) > MOST_ATTRIBUTES for branch in own):
         raise UnfitCondition(index, f"it looks at more than {MOST_ATTRIBUTES} values at once; write several rules.")
     return own
-
-
-def _count(condition: Condition) -> int:
-    """How many branches the condition has, without building them."""
-    if isinstance(condition, Every):
-        return math.prod(_count(part) for part in condition.parts)
-    if isinstance(condition, Either):
-        return sum(_count(part) for part in condition.parts)
-    return len(condition.among) if isinstance(condition, Member | Ticked) and condition.wanted else 1
 
 
 class _UnfitTermError(ValueError):
@@ -139,12 +141,12 @@ class _Alternatives:
         return self._valueless(condition) if isinstance(condition, Valueless) else self._stated(condition)
 
     def _every(self, condition: Every) -> Branches:
-        if _count(condition) == 0:
+        if alternatives(condition) == 0:
             return []
         product: Branches = [()]
         for part in condition.parts:
-            alternatives = self.of(part)
-            product = [done + more for done in product for more in alternatives]
+            written = self.of(part)
+            product = [done + more for done in product for more in written]
         return list(dict.fromkeys(_choosing_first(branch) for branch in product))
 
     def _bound(self, term: Bound) -> Branches:

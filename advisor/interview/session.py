@@ -78,23 +78,24 @@ class Session:
 
     @property
     def may_be_asked(self) -> tuple[str, ...]:
-        """Questions that nothing waits for, which may be answered all the same: optional, or filled in from a table."""
-        found = []
-        for name, declaration in self.knowledge.facts.items():
-            fact, question = self.advice.facts.get(name), declaration.question
-            if fact is None or question is None or name in self.case.answers:
-                continue
-            filled = declaration.filled is not None and fact.origin is Origin.LOOKED_UP
-            if filled or (question.optional and holds(question.when, self.advice.record) is True):
-                found.append(name)
-        return tuple(found)
+        """Questions about this point that need no answer now: optional, filled in, or waiting for others."""
+        return tuple(
+            name
+            for name, each in self.knowledge.facts.items()
+            if each.question is not None
+            and name not in self.case.answers
+            and name not in self.open
+            and holds(each.question.when, self.advice.record) is True
+        )
 
     def fills(self, name: str) -> tuple[str, ...]:
         """The facts that this answer has filled in from a table."""
         return tuple(
             other
             for other, each in self.knowledge.facts.items()
-            if each.filled is not None and name in dict(each.filled.by).values() and other in self.may_be_asked
+            if each.filled is not None
+            and name in dict(each.filled.by).values()
+            and self.advice.facts[other].origin is Origin.LOOKED_UP
         )
 
     @property

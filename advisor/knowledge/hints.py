@@ -162,7 +162,7 @@ HINTS: Mapping[str, Mapping[str, str]] = {
     "TableShape": {
         "title": "What the table holds.",
         "key": "The column that names a row; id unless said.",
-        "policy": "unique: one row at most applies; all: every row that applies counts.",
+        "policy": "unique: one row at most applies; complete: exactly one; all: every row that applies counts.",
         "columns": "The columns: {name: kind of value}, with unit and limits for numbers.",
         "matrix": "symmetric: the table compares every entry with every other.",
         "of": "What the two sides of a matrix are.",

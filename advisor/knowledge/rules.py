@@ -5,7 +5,7 @@ from collections.abc import Mapping as Map
 from contextlib import suppress
 from dataclasses import dataclass, replace
 
-from advisor.conditions import ALWAYS, Coded, Condition, Domain, Every, Value, branches, holds, negated
+from advisor.conditions import ALWAYS, Coded, Condition, Domain, Every, Value, alternatives, holds, negated
 from advisor.documents import Mapping, Node
 from advisor.knowledge.citations import Citations
 from advisor.knowledge.lost import Space
@@ -163,7 +163,7 @@ class RuleReader:
         when = condition(tree["when"], scope.at("when"))
         if "unless" in tree:
             when = Every((when, negated(condition(tree["unless"], scope.at("unless")), self.names.voidable)))
-        if len(branches(when)) > MOST_BRANCHES:
+        if alternatives(when) > MOST_BRANCHES:
             raise scope.fault(
                 tree["when"],
                 f"the condition has more than {MOST_BRANCHES} alternatives when written out",

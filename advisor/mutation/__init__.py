@@ -1,6 +1,22 @@
 """Mutation: would the scenarios notice if a rule were changed a little? Those that nobody notices come with a case."""
 
+from advisor.mutation.killing import otherwise, records
 from advisor.mutation.measuring import TRIES, Measured, Survivor, measure
+from advisor.mutation.standing_in import PlainRules, plain
+from advisor.mutation.telling import told
 from advisor.mutation.wording import as_data, as_text, summary
 
-__all__ = ["TRIES", "Measured", "Survivor", "as_data", "as_text", "measure", "summary"]
+__all__ = [
+    "TRIES",
+    "Measured",
+    "PlainRules",
+    "Survivor",
+    "as_data",
+    "as_text",
+    "measure",
+    "otherwise",
+    "plain",
+    "records",
+    "summary",
+    "told",
+]

@@ -51,7 +51,7 @@ def _term(term: Term, stepper: Stepper) -> Iterator[tuple[Key, Condition]]:
         yield ("turned",), replace(term, wanted=not term.wanted)
         if len(term.among) > 1:
             for place, choice in enumerate(sorted(term.among, key=str)):
-                yield ("without", place), replace(term, among=frozenset(each for each in term.among if each != choice))
+                yield ("without", place), Member(term.name, _less(term.among, choice), term.wanted)
     elif isinstance(term, Ticked):
         yield ("turned",), replace(term, wanted=not term.wanted)
         if len(term.among) > 1:
@@ -61,9 +61,13 @@ def _term(term: Term, stepper: Stepper) -> Iterator[tuple[Key, Condition]]:
         yield ("turned",), replace(term, wanted=not term.wanted)
 
 
+def _less(among: frozenset[str] | frozenset[float], choice: object) -> frozenset[str] | frozenset[float]:
+    return frozenset(each for each in among if each != choice)  # type: ignore[return-value]  # of one kind, as among is
+
+
 def _bound(term: Bound, stepper: Stepper) -> Iterator[tuple[Key, Condition]]:
     domain = stepper.domain(term.name)
-    if term.sign in _STRICT and (domain.kind == "number" and not domain.places or isinstance(term.limit, FactRef)):
+    if term.sign in _STRICT and ((domain.kind == "number" and not domain.places) or isinstance(term.limit, FactRef)):
         yield ("edge",), replace(term, sign=_STRICT[term.sign])
     yield ("turned",), replace(term, sign=_TURNED[term.sign])
     if isinstance(term.limit, FactRef) or domain.kind == "yes_no":

@@ -52,7 +52,8 @@ def _read(played: Played) -> set[str]:
 
 def touches(mutant: Mutant, before: Sequence[Instance], advice: Advice) -> bool:
     """Whether a changed rule does otherwise on what this advice saw."""
-    return any(_does_otherwise(mutant, before, record) for record in records(advice, mutant.step))
+    pairs = [(before[place], after) for place, after in mutant.changed.items()]
+    return any(otherwise(was, now, record) for record in records(advice, mutant.step) for was, now in pairs)
 
 
 def records(advice: Advice, step: str) -> Iterator[Record]:
@@ -65,15 +66,11 @@ def records(advice: Advice, step: str) -> Iterator[Record]:
         yield record_at(advice, step)
 
 
-def _does_otherwise(mutant: Mutant, before: Sequence[Instance], record: Record) -> bool:
-    for place, after in mutant.changed.items():
-        was = before[place]
-        outcome = holds(was.when, record)
-        if after is None or after.then != was.then:
-            if outcome is not False:
-                return True
-            continue
-        now = holds(after.when, record)
-        if now is not outcome or (now is None and waits_for(after.when, record) != waits_for(was.when, record)):
-            return True
-    return False
+def otherwise(was: Instance | None, now: Instance | None, record: Record) -> bool:
+    """Whether one of two instances, either of which may be lacking, does other than the other on what it sees."""
+    if was is None or now is None or was.then != now.then:
+        return any(each is not None and holds(each.when, record) is not False for each in (was, now))
+    before, after = holds(was.when, record), holds(now.when, record)
+    return before is not after or (
+        before is None and waits_for(was.when, record) != waits_for(now.when, record)
+    )

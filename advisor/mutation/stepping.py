@@ -15,10 +15,10 @@ class Stepper:
     def __init__(self, knowledge: Knowledge) -> None:
         self._knowledge = knowledge
         self._by_unit: dict[str, Domain] = {}
-        declared = [*knowledge.facts.values(), *knowledge.properties.values()]
-        for each in declared:
-            if each.domain.unit and each.domain.step is not None:
-                self._by_unit.setdefault(each.domain.unit, each.domain)
+        facts = [each.domain for each in knowledge.facts.values()]
+        for domain in (*facts, *(each.domain for each in knowledge.properties.values())):
+            if domain.unit and domain.step is not None:
+                self._by_unit.setdefault(domain.unit, domain)
 
     def domain(self, name: str) -> Domain:
         """The domain of a fact, a property or a result."""

@@ -1,6 +1,6 @@
 """What an advice tells, part by part, so that two advices can be held against each other in a scenario's words."""
 
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterator
 
 from advisor.advice import Advice, Ranked
 from advisor.case import Origin

@@ -3,14 +3,14 @@
 from collections.abc import Iterator, Mapping
 from typing import TYPE_CHECKING, Any
 
-from advisor.explanation.words import LEVELS, say_condition, say_test, say_value, title_of
+from advisor.bending import typed
 from advisor.conditions import ALWAYS, FactRef
+from advisor.explanation.words import LEVELS, say_condition, say_test, say_value, title_of
 from advisor.knowledge import Asks, Instance, Knowledge, Refers, Sets, Warns
 from advisor.knowledge.model import Conclusion
 from advisor.mutation.mutants import Mutant
 from advisor.mutation.searching import Found
 from advisor.mutation.telling import Part
-from advisor.bending import typed
 
 if TYPE_CHECKING:
     from advisor.mutation.measuring import Measured, Survivor
@@ -58,7 +58,8 @@ def say_conclusion(conclusion: Conclusion, knowledge: Knowledge) -> str:
 
 def as_scenario(found: Found) -> str:
     """The case as a scenario: the answers that differ, and what the rules tell as they stand now."""
-    base, knowledge = found.like.saved.case, found.knowledge
+    saved, knowledge = found.like.saved, found.knowledge
+    base = saved.case
     lines = ["format: 1", 'title: ""', 'guards: ""', "status: draft", f"like: {found.like.name}"]
     changed = {
         name: answer for name, answer in found.case.answers.items() if base.answers.get(name) != answer
@@ -69,6 +70,8 @@ def as_scenario(found: Found) -> str:
             f"  {name}: {typed(answer.value, name, knowledge) if answer.value is not None else answer.typed}"
             for name, answer in changed.items()
         ]
+    lines += ["gaps: dont_know"] if saved.assume_gaps else []
+    lines += [f"shelf: [{', '.join(sorted(saved.only))}]"] if saved.only is not None else []
     return "\n".join([*lines, "expect:  # as the rules stand; confirm it by the source", *_expected(found)])
 
 

@@ -93,9 +93,13 @@ def replay(files: Iterable[Path], advisors: Mapping[str, Advisor]) -> Outcome:
     """Replay the scenarios, each with the advisor for its kind of point; retired ones are passed over."""
     problems = Problems()
     played: list[Played] = []
+    first = next(iter(advisors))
+    read: dict[str, dict[Path, Saved]] = {kind: {} for kind in advisors}
     for file in files:
-        advisor = advisors.get(point_kind_of(file)) or next(iter(advisors.values()))
-        scenario = read_scenario(file, advisor.knowledge, problems)
+        named = point_kind_of(file) if len(advisors) > 1 else first
+        kind = named if named in advisors else first
+        advisor = advisors[kind]
+        scenario = read_scenario(file, advisor.knowledge, problems, read[kind])
         if scenario is not None and scenario.status != "retired":
             played.append(play(scenario, advisor))
     return Outcome(tuple(played), tuple(dict.fromkeys(problems)))
@@ -108,10 +112,12 @@ def play(scenario: Scenario, advisor: Advisor) -> Played:
     return Played(scenario, advice, differences(advice, scenario.expectations))
 
 
-def read_scenario(path: Path, knowledge: Knowledge, problems: Problems) -> Scenario | None:
-    """Read a scenario; every fault is collected, and then there is none."""
+def read_scenario(
+    path: Path, knowledge: Knowledge, problems: Problems, read: dict[Path, Saved] | None = None
+) -> Scenario | None:
+    """Read a scenario; every fault is collected, and then there is none. `read` keeps the cases that were read."""
     before = len(problems)
-    saved = read_case(path, knowledge, problems)
+    saved = read_case(path, knowledge, problems, read)
     if saved is None:
         return None
     tree = saved.tree

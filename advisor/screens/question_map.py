@@ -58,7 +58,7 @@ class QuestionMap(OptionList):
         fact = self.session.advice.facts[declaration.name]
         if declaration.filled is not None and fact.value is not None:
             return self.glyphs.words(f"{shown_value(declaration, fact.value)}, {fact.note}")
-        return "optional"
+        return "not needed so far"
 
     def on_option_list_option_selected(self, event: OptionList.OptionSelected) -> None:
         """Jump to the question."""

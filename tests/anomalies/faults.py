@@ -65,7 +65,8 @@ def narrower(knowledge: Knowledge, name: str, rng: random.Random) -> tuple[Condi
 
 def asked(knowledge: Knowledge, but: set[str]) -> list[str]:
     """Facts that are always asked."""
-    return [name for name, each in knowledge.facts.items() if each.question and each.question.when == ALWAYS and name not in but]
+    questions = {name: each.question for name, each in knowledge.facts.items() if each.question is not None}
+    return [name for name, question in questions.items() if question.when == ALWAYS and name not in but]
 
 
 def contradiction(knowledge: Knowledge, rng: random.Random) -> tuple[Knowledge, set[str]]:
@@ -80,7 +81,8 @@ def contradiction(knowledge: Knowledge, rng: random.Random) -> tuple[Knowledge, 
         more, less = narrower(knowledge, rng.choice(asked(knowledge, set())), rng)
         when = Either((Every((one, other)), Every((more, less, like.when))))
     elif way == "for":
-        then = (*then, Warns(_caution(then), Every((Member("form", frozenset({"oil"})), Member("form", frozenset({"grease"}))))))
+        nothing = Every(tuple(Member("form", frozenset({form})) for form in ("oil", "grease")))
+        then = (*then, Warns(_caution(then), nothing))
     else:
         low = rng.uniform(1, 60)
         then = (*then, Asks("kappa", Every((Bound("kappa", ">", low), Bound("kappa", "<=", low))), rng.randint(0, 4)))
@@ -118,9 +120,10 @@ def subsumed(knowledge: Knowledge, rng: random.Random) -> tuple[Knowledge, set[s
 
 def _weaker(each: Conclusion, rng: random.Random) -> Conclusion:
     """The same, or a must that asks for less."""
-    if isinstance(each, Asks) and each.level == 0 and isinstance(each.test, Bound) and isinstance(each.test.limit, float):
-        return replace(each, test=replace(each.test, limit=each.test.limit - rng.randint(0, 20)))
-    return each
+    if not isinstance(each, Asks) or each.level or not isinstance(each.test, Bound):
+        return each
+    less = each.test.limit - rng.randint(0, 20)  # type: ignore[operator]  # demands of the bases are against numbers
+    return replace(each, test=replace(each.test, limit=less))
 
 
 def redundant(knowledge: Knowledge, rng: random.Random) -> tuple[Knowledge, set[str]]:
@@ -190,7 +193,7 @@ def never_fires(knowledge: Knowledge, rng: random.Random) -> tuple[Knowledge, se
     when = rng.choice(ways)
     if isinstance(when, Bound) and when.name == "banded":
         when = Bound("banded", ">", 9.5) if rng.random() < 0.5 else Bound("banded", "<", 0.5)
-    extra = [each for each in asked(knowledge, {"n0", "n1", "c0", "c1", "s0"})]
+    extra = asked(knowledge, {"n0", "n1", "c0", "c1", "s0"})
     more = narrower(knowledge, rng.choice(extra), rng)[0] if rng.random() < 0.5 else ALWAYS
     caution = made(like, "idle", Every((when, more)), (Warns(_caution(like.then)),), 1)
     return with_rules(knowledge, caution), {"idle"}
@@ -228,14 +231,10 @@ def gap(knowledge: Knowledge, rng: random.Random) -> tuple[Knowledge, set[str]]:
     # The row with the highest factor stays, for a rule waits for it.
     place = rng.choice([number for number, row in enumerate(rows[:-1]) if row is not highest])
     if name == "grid" or rng.random() < 0.3:
-        rows[place] = replace(rows[place], cells={**rows[place].cells, **_out_of_the_way(rows[place])})
+        rows.pop(place)
     else:
         rows[place] = widened(rows[place], -rng.uniform(0.01, 0.9))
     return with_table(knowledge, name, rows), {name}
-
-
-def _out_of_the_way(row: Row) -> dict[str, Band | str]:
-    return {"band": Band(1e7, 2e7)} if "band" in row.cells else {"c": "elsewhere"}
 
 
 def beyond_physics(knowledge: Knowledge, rng: random.Random) -> tuple[Knowledge, set[str]]:

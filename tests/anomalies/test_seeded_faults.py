@@ -10,9 +10,9 @@ import pytest
 from bases import clean
 from faults import FAULTS
 
+from advisor.advice import Advisor
 from advisor.anomalies import Finding, examine_meaning
 from advisor.case import Answer, Case
-from advisor.advice import Advisor
 from advisor.conditions import VOID, Coded
 from advisor.conditions.terms import Void
 from advisor.inference import StepRules
@@ -38,7 +38,7 @@ def test_clean_bases_raise_no_alarm(seed: int) -> None:
 @pytest.mark.parametrize("kind", FAULTS)
 @pytest.mark.parametrize("seed", range(EACH))
 def test_each_fault_is_found_alone_with_a_witness_that_replays(kind: str, seed: int) -> None:
-    rng = random.Random(1000 * seed + len(kind))
+    rng = random.Random(1000 * seed + len(kind))  # noqa: S311 - made cases, no secrets
     knowledge, named = FAULTS[kind](base(seed % BASES), rng)
     found = examine_meaning(knowledge)
     assert found, f"a seeded {kind} was not found"
@@ -65,12 +65,13 @@ def fired(knowledge: Knowledge, finding: Finding) -> set[str]:
             if name in knowledge.facts
         }
         advice = Advisor(knowledge).advise(Case(knowledge.point_kind.id, "", typed))
-        return {one.rule.id for step in advice.trace for one, holds in zip(step.instances, step.outcomes, strict=True) if holds}
+        outcomes = [pair for step in advice.trace for pair in zip(step.instances, step.outcomes, strict=True)]
+        return {one.rule.id for one, holds in outcomes if holds}
     instances = [one for step in knowledge.instances.values() for one in step]
     domains = {name: knowledge.domain(name) for name in (*knowledge.facts, *knowledge.computations)}
     record = dict(coded(finding.witness.values, knowledge), **dict.fromkeys(finding.witness.void, VOID))
-    outcomes = StepRules([one.when for one in instances], domains).judge(record)
-    return {one.rule.id for one, holds in zip(instances, outcomes, strict=True) if holds}
+    judged = StepRules([one.when for one in instances], domains).judge(record)
+    return {one.rule.id for one, holds in zip(instances, judged, strict=True) if holds}
 
 
 def coded(values: Mapping[str, object], knowledge: Knowledge) -> dict[str, Coded | Void]:
@@ -85,5 +86,5 @@ def test_most_witnesses_of_rules_are_whole_cases() -> None:
 
 def _some(kind: str) -> Iterator[Finding]:
     for seed in range(BASES):
-        knowledge, _ = FAULTS[kind](base(seed), random.Random(seed))
+        knowledge, _ = FAULTS[kind](base(seed), random.Random(seed))  # noqa: S311 - made cases, no secrets
         yield from examine_meaning(knowledge)

@@ -28,7 +28,9 @@ REFERRED: Mapping[str, Mapping[str, Value]] = {
     "an ignition source in the drip path": {"dangers": ("ignition_in_drip_path",)},
     "failed twice, or white etching cracks": {"site": ("failed_twice",)},
     "faster than any grease": {"bore_mm": 100.0, "outside_mm": 200.0, "speed_rpm": 20_000.0},
-    "a spherical roller thrust bearing on grease": {"bearing_type": "spherical_roller_thrust", "supply": "nipple_through"},
+    "a spherical roller thrust bearing on grease": {
+        "bearing_type": "spherical_roller_thrust", "supply": "nipple_through",
+    },
     "hotter than 150 °C": {"running_temperature_c": 151.0},
     "hot spells above 150 °C that last": {
         "excursions": "yes", "running_temperature_c": 100.0, "peak_temperature_c": 160.0, "peak_share_percent": 20.0,
@@ -61,7 +63,7 @@ def test_what_is_for_a_specialist_is_never_settled(case: Case, trigger: str, adv
 @given(case=whole_cases(shown=True, known=()), maker=st.sampled_from(PRODUCTS), thin=st.booleans())
 @MANY
 def test_what_the_result_itself_brings_to_light_is_never_settled(
-    case: Case, maker: str, thin: bool, advisor: Advisor  # noqa: FBT001 - drawn by name
+    case: Case, maker: str, thin: bool, advisor: Advisor
 ) -> None:
     """Hardly any film with the recommended grade, and a maker's lubricant that falls short of the rules."""
     found: dict[str, Value] = {"maker_item": maker, **(HARDLY_ANY_FILM if thin else {})}

@@ -1,20 +1,35 @@
 """What must hold between two cases that differ in one answer: 2,000 pairs of whole cases for each claim."""
 
+from collections.abc import Mapping, Sequence
+
 from hypothesis import given
 from hypothesis import strategies as st
-from whole_cases import DONT_KNOW, KNOWLEDGE, MANY, ends, in_order, whole_cases, with_values
+from whole_cases import ASKED, DONT_KNOW, KNOWLEDGE, MANY, ends, in_order, whole_cases, with_values
 
 from advisor.advice import Advice, Advisor
 from advisor.case import Case
-from advisor.conditions import Bound, leaves
-from advisor.shelf import places
+from advisor.conditions import Bound, Value, leaves
+from advisor.shelf import Verdict, places
 
 PAIR, CHANGE_OVER = KNOWLEDGE.properties["pair"].domain.code, KNOWLEDGE.properties["change_over"].domain.code
 GREASES = [each.item for each in KNOWLEDGE.shelf if each.values.get("form") == "grease"]
-FILMED = (("turning",), ("swinging",), ("turning", "vertical"), ("turning", "outer_ring_turns"), ("turning", "shaken_machine"))
-"""Motions in which a film is asked for."""
+SODIUM = [each.item for each in KNOWLEDGE.shelf if each.values.get("thickener") == "sodium"]
+WET = [choice for choice in ASKED["water_exposure"].domain.choices if choice != "none"]
 
-NEEDED = ("bore_mm", "outside_mm", "speed_rpm", "running_temperature_c", "bearing_type", "load_ratio", "shock")
+# Motions in which a film is asked for; a viscosity-temperature line is only drawn where oil still flows.
+FILMED_AND_HOT_AT_TIMES: Mapping[str, Sequence[Value]] = {
+    "motion": (
+        ("turning",),
+        ("swinging",),
+        ("turning", "vertical"),
+        ("turning", "outer_ring_turns"),
+        ("turning", "shaken_machine"),
+    ),
+    "running_temperature_c": tuple(float(each) for each in range(20, 181)),
+    "excursions": ("yes",),
+}
+NEEDED = ("bore_mm", "outside_mm", "speed_rpm", "bearing_type", "load_ratio", "shock")
+HEAT = ("peak_temperature_c", "peak_share_percent")
 
 
 def thickeners(advice: Advice) -> set[str]:
@@ -59,57 +74,54 @@ def thinnest(advice: Advice) -> dict[str, float]:
 
 
 @given(
-    case=whole_cases(
-        shown=True,
-        known=NEEDED,
-        given={"motion": FILMED, "running_temperature_c": tuple(float(each) for each in range(20, 181))},
-    ),
+    case=whole_cases(shown=True, known=NEEDED + HEAT, given=FILMED_AND_HOT_AT_TIMES),
     rise=st.integers(1, 100),
-)
-@MANY
-def test_a_hotter_bearing_gets_no_thickener_more_and_no_thinner_grade(case: Case, rise: int, advisor: Advisor) -> None:
-    celsius = case.answers["running_temperature_c"].value
-    assert isinstance(celsius, float)
-    hotter = with_values(case, {"running_temperature_c": celsius + rise})
-    for cool, hot in zip(ends(advisor.advise(case)), ends(advisor.advise(hotter)), strict=True):
-        assert thickeners(hot) <= thickeners(cool)
-        before, after = thinnest(cool), thinnest(hot)
-        assert len(before) > 10
-        for oil, grade in before.items():
-            assert after[oil] >= grade, oil
-
-
-@given(
-    case=whole_cases(shown=True, known=NEEDED, given={"motion": FILMED}),
     times=st.integers(1, 400).map(lambda each: 1 + each * each / 1000),
 )
 @MANY
-def test_a_faster_bearing_never_gets_a_thicker_thinnest_grade(case: Case, times: float, advisor: Advisor) -> None:
-    """The reference viscosity steps down by 2.3 % at 1000 1/min (ISO 281), so there too a faster bearing asks less."""
-    rpm = case.answers["speed_rpm"].value
+def test_hotter_faster_or_less_known(case: Case, rise: int, times: float, advisor: Advisor) -> None:
+    """One case against the same case hotter, faster, and with the share of its hot spells not known."""
+    celsius, rpm = case.answers["running_temperature_c"].value, case.answers["speed_rpm"].value
+    assert isinstance(celsius, float)
     assert isinstance(rpm, float)
-    faster = with_values(case, {"speed_rpm": min(200_000.0, round(rpm * times, 2))})
-    for slow, fast in zip(ends(advisor.advise(case)), ends(advisor.advise(faster)), strict=True):
-        before, after = thinnest(slow), thinnest(fast)
-        for oil, grade in before.items():
-            assert after[oil] <= grade, oil
+    plain = ends(advisor.advise(case))
+    hotter = ends(advisor.advise(with_values(case, {"running_temperature_c": celsius + rise})))
+    faster = ends(advisor.advise(with_values(case, {"speed_rpm": min(200_000.0, round(rpm * times, 2))})))
+    unknown = ends(advisor.advise(in_order(case, {**case.answers, "peak_share_percent": DONT_KNOW})))
+    for one, hot, fast, untold in zip(plain, hotter, faster, unknown, strict=True):
+        more_heat_adds_no_thickener_and_thins_no_grade(one, hot)
+        more_speed_thickens_no_grade(one, fast)
+        a_share_not_known_allows_no_more(one, untold)
 
 
-@given(case=whole_cases(shown=True, known=("running_temperature_c", "peak_temperature_c", "peak_share_percent"), given={"excursions": ("yes",)}))
-@MANY
-def test_a_share_of_hot_spells_not_known_allows_no_more_than_any_known_share(case: Case, advisor: Advisor) -> None:
-    unknown = in_order(case, {**case.answers, "peak_share_percent": DONT_KNOW})
-    for told, untold in zip(ends(advisor.advise(case)), ends(advisor.advise(unknown)), strict=True):
-        assert "peak_share_percent" in untold.assumptions
-        assert thickeners(untold) <= thickeners(told)
-        assert base_oils(untold) <= base_oils(told)
+def more_heat_adds_no_thickener_and_thins_no_grade(cool: Advice, hot: Advice) -> None:
+    assert thickeners(hot) <= thickeners(cool)
+    before, after = thinnest(cool), thinnest(hot)
+    assert len(before) > 10
+    for oil, grade in before.items():
+        assert after[oil] >= grade, oil
+
+
+def more_speed_thickens_no_grade(slow: Advice, fast: Advice) -> None:
+    """The reference viscosity steps down by 2.3 % at 1000 1/min (ISO 281): there too a faster bearing asks less."""
+    before, after = thinnest(slow), thinnest(fast)
+    for oil, grade in before.items():
+        assert after[oil] <= grade, oil
+
+
+def a_share_not_known_allows_no_more(told: Advice, untold: Advice) -> None:
+    assert "peak_share_percent" in untold.assumptions
+    assert thickeners(untold) <= thickeners(told)
+    assert base_oils(untold) <= base_oils(told)
 
 
 @given(
-    case=whole_cases(shown=True, known=("incumbent",)), one=st.sampled_from(GREASES), other=st.sampled_from(GREASES)
+    case=whole_cases(shown=True, known=("incumbent",), given={"water_exposure": WET}),
+    one=st.sampled_from(GREASES),
+    other=st.sampled_from(GREASES),
 )
 @MANY
-def test_two_greases_are_the_same_pair_both_ways_and_the_same_one_needs_nothing(
+def test_two_greases_pair_alike_both_ways_the_same_needs_nothing_and_the_wet_takes_no_sodium(
     case: Case, one: str, other: str, advisor: Advisor
 ) -> None:
     pairs: list[object] = []
@@ -120,4 +132,13 @@ def test_two_greases_are_the_same_pair_both_ways_and_the_same_one_needs_nothing(
             assert columns["change_over"].values[place[in_use]] == CHANGE_OVER("nothing_to_do")
             assert columns["pair"].values[place[in_use]] == PAIR("same")
             pairs.append(columns["pair"].values[place[new]])
+            no_sodium_is_left(advice)
     assert len(set(pairs)) == 1, (one, other)
+
+
+def no_sodium_is_left(advice: Advice) -> None:
+    assert "sodium" not in advice.line("thickener").values
+    assert "sodium" not in thickeners(advice)
+    assert SODIUM
+    for each in advice.shelf:
+        assert each.item not in SODIUM or each.verdict is Verdict.FALLS_SHORT, each.item

@@ -20,10 +20,11 @@ AT = Mark("made.yaml", 1, 1)
 NAMED = {name: Validator(schema(name)) for name in NAMES}
 # Texts on the border between the kinds, plain and in quotes.
 WORDS = [
-    "", " ", "~", "null", "Null", "yes", "no", "true", "false", "on", "off", "0", "1", "2", "4", "5", "-3", "12.5",
-    "1e3", "1e999", "1,5", "1_000", "12:30", "2024-01-01", "abc", "a b", "Abc", "a.b-c", "9a", "_a", "-a", "ä", "°C", "mm²/s",
-    "%", "must", "draft", "agreed", "choice", "number", "highest", "from memory", "grease", "symmetric", "open", "x" * 64,
-    "x" * 65, "x" * 81, "a\n", ".5", "5.", "010", "0x1F", "True", ".inf", "1.0", "+1",
+    "", " ", "~", "null", "Null", "yes", "no", "true", "false", "on", "off", "0", "1", "2", "4", "5", "-3",
+    "12.5", "1e3", "1e999", "1,5", "1_000", "12:30", "2024-01-01", "abc", "a b", "Abc", "a.b-c", "9a", "_a",
+    "-a", "ä", "°C", "mm²/s", "%", "must", "draft", "agreed", "choice", "number", "highest", "from memory",
+    "grease", "symmetric", "open", "x" * 64, "x" * 65, "x" * 81, "a\n", ".5", "5.", "010", "0x1F", "True",
+    ".inf", "1.0", "+1",
 ]  # fmt: skip
 KEYS = ["id", "title", "when", "then", "because", "rows", "kind", "unit", "limits", "format", "strange", "a b", "Ä"]
 

@@ -3,12 +3,13 @@
 import io
 
 import pytest
-from driving import VALUES
 
 from advisor.interview import kept_interviews
 from advisor.knowledge import Knowledge
 from advisor.mishaps import Refusal
 from advisor.screens import plain
+
+from .driving import VALUES
 
 
 def talk(knowledge: Knowledge, *typed: str, file: object = None) -> str:

@@ -3,7 +3,6 @@
 from pathlib import Path
 
 import pytest
-from driving import KEYS, NARROW, WIDE, ask, begin, drive, fill, lines, text, type_in, until
 from textual.pilot import Pilot
 from textual.widgets import OptionList
 
@@ -13,6 +12,8 @@ from advisor.screens.glyphs import ASCII, ONE_FOR_ONE, Glyphs
 from advisor.screens.row import Row
 from advisor.screens.sheet import Sheet
 from advisor.screens.themes import NIGHT, PAPER
+
+from .driving import KEYS, NARROW, WIDE, ask, begin, drive, fill, lines, text, type_in, until
 
 both_sizes = pytest.mark.parametrize("size", [NARROW, WIDE])
 
@@ -58,7 +59,7 @@ def test_every_key_pressed_twice_at_every_stage_loses_no_answer(knowledge: Knowl
 
     async def script(app: Gudgeon, pilot: Pilot[None]) -> None:
         session = await begin(app, pilot)
-        for stage in ("bearing_type", "dangers", "bore_mm", ""):
+        for stage in ("dangers", "bore_mm", ""):
             await fill(app, pilot, until=stage)
             before = dict(session.case.answers)
             for key in keys:

@@ -12,10 +12,11 @@ from pathlib import Path
 from typing import TypeVar
 
 import pytest
-from driving import KEYS
 
 from advisor.knowledge import Knowledge
 from advisor.places import knowledge_folder
+
+from .driving import KEYS
 
 T = TypeVar("T")
 TMUX = shutil.which("tmux")

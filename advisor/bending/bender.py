@@ -1,16 +1,22 @@
 """A case bent so that a fact takes a wanted value, by changing the answer to one question behind it."""
 
 from collections.abc import Callable, Iterator
+from itertools import islice
 
 from advisor.advice import Advisor
 from advisor.advice.running import Run
+from advisor.bending.regions import domains_seen, unmet, wanted_on, where
+from advisor.boxes import Box
 from advisor.case import Answer, Case
-from advisor.conditions import Coded, Record, Value
+from advisor.conditions import Coded, Condition, Record, Value, holds
 from advisor.conditions.terms import Void, names
-from advisor.knowledge import Formed, Knowledge, Sets
+from advisor.knowledge import CLOSING_FACTS, Formed, Knowledge, Sets
 
+MOST_FIXES = 4
+WAYS_EACH = 6
 _TRIES = 8
 _CLOSE = 1e-9
+_TRIED = (0.1, 0.5, 2.0, 10.0)
 
 
 class Bender:
@@ -19,6 +25,8 @@ class Bender:
     def __init__(self, advisor: Advisor) -> None:
         self.advisor = advisor
         self.knowledge = advisor.knowledge
+        self.domains = domains_seen(advisor.knowledge)
+        self.left = 1000
         self._behind: dict[str, tuple[str, ...]] = {}
 
     def record(self, case: Case, *, assume_gaps: bool = False) -> Record:
@@ -74,6 +82,71 @@ class Bender:
 
         step = domain.step.size if domain.step else 1.0
         return _root(off, given.value, step)
+
+    def into(self, box: Box, case: Case, *, assume_gaps: bool = False, fixes: int = MOST_FIXES) -> Iterator[Case]:
+        """The case with answers changed, fact after fact, until what its rules see lies in the box.
+
+        What only the closing step sees is passed over; `left` says how many more cases may be looked at.
+        """
+        yield from self._fixed(box, case, assume_gaps, fixes)
+
+    def _fixed(self, box: Box, case: Case, assume_gaps: bool, left: int) -> Iterator[Case]:
+        """The case with answers changed, fact after fact, until it lies in the box."""
+        self.left -= 1
+        record = self.record(case, assume_gaps=assume_gaps)
+        lacking = [name for name in unmet(box, record) if name not in CLOSING_FACTS]
+        if not lacking:
+            yield case
+            return
+        if not left or self.left < 0:
+            return
+        name = lacking[0]
+        if (unlock := self._unasked(name, record)) is not None:
+            for asked in where(unlock, self.knowledge)[:WAYS_EACH]:
+                for bent in islice(self._fixed(asked, case, assume_gaps, left - 1), WAYS_EACH):
+                    if self._unasked(name, self.record(bent, assume_gaps=assume_gaps)) is None:
+                        yield from self._fixed(box, bent, assume_gaps, left - 1)
+            return
+        for wanted in wanted_on(box.sides[name], record.get(name), self.domains[name]):
+            for bent in islice(self._towards(case, name, wanted, assume_gaps), WAYS_EACH):
+                yield from self._fixed(box, bent, assume_gaps, left - 1)
+
+    def _unasked(self, name: str, record: Record) -> Condition | None:
+        """For whom a question is asked that the case is not asked; nothing where it is."""
+        declaration = self.knowledge.facts.get(name)
+        if declaration is None or declaration.question is None:
+            return None
+        return None if holds(declaration.question.when, record) else declaration.question.when
+
+    def _towards(self, case: Case, name: str, wanted: Coded, assume_gaps: bool) -> Iterator[Case]:
+        numeric = isinstance(wanted, float) and self.domains[name].kind == "number"
+        if name in self.behind(name) or numeric:
+            yield from self.bent(case, name, wanted, assume_gaps=assume_gaps)
+            return
+        for question in self.behind(name):
+            if question != name:
+                for value in self.others(case, question):
+                    self.left -= 1
+                    bent = answered(case, question, value, self.knowledge)
+                    if self.record(bent, assume_gaps=assume_gaps).get(name) == wanted:
+                        yield bent
+
+    def others(self, case: Case, question: str) -> Iterator[Value]:
+        """Other answers to a question than the one given."""
+        domain = self.knowledge.domain(question)
+        given = case.answers.get(question)
+        value = given.value if given is not None else None
+        if domain.kind == "several":
+            ticked = value if isinstance(value, tuple) else ()
+            for tick in domain.choices:
+                chosen = set(ticked) ^ {tick}
+                yield tuple(each for each in domain.choices if each in chosen)
+        elif domain.kind == "number" and isinstance(value, float):
+            size = domain.step.size if domain.step else 0.0
+            near = [value - 10 * size, value + 10 * size, *(value * share for share in _TRIED)]
+            yield from (round(each, 6) for each in near if domain.low <= each <= domain.high and each != value)
+        else:
+            yield from (choice for choice in domain.choices if choice != value)
 
 
 def _root(off: Callable[[float], float | None], start: float, step: float) -> float | None:

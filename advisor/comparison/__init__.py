@@ -1,0 +1,43 @@
+"""Two editions of the knowledge compared: which scenarios change and what that means, and where else rules differ."""
+
+from collections.abc import Iterable
+from pathlib import Path
+
+from advisor.answers import read_case
+from advisor.comparison.changing import Changed, Editions, changes
+from advisor.comparison.editions import edition
+from advisor.comparison.edits import Edit, edits
+from advisor.comparison.meaning import Meaning
+from advisor.comparison.regions import Region, Witness, regions
+from advisor.comparison.reporting import Comparison, as_data, as_markdown, as_text, summary
+from advisor.documents import Problems
+from advisor.knowledge import Knowledge
+
+__all__ = [
+    "Changed",
+    "Comparison",
+    "Edit",
+    "Editions",
+    "Meaning",
+    "Region",
+    "Witness",
+    "as_data",
+    "as_markdown",
+    "as_text",
+    "compare",
+    "edition",
+    "edits",
+    "regions",
+    "summary",
+]
+
+
+def compare(old: Knowledge, new: Knowledge, files: Iterable[Path]) -> Comparison:
+    """Compare two editions over these scenarios, and over everything that the edited rules can see."""
+    paths = list(files)
+    editions = Editions(old, new, edits(old, new))
+    problems = Problems()
+    changed, count = changes(paths, editions, problems) if editions.edits else ([], len(paths))
+    cases = [saved for path in paths if (saved := read_case(path, new, Problems())) is not None]
+    found = regions(editions, cases) if editions.edits else []
+    return Comparison(old, new, editions.edits, count, tuple(changed), tuple(found), tuple(problems))
