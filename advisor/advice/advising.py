@@ -117,11 +117,13 @@ class Advisor:
         found = self.recommender(incumbent).recommend(specification, facts, raises, run.waiting, needed)
         columns = catalogue.for_case(facts, raises, needed=needed)
         judgement = Judgement(catalogue, columns, specification.demands, domains, missing_counts=True)
-        questions = run.open_questions()
-        is_open = any(each.decides == "lubricant" for each in questions)
-        shelf = _ranked(judgement, is_open=is_open)
+        shelf = _ranked(judgement, is_open=False)
         closing = closing_record(run, found, shelf)
         run.fire(CLOSING, (), closing)
+        questions = run.open_questions()
+        is_open = any(each.decides == "lubricant" for each in questions)
+        if is_open:
+            shelf = _ranked(judgement, is_open=True)
         assumed, keeping = run.assumptions()
         conflicts = _conflicts(specification, found, run)
         return Advice(

@@ -4,7 +4,7 @@ from collections.abc import Sequence
 
 from advisor.advice.model import AtLimit, CautionGiven, Ranked
 from advisor.advice.recommending import Recommendation
-from advisor.advice.running import Run
+from advisor.advice.running import RESULT_OF, Run
 from advisor.conditions import ALWAYS, VOID, Bound, Coded, Condition, failures
 from advisor.conditions.terms import Void
 from advisor.knowledge import Asks, Instance
@@ -21,20 +21,17 @@ def closing_record(run: Run, found: Recommendation, shelf: Sequence[Ranked]) -> 
     record["recommended_kappa"] = VOID if found.kappa is None else found.kappa
     record["recommended_form"] = found.form or VOID
     record["shelf_fits"] = float(any(each.verdict in IN for each in shelf))
-    for fact, result, none in (
-        ("maker_item", "maker_verdict", "none_named"),
-        ("incumbent", "incumbent_verdict", "none"),
-    ):
+    for result, fact in RESULT_OF.items():
         if fact not in run.facts.basis and fact in run.facts.facts:
-            record[result] = _verdict_on(str(run.facts.facts[fact].value), none, shelf)
+            record[result] = _verdict_on(str(run.facts.facts[fact].value), shelf)
     return record
 
 
-def _verdict_on(item: str, none: str, shelf: Sequence[Ranked]) -> str:
+def _verdict_on(item: str, shelf: Sequence[Ranked]) -> str:
     """What became of a named product: that of the machine maker, or the one in use."""
     ranked = next((each for each in shelf if each.item == item), None)
     if ranked is None:
-        return "none_named" if item == none else "not_on_the_shelf"
+        return "none_named" if item in {"none_named", "none"} else "not_on_the_shelf"
     return Verdict.FITS.value if ranked.verdict is Verdict.STILL_IN else ranked.verdict.value
 
 

@@ -14,6 +14,8 @@ from advisor.shelf import Raise, all_reads, reads
 from advisor.specification import Conflict, Demand, Specification, mentions, with_limits
 
 CLOSING = "closing"
+RESULT_OF = {"maker_verdict": "maker_item", "incumbent_verdict": "incumbent"}
+"""The facts that named results of the closing step are about."""
 
 
 @dataclass(slots=True)
@@ -84,7 +86,8 @@ class Run:
             if outcome is False or not instance.binds:
                 continue
             if outcome is None:
-                self.undecided.append((instance, self.facts.questions_behind(rules.waits(place, record))))
+                waits = {RESULT_OF.get(name, name) for name in rules.waits(place, record)}
+                self.undecided.append((instance, self.facts.questions_behind(waits)))
             else:
                 self._draw(instance)
 

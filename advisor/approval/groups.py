@@ -12,6 +12,7 @@ from advisor.approval.standing import Standing
 from advisor.replay import Difference, Outcome, Played
 
 _WORD = re.compile(r"[a-z][a-z0-9_]*")
+_SAFETY = {"state", "withheld", "cautions", "referrals", "conflicts", "barred", "must_not"}
 RULE, KIND, EDITED, NEW, GONE = "rule", "kind", "edited", "new", "gone"
 
 
@@ -22,6 +23,11 @@ class Item:
     path: str
     played: Played | None = None
     difference: Difference | None = None
+
+    @property
+    def safety(self) -> bool:
+        """Whether people could come to harm by it: the state, what is withheld, cautions, referrals, bars."""
+        return self.difference is not None and self.difference.kind in _SAFETY
 
 
 @dataclass(frozen=True, slots=True)
@@ -46,13 +52,13 @@ class Group:
 
 
 def groups(outcome: Outcome, standing: Standing, rules: Set[str], knowledge: str) -> tuple[Group, ...]:
-    """Everything that is to be signed, the group with the most differences first."""
+    """Everything that is to be signed: what bears on safety first, then the group with the most differences."""
     items = [
         Item(_within(played.scenario.path, standing.root), played, difference)
         for played in outcome.differing
         for difference in played.differences
     ]
-    by_cause = sorted(_by_cause(items, rules), key=lambda each: -len(each[2]))
+    by_cause = sorted(_by_cause(items, rules), key=lambda each: (not any(item.safety for item in each[2]), -len(each[2])))
     by_hand = [
         *((EDITED, path, (Item(path),)) for path in standing.edited),
         *((NEW, path, (Item(path),)) for path in standing.new),

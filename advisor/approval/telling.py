@@ -23,7 +23,9 @@ def _says(group: Group) -> str:
     head = _HEADS[group.kind].format(about=group.about)
     if group.kind not in {RULE, KIND}:
         return head
-    return f"{_count(len(group.items), 'difference')} in {_count(len(group.paths), 'scenario')}, {head}"
+    grave = sum(item.safety for item in group.items)
+    safety = f" ({grave} on safety)" if grave else ""
+    return f"{_count(len(group.items), 'difference')}{safety} in {_count(len(group.paths), 'scenario')}, {head}"
 
 
 def as_text(review: Review) -> str:
@@ -57,6 +59,7 @@ def as_data(review: Review) -> list[dict[str, Any]]:
             "kind": group.kind,
             "about": group.about,
             "differences": sum(1 for item in group.items if item.difference),
+            "on_safety": sum(item.safety for item in group.items),
             "scenarios": list(group.paths),
         }
         for group in review.groups

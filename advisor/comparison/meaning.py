@@ -36,7 +36,7 @@ def sense_of(advice: Advice) -> Sense:
             meaning = Meaning.SAFETY
         elif part[0] == "barred" or (part[0] == "products" and len(part) > 2):
             meaning = Meaning.REASONS
-        elif part[0] == "demands":
+        elif part[0] == "demanded_by":
             continue
         else:
             meaning = Meaning.RECOMMENDATION

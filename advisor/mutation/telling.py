@@ -4,7 +4,8 @@ from collections.abc import Iterator
 
 from advisor.advice import Advice, Ranked
 from advisor.case import Origin
-from advisor.conditions import Bound, Condition, FactRef, Value, leaves
+from advisor.conditions import Bound, Condition, FactRef, Member, Ticked, Value, leaves
+from advisor.conditions.terms import Term
 from advisor.knowledge import Knowledge
 from advisor.replay.falling import falling
 from advisor.shelf import Judgement, Verdict
@@ -33,7 +34,7 @@ def told(advice: Advice) -> dict[Part, str]:
         parts |= {("codes", "din"): _listed(advice.codes.din), ("codes", "iso"): _listed(advice.codes.iso)}
         parts |= _docket(advice)
         parts |= dict(_products(advice))
-        parts |= dict(_demands(advice))
+        parts |= _demanded(advice)
     return parts
 
 
@@ -79,23 +80,51 @@ def _deciding(judgement: Judgement, ranked: Ranked) -> tuple[str, ...]:
     return tuple(dict.fromkeys(each.demand.rule.partition("/")[0] for each in chosen))
 
 
-def _demands(advice: Advice) -> Iterator[tuple[Part, str]]:
-    """The demands that fall on everything that is recommended."""
+def _demanded(advice: Advice) -> dict[Part, str]:
+    """What each rule demands of everything that is recommended."""
+    found: dict[str, set[str]] = {}
     for name in dict.fromkeys(each.property for each in advice.specification.demands):
-        combinations = falling(advice, name)
-        common = [each for each in combinations[0] if all(each in other for other in combinations)]
-        for demand in common:
-            strength = "must" if demand.must else f"should_{demand.level}"
-            yield ("demands", name, strength, repr(demand.test)), f"{strength} {_test(demand.test, advice.knowledge)}"
+        kept = [
+            {(each.rule.partition("/")[0], each.test, each.level) for each in demands}
+            for demands in falling(advice, name)
+        ]
+        for rule, test, level in set.intersection(*kept):
+            found.setdefault(rule, set()).add(_demand(name, test, level, advice.knowledge))
+    return {("demanded_by", rule): f"[{', '.join(sorted(texts))}]" for rule, texts in found.items()}
+
+
+def _demand(name: str, test: Condition, level: int, knowledge: Knowledge) -> str:
+    """A demand as a rule writes it."""
+    written_test = f"{{{name}: {_test(test, knowledge)}}}"
+    return f"{{should: {written_test}, level: {level}}}" if level else f"{{must: {written_test}}}"
 
 
 def _test(test: Condition, knowledge: Knowledge) -> str:
-    """A demand's test where a scenario can write it in one piece."""
     terms = list(leaves(test))
-    if len(terms) == 1 and isinstance(term := terms[0], Bound) and not isinstance(term.limit, FactRef):
-        limit = written(knowledge.properties[term.name].domain.decode(float(term.limit)))
-        return f"{_WORDS[term.sign]} {limit}" if term.sign in _WORDS else limit
-    return ""
+    if len(terms) == 1 and isinstance(terms[0], Bound) and terms[0].sign == "=":
+        return _operand(terms[0].limit, terms[0].name, knowledge)
+    return f"{{{', '.join(_operation(each, knowledge) for each in terms)}}}"
+
+
+def _operation(term: Term, knowledge: Knowledge) -> str:
+    if isinstance(term, Bound):
+        return f"{_WORDS.get(term.sign, term.sign)}: {_operand(term.limit, term.name, knowledge)}"
+    if isinstance(term, Member | Ticked):
+        values = sorted(term.among, key=_place)
+        listed = ", ".join(_operand(each, term.name, knowledge) for each in values)
+        return f"{'any_of' if term.wanted else 'none_of'}: [{listed}]"
+    return "stated" if term.wanted else "not_stated"
+
+
+def _place(value: float | str) -> tuple[float, str]:
+    return (value, "") if isinstance(value, float) else (0.0, value)
+
+
+def _operand(value: float | str | FactRef, name: str, knowledge: Knowledge) -> str:
+    if isinstance(value, FactRef):
+        return f"{{fact: {value.name}}}"
+    meant = knowledge.properties[name].domain.decode(value)
+    return f'"{meant}"' if isinstance(meant, str) and meant.isdigit() else written(meant)
 
 
 def _listed(values: tuple[Value, ...]) -> str:

@@ -93,6 +93,8 @@ def _expected(found: Found) -> Iterator[str]:
     for part in found.lost:
         if part not in found.kept and part[0] in _ABSENT:
             lists.setdefault(_ABSENT[part[0]], []).append(part[1])
+        elif part not in found.kept and part[0] == "demanded_by":
+            maps.setdefault(part[0], {})[part[1]] = "none"
     yield from (f"  {key}: [{', '.join(dict.fromkeys(texts))}]" for key, texts in lists.items())
     yield from _mappings(maps)
 
@@ -114,9 +116,7 @@ def _entries(entries: Mapping[str, str]) -> str:
 
 def _writable(part: Part, text: str) -> bool:
     """Whether a scenario has words for the part."""
-    if part[0] == "demands":
-        return not text.endswith(" ")
-    return part[0] in {"facts", "recommended", "products", "codes"} and text != "[]"
+    return part[0] in {"facts", "recommended", "products", "codes", "demanded_by"} and text != "[]"
 
 
 def as_text(measured: "Measured") -> str:

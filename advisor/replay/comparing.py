@@ -10,6 +10,7 @@ from advisor.explanation.seeing import rules_seen
 from advisor.knowledge import Instance, Refers, Warns
 from advisor.quantities import show
 from advisor.replay import docket_compared, reasons
+from advisor.replay.demanded import demanded
 from advisor.replay.differing import Difference
 from advisor.replay.expectations import (
     AsksAtLeast,
@@ -19,6 +20,7 @@ from advisor.replay.expectations import (
     CautionIs,
     CodeServes,
     ConflictBetween,
+    DemandedBy,
     Expectation,
     FactIs,
     FactWithin,
@@ -53,6 +55,7 @@ compare.register(KeepsFrom, docket_compared.keeps_from)
 compare.register(Bars, docket_compared.bars)
 compare.register(AsksFor, docket_compared.asks_for)
 compare.register(AsksAtLeast, docket_compared.asks_at_least)
+compare.register(DemandedBy, demanded)
 compare.register(CodeServes, docket_compared.code_serves)
 compare.register(IntervalIs, docket_compared.interval)
 compare.register(FillIs, docket_compared.fill)

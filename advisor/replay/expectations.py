@@ -110,6 +110,15 @@ class AsksAtLeast:
 
 
 @dataclass(frozen=True, slots=True)
+class DemandedBy:
+    """What a rule demands of what is recommended is exactly this: properties, tests and levels; or it is nothing."""
+
+    mark: Mark
+    rule: str
+    demands: frozenset[tuple[str, Condition, int]]
+
+
+@dataclass(frozen=True, slots=True)
 class CodeServes:
     """A grease of this code meets a code that is asked for; None: no code is given."""
 
@@ -207,6 +216,7 @@ Expectation = (
     | Bars
     | AsksFor
     | AsksAtLeast
+    | DemandedBy
     | CodeServes
     | CautionIs
     | ReferralIs

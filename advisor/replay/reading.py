@@ -11,6 +11,7 @@ from advisor.designations import Designer, NoCode
 from advisor.documents import Mapping, Node, Problems, Scalar, Sequence, nearest
 from advisor.knowledge import Knowledge, Mistyped, condition, value
 from advisor.replay.checking import Checker
+from advisor.replay.demanded import read_demanded
 from advisor.replay.expectations import (
     ASKING,
     INTERVAL_ROW,
@@ -91,6 +92,7 @@ class _Reader(Checker):
             "must_not": lambda node: self.each(node, self._must_not),
             "barred": lambda node: self.each(node, self._barred),
             "demands": lambda node: self.each(node, self._demand),
+            "demanded_by": lambda node: self.each(node, lambda name, each: [read_demanded(name, each, self)]),
             "codes": lambda node: self.each(node, self._code),
             "cautions": lambda node: self.names(
                 node, know.cautions, "caution", lambda at, name: CautionIs(at, name, given=True)
