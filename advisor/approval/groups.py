@@ -58,7 +58,9 @@ def groups(outcome: Outcome, standing: Standing, rules: Set[str], knowledge: str
         for played in outcome.differing
         for difference in played.differences
     ]
-    by_cause = sorted(_by_cause(items, rules), key=lambda each: (not any(item.safety for item in each[2]), -len(each[2])))
+    by_cause = sorted(
+        _by_cause(items, rules), key=lambda each: (not any(item.safety for item in each[2]), -len(each[2]))
+    )
     by_hand = [
         *((EDITED, path, (Item(path),)) for path in standing.edited),
         *((NEW, path, (Item(path),)) for path in standing.new),

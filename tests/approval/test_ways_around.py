@@ -12,7 +12,7 @@ from click.testing import CliRunner, Result
 from advisor.advice import Advisor
 from advisor.approval import BEGIN, review_of, signature
 from advisor.cli import gudgeon
-from advisor.mishaps import DONE, NOT_SETTLED, Refusal
+from advisor.mishaps import DONE, NOT_SETTLED, USAGE, Refusal
 from advisor.replay import find, replay
 from tests.approval.desk import Desk
 from tests.conftest import ROOT
@@ -335,3 +335,19 @@ def test_the_command_counts_as_not_settled_while_something_is_to_be_signed(desk:
 
 def test_the_shipped_scenarios_are_not_touched_by_these_tests() -> None:
     assert not (ROOT / "scenarios" / ".APPROVALS.lock").exists()
+
+
+def test_the_replay_ends_with_2_and_names_the_line(desk: Desk) -> None:
+    signed(desk)
+    text = desk.log.read_text(encoding="utf-8")
+    desk.log.write_text(text.replace("oven tests", "field tests", 1), encoding="utf-8")
+    found = CliRunner().invoke(gudgeon, ["replay", str(desk.root)])
+    assert found.exit_code == USAGE
+    assert f"{desk.log}:3:1: entry 1 is not as it was sealed" in found.stderr
+
+
+def test_a_replay_without_a_log_says_nothing_of_signing(desk: Desk) -> None:
+    desk.log.unlink()
+    found = CliRunner().invoke(gudgeon, ["replay", str(desk.root)])
+    assert found.exit_code == DONE, found.output
+    assert "signed" not in found.output

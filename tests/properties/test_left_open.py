@@ -3,12 +3,13 @@
 import re
 from collections.abc import Callable, Mapping
 from dataclasses import replace
+from itertools import pairwise
 
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 from test_one_case import nothing_is_shown
-from whole_cases import ASKED, FEW, KNOWLEDGE, pool, whole_cases, with_values
+from whole_cases import ASKED, FEW, KNOWLEDGE, in_order, pool, whole_cases, with_values
 
 from advisor.advice import Advice, Advisor, Branch, State, TooOpen
 from advisor.answers import answer
@@ -44,8 +45,12 @@ def verdicts(advice: Advice) -> Mapping[str, Verdict]:
 
 def opened(case: Case, name: str, typed: str) -> Case:
     """The case with an answer that leaves something open."""
-    answers = {**case.answers, name: answer(ASKED[name], typed)}
-    return Case(case.point_kind, case.title, {each: answers[each] for each in ASKED if each in answers})
+    return in_order(case, {**case.answers, name: answer(ASKED[name], typed)})
+
+
+def step_of(name: str) -> float:
+    step = ASKED[name].domain.step
+    return step.size if step else 1.0
 
 
 def stretch(branch: Branch, name: str) -> tuple[float, float]:
@@ -65,12 +70,14 @@ def shares_only_what_every_branch_has(whole: Advice, branches: list[Advice]) -> 
         assert line.differs is (len(set(values)) > 1), line.row
     for item, verdict in verdicts(whole).items():
         assert verdict is max((verdicts(each)[item] for each in branches), key=VERDICTS.index), item
-    for told, all_told in (
-        ({each.caution for each in whole.cautions}, [{each.caution for each in one.cautions} for one in branches]),
-        ({each.to for each in whole.referrals}, [{each.to for each in one.referrals} for one in branches]),
-        ({each.fact for each in whole.open_questions}, [{each.fact for each in one.open_questions} for one in branches]),
-    ):
-        assert told == set().union(*all_told)
+    told, all_told = said(whole), [said(each) for each in branches]
+    assert told == set().union(*all_told)
+
+
+def said(advice: Advice) -> set[tuple[str, str]]:
+    """Cautions, referrals and open questions."""
+    found = {("caution", each.caution) for each in advice.cautions} | {("to", each.to) for each in advice.referrals}
+    return found | {("open", each.fact) for each in advice.open_questions}
 
 
 # ---- alternatives ----------------------------------------------------------------------------------------------------
@@ -88,7 +95,7 @@ def test_two_cages_left_open_give_the_advice_of_each_and_what_they_share(advise:
 @given(case=whole_cases(known=()), data=st.data())
 @FEW
 def test_alternatives_share_only_what_every_one_of_them_has(case: Case, data: st.DataObject, advisor: Advisor) -> None:
-    choosable = [name for name, fact in ASKED.items() if fact.domain.kind in {"choice", "scale"} and name in case.answers]
+    choosable = [name for name in case.answers if ASKED[name].domain.kind in {"choice", "scale"}]
     name = data.draw(st.sampled_from([each for each in choosable if each != "designation"]))
     domain = ASKED[name].domain
     several = st.lists(st.sampled_from(sorted(domain.choices)), min_size=2, max_size=3, unique=True)
@@ -112,10 +119,9 @@ def test_the_same_choice_named_twice_leaves_nothing_open(advise: Advise) -> None
 
 def holds_over_its_stretches(case: Case, name: str, low: float, high: float, advisor: Advisor) -> None:
     """Every value on the fact's step has the result of its branch, and each branch ends where the next begins."""
-    domain = ASKED[name].domain
-    step = domain.step.size if domain.step else 1.0
+    step = step_of(name)
     spanned = {**case.answers, name: Answer(None, f"{low}..{high}", span=(low, high))}
-    whole = advisor.advise(Case(case.point_kind, case.title, spanned))
+    whole = advisor.advise(in_order(case, spanned))
     values = [round(low + step * place, 9) for place in range(round((high - low) / step) + 1)]
     results = [advisor.advise(with_values(case, {name: value})) for value in values]
     if any(each.withheld for each in results):
@@ -123,12 +129,12 @@ def holds_over_its_stretches(case: Case, name: str, low: float, high: float, adv
         return
     if not whole.branches:
         assert whole.held_over
-        assert len({repr(result(each)) for each in results}) == 1
+        assert all(result(each) == result(results[0]) for each in results)
         return
     ends = [stretch(branch, name) for branch in whole.branches]
     assert ends[0][0] == low
     assert ends[-1][1] == high
-    for (_, last), (first, _) in zip(ends, ends[1:], strict=False):
+    for (_, last), (first, _) in pairwise(ends):
         assert first == pytest.approx(last + step)
     for branch, (first, last) in zip(whole.branches, ends, strict=True):
         within = [each for value, each in zip(values, results, strict=True) if first <= value <= last]
@@ -138,18 +144,27 @@ def holds_over_its_stretches(case: Case, name: str, low: float, high: float, adv
     shares_only_what_every_branch_has(whole, results)
 
 
-def test_a_range_of_temperature_says_at_which_degree_the_advice_changes(advise: Advise, make_case: Callable[..., Case], advisor: Advisor) -> None:
-    holds_over_its_stretches(make_case(), "running_temperature_c", 70, 90, advisor)
+def test_a_range_of_temperature_says_at_which_degree_the_advice_changes(
+    advise: Advise, make_case: Callable[..., Case], advisor: Advisor
+) -> None:
+    holds_over_its_stretches(make_case(), "running_temperature_c", 70.0, 90.0, advisor)
     # Neale: sodium soap to 80 °C, and 10 K are kept as a margin (common practice), so it goes at 71 °C.
-    whole = advise(running_temperature_c="69..72 °C", water_exposure="none")
-    sodium = {stretch(each, "running_temperature_c"): "sodium" in (each.advice.line("thickener").barred or {}) for each in whole.branches}
-    assert not any(barred for (_, last), barred in sodium.items() if last <= 70)
-    assert all(barred for (first, _), barred in sodium.items() if first >= 71)
+    whole = advise(running_temperature_c="68..73 °C", water_exposure="none")
+    assert whole.branches
+    for branch in whole.branches:
+        first, last = stretch(branch, "running_temperature_c")
+        assert ("sodium" in (branch.advice.line("thickener").barred or {})) is (first >= 71)
+        assert last <= 70 or first >= 71
 
 
 @pytest.mark.parametrize(
     ("name", "low", "high"),
-    [("load_ratio", 0.09, 0.16), ("start_temperature_c", -25, 5), ("outside_mm", 138, 140), ("peak_share_percent", 3, 6)],
+    [
+        ("load_ratio", 0.09, 0.16),
+        ("start_temperature_c", -25.0, 5.0),
+        ("outside_mm", 138.0, 140.0),
+        ("peak_share_percent", 3.0, 6.0),
+    ],
 )
 def test_a_range_holds_over_its_stretches(
     name: str, low: float, high: float, make_case: Callable[..., Case], advisor: Advisor
@@ -161,23 +176,22 @@ def test_a_range_holds_over_its_stretches(
 @given(case=whole_cases(known=()), data=st.data())
 @FEW
 def test_a_range_in_any_case_holds_over_its_stretches(case: Case, data: st.DataObject, advisor: Advisor) -> None:
-    numbers = [name for name, fact in ASKED.items() if fact.domain.kind == "number" and name in case.answers]
-    name = data.draw(st.sampled_from(numbers))
-    domain = ASKED[name].domain
-    step = domain.step.size if domain.step else 1.0
-    low = data.draw(st.sampled_from(pool(name, shown=False)).filter(lambda each: isinstance(each, float)))
+    name = data.draw(st.sampled_from([name for name in case.answers if ASKED[name].domain.kind == "number"]))
+    low = data.draw(st.sampled_from(pool(name, shown=False)))
     assert isinstance(low, float)
-    high = round(low + step * data.draw(st.integers(1, 20)), 9)
-    if low >= domain.low and high <= domain.high:
+    high = round(low + step_of(name) * data.draw(st.integers(1, 15)), 9)
+    if high <= ASKED[name].domain.high:
         holds_over_its_stretches(with_values(case, {"motion": ("turning",)}), name, low, high, advisor)
 
 
-def test_a_wide_range_misses_no_change_between_the_values_looked_at_first(make_case: Callable[..., Case], advisor: Advisor) -> None:
+def test_a_wide_range_misses_no_change_between_the_values_looked_at_first(
+    make_case: Callable[..., Case], advisor: Advisor
+) -> None:
     """A range of speed has a hundred thousand steps: still the value before each change differs from the one after."""
     case = make_case()
-    whole = advisor.advise(opened(case, "speed_rpm", "20..3000 rpm"))
-    assert len(whole.branches) > 3
-    for before, after in zip(whole.branches, whole.branches[1:], strict=False):
+    whole = advisor.advise(opened(case, "speed_rpm", "1000..3000 rpm"))
+    assert len(whole.branches) > 1
+    for before, after in pairwise(whole.branches):
         last, first = stretch(before, "speed_rpm")[1], stretch(after, "speed_rpm")[0]
         assert first == pytest.approx(last + 0.01)
         assert before.other_end is None or result(before.other_end) == result(before.advice)
@@ -206,14 +220,14 @@ def forking(knowledge: Knowledge) -> Advisor:
 def test_a_bridge_trunnion_with_both_motions_shows_both_variants(
     own: bool, saved: Callable[[str], Case], advisor: Advisor, forking: Advisor
 ) -> None:
-    """Worked by hand from common practice: VG 460 for the swing, VG 46 to 100 with high bleed for the vibration."""
+    """Worked by hand from common practice: VG 460 for the swing, thin oil that bleeds (VG 46 to 150) for the vibration."""
     case = saved("bridge_trunnion_swinging")
     both = with_values(case, {"motion": ("swinging", "vibration_at_standstill")})
     whole = (advisor if own else forking).advise(both)
     swing, vibration = (each.advice for each in whole.branches)
     assert [each.settings["motion"] for each in whole.branches] == list(BRIDGE.values())
     assert swing.line("vg").values == (460.0,)
-    assert set(vibration.line("vg").values) <= {46.0, 68.0, 100.0}
+    assert {46.0, 68.0, 100.0} <= set(vibration.line("vg").values) <= {46.0, 68.0, 100.0, 150.0}
     assert whole.line("vg").values == ()
     assert whole.line("vg").differs
     assert whole.state is State.REFERRED
@@ -241,7 +255,9 @@ def test_no_fork_where_its_condition_does_not_hold(make_case: Callable[..., Case
     assert not forking.advise(make_case(motion="vibration_at_standstill")).branches
 
 
-def test_a_dont_know_that_stands_for_each_of_several_is_run_for_each(knowledge: Knowledge, make_case: Callable[..., Case]) -> None:
+def test_a_dont_know_that_stands_for_each_of_several_is_run_for_each(
+    knowledge: Knowledge, make_case: Callable[..., Case]
+) -> None:
     shock = knowledge.facts["shock"]
     assert shock.assume is not None
     each = replace(shock, assume=replace(shock.assume, each=("none", "strong")))
@@ -280,12 +296,15 @@ def test_a_caution_that_concerns_all_in_one_branch_concerns_all(advise: Advise) 
             assert not each.concerns
 
 
+TWO = {"shock": "none or moderate", "dust": "none or light"}
+
+
 @pytest.mark.parametrize(
     ("changed", "named"),
     [
         ({"load_ratio": "0.05..0.10", "running_temperature_c": "70..90 °C"}, ["load ratio", "running temperature"]),
-        ({"shock": "none or moderate", "dust": "none or light", "load_ratio": "0.05..0.10"}, ["shock", "dust", "load ratio"]),
-        ({"shock": "none or moderate", "dust": "none or light", "excursions": "yes or no"}, ["shock", "dust", "hot spells"]),
+        ({**TWO, "load_ratio": "0.05..0.10"}, ["shock", "dust", "load ratio"]),
+        ({**TWO, "excursions": "yes or no"}, ["shock", "dust", "hot spells"]),
         ({"shock": "none or moderate or strong", "dust": "none or light or heavy"}, ["variants"]),
     ],
 )

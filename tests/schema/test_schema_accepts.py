@@ -92,7 +92,10 @@ def grown(rng: random.Random) -> Node:
 
 def mutate(tree: Mapping, rng: random.Random) -> None:
     """Delete, rename, double or retype one node."""
-    holder, key = rng.choice(list(places(tree)))
+    found = list(places(tree))
+    if not found:
+        return
+    holder, key = rng.choice(found)
     how = rng.choice(["delete", "rename", "retype", "retype", "retype", "move", "add"])
     if how == "delete":
         del holder[key]  # type: ignore[arg-type]
