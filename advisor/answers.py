@@ -47,8 +47,9 @@ def answer(declaration: Declaration, typed: str, *, strict: bool = True) -> Answ
 
 def _number(declaration: Declaration, text: str, *, strict: bool) -> Answer:
     domain = declaration.domain
-    if text in domain.named:
-        return Answer(domain.named[text], text, estimate=True)
+    word = text.casefold().replace(" ", "_")
+    if word in domain.named:
+        return Answer(domain.named[word], text, estimate=True)
     try:
         value = parse(text, domain.unit, strict=strict).value
     except Unreadable as fault:

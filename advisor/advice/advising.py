@@ -104,6 +104,7 @@ class Advisor:
             trace=tuple(run.trace),
             closing={},
             kappa=None,
+            overridden=run.facts.overridden,
         )
 
     def _complete(self, run: Run, catalogue: Catalogue) -> Advice:
@@ -155,6 +156,7 @@ class Advisor:
             trace=tuple(run.trace),
             closing=closing,
             kappa=found.kappa,
+            overridden=run.facts.overridden,
         )
 
     def _docket(self, run: Run, found: Recommendation, specification: Specification) -> tuple[Line, ...]:

@@ -21,6 +21,7 @@ class Facts:
         self.record: dict[str, Coded | Void] = {}
         self.basis: dict[str, frozenset[str]] = {}
         self.set_aside: list[str] = []
+        self.overridden: dict[str, Value] = {}
         for declaration in knowledge.facts.values():
             if declaration.tunable is not None:
                 self.put(Fact(declaration.name, declaration.tunable.value, Origin.TUNED))
@@ -56,6 +57,7 @@ class Facts:
                 self.questions_behind(waits_for(declaration.question.when, self.record)),
             )
         elif answer is not None and answer.value is not None:
+            self._note_overridden(declaration, answer.value)
             self.put(Fact(name, answer.value, Origin.ANSWERED, "an estimate" if answer.estimate else ""))
         elif declaration.filled is not None and self._filled(declaration, declaration.filled):
             return
@@ -65,6 +67,15 @@ class Facts:
             self.put(Fact(name, declaration.assume.value, Origin.ASSUMED, declaration.assume.because))
         else:
             self.put(Fact(name, None, Origin.UNANSWERED), (name,))
+
+    def _note_overridden(self, declaration: Declaration, value: Value) -> None:
+        """Note where an own answer goes before what a table says."""
+        how = declaration.filled
+        if how is None or any(self.facts[name].value is None for _, name in how.by):
+            return
+        found = looked_up(how, lambda name: self.facts[name].value, self.knowledge.tables).value
+        if found is not None and found != value:
+            self.overridden[declaration.name] = found
 
     def _filled(self, declaration: Declaration, how: LookedUp) -> bool:
         """Fill the answer in from a table, where a fact asked earlier allows; else it waits, or is asked itself."""

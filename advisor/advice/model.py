@@ -145,6 +145,7 @@ class Advice:
     trace: tuple[StepTrace, ...]
     closing: Record
     kappa: float | None
+    overridden: Mapping[str, Value]
     branches: tuple[Branch, ...] = ()
     held_over: str = ""
     assume_gaps: bool = False

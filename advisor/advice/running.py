@@ -46,7 +46,7 @@ class Run:
         self.drawn = Drawn()
         self.trace: list[StepTrace] = []
         self.undecided: list[tuple[Instance, frozenset[str]]] = []
-        self.waiting = Waiting()
+        self.waiting = Waiting(knowledge.facts)
 
     def steps(self) -> bool:
         """Run all steps but the closing one; False where a withheld referral ended the case."""

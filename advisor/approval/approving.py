@@ -43,6 +43,7 @@ def review(root: Path, advisors: Mapping[str, Advisor]) -> Review:
     Raises:
         Refusal: where the log, a record or a scenario is not sound.
     """
+    _one_log(root)
     outcome = replay(find([root]), advisors)
     problems = Problems(outcome.problems)
     found = reviewed(root, outcome, advisors, problems)

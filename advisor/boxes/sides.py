@@ -23,7 +23,7 @@ class Stretch:
         """Whether no number lies in it, the gaps between neighbouring floats counted."""
         first = math.nextafter(self.low, math.inf) if self.low_open else self.low
         last = math.nextafter(self.high, -math.inf) if self.high_open else self.high
-        return first > last
+        return first > last or first == math.inf or last == -math.inf
 
     def has(self, value: float) -> bool:
         """Whether the number lies in it."""

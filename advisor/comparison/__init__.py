@@ -3,7 +3,6 @@
 from collections.abc import Iterable
 from pathlib import Path
 
-from advisor.answers import read_case
 from advisor.comparison.changing import Changed, Editions, changes
 from advisor.comparison.editions import edition
 from advisor.comparison.edits import Edit, edits
@@ -37,7 +36,8 @@ def compare(old: Knowledge, new: Knowledge, files: Iterable[Path]) -> Comparison
     paths = list(files)
     editions = Editions(old, new, edits(old, new))
     problems = Problems()
-    changed, count = changes(paths, editions, problems) if editions.edits else ([], len(paths))
-    cases = [saved for path in paths if (saved := read_case(path, new, Problems())) is not None]
-    found = regions(editions, cases) if editions.edits else []
-    return Comparison(old, new, editions.edits, count, tuple(changed), tuple(found), tuple(problems))
+    if not editions.edits:
+        return Comparison(old, new, (), len(paths), (), (), ())
+    changed, cases = changes(paths, editions, problems)
+    found = regions(editions, cases)
+    return Comparison(old, new, editions.edits, len(cases), tuple(changed), tuple(found), tuple(problems))

@@ -2,6 +2,7 @@
 
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass, field
+from functools import cached_property
 from pathlib import Path
 
 from advisor.advice import Advisor, TooOpen
@@ -32,7 +33,7 @@ class Changed:
     causes: tuple[Edit, ...]
 
 
-@dataclass(slots=True)
+@dataclass
 class Editions:
     """Two bodies of knowledge, the edits between them, and an advisor for every mixture that was asked for."""
 
@@ -54,7 +55,7 @@ class Editions:
                 self.advisors[key] = None
         return self.advisors[key]
 
-    @property
+    @cached_property
     def only_rules(self) -> bool:
         """Whether nothing but rules was edited, in a way that a look at the conditions tells what changes."""
         return (
@@ -71,20 +72,22 @@ def _in_order(old: Knowledge, new: Knowledge, step: str) -> bool:
     return [each for each in before if each in after] == [each for each in after if each in before]
 
 
-def changes(files: Iterable[Path], editions: Editions, problems: Problems) -> tuple[list[Changed], int]:
-    """The scenarios that change, and how many were replayed."""
+def changes(files: Iterable[Path], editions: Editions, problems: Problems) -> tuple[list[Changed], list[Saved]]:
+    """The scenarios that change, and the cases that were replayed."""
     found: list[Changed] = []
-    count = 0
+    cases: list[Saved] = []
     for path in files:
-        old, new = (read_case(path, each, Problems()) for each in (editions.old, editions.new))
+        old = read_case(path, editions.old, Problems())
+        # Where only rules were edited, a case reads the same by either edition.
+        new = old if editions.only_rules else read_case(path, editions.new, Problems())
         if old is None and new is None:
             read_case(path, editions.new, problems)
             continue
-        count += 1
+        cases += [case for case in (new or old,) if case is not None]
         changed = _changed(path, old, new, editions)
         if changed is not None:
             found.append(changed)
-    return found, count
+    return found, cases
 
 
 def _changed(path: Path, old: Saved | None, new: Saved | None, editions: Editions) -> Changed | None:
@@ -162,6 +165,8 @@ def _causes(
     old: Saved, new: Saved, after: Sense, meaning: Meaning, touching: list[Edit], editions: Editions
 ) -> tuple[Edit, ...]:
     """The smallest set of edits (none of which can be left out) that has the effect of all."""
+    if len(editions.edits) == 1:
+        return editions.edits
 
     def enough(chosen: Iterable[Edit]) -> bool:
         advisor = editions.advisor(chosen)

@@ -29,15 +29,13 @@ def sense_of(advice: Advice) -> Sense:
     """Everything that an advice says, by what a change of it means."""
     parts: dict[Meaning, dict[tuple[str, ...], str]] = {each: {} for each in Meaning}
     shown = {name for line in (*advice.docket, *advice.quantities) for name in line.facts}
-    for part, text in told(advice).items():
+    for part, text in told(advice, demands=False).items():
         if part[0] == "facts" and part[1] not in shown:
             meaning = Meaning.REASONS
         elif part[0] in _SAFETY:
             meaning = Meaning.SAFETY
         elif part[0] == "barred" or (part[0] == "products" and len(part) > 2):
             meaning = Meaning.REASONS
-        elif part[0] == "demanded_by":
-            continue
         else:
             meaning = Meaning.RECOMMENDATION
         parts[meaning][part] = text

@@ -45,6 +45,11 @@ def regions(editions: Editions, cases: Sequence[Saved]) -> list[Region]:
     """Every region of every edited rule, and of every rule over an edited table."""
     found: list[Region] = []
     bender = _bender(editions)
+    seen = (
+        [(saved, bender.record(saved.case, assume_gaps=saved.assume_gaps)) for saved in cases]
+        if bender is not None
+        else []
+    )
     for edit in editions.edits:
         left = MOST_CASES
         for step, was, now in pairs(editions.old, editions.new, edit):
@@ -52,7 +57,7 @@ def regions(editions: Editions, cases: Sequence[Saved]) -> list[Region]:
                 witness = confirmed(box, was, now, editions.new)
                 if left and bender is not None:
                     left -= 1
-                    witness = _whole(witness, box, cases, bender, (was, now))
+                    witness = _whole(witness, box, seen, bender, (was, now))
                 found.append(Region(edit, step, (now or was).id, how, box, witness))  # type: ignore[union-attr]  # one is there
     return found
 
@@ -118,13 +123,17 @@ def differs_on(
 
 
 def _whole(
-    witness: Witness, box: Box, cases: Sequence[Saved], bender: Bender, pair: tuple[Instance | None, Instance | None]
+    witness: Witness,
+    box: Box,
+    seen: Sequence[tuple[Saved, Record]],
+    bender: Bender,
+    pair: tuple[Instance | None, Instance | None],
 ) -> Witness:
     """A whole case that leads into the box, if the nearest scenarios can be bent there."""
     if any(name in CLOSING_FACTS for name in box.names):
         return witness
-    near = sorted(cases, key=lambda each: len(unmet(box, bender.record(each.case, assume_gaps=each.assume_gaps))))
-    for saved in near[:2]:
+    near = sorted(seen, key=lambda each: len(unmet(box, each[1])))
+    for saved, _ in near[:2]:
         bender.left = RECORDS_EACH
         for case in islice(bender.into(box, saved.case, assume_gaps=saved.assume_gaps), 2):
             record = bender.record(case, assume_gaps=saved.assume_gaps)

@@ -185,7 +185,7 @@ def facts_reached(advice: Advice, fact: str) -> set[str]:
     found = {fact}
     knowledge = advice.knowledge
     while True:
-        more = {each.fact for each in knowledge.computations.values() if found & set(reads(each))}
+        more = {each.fact for each in knowledge.computations.values() if found & set(reads(each.how))}
         for step in knowledge.instances.values():
             for instance in step:
                 more |= set(_touched(instance, found)) & knowledge.facts.keys()

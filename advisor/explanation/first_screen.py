@@ -3,13 +3,14 @@
 from collections.abc import Iterator
 
 from advisor.advice import Advice, State
+from advisor.conditions import Value
 from advisor.explanation.blocks import GLYPHS, Block, Node, Para, Section, Tree, leaf
 from advisor.explanation.changes import Changes, Near
 from advisor.explanation.clearances import least_clearances
 from advisor.explanation.reasons import Reason, Why
 from advisor.explanation.ruling import Rules
 from advisor.explanation.seeing import rules_seen
-from advisor.explanation.words import listed, say_margin, say_test, say_value, title_of
+from advisor.explanation.words import listed, say_fact, say_margin, say_test, say_value, title_of
 
 MOST_REASONS = 5
 _SHOWN_NEAR = 3
@@ -74,6 +75,7 @@ def caution_section(advice: Advice, changes: Changes) -> Section:
         Node(f"Assumed: {each.title} is {each.value}. {each.because}", leaf(*_reach(each.rows)))
         for each in changes.assumed
     ]
+    nodes += [Node(_overridden(advice, name, value)) for name, value in advice.overridden.items()]
     estimates = [title_of(fact.name, advice.knowledge) for fact in advice.facts.values() if fact.note == "an estimate"]
     if estimates:
         nodes.append(Node(f"Estimated, not measured: {listed(estimates, 'and')}."))
@@ -85,6 +87,14 @@ def caution_section(advice: Advice, changes: Changes) -> Section:
     nodes += _best_clearance(advice)
     nodes.append(Node(_how_sourced(advice)))
     return Section("weak", "Before you trust this", (Tree(tuple(nodes)),))
+
+
+def _overridden(advice: Advice, name: str, value: Value) -> str:
+    """An own answer that goes before what a table says: one of the two may be a slip."""
+    declaration = advice.knowledge.facts[name]
+    own = say_fact(advice.facts[name], advice.knowledge)
+    table = say_value(declaration.domain, declaration.domain.code(value))
+    return f"Your own {declaration.title}, {own}, goes before the {table} of the designation: is one of them a slip?"
 
 
 def _reach(rows: tuple[str, ...]) -> list[str]:

@@ -185,6 +185,9 @@ def premise(advice: Advice, name: str, record: Record | None = None) -> Premise:
     if advice.withheld and hides(advice, name):
         return Premise(name, title, HIDDEN, fact.origin, "", None, (), ())
     computation = advice.knowledge.computations.get(name)
+    declaration = advice.knowledge.facts.get(name)
+    filled = declaration.filled if declaration is not None and fact.origin is Origin.LOOKED_UP else None
+    behind = reads(computation.how) if computation else reads(filled) if filled else ()
     concluded = fact.origin is Origin.CONCLUDED
     return Premise(
         name,
@@ -194,13 +197,12 @@ def premise(advice: Advice, name: str, record: Record | None = None) -> Premise:
         "" if concluded else fact.note,
         how_computed(advice, name) if computation else None,
         tuple(each for each in fact.note.split(", ") if each) if concluded else (),
-        tuple(premise(advice, each) for each in reads(computation)) if computation else (),
+        tuple(premise(advice, each) for each in behind),
     )
 
 
-def reads(computation: Computation) -> tuple[str, ...]:
-    """The facts that a computation uses."""
-    how = computation.how
+def reads(how: Formed | LookedUp) -> tuple[str, ...]:
+    """The facts that a formula or a look-up uses."""
     if isinstance(how, Formed):
         return tuple(each for each in how.inputs.values() if isinstance(each, str))
     return tuple(name for _, name in how.by)

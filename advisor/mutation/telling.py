@@ -16,7 +16,7 @@ Part = tuple[str, ...]
 _WORDS = {"<": "below", "<=": "at_most", ">": "above", ">=": "at_least"}
 
 
-def told(advice: Advice) -> dict[Part, str]:
+def told(advice: Advice, *, demands: bool = True) -> dict[Part, str]:
     """Everything that a scenario can expect of the advice, and what it would have to say."""
     parts = dict[Part, str]()
     parts["state",] = str(advice.state)
@@ -34,7 +34,7 @@ def told(advice: Advice) -> dict[Part, str]:
         parts |= {("codes", "din"): _listed(advice.codes.din), ("codes", "iso"): _listed(advice.codes.iso)}
         parts |= _docket(advice)
         parts |= dict(_products(advice))
-        parts |= _demanded(advice)
+        parts |= _demanded(advice) if demands else {}
     return parts
 
 

@@ -202,3 +202,9 @@ def test_a_demand_for_thin_films_waits_until_the_film_is_known(advisor: Advisor,
     advice = advisor.advise(Case(whole.point_kind, "", {"bearing_type": whole.answers["bearing_type"]}))
     assert {each.verdict.value for each in advice.shelf} == {"still_in"}
     assert "speed_rpm" in advice.line("additive").waits
+
+
+def test_an_own_answer_that_differs_from_the_table_is_told(advise: Advise) -> None:
+    """6313 is 65 x 140 x 33 (ISO 15 boundary plan, from memory); an own bore of 60 mm goes before it and is said."""
+    assert advise(designation="6313").overridden == {}
+    assert advise(designation="6313", bore_mm="60 mm").overridden == {"bore_mm": 65}

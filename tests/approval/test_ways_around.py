@@ -351,3 +351,7 @@ def test_a_replay_without_a_log_says_nothing_of_signing(desk: Desk) -> None:
     found = CliRunner().invoke(gudgeon, ["replay", str(desk.root)])
     assert found.exit_code == DONE, found.output
     assert "signed" not in found.output
+
+
+def test_a_folder_that_is_none_is_told(tmp_path: Path) -> None:
+    assert "no folder of scenarios" in str(run("--scenarios", str(tmp_path / "none")).exception)

@@ -1,6 +1,7 @@
 """Two editions compared: what changed, what it means, which edit did it, and where else the rules do otherwise."""
 
 import json
+import re
 import subprocess
 from collections.abc import Callable
 from pathlib import Path
@@ -101,11 +102,10 @@ def test_no_edits_made_is_the_old_and_all_is_the_new(knowledge: Knowledge, hot_s
 
 def test_an_edited_table_takes_its_rules_along(knowledge: Knowledge, tmp_path: Path) -> None:
     text = (knowledge_folder() / "tables" / "lubricants.yaml").read_text(encoding="utf-8")
-    line = next(each for each in text.splitlines() if "id: polyurea," in each or "lithium_complex" in each and "cont_c" in each)
-    limit = line.partition("cont_c: ")[2].partition(",")[0]
-    other = edited(
-        tmp_path, "tables/lubricants.yaml", (line, line.replace(f"cont_c: {limit}", f"cont_c: {float(limit) - 5:g}"))
-    )
+    row = text.partition("id: lithium_complex\n")[2].partition("- id:")[0]
+    cooler = re.sub(r"\bcont_c: (\d+)", lambda limit: f"cont_c: {int(limit[1]) - 5}", row)
+    assert cooler != row
+    other = edited(tmp_path, "tables/lubricants.yaml", (row, cooler))
     found = edits(knowledge, other)
     assert [(each.kind, each.name) for each in found] == [("table", "thickeners")]
     told = regions(Editions(knowledge, other, found), [])

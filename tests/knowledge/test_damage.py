@@ -71,7 +71,7 @@ CASES = [
         "      when: {bearing_type: cylindrical_roller}\n      assume:",
         "'assume' is not known here",
         offset=1,
-        hint="it belongs one level up, to the keys that begin in line 30",
+        hint="it belongs one level up, to the keys that begin in line ",
     ),
     Damage(
         "key one level too high",

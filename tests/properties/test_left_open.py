@@ -220,7 +220,7 @@ def forking(knowledge: Knowledge) -> Advisor:
 def test_a_bridge_trunnion_with_both_motions_shows_both_variants(
     own: bool, saved: Callable[[str], Case], advisor: Advisor, forking: Advisor
 ) -> None:
-    """Worked by hand from common practice: VG 460 for the swing, thin oil that bleeds (VG 46 to 150) for the vibration."""
+    """Worked by hand from common practice: VG 460 for the swing, thin oil that bleeds for the vibration."""
     case = saved("bridge_trunnion_swinging")
     both = with_values(case, {"motion": ("swinging", "vibration_at_standstill")})
     whole = (advisor if own else forking).advise(both)
