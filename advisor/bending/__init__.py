@@ -1,6 +1,19 @@
 """Cases bent into a region: answers changed until what the rules see lies in a box."""
 
 from advisor.bending.bender import MOST_FIXES, Bender, answered, typed
+from advisor.bending.possible import possible
 from advisor.bending.regions import apart, domains_seen, inside, may_lack, unmet, where
 
-__all__ = ["MOST_FIXES", "Bender", "answered", "apart", "domains_seen", "inside", "may_lack", "typed", "unmet", "where"]
+__all__ = [
+    "MOST_FIXES",
+    "Bender",
+    "answered",
+    "apart",
+    "domains_seen",
+    "inside",
+    "may_lack",
+    "possible",
+    "typed",
+    "unmet",
+    "where",
+]

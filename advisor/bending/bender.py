@@ -8,9 +8,9 @@ from advisor.advice.running import Run
 from advisor.bending.regions import domains_seen, unmet, wanted_on, where
 from advisor.boxes import Box
 from advisor.case import Answer, Case
-from advisor.conditions import Coded, Condition, Record, Value, holds
+from advisor.conditions import Coded, Condition, FactRef, Record, Value, holds
 from advisor.conditions.terms import Void, names
-from advisor.knowledge import CLOSING_FACTS, Formed, Knowledge, Sets
+from advisor.knowledge import CLOSING_FACTS, Declaration, Formed, FromItem, Knowledge, Sets
 
 MOST_FIXES = 4
 WAYS_EACH = 6
@@ -62,9 +62,30 @@ class Bender:
             if question == fact:
                 yield answered(case, question, self.knowledge.domain(fact).decode(wanted), self.knowledge)
             elif isinstance(wanted, float) and self.knowledge.domain(question).kind == "number":
-                found = self._solved(case, question, fact, wanted, assume_gaps=assume_gaps)
-                if found is not None:
-                    yield answered(case, question, found, self.knowledge)
+                for asked in self._asked(case, question, wanted, assume_gaps=assume_gaps):
+                    found = self._solved(asked, question, fact, wanted, assume_gaps=assume_gaps)
+                    if found is not None:
+                        yield answered(asked, question, found, self.knowledge)
+
+    def _asked(self, case: Case, question: str, start: float, *, assume_gaps: bool) -> Iterator[Case]:
+        """The case with some answer to a question; where the case is not asked, one that is."""
+        unlock = self._unasked(question, self.record(case, assume_gaps=assume_gaps))
+        if unlock is None:
+            yield case
+            return
+        for box in where(unlock, self.knowledge)[:WAYS_EACH]:
+            for bent in islice(self._fixed(box, case, assume_gaps, 1), 1):
+                yield self._filled(answered(bent, question, start, self.knowledge), assume_gaps=assume_gaps)
+
+    def _filled(self, case: Case, *, assume_gaps: bool) -> Case:
+        """The case with an answer to each question that it newly asks: that of those who are not asked, or the first."""
+        record = self.record(case, assume_gaps=assume_gaps)
+        for name, fact in self.knowledge.facts.items():
+            if name in record or name in case.answers or fact.question is None:
+                continue
+            if holds(fact.question.when, record) and (value := _plain_answer(fact)) is not None:
+                case = answered(case, name, value, self.knowledge)
+        return case
 
     def _solved(self, case: Case, question: str, fact: str, wanted: float, *, assume_gaps: bool) -> float | None:
         """The answer for which a computed number is as wanted, by the secant, rounded to the step where that serves."""
@@ -105,7 +126,8 @@ class Bender:
             for asked in where(unlock, self.knowledge)[:WAYS_EACH]:
                 for bent in islice(self._fixed(asked, case, assume_gaps, left - 1), WAYS_EACH):
                     if self._unasked(name, self.record(bent, assume_gaps=assume_gaps)) is None:
-                        yield from self._fixed(box, bent, assume_gaps, left - 1)
+                        filled = self._filled(bent, assume_gaps=assume_gaps)
+                        yield from self._fixed(box, filled, assume_gaps, left - 1)
             return
         for wanted in wanted_on(box.sides[name], record.get(name), self.domains[name]):
             for bent in islice(self._towards(case, name, wanted, assume_gaps), WAYS_EACH):
@@ -168,6 +190,17 @@ def _root(off: Callable[[float], float | None], start: float, step: float) -> fl
             return None
         one, other = other, other - at_other * (other - one) / (at_other - at_one)
     return None
+
+
+def _plain_answer(fact: Declaration) -> Value | None:
+    """An answer that changes as little as can be."""
+    if fact.unasked is not None and not isinstance(fact.unasked, FactRef | FromItem):
+        return fact.unasked
+    if fact.assume is not None:
+        return fact.assume.value
+    if fact.domain.kind == "several":
+        return ()
+    return next(iter(fact.domain.choices), None)
 
 
 def _deciding(fact: str, knowledge: Knowledge) -> Iterator[str]:

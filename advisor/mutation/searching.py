@@ -5,7 +5,7 @@ from dataclasses import dataclass, field
 from itertools import islice
 
 from advisor.advice import Advice, Advisor, TooOpen
-from advisor.bending import MOST_FIXES, Bender, answered, apart, unmet, where
+from advisor.bending import MOST_FIXES, Bender, answered, apart, possible, unmet, where
 from advisor.boxes import Box
 from advisor.case import Case
 from advisor.conditions import Record
@@ -48,7 +48,7 @@ class Search:
         return self.jury.advisor
 
     def region(self, mutant: Mutant) -> list[Box]:
-        """Where the rules of the mutant do otherwise: on what their step sees, not yet on what is advised."""
+        """Where the rules of the mutant do otherwise on what a case can show them; the advice may still be the same."""
         known = self.advisor.knowledge
         found: list[Box] = []
         for place, after in mutant.changed.items():
@@ -57,7 +57,7 @@ class Search:
                 found += where(was.when, known)
             else:
                 found += [*apart(was.when, after.when, known), *apart(after.when, was.when, known)]
-        return found
+        return possible(found, known)
 
     def find(self, mutant: Mutant, tries: int) -> tuple[Found | None, int]:
         """A case that kills, if these many tries find one, and how many were made."""

@@ -17,12 +17,13 @@ from advisor.places import scenario_folder
 
 # An ordinary motor bearing, answered as a fitter would type it.
 MOTOR = {
-    "designation": "other",
+    "designation": "6313",
     "bearing_type": "deep_groove_ball",
     "dangers": "",
     "site": "converter_fed",
     "supply": "nipple_through",
     "incumbent": "GR-301",
+    "maker_item": "none_named",
     "bore_mm": "65",
     "outside_mm": "140",
     "speed_rpm": "1 480 rpm",
@@ -78,6 +79,16 @@ def test_an_ordinary_motor_bearing_is_settled_with_at_most_twenty_questions(advi
     assert len(session.answered) <= 20
     assert session.finished
     assert session.advice.shelf[0].item == "GR-301"
+
+
+def test_without_a_designation_twenty_answers_settle_the_lubricant(advisor: Advisor) -> None:
+    """What is asked after that tunes quantities only, and the user may stop."""
+    session = Session(advisor)
+    answers = {**MOTOR, "designation": "other"}
+    while session.question is not None and not session.only_quantities_left:
+        session.answer(answers[session.question.name])
+    assert len(session.answered) <= 20
+    assert session.advice.state.value == "settled"
 
 
 def test_questions_come_in_the_declared_order(advisor: Advisor) -> None:

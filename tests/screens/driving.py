@@ -27,12 +27,13 @@ _NAMES = {
 }
 
 KEYS = {
-    "designation": "other",
+    "designation": "6313",
     "bearing_type": "1",
     "dangers": "",
     "site": "1",
     "supply": "4",
     "incumbent": "GR-301",
+    "maker_item": "none_named",
     "bore_mm": "65",
     "outside_mm": "140",
     "speed_rpm": "1480 rpm",
