@@ -15,7 +15,7 @@ DONT_KNOW = "dont_know"
 UNANSWERED = "unanswered"
 OR = " or "
 _NUMBER = re.compile(r"^[+\-−]?[\d.,'’\s]+")
-_CODE = re.compile(r"[A-Za-z]*\d+(?:/\d+)?")
+_CODE = re.compile(r"([A-Z]*)\s*(\d+(?:/\d+)?)")
 
 
 class Unsuitable(ValueError):
@@ -104,8 +104,9 @@ def _named(declaration: Declaration, text: str) -> str:
 
 def _code(text: str, choices: Map[str, str]) -> str:
     """The code with which a designation begins, blanks and suffixes aside: `NU 208 ECP` is NU208."""
-    found = _CODE.match(text.replace(" ", "").upper())
-    return found.group() if found and found.group() in choices else ""
+    found = _CODE.match(text.upper())
+    code = "".join(found.groups()) if found else ""
+    return code if code in choices else ""
 
 
 def _ticks(declaration: Declaration, text: str) -> tuple[str, ...]:

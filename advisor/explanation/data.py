@@ -202,6 +202,8 @@ def _quantity(advice: Advice, line: Line) -> Data:
     if line.skipped:
         row = next(each for each in advice.knowledge.docket if each.id == line.row)
         return data | {"shown_if": condition_data(row.shown_if, _domains(advice))}
+    if line.differs:
+        return data | {"differs": True}
     data["values"] = {name: plain(advice.facts[name].value) for name in line.facts if name in advice.facts}
     return data | ({"waits": list(line.waits)} if line.waits else {})
 

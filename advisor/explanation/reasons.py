@@ -86,7 +86,7 @@ def say_line(advice: Advice, line: Line) -> str:
             return f"{said}, in every variant" if said else "differs between the variants"
         return said or (WAITS if line.waits else "nothing is left")
     if line.facts:
-        return _say_facts(advice, line.facts)
+        return "differs between the variants" if line.differs else _say_facts(advice, line.facts)
     musts = [demand for demand in line.demands if demand.must] or list(line.demands)
     said = "; ".join(dict.fromkeys(_short_demand(demand, advice) for demand in musts))
     return said or (WAITS if line.waits else "nothing asked")

@@ -162,7 +162,7 @@ def quantities_text(advice: Advice) -> str:
     known = [
         (line.title, text)
         for line in advice.quantities
-        if not line.skipped and not line.waits and (text := _facts(advice, line.facts))
+        if not line.skipped and not line.waits and (text := "differs" if line.differs else _facts(advice, line.facts))
     ]
     waits = [name for line in advice.quantities for name in line.waits]
     parts = [f"{title} {text}" for title, text in known]

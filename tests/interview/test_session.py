@@ -184,9 +184,10 @@ def test_a_withheld_referral_ends_the_interview_until_its_answer_is_changed(advi
 
 def test_the_user_may_stop_when_only_quantities_are_left(advisor: Advisor) -> None:
     session = Session(advisor)
+    answers = {**MOTOR, "designation": "other"}
     while session.question is not None and session.question.name != "width_mm":
         assert not session.only_quantities_left
-        session.answer(MOTOR[session.question.name])
+        session.answer(answers[session.question.name])
     assert session.only_quantities_left
     assert session.advice.state.value == "settled"
     session.dont_know()

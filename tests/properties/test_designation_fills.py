@@ -43,7 +43,7 @@ def test_a_designation_answers_type_and_sizes(designation: str, advise: Advise) 
     [
         ("6308-2RS C3", "6308"),
         ("6308-2Z/C3", "6308"),
-        ("NU 208 ECP", "NU208"),
+        ("NU 208 ECP", "NU208"), ("6308 2Z/C3", "6308"),
         ("nu208", "NU208"),
         ("7208 BECBP", "7208"),
         ("22220 EK", "22220"),

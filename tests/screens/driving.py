@@ -122,12 +122,13 @@ async def ask(app: Gudgeon, pilot: Pilot[None], name: str) -> None:
     await show(app, pilot)
 
 
-async def fill(app: Gudgeon, pilot: Pilot[None], *, until: str = "") -> None:
+async def fill(app: Gudgeon, pilot: Pilot[None], *, until: str = "", designation: str = KEYS["designation"]) -> None:
     """Answer the questions of the motor bearing without typing, up to this one."""
+    values = {**VALUES, "designation": designation}
     assert app.session is not None
     app.session.go_on()
     while app.session.question is not None and app.session.question.name != until:
-        app.session.answer(VALUES[app.session.question.name])
+        app.session.answer(values[app.session.question.name])
     await show(app, pilot)
 
 

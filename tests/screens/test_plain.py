@@ -29,10 +29,10 @@ def test_a_whole_interview_ends_with_the_advice_and_where_it_is_kept(knowledge: 
 
 
 def test_numbers_stand_for_choices_and_what_is_read_is_said_back(knowledge: Knowledge) -> None:
-    lines, wanted = ["Pump 7"], ""
+    lines, wanted, values = ["Pump 7"], "", {**VALUES, "designation": "other"}
     for name, each in knowledge.facts.items():
         if each.question is not None and name in VALUES:
-            lines.append({"bearing_type": "1", "dangers": "6, 7"}.get(name, VALUES[name]))
+            lines.append({"bearing_type": "1", "dangers": "6, 7"}.get(name, values[name]))
             if name == "dangers":
                 labels = list(each.domain.choices.values())
                 wanted = f"{each.title}: {labels[5]}, {labels[6]}"

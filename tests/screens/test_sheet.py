@@ -304,7 +304,7 @@ def test_reports_are_written_from_the_end(knowledge: Knowledge, tmp_path: Path) 
 def test_one_may_stop_before_the_questions_about_quantity(knowledge: Knowledge) -> None:
     async def script(app: Gudgeon, pilot: Pilot[None]) -> None:
         session = await begin(app, pilot)
-        await fill(app, pilot, until="seal")
+        await fill(app, pilot, until="seal", designation="other")
         assert "F8 Stop" not in text(app)
         await type_in(pilot, "")
         assert session.only_quantities_left
