@@ -78,7 +78,7 @@ class Bender:
                 yield self._filled(answered(bent, question, start, self.knowledge), assume_gaps=assume_gaps)
 
     def _filled(self, case: Case, *, assume_gaps: bool) -> Case:
-        """The case with an answer to each question that it newly asks: that of those who are not asked, or the first."""
+        """The case with an answer to each question that it newly asks: one that changes as little as can be."""
         record = self.record(case, assume_gaps=assume_gaps)
         for name, fact in self.knowledge.facts.items():
             if name in record or name in case.answers or fact.question is None:

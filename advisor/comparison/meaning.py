@@ -87,6 +87,4 @@ def differing(old: Sense, new: Sense, meaning: Meaning) -> dict[tuple[str, ...],
     """The parts of one meaning that differ: what was said, what is said now; empty where nothing is."""
     before, after = old[meaning], new[meaning]
     names = (*before, *(each for each in after if each not in before))
-    return {
-        name: (before.get(name, ""), after.get(name, "")) for name in names if before.get(name) != after.get(name)
-    }
+    return {name: (before.get(name, ""), after.get(name, "")) for name in names if before.get(name) != after.get(name)}

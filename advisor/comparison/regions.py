@@ -110,9 +110,7 @@ def confirmed(box: Box, was: Instance | None, now: Instance | None, knowledge: K
     return Witness(record)
 
 
-def differs_on(
-    record: Record, was: Instance | None, now: Instance | None, domains: Mapping[str, object]
-) -> bool:
+def differs_on(record: Record, was: Instance | None, now: Instance | None, domains: Mapping[str, object]) -> bool:
     """Whether two instances do otherwise on a record, by both engines."""
     pair = [_binding(each) for each in (was, now)]
     rules = StepRules([each.when if each else ALWAYS for each in pair], domains)  # type: ignore[arg-type]  # domains by name
@@ -152,6 +150,4 @@ def _named(record: Record, box: Box) -> dict[str, Coded | Void]:
 
 
 def _changed(before: Case, after: Case) -> dict[str, str]:
-    return {
-        name: answer.typed for name, answer in after.answers.items() if before.answers.get(name) != answer
-    }
+    return {name: answer.typed for name, answer in after.answers.items() if before.answers.get(name) != answer}

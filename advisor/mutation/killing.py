@@ -71,6 +71,4 @@ def otherwise(was: Instance | None, now: Instance | None, record: Record) -> boo
     if was is None or now is None or was.then != now.then:
         return any(each is not None and holds(each.when, record) is not False for each in (was, now))
     before, after = holds(was.when, record), holds(now.when, record)
-    return before is not after or (
-        before is None and waits_for(was.when, record) != waits_for(now.when, record)
-    )
+    return before is not after or (before is None and waits_for(was.when, record) != waits_for(now.when, record))

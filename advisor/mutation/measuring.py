@@ -90,9 +90,7 @@ def measure(
     survivors = [each for part in parts for each in part.survivors]
     order = {rule: place for place, rule in enumerate(load(root, point_kind, shelf).rules)}
     survivors.sort(key=lambda each: order[each.rule])
-    return Measured(
-        point_kind, sum(part.made for part in parts), sum(part.killed for part in parts), tuple(survivors)
-    )
+    return Measured(point_kind, sum(part.made for part in parts), sum(part.killed for part in parts), tuple(survivors))
 
 
 def work(share: Share) -> Measured:

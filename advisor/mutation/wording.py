@@ -61,9 +61,7 @@ def as_scenario(found: Found) -> str:
     saved, knowledge = found.like.saved, found.knowledge
     base = saved.case
     lines = ["format: 1", 'title: ""', 'guards: ""', "status: draft", f"like: {found.like.name}"]
-    changed = {
-        name: answer for name, answer in found.case.answers.items() if base.answers.get(name) != answer
-    }
+    changed = {name: answer for name, answer in found.case.answers.items() if base.answers.get(name) != answer}
     if changed:
         lines.append("answers:")
         lines += [

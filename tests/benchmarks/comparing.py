@@ -25,8 +25,9 @@ def main() -> None:
         took = time.process_time() - began
         inside, same, outside = tally(old, new, count, seed=1)
         share = 100 * (inside - same) / inside if inside else 100.0
-        print(  # noqa: T201 - a benchmark prints
-            f"{name}: {len(compared.regions)} regions, {len(compared.changed)} scenarios change, {took:.2f} s of processor; "
+        print(
+            f"{name}: {len(compared.regions)} regions, {len(compared.changed)} scenarios change, "
+            f"{took:.2f} s of processor; "
             f"of {count} records {inside} lie inside ({share:.2f} % differ), {outside} differ outside"
         )
 

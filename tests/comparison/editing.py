@@ -30,7 +30,7 @@ def random_records(
     instances: list[Instance], knowledge: Knowledge, count: int, seed: int
 ) -> list[dict[str, Coded | Void]]:
     """Records of everything that these instances look at: limits, their neighbours and anything between."""
-    dice = random.Random(seed)
+    dice = random.Random(seed)  # noqa: S311 - repeatable records, no secrets
     domains, lacking = domains_seen(knowledge), may_lack(knowledge)
     limits: dict[str, list[float]] = {}
     for term in (term for each in instances for term in leaves(each.when)):

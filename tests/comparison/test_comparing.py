@@ -9,13 +9,12 @@ from pathlib import Path
 import pytest
 from click.testing import CliRunner
 
-from advisor.bending import inside
+from advisor.bending import domains_seen, inside
 from advisor.cli import gudgeon
 from advisor.comparison import Comparison, Editions, Meaning, as_markdown, as_text, compare, edition, edits, regions
 from advisor.comparison.changing import pairs
 from advisor.comparison.edits import with_edits
 from advisor.comparison.regions import differs_on
-from advisor.bending import domains_seen
 from advisor.conditions import holds
 from advisor.knowledge import Instance, Knowledge
 from advisor.mishaps import Refusal
@@ -24,6 +23,7 @@ from tests.comparison.editing import HOT_STEEL, HOT_STEEL_SILENT, edited, random
 
 SCENARIOS = scenario_folder() / "rolling_bearing"
 RECORDS = 2000
+PEAK = "{row: peak_c}}}\n    then:\n      - must: {base_oil"
 
 EDITS: dict[str, tuple[str, list[tuple[str, str]]]] = {
     "a limit": ("temperature.yaml", [HOT_STEEL, HOT_STEEL_SILENT]),
@@ -31,10 +31,13 @@ EDITS: dict[str, tuple[str, list[tuple[str, str]]]] = {
         "temperature.yaml",
         [("        - start_temperature_c: {below: -40}", "        - start_temperature_c: {below: -45}")],
     ),
-    "a level": ("viscosity.yaml", [("kappa: {at_least: 1.5}}\n        level: 2", "kappa: {at_least: 1.5}}\n        level: 3")]),
+    "a level": (
+        "viscosity.yaml",
+        [("kappa: {at_least: 1.5}}\n        level: 2", "kappa: {at_least: 1.5}}\n        level: 3")],
+    ),
     "rows of a table": (
         "temperature.yaml",
-        [("when: {bearing_peak_c: {above: {row: peak_c}}}\n    then:\n      - must: {base_oil", "when: {bearing_peak_c: {at_least: {row: peak_c}}}\n    then:\n      - must: {base_oil")],
+        [(f"when: {{bearing_peak_c: {{above: {PEAK}", f"when: {{bearing_peak_c: {{at_least: {PEAK}")],
     ),
 }
 
@@ -180,7 +183,9 @@ def test_folders_and_revisions_are_editions(tmp_path: Path, monkeypatch: pytest.
 
 
 @pytest.mark.parametrize("named", ["no_such_revision", "--help"])
-def test_what_is_neither_folder_nor_revision_is_refused(named: str, tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+def test_what_is_neither_folder_nor_revision_is_refused(
+    named: str, tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
     monkeypatch.chdir(tmp_path)
     with pytest.raises(Refusal, match="is no folder, and the current folder lies in no git repository"), edition(named):
         pass

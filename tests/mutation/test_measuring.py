@@ -54,7 +54,7 @@ def test_a_rule_over_a_table_is_changed_for_all_its_rows_at_once(knowledge: Know
     assert len(edge.changed) == rows > 1
 
 
-def test_levels_change_by_one_and_a_must_becomes_a_strong_wish(knowledge: Knowledge, made: list[Mutant]) -> None:
+def test_levels_change_by_one_and_a_must_becomes_a_strong_wish(made: list[Mutant]) -> None:
     def levels(rule: str) -> set[int]:
         return {
             each.then[0].level
