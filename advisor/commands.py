@@ -1,5 +1,6 @@
 """What the commands do: load, call one room, print; the result is the exit code."""
 
+import gc
 import os
 import sys
 from pathlib import Path
@@ -21,9 +22,12 @@ def _loaded(knowledge: Path | None, shelf: Path | None, point_kind: str = "rolli
 
     kept = settings()
     try:
-        return load(knowledge or kept.knowledge or knowledge_folder(), point_kind, shelf or kept.shelf)
+        loaded = load(knowledge or kept.knowledge or knowledge_folder(), point_kind, shelf or kept.shelf)
     except Faulty as fault:
         raise Refusal(f"{fault}\n{_count(len(fault.problems))} in the knowledge; nothing was done.") from None
+    # Knowledge lives as long as the process: the collector need not walk it again for every advice.
+    gc.freeze()
+    return loaded
 
 
 def _saved(file: Path, knowledge: "Knowledge") -> "Saved":

@@ -3,6 +3,7 @@
 from collections.abc import Mapping
 from dataclasses import dataclass
 from enum import StrEnum
+from typing import NamedTuple
 
 from advisor.case import Case, Fact
 from advisor.conditions import Record, Value
@@ -61,8 +62,7 @@ class OpenQuestion:
     dont_know: bool
 
 
-@dataclass(frozen=True, slots=True)
-class Candidate:
+class Candidate(NamedTuple):
     """A candidate for a docket row: its value, and how it did."""
 
     value: Value
@@ -86,8 +86,7 @@ class Line:
     barred: Mapping[Value, tuple[str, ...]] | None = None
 
 
-@dataclass(frozen=True, slots=True)
-class Ranked:
+class Ranked(NamedTuple):
     """A product with its verdict and the whole steps it misses of the shoulds, level by level."""
 
     place: int

@@ -1,8 +1,8 @@
 """Judging a catalogue against a specification: verdicts, shortfalls with margins, and the ranking."""
 
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 from enum import StrEnum
+from typing import NamedTuple
 
 from advisor.conditions import Bound, Coded, Condition, Domain, Either, Every, Member, Stated, Ticked, leaves
 from advisor.conditions.terms import SIGNS
@@ -21,8 +21,10 @@ class Verdict(StrEnum):
     FALLS_SHORT = "falls_short"
 
 
-@dataclass(frozen=True, slots=True)
-class Shortfall:
+_RANK = {verdict: place for place, verdict in enumerate(Verdict)}
+
+
+class Shortfall(NamedTuple):
     """A demand that an item misses: by what it shows (None: its sheet lacks the value) and how many steps."""
 
     demand: Demand
@@ -136,12 +138,13 @@ class Judgement:
         """All items, best first: by verdict, by steps short level by level, by item code."""
         alive = self.catalogue.everything & ~self.fails_must
         steps = self.steps(alive)
-        order = list(Verdict)
+        none = (0, 0, 0, 0)
         rows = [
-            (place, self.verdict(place, is_open=is_open), steps.get(place, (0, 0, 0, 0)))
-            for place in range(len(self.catalogue.items))
+            (_RANK[verdict := self.verdict(place, is_open=is_open)], steps.get(place, none), item.code, place, verdict)
+            for place, item in enumerate(self.catalogue.items)
         ]
-        return sorted(rows, key=lambda row: (order.index(row[1]), row[2], self.catalogue.items[row[0]].code))
+        rows.sort()
+        return [(place, verdict, short) for _, short, _, place, verdict in rows]
 
 
 def steps_short(test: Condition, value: Coded, domain: Domain) -> int:

@@ -28,7 +28,7 @@ class Workload:
 
 def workload(seed: int, cases: int, missing: float) -> Workload:
     """The same rules and cases for the same seed; `missing` is the share of unanswered facts."""
-    draw = random.Random(seed)  # noqa: S311  # made-up rules are no secrets
+    draw = random.Random(seed)  # made-up rules are no secrets
     domains = {
         **{name: Domain("number") for name in (*NUMBERS, *(f"fired_{step}" for step in range(STEPS)))},
         **{name: Domain("choice", choices={each: each for each in CHOICES}) for name in PICKS},
