@@ -37,7 +37,9 @@ def _law(name: str, knowledge: Knowledge) -> Condition | None:
 
 
 def _of_question(fact: Declaration, knowledge: Knowledge) -> Condition | None:
-    """A fact has the value of those who are not asked, or the case is asked."""
+    """A tuned fact has its value; another has that of those who are not asked, or the case is asked."""
+    if fact.tunable is not None:
+        return _equal(fact.name, fact.tunable.value, fact.domain)
     if fact.question is None or fact.question.when == ALWAYS or fact.domain.kind == "several":
         return None
     if fact.unasked is None or isinstance(fact.unasked, FactRef | FromItem):

@@ -3,6 +3,7 @@
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass, replace
 
+from advisor.advice.running import CLOSING
 from advisor.conditions import ALWAYS, FactRef
 from advisor.knowledge import Asks, Instance, Knowledge, Refers, Sets, Warns
 from advisor.knowledge.model import Conclusion
@@ -76,13 +77,15 @@ def _variants(instance: Instance, stepper: Stepper) -> Iterator[tuple[Key, Insta
         before, after = instance.then[:place], instance.then[place + 1 :]
         if before or after:
             yield ("then", place, "removed"), replace(instance, then=(*before, *after))
-        for key, changed in _conclusions(conclusion, stepper):
+        for key, changed in _conclusions(conclusion, instance.rule.step, stepper):
             yield ("then", place, *key), replace(instance, then=(*before, changed, *after))
 
 
-def _conclusions(conclusion: Conclusion, stepper: Stepper) -> Iterator[tuple[Key, Conclusion]]:
+def _conclusions(conclusion: Conclusion, step: str, stepper: Stepper) -> Iterator[tuple[Key, Conclusion]]:
     if isinstance(conclusion, Refers):
-        yield ("withhold",), replace(conclusion, withhold=not conclusion.withhold)
+        # By the closing step the advice is made, so withholding means nothing there.
+        if step != CLOSING:
+            yield ("withhold",), replace(conclusion, withhold=not conclusion.withhold)
         return
     if isinstance(conclusion, Asks):
         yield from _demands(conclusion, stepper)

@@ -135,6 +135,12 @@ def test_a_mutant_that_no_case_can_tell_is_shown_equivalent(jury: Jury, knowledg
     assert Search(jury, Bender(jury.advisor)).region(same) == []
 
 
+def test_what_only_those_who_are_asked_can_answer_makes_a_term_needless(jury: Jury, made: list[Mutant]) -> None:
+    # The temperature of the water is asked from splash on, and is 20 degrees where nobody is asked.
+    dropped = next(each for each in of("steam", made) if each.key == ("when", 0, "dropped"))
+    assert Search(jury, Bender(jury.advisor)).region(dropped) == []
+
+
 def test_words_for_a_mutant_name_what_was_and_what_is(made: list[Mutant], knowledge: Knowledge) -> None:
     up = next(each for each in of("bearing_steel_hot", made) if each.key == ("when", "limit", "up"))
     assert say_mutant(up, knowledge) == (
