@@ -24,6 +24,8 @@ LEVELS = [
     {"rule_sheet", "approval", "mutation"},
     {"comparison"},
     {"screens"},
+    {"desk"},
+    {"reviewing"},
     {"commands"},
     {"cli"},
     {"__main__"},

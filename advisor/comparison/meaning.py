@@ -5,8 +5,9 @@ from enum import StrEnum
 
 from advisor.advice import Advice
 from advisor.explanation.seeing import rules_seen
+from advisor.explanation.words import say_demand
+from advisor.knowledge import Citation
 from advisor.mutation import told
-from advisor.specification import Demand
 
 
 class Meaning(StrEnum):
@@ -41,14 +42,11 @@ def sense_of(advice: Advice) -> Sense:
         parts[meaning][part] = text
     for demand in advice.specification.demands:
         meaning = Meaning.SAFETY if demand.must else Meaning.RECOMMENDATION
-        parts[meaning]["must" if demand.must else "should", demand.property, _means(demand)] = _means(demand)
+        said = say_demand(demand, advice.knowledge)
+        parts[meaning]["must" if demand.must else "should", demand.property, said] = said
     parts[Meaning.ORDER] |= _order(advice)
     parts[Meaning.REASONS] |= _reasons(advice)
     return parts
-
-
-def _means(demand: Demand) -> str:
-    return f"{demand.level} {demand.test!r} {demand.for_!r}"
 
 
 def _order(advice: Advice) -> dict[tuple[str, ...], str]:
@@ -66,7 +64,8 @@ def _reasons(advice: Advice) -> dict[tuple[str, ...], str]:
         for _, rule, outcome in rules_seen(advice)
         if outcome and rule.binds
     }
-    found |= {("demanded", each.rule, each.property): _means(each) for each in advice.specification.demands}
+    demands = advice.specification.demands
+    found |= {("demanded", each.rule, each.property): say_demand(each, advice.knowledge) for each in demands}
     for caution in advice.cautions:
         found["cautioned", caution.caution] = f"{', '.join(caution.rules)}: {', '.join(caution.concerns)}"
         written = advice.knowledge.cautions[caution.caution]
@@ -74,8 +73,8 @@ def _reasons(advice: Advice) -> dict[tuple[str, ...], str]:
     return found
 
 
-def _cited(source: tuple[object, ...]) -> str:
-    return " ".join(map(str, source))
+def _cited(source: tuple[Citation, ...]) -> str:
+    return "; ".join(f"{each.id} {each.where} ({each.checked})" for each in source)
 
 
 def worst(old: Sense, new: Sense) -> Meaning:

@@ -17,6 +17,7 @@ from advisor.knowledge import CLOSING_FACTS, Instance, Knowledge
 
 RECORDS_EACH = 60
 MOST_CASES = 6
+MOST_NEAR = 80
 _FIRES, _SILENT = "fires now", "no longer fires"
 
 
@@ -45,11 +46,8 @@ def regions(editions: Editions, cases: Sequence[Saved]) -> list[Region]:
     """Every region of every edited rule, and of every rule over an edited table."""
     found: list[Region] = []
     bender = _bender(editions)
-    seen = (
-        [(saved, bender.record(saved.case, assume_gaps=saved.assume_gaps)) for saved in cases]
-        if bender is not None
-        else []
-    )
+    near = cases[:: max(1, len(cases) // MOST_NEAR)] if bender is not None else []
+    seen = [(saved, bender.record(saved.case, assume_gaps=saved.assume_gaps)) for saved in near if bender is not None]
     for edit in editions.edits:
         left = MOST_CASES
         for step, was, now in pairs(editions.old, editions.new, edit):

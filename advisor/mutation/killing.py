@@ -12,7 +12,6 @@ from advisor.mutation.mutants import Mutant
 from advisor.mutation.standing_in import by_mutant, plain
 from advisor.replay import Played, Scenario, play
 
-
 MOST_TRIED = 120
 _NAMING = ("rule", "caution", "to", "property", "name")
 _CONCLUDING = ("caution", "to", "property", "name")
