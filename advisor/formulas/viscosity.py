@@ -100,12 +100,12 @@ def fit(t1: float, nu1: float, t2: float, nu2: float) -> Line:
         raise OutOfRange(
             f"The two temperatures must be at least 20 K apart, but they are {plain(t1)} and {plain(t2)} °C."
         )
-    if not nu1 > nu2:
+    w1, w2 = log10(log10(walther_z(nu1))), log10(log10(walther_z(nu2)))
+    if not (nu1 > nu2 and w1 > w2):
         raise OutOfRange(
             f"The viscosity must fall with temperature, but it is {plain(nu1)} mm²/s at {plain(t1)} °C "
             f"and {plain(nu2)} mm²/s at {plain(t2)} °C."
         )
-    w1, w2 = log10(log10(walther_z(nu1))), log10(log10(walther_z(nu2)))
     slope = (w1 - w2) / (log10(t2 + KELVIN) - log10(t1 + KELVIN))
     return Line(w1 + slope * log10(t1 + KELVIN), slope)
 
