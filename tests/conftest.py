@@ -1,15 +1,22 @@
 """What all tests share: the shipped knowledge and an advisor on it, made once."""
 
+import os
 from collections.abc import Callable
 from pathlib import Path
 
 import pytest
+from hypothesis import settings
 
 from advisor.advice import Advice, Advisor
 from advisor.answers import answer, read_case
 from advisor.case import Case
 from advisor.documents import Problems
 from advisor.knowledge import Knowledge, load
+
+# Where a change is judged, the same examples are drawn every time; at the desk, new ones.
+settings.register_profile("judged", derandomize=True, deadline=None)
+settings.register_profile("desk", deadline=None)
+settings.load_profile("judged" if os.environ.get("CI") else "desk")
 
 ROOT = Path(__file__).resolve().parent.parent
 SCENARIOS = ROOT / "scenarios" / "rolling_bearing"
