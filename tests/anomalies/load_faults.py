@@ -3,7 +3,7 @@
 import random
 from collections.abc import Callable
 
-from bases import Base
+from tests.anomalies.bases import Base
 
 LoadFault = Callable[[Base, random.Random], str]
 """Puts a fault into the files; gives a word that the problem must name."""

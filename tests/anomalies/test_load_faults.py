@@ -4,10 +4,10 @@ import random
 from pathlib import Path
 
 import pytest
-from bases import clean
-from load_faults import LOAD_FAULTS
 
 from advisor.anomalies import turned_down
+from tests.anomalies.bases import clean
+from tests.anomalies.load_faults import LOAD_FAULTS
 
 
 @pytest.mark.parametrize("kind", LOAD_FAULTS)

@@ -7,8 +7,6 @@ from pathlib import Path
 from tempfile import TemporaryDirectory
 
 import pytest
-from bases import clean
-from faults import FAULTS
 
 from advisor.advice import Advisor
 from advisor.anomalies import Finding, examine_meaning
@@ -17,6 +15,8 @@ from advisor.conditions import VOID, Coded
 from advisor.conditions.terms import Void
 from advisor.inference import StepRules
 from advisor.knowledge import Knowledge
+from tests.anomalies.bases import clean
+from tests.anomalies.faults import FAULTS
 
 BASES = 10
 EACH = 50

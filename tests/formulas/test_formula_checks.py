@@ -7,9 +7,6 @@ from decimal import Decimal
 from pathlib import Path
 
 import pytest
-from checked_bearings import CALLS as OF_BEARINGS
-from checked_viscosity import CALLS as OF_VISCOSITY
-from checked_viscosity import NAMED
 
 from advisor.formulas import bearings, density, grease, viscosity
 from advisor.formulas.formula import OutOfRange
@@ -19,6 +16,9 @@ from advisor.formulas.viscosity_index import (
     viscosity_of_index_0,
     viscosity_of_index_100,
 )
+from tests.formulas.checked_bearings import CALLS as OF_BEARINGS
+from tests.formulas.checked_viscosity import CALLS as OF_VISCOSITY
+from tests.formulas.checked_viscosity import NAMED
 
 with (Path(__file__).parent / "checks.csv").open(encoding="utf-8", newline="") as opened:
     ROWS = {row["id"]: row for row in csv.DictReader(opened)}

@@ -9,7 +9,6 @@ from itertools import product
 import pytest
 from hypothesis import assume, given, settings
 from hypothesis import strategies as st
-from made_up import DOMAINS, NUMBERS, TEXTS, a_condition, a_record, seeded
 
 from advisor.conditions import (
     ALWAYS,
@@ -30,6 +29,7 @@ from advisor.conditions import (
 )
 from advisor.inference import Matcher, StepRules
 from advisor.inference.compiling import MOST_BRANCHES
+from tests.inference.made_up import DOMAINS, NUMBERS, TEXTS, a_condition, a_record, seeded
 
 SEEDS = st.integers(0, 2**32)
 

@@ -5,11 +5,11 @@ from collections.abc import Callable
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
-from whole_cases import ASKED
 
 from advisor.advice import Advice
 from advisor.answers import answer
 from advisor.case import Origin
+from tests.properties.whole_cases import ASKED
 
 Advise = Callable[..., Advice]
 FILLED = [name for name, fact in ASKED.items() if fact.filled is not None]

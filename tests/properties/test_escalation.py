@@ -4,13 +4,13 @@ from collections.abc import Mapping
 
 from hypothesis import given
 from hypothesis import strategies as st
-from test_one_case import nothing_is_shown
-from whole_cases import KNOWLEDGE, MANY, ends, whole_cases, with_more
 
 from advisor.advice import Advisor, State
 from advisor.case import Case
 from advisor.conditions import Value
 from advisor.shelf import Verdict
+from tests.properties.test_one_case import nothing_is_shown
+from tests.properties.whole_cases import KNOWLEDGE, MANY, ends, whole_cases, with_more
 
 # Each is what a person would answer; the figures are common practice, no source.
 WITHHELD: Mapping[str, Mapping[str, Value]] = {

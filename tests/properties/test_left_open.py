@@ -8,8 +8,6 @@ from itertools import pairwise
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
-from test_one_case import nothing_is_shown
-from whole_cases import ASKED, FEW, KNOWLEDGE, in_order, pool, whole_cases, with_values
 
 from advisor.advice import Advice, Advisor, Branch, State, TooOpen
 from advisor.answers import answer
@@ -17,6 +15,8 @@ from advisor.case import Answer, Case
 from advisor.conditions import Ticked, Value
 from advisor.knowledge import Fork, Knowledge
 from advisor.shelf import Verdict
+from tests.properties.test_one_case import nothing_is_shown
+from tests.properties.whole_cases import ASKED, FEW, KNOWLEDGE, in_order, pool, whole_cases, with_values
 
 Advise = Callable[..., Advice]
 STATES, VERDICTS = list(State), list(Verdict)

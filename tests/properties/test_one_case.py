@@ -6,7 +6,6 @@ from collections.abc import Callable, Sequence
 import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
-from whole_cases import ASKED, KNOWLEDGE, MANY, SLOW, ends, whole_cases
 
 from advisor.advice import Advice, Advisor, State
 from advisor.case import Case, Origin
@@ -15,6 +14,7 @@ from advisor.designations import DinCode, IsoCode, din_serves, iso_serves
 from advisor.knowledge import Asks, Sets
 from advisor.shelf import Judgement, Raise, Verdict, all_reads
 from advisor.specification import Demand, combine, mentions
+from tests.properties.whole_cases import ASKED, KNOWLEDGE, MANY, SLOW, ends, whole_cases
 
 DOMAINS = {name: prop.domain for name, prop in KNOWLEDGE.properties.items()}
 IN = {Verdict.FITS, Verdict.SECOND_BEST, Verdict.STILL_IN}

@@ -4,12 +4,12 @@ from collections.abc import Mapping, Sequence
 
 from hypothesis import given
 from hypothesis import strategies as st
-from whole_cases import ASKED, DONT_KNOW, KNOWLEDGE, MANY, ends, in_order, whole_cases, with_values
 
 from advisor.advice import Advice, Advisor
 from advisor.case import Case
 from advisor.conditions import Bound, Value, leaves
 from advisor.shelf import Verdict, places
+from tests.properties.whole_cases import ASKED, DONT_KNOW, KNOWLEDGE, MANY, ends, in_order, whole_cases, with_values
 
 PAIR, CHANGE_OVER = KNOWLEDGE.properties["pair"].domain.code, KNOWLEDGE.properties["change_over"].domain.code
 GREASES = [each.item for each in KNOWLEDGE.shelf if each.values.get("form") == "grease"]
