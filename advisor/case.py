@@ -3,6 +3,7 @@
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 from enum import StrEnum
+from typing import NamedTuple
 
 from advisor.conditions import Value
 
@@ -26,6 +27,7 @@ class Answer:
     """One answer: its canonical value (None for don't know), and the text that was typed.
 
     Without a value it may still say something: the `alternatives` that are open, or the ends of a range (`span`).
+    `assumed`: the value is one of several that stand for a don't know.
     """
 
     value: Value | None
@@ -33,6 +35,16 @@ class Answer:
     estimate: bool = False
     alternatives: tuple[Value, ...] = ()
     span: tuple[float, float] | None = None
+    assumed: bool = False
+
+    @property
+    def left_open(self) -> bool:
+        """Whether it says between what the value lies."""
+        return self.span is not None or bool(self.alternatives)
+
+    def says(self, other: "Answer") -> bool:
+        """Whether it says the same as another, whichever way it was typed."""
+        return (self.value, self.alternatives, self.span) == (other.value, other.alternatives, other.span)
 
     @property
     def known(self) -> bool:
@@ -57,8 +69,7 @@ class Case:
         return Case(self.point_kind, self.title, {key: each for key, each in self.answers.items() if key != name})
 
 
-@dataclass(frozen=True, slots=True)
-class Fact:
+class Fact(NamedTuple):
     """A fact of the case: a value with its origin; `note` says why a fact is void or what stood for it."""
 
     name: str

@@ -1,7 +1,7 @@
 """Formulas and look-ups bound to facts: what they give, what they wait for, and why they are void."""
 
 from collections.abc import Callable, Iterable, Mapping
-from dataclasses import dataclass
+from typing import NamedTuple
 
 from advisor.case import Fact, Origin
 from advisor.conditions import Value
@@ -11,8 +11,7 @@ from advisor.knowledge import Band, Computation, Formed, LookedUp, Row, Table
 Get = Callable[[str], Value | None]
 
 
-@dataclass(frozen=True, slots=True)
-class Outcome:
+class Outcome(NamedTuple):
     """A value; or, without one, the names it waits for; or, without these, the reason why it is void."""
 
     value: Value | None = None

@@ -118,7 +118,7 @@ class Designer:
         for row in self.rows("din", "upper"):
             upper, test, rating = self._din_row(row)
             if upper >= need and self._water_serves(test, rating, water):
-                lower = _cell(self._warmest("din", cold), "lower_c", -math.inf)
+                lower = self._lower("din", self._warmest("din", cold))
                 return DinCode(letters, "", nlgi, row.id, upper, test, rating, lower)
         raise NoCode(f"no letter reaches {need:g} °C")
 
@@ -155,7 +155,7 @@ class Designer:
         if water.value is None:
             raise NoCode(f"{water.name} has no value")
         lower = self._warmest("iso", cold)
-        upper = next((row for row in self.rows("iso", "upper") if _cell(row, "upper_c", math.inf) >= need), None)
+        upper = next((row for row in self.rows("iso", "upper") if self._upper(row) >= need), None)
         if upper is None:
             raise NoCode(f"no symbol reaches {need:g} °C")
         load = self.iso["load"]
@@ -170,24 +170,30 @@ class Designer:
         return holds(condition(node, Scope(Problems(), names)), record) is True
 
     def _iso(self, lower: str, upper: str, water: str, load: str, nlgi: str) -> IsoCode:
-        grid = self._row("iso", "water_grid", water)
+        grid, names = self._row("iso", "water_grid", water), self.iso["water_grid"]
         return IsoCode(
             lower,
             upper,
             water,
             load,
             nlgi,
-            _cell(self._row("iso", "lower", lower), "lower_c", -math.inf),
-            _cell(self._row("iso", "upper", upper), "upper_c", math.inf),
-            _cell(grid, "environment", 0.0),
-            _cell(grid, "rust", 0.0),
+            self._lower("iso", self._row("iso", "lower", lower)),
+            self._upper(self._row("iso", "upper", upper)),
+            _cell(grid, names["environment"], 0.0),
+            _cell(grid, names["rust"], 0.0),
         )
 
+    def _lower(self, standard: str, row: Row) -> float:
+        return _cell(row, (self.din if standard == "din" else self.iso)["lower"]["lower"], -math.inf)
+
+    def _upper(self, row: Row) -> float:
+        return _cell(row, self.iso["upper"]["upper"], math.inf)
+
     def _warmest(self, standard: str, cold: float) -> Row:
-        rows = [row for row in self.rows(standard, "lower") if _cell(row, "lower_c", -math.inf) <= cold]
+        rows = [row for row in self.rows(standard, "lower") if self._lower(standard, row) <= cold]
         if not rows:
             raise NoCode(f"no symbol reaches down to {cold:g} °C")
-        return max(rows, key=lambda row: _cell(row, "lower_c", -math.inf))
+        return max(rows, key=lambda row: self._lower(standard, row))
 
     def rows(self, standard: str, part: str) -> tuple[Row, ...]:
         """The rows of one table that a standard uses."""
@@ -231,7 +237,7 @@ class Designer:
             raise NoCode(f"'{text}' is no DIN 51825 code; an example is KP2K-30")
         additives, oil, nlgi, letter, lower = found.groups()
         upper, test, rating = self._din_row(self._row("din", "upper", letter))
-        if float(lower) not in {_cell(row, "lower_c", 0.0) for row in self.rows("din", "lower")}:
+        if float(lower) not in {self._lower("din", row) for row in self.rows("din", "lower")}:
             raise NoCode(f"{lower} is no lower temperature of DIN 51825")
         return DinCode(additives, oil or "", nlgi, letter, upper, test, rating, float(lower))
 

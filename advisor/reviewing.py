@@ -129,7 +129,7 @@ def mutate(
     if not found:
         raise Refusal("There is no scenario here, so nothing would notice a change. Name a file or a folder with some.")
     root = knowledge or knowledge_folder()
-    kinds = [kind for kind in replaying.kinds_of(found) if kind in kinds_in(root)] or kinds_in(root)[:1]
+    kinds = _kinds(found, root)
     for kind in kinds:
         known = loaded(root, shelf, kind).rules
         unknown = [rule for rule in rules if rule not in known]
@@ -146,6 +146,14 @@ def mutate(
     return NOT_SETTLED if any(len(each.survivors) > each.equivalent for each in measured) else DONE
 
 
+def _kinds(files: list[Path], root: Path) -> list[str]:
+    """The kinds of point that both files and knowledge know; of knowledge with one kind no file need be asked."""
+    from advisor import replay as replaying
+
+    known = kinds_in(root)
+    return ([kind for kind in replaying.kinds_of(files) if kind in known] if len(known) > 1 else known) or known[:1]
+
+
 def compare(old: str, new: str, scenarios: Path | None, kind: str, as_json: bool, markdown: bool) -> int:
     """Tell what changes between two editions of the knowledge; 1 where a scenario or a region does."""
     from advisor import comparison
@@ -153,10 +161,7 @@ def compare(old: str, new: str, scenarios: Path | None, kind: str, as_json: bool
 
     with comparison.edition(old) as before, comparison.edition(new) as after:
         editions = _edition(before, kind, old), _edition(after, kind, new)
-        files = replaying.find([scenarios] if scenarios else [])
-        if replaying.kinds_of(files) != [kind]:
-            files = [each for each in files if replaying.kinds_of([each]) == [kind]]
-        compared = comparison.compare(*editions, files)
+        compared = comparison.compare(*editions, replaying.find([scenarios] if scenarios else []))
     for problem in compared.problems:
         print(problem, file=sys.stderr)  # noqa: T201 - words beside the output
     write = comparison.as_markdown if markdown else comparison.as_text

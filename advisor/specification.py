@@ -2,8 +2,9 @@
 
 import builtins
 from collections.abc import Iterable, Mapping
-from dataclasses import dataclass, field, replace
+from dataclasses import dataclass, field
 from itertools import combinations, pairwise
+from typing import NamedTuple
 
 from advisor.conditions import (
     ALWAYS,
@@ -26,8 +27,7 @@ STRONG = 2
 """Shoulds up to this level are strong: missing one makes a product second best."""
 
 
-@dataclass(frozen=True, slots=True)
-class Demand:
+class Demand(NamedTuple):
     """A condition on one property of the lubricant, put by a rule.
 
     `level` 0 is a must, 1 (strong) to 4 (taste) a should; `for_` says for which lubricants.
@@ -117,7 +117,7 @@ def combine(demands: Iterable[Demand], domains: Mapping[str, Domain]) -> Specifi
         if not now_plain:
             break
         conditional = [demand for demand in conditional if demand not in now_plain]
-        plain += [replace(demand, for_=ALWAYS) for demand in now_plain]
+        plain += [demand._replace(for_=ALWAYS) for demand in now_plain]
         left.narrow(now_plain)
     dropped = tuple(demand for demand in conditional if left.meets(demand.for_) is False)
     kept = tuple(demand for demand in conditional if demand not in dropped)

@@ -30,16 +30,16 @@ LEVELS = [
     {"cli"},
     {"__main__"},
 ]
-SOLE_USERS = {
-    "yaml": "documents",
-    "pydantic": "knowledge",
-    "pydantic_core": "knowledge",
-    "durable_rules_engine": "inference",
-    "durable": "inference",
-    "jinja2": "explanation",
-    "textual": "screens",
-    "rich": "screens",
-    "click": "cli",
+USERS = {
+    "yaml": {"documents"},
+    "pydantic": {"knowledge"},
+    "pydantic_core": {"knowledge", "explanation"},  # shapes; writing JSON
+    "durable_rules_engine": {"inference"},
+    "durable": {"inference"},
+    "jinja2": {"explanation"},
+    "textual": {"screens"},
+    "rich": {"screens"},
+    "click": {"cli"},
 }
 
 
@@ -77,10 +77,10 @@ def test_a_room_imports_only_lower_rooms(path: Path) -> None:
 
 
 @pytest.mark.parametrize("path", FILES, ids=lambda path: str(path.relative_to(PACKAGE)))
-def test_each_library_has_one_user(path: Path) -> None:
+def test_each_library_has_its_users(path: Path) -> None:
     for name in imports_of(path):
-        owner = SOLE_USERS.get(name.split(".")[0])
-        assert owner is None or owner == room_of(path), f"{room_of(path)} uses {name}, which belongs to {owner}"
+        owners = USERS.get(name.split(".")[0])
+        assert owners is None or room_of(path) in owners, f"{room_of(path)} uses {name}, which belongs to {owners}"
 
 
 def loaded_by(statement: str) -> set[str]:

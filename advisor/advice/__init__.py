@@ -1,7 +1,8 @@
 """From a case to advice: `Advisor(knowledge).advise(case)`."""
 
 from advisor.advice.advising import Advisor
-from advisor.advice.branching import TooOpen
+from advisor.advice.branching import TooOpen, is_open
+from advisor.advice.merging import KAPPA
 from advisor.advice.model import (
     FORMAT,
     Advice,
@@ -9,29 +10,43 @@ from advisor.advice.model import (
     Branch,
     Candidate,
     CautionGiven,
+    Course,
     Line,
     OpenQuestion,
+    Part,
     Ranked,
+    Reading,
     Referral,
+    Span,
+    Spread,
     State,
     StepTrace,
 )
+from advisor.advice.ranges import said_at
 from advisor.advice.waiting import falls_on
 
 __all__ = [
     "FORMAT",
+    "KAPPA",
     "Advice",
     "Advisor",
     "AtLimit",
     "Branch",
     "Candidate",
     "CautionGiven",
+    "Course",
     "Line",
     "OpenQuestion",
+    "Part",
     "Ranked",
+    "Reading",
     "Referral",
+    "Span",
+    "Spread",
     "State",
     "StepTrace",
     "TooOpen",
     "falls_on",
+    "is_open",
+    "said_at",
 ]

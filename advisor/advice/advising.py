@@ -13,7 +13,7 @@ from advisor.conditions import holds
 from advisor.designations import CodesFound, Designer
 from advisor.inference import StepRules
 from advisor.knowledge import CLOSING_FACTS, Knowledge, Sets
-from advisor.shelf import Catalogue, Item, Judgement, choices, products, usual_oils
+from advisor.shelf import Catalogue, Item, Judgement, choices, facts_read, products, usual_oils
 from advisor.specification import Conflict, Specification, combine, mentions
 
 _WITHHELD = "withheld: see the referral"
@@ -33,6 +33,9 @@ class Advisor:
             for step in knowledge.steps
         }
         self.setters = setters_of(knowledge)
+        self.read_by = {
+            name: read for name, prop in knowledge.properties.items() if (read := facts_read(prop, knowledge))
+        }
         self.oils = usual_oils(knowledge)
         self.designer = Designer(knowledge)
         self.always_needed = frozenset(
@@ -68,11 +71,24 @@ class Advisor:
         """
 
         def run_once(case: Case) -> Advice:
-            run = Run(self.knowledge, self.rules, self.setters, case, assume_gaps=assume_gaps)
-            return self._complete(run, self.shelf(only)) if run.steps() else self._withheld(run)
+            return self.advice_of(self.run(case, assume_gaps=assume_gaps), only)
 
-        found = advise_over(case, self.knowledge, run_once) if is_open(case, self.knowledge) else run_once(case)
-        return replace(found, assume_gaps=assume_gaps, only=only) if assume_gaps or only is not None else found
+        if is_open(case, self.knowledge, assume_gaps=assume_gaps):
+            return advise_over(case, self.knowledge, run_once, assume_gaps=assume_gaps)
+        return run_once(case)
+
+    def run(self, case: Case, *, assume_gaps: bool = False) -> Run:
+        """A case on settled answers, led through all steps but the closing one."""
+        run = Run(self.knowledge, self.rules, self.setters, case, assume_gaps=assume_gaps)
+        run.steps()
+        return run
+
+    def advice_of(self, run: Run, only: frozenset[str] | None = None) -> Advice:
+        """The advice that a run comes to."""
+        found = self._withheld(run) if run.withheld else self._complete(run, self.shelf(only))
+        if not run.assume_gaps and only is None:
+            return found
+        return replace(found, assume_gaps=run.assume_gaps, only=only)
 
     def _withheld(self, run: Run) -> Advice:
         """A referral that hides products and grades: nothing is specified, nothing is judged."""
@@ -112,8 +128,9 @@ class Advisor:
         domains = {name: prop.domain for name, prop in self.knowledge.properties.items()}
         specification = combine(run.demands(), domains)
         raises = run.raises()
-        run.note_waiting()
-        needed = run.needed(self.always_needed, specification, raises)
+        run.note_waiting(self.read_by)
+        of_cautions = (name for _, warns in run.drawn.warns for name in mentions(warns.for_))
+        needed = catalogue.looked_at(specification.demands, raises, (*self.always_needed, *of_cautions))
         incumbent = str(facts["incumbent"].value) if "incumbent" in facts else ""
         found = self.recommender(incumbent).recommend(specification, facts, raises, run.waiting, needed)
         columns = catalogue.for_case(facts, raises, needed=needed)
@@ -121,7 +138,7 @@ class Advisor:
         shelf = _ranked(judgement, is_open=False)
         closing = closing_record(run, found, shelf)
         run.fire(CLOSING, (), closing)
-        questions = run.open_questions()
+        questions = run.open_questions(self.read_by)
         is_open = any(each.decides == "lubricant" for each in questions)
         if is_open:
             shelf = _ranked(judgement, is_open=True)

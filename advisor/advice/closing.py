@@ -41,12 +41,12 @@ def cautions(run: Run, recommendation: Recommendation | None, judgement: Judgeme
     concerned: dict[str, list[str]] = {}
     general: set[str] = set()
     for instance, each in run.drawn.warns:
-        for_, waits, void = with_limits(each.for_, run.facts.record)
-        if for_ == ALWAYS:
+        if each.for_ == ALWAYS:
             general.add(each.caution)
-        elif waits or void or not (concerns := _concerned(for_, recommendation, judgement)):
-            continue
         else:
+            for_, waits, void = with_limits(each.for_, run.facts.record)
+            if waits or void or not (concerns := _concerned(for_, recommendation, judgement)):
+                continue
             concerned.setdefault(each.caution, []).extend(concerns)
         rules.setdefault(each.caution, []).append(instance.id)
     return tuple(

@@ -8,6 +8,8 @@ from advisor.conditions import VOID, Coded, FactRef, Value, holds, waits_for
 from advisor.conditions.terms import Void
 from advisor.knowledge import Computation, Declaration, FromItem, Knowledge, LookedUp
 
+_NOTHING: frozenset[str] = frozenset()
+
 
 class Facts:
     """Facts by name.
@@ -40,7 +42,7 @@ class Facts:
 
     def questions_behind(self, names: Iterable[str]) -> frozenset[str]:
         """The questions whose answers these facts wait for."""
-        return frozenset().union(*(self.basis.get(name, frozenset()) for name in names))
+        return _NOTHING.union(*(self.basis[name] for name in names if name in self.basis))
 
     def _ask(self, declaration: Declaration, case: Case, *, assume_gaps: bool) -> None:
         assert declaration.question is not None  # noqa: S101 - asked facts only
@@ -56,6 +58,10 @@ class Facts:
                 Fact(name, None, Origin.UNANSWERED),
                 self.questions_behind(waits_for(declaration.question.when, self.record)),
             )
+        elif answer is not None and answer.left_open:
+            self.put(Fact(name, None, Origin.UNANSWERED), (name,))
+        elif answer is not None and answer.assumed and declaration.assume is not None:
+            self.put(Fact(name, answer.value, Origin.ASSUMED, declaration.assume.because))
         elif answer is not None and answer.value is not None:
             self._note_overridden(declaration, answer.value)
             self.put(Fact(name, answer.value, Origin.ANSWERED, "an estimate" if answer.estimate else ""))

@@ -1,7 +1,7 @@
 """The advice: one immutable object that the sheet, the command line, reports and replay only read."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from enum import StrEnum
 from typing import NamedTuple
 
@@ -104,19 +104,77 @@ class AtLimit:
     rule: str
 
 
+Reading = tuple[Value, ...] | str | bool | None
+"""What one thing reads at one value: the classes of a row (None: it does not apply), a verdict, whether it is given."""
+
+
+class Part(NamedTuple):
+    """The first and the last value looked at of a stretch of a range over which one thing reads the same."""
+
+    low: float
+    high: float
+    reading: Reading
+
+
+@dataclass(frozen=True, slots=True)
+class Course:
+    """How one thing goes along a range: a row, a product, a code, a caution; `variant` says under what else is open."""
+
+    what: str
+    name: str
+    parts: tuple[Part, ...]
+    variant: str = ""
+
+
+@dataclass(frozen=True, slots=True)
+class Span:
+    """A range that was answered, and how closely it was looked at.
+
+    `surely`: the advice changes nowhere but where a course says so. Otherwise a change that is taken back between
+    two of the values looked at may be missed.
+    """
+
+    fact: str
+    low: float
+    high: float
+    looked_at: int
+    values: int
+    surely: bool
+
+
+class Spread(NamedTuple):
+    """The values that a fact takes where it is not the same throughout: a number lowest and highest, others one by one.
+
+    `lacking`: somewhere it has none.
+    """
+
+    values: tuple[Value, ...]
+    lacking: bool
+
+
 @dataclass(frozen=True, slots=True)
 class Branch:
-    """The advice for one value of what was left open, or for a stretch of a range (then also for its other end)."""
+    """The advice for one way to settle what was left open; for a stretch of a range it holds over the stretch.
+
+    `contested` are the forks of which it takes one side.
+    """
 
     label: str
     settings: Mapping[str, Value]
     advice: "Advice"
-    other_end: "Advice | None" = None
+    stretch: tuple[float, float] | None = None
+    contested: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)
 class Advice:
-    """Everything concluded about one case, and how."""
+    """Everything concluded about one case, and how.
+
+    Where something was left open it is put together from `runs`, each on settled answers and with its label: rows,
+    verdicts, cautions and state hold for all of them, `spread` tells the figures that differ, and the rest (facts,
+    trace, specification, judgement) is that of the run `told_for`. `branches` are the variants, `courses` what changes
+    along a range.
+    """
 
     case: Case
     knowledge: Knowledge
@@ -147,8 +205,18 @@ class Advice:
     overridden: Mapping[str, Value]
     branches: tuple[Branch, ...] = ()
     held_over: str = ""
+    told_for: str = ""
+    runs: "tuple[tuple[str, Advice], ...]" = ()
+    spread: Mapping[str, Spread] = field(default_factory=dict)
+    courses: tuple[Course, ...] = ()
+    span: Span | None = None
     assume_gaps: bool = False
     only: frozenset[str] | None = None
+
+    @property
+    def single(self) -> "tuple[Advice, ...]":
+        """The advices on settled answers behind this one; without anything left open the advice itself."""
+        return tuple(run for _, run in self.runs) or (self,)
 
     @property
     def fits(self) -> bool:

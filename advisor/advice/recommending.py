@@ -35,7 +35,6 @@ class Recommender:
     def __init__(self, knowledge: Knowledge, oils: Catalogue, choices: Catalogue, incumbent: int | None) -> None:
         self.knowledge, self.oils, self.choices, self.incumbent = knowledge, oils, choices, incumbent
         self.domains = {name: prop.domain for name, prop in knowledge.properties.items()}
-        self.needed: frozenset[str] = frozenset()
         self.of_row: dict[str, list[int]] = {}
         for place, item in enumerate(choices.items):
             self.of_row.setdefault(item.code.partition("=")[0], []).append(place)
@@ -51,20 +50,20 @@ class Recommender:
         """The recommended class of every row."""
         found = Recommendation()
         demands = specification.class_demands
-        self.needed = needed
         own = self.incumbent is not None
         about_form = [demand for demand in demands if own or demand.property == "form"]
-        first = self._judged(self.choices, about_form, facts, raises, {})
+        seen = needed if own else needed & self.choices.looked_at(about_form, raises)
+        first = self._judged(self.choices, about_form, facts, raises, {}, seen)
         form_row = next((row for row in self.knowledge.docket if row.recommends == "form"), None)
         if form_row is not None:
             line = self._choice_line(form_row, first, found, waiting)
             found.form = str(line.values[0]) if len(line.values) == 1 else ""
         context: dict[str, Value] = {"form": found.form} if found.form else {}
-        found.oils = self._judged(self.oils, demands, facts, raises, context)
+        found.oils = self._judged(self.oils, demands, facts, raises, context, needed)
         self._oil_rows(found, first, waiting)
         if found.kappa is not None:
             context["kappa"] = found.kappa
-        found.choices = self._judged(self.choices, demands, facts, raises, context)
+        found.choices = self._judged(self.choices, demands, facts, raises, context, needed)
         for row in self.knowledge.docket:
             if row.section == "docket" and row.recommends and row.id not in found.lines:
                 self._choice_row(row, found, waiting)
@@ -78,8 +77,9 @@ class Recommender:
         facts: Mapping[str, Fact],
         raises: Sequence[Raise],
         context: Mapping[str, Value],
+        needed: frozenset[str],
     ) -> Judgement:
-        columns = catalogue.for_case(facts, raises, needed=self.needed, lenient=True, context=context)
+        columns = catalogue.for_case(facts, raises, needed=needed, lenient=True, context=context)
         return Judgement(catalogue, columns, demands, self.domains, missing_counts=False)
 
     def _fewest(self, judgement: Judgement, among: int) -> tuple[list[int], dict[int, Steps]]:

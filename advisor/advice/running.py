@@ -1,6 +1,7 @@
 """One case on its way through the steps: facts, fired rules, what they concluded, and what is still waited for."""
 
 from collections.abc import Mapping, Sequence
+from copy import copy
 from dataclasses import dataclass, field
 
 from advisor.advice.facts import Facts, disagreeing
@@ -10,8 +11,8 @@ from advisor.case import Case, Origin
 from advisor.conditions import Coded, FactRef, Record
 from advisor.inference import StepRules
 from advisor.knowledge import Asks, Instance, Knowledge, Refers, Sets, Warns
-from advisor.shelf import Raise, all_reads, reads
-from advisor.specification import Conflict, Demand, Specification, mentions, with_limits
+from advisor.shelf import Raise
+from advisor.specification import Conflict, Demand, with_limits
 
 CLOSING = "closing"
 RESULT_OF = {"maker_verdict": "maker_item", "incumbent_verdict": "incumbent"}
@@ -42,6 +43,7 @@ class Run:
         assume_gaps: bool,
     ) -> None:
         self.knowledge, self.rules, self.setters, self.case = knowledge, rules, setters, case
+        self.assume_gaps = assume_gaps
         self.facts = Facts(case, knowledge, assume_gaps=assume_gaps)
         self.drawn = Drawn()
         self.trace: list[StepTrace] = []
@@ -54,9 +56,14 @@ class Run:
             if step.id == CLOSING:
                 continue
             self.step(step.id)
-            if any(referral.withhold for referral in self.drawn.refers):
+            if self.withheld:
                 return False
         return True
+
+    @property
+    def withheld(self) -> bool:
+        """Whether a referral hides products and grades, which ends the case."""
+        return any(referral.withhold for referral in self.drawn.refers)
 
     def step(self, step: str) -> None:
         """Compute the facts of a step, then fire its rules, then combine what they concluded."""
@@ -76,17 +83,31 @@ class Run:
             )
             self.facts.conclude(self.knowledge.facts[name], self.drawn.sets.get(name, []), undecided)
 
+    def again(self, knowledge: Knowledge, rules: Mapping[str, StepRules]) -> "Run":
+        """The run by other rules where they conclude the same facts and withhold the same: nothing is computed anew."""
+        twin = copy(self)
+        twin.knowledge, twin.rules = knowledge, rules
+        twin.drawn, twin.trace, twin.undecided, twin.waiting = Drawn(), [], [], Waiting(knowledge.facts)
+        for each in self.trace:
+            if each.step != CLOSING:
+                same = rules[each.step] is self.rules[each.step]
+                outcomes = each.outcomes if same else rules[each.step].judge(self.facts.record)
+                twin.draw(each.step, each.computed, outcomes, self.facts.record)
+        return twin
+
     def fire(self, step: str, computed: tuple[str, ...], record: Record) -> None:
         """Judge the rules of a step on what is known; draw the conclusions of those that fire."""
+        self.draw(step, computed, self.rules[step].judge(record), record)
+
+    def draw(self, step: str, computed: tuple[str, ...], outcomes: tuple[bool | None, ...], record: Record) -> None:
+        """Draw the conclusions of the rules of a step that were judged so."""
         instances = self.knowledge.instances.get(step, ())
-        rules = self.rules[step]
-        outcomes = rules.judge(record)
         self.trace.append(StepTrace(step, computed, instances, outcomes))
         for place, (instance, outcome) in enumerate(zip(instances, outcomes, strict=True)):
             if outcome is False or not instance.binds:
                 continue
             if outcome is None:
-                waits = {RESULT_OF.get(name, name) for name in rules.waits(place, record)}
+                waits = {RESULT_OF.get(name, name) for name in self.rules[step].waits(place, record)}
                 self.undecided.append((instance, self.facts.questions_behind(waits)))
             else:
                 self._draw(instance)
@@ -130,20 +151,8 @@ class Run:
                 found.append(Raise(each.name, value, for_, instance.id))
         return found
 
-    def needed(self, always: frozenset[str], specification: Specification, raises: Sequence[Raise]) -> frozenset[str]:
-        """The properties that something in this case looks at."""
-        names = set(always)
-        for demand in specification.demands:
-            names.add(demand.property)
-            names |= mentions(demand.for_)
-        for each in raises:
-            names |= mentions(each.for_)
-        for _, warns in self.drawn.warns:
-            names |= mentions(warns.for_)
-        return all_reads(frozenset(names), self.knowledge.properties)
-
-    def note_waiting(self) -> None:
-        """Note which demands on which properties wait for which questions."""
+    def note_waiting(self, read_by: Mapping[str, frozenset[str]]) -> None:
+        """Note which demands on which properties wait for which questions; `read_by` are properties' facts."""
         if not self.facts.basis:
             return
         for instance, questions in self.undecided:
@@ -152,18 +161,12 @@ class Run:
                 each.name for each in instance.then if isinstance(each, Sets) and each.name in self.knowledge.properties
             }
             self.waiting.add(names, questions)
-        for name, prop in self.knowledge.properties.items():
-            needed = self._facts_read(name)
+        for name, needed in read_by.items():
             questions = self.facts.questions_behind(needed)
-            if questions and prop.how is not None:
+            if questions and self.knowledge.properties[name].how is not None:
                 self.waiting.add({name}, questions)
 
-    def _facts_read(self, name: str) -> set[str]:
-        prop = self.knowledge.properties[name]
-        direct = {each for each in reads(prop) if each not in self.knowledge.properties}
-        return direct | ({prop.same_item} if prop.same_item else set())
-
-    def open_questions(self) -> tuple[OpenQuestion, ...]:
+    def open_questions(self, read_by: Mapping[str, frozenset[str]]) -> tuple[OpenQuestion, ...]:
         """Questions without a value that rules, computations or product properties still wait for."""
         if not self.facts.basis:
             return ()
@@ -174,8 +177,8 @@ class Run:
         for computation in self.knowledge.computations.values():
             for name in self.facts.basis.get(computation.fact, ()):
                 waiting.setdefault(name, []).append(computation.fact)
-        for name in self.knowledge.properties:
-            for question in self.facts.questions_behind(self._facts_read(name)):
+        for name, needed in read_by.items():
+            for question in self.facts.questions_behind(needed):
                 waiting.setdefault(question, []).append(name)
         found = []
         for name, declaration in self.knowledge.facts.items():

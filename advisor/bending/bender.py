@@ -4,7 +4,6 @@ from collections.abc import Callable, Iterator
 from itertools import islice
 
 from advisor.advice import Advisor
-from advisor.advice.running import Run
 from advisor.bending.regions import domains_seen, unmet, wanted_on, where
 from advisor.boxes import Box
 from advisor.case import Answer, Case
@@ -14,6 +13,7 @@ from advisor.knowledge import CLOSING_FACTS, Declaration, Formed, FromItem, Know
 
 MOST_FIXES = 4
 WAYS_EACH = 6
+REMEMBERED = 2000
 _TRIES = 8
 _CLOSE = 1e-9
 _TRIED = (0.1, 0.5, 2.0, 10.0)
@@ -28,12 +28,19 @@ class Bender:
         self.domains = domains_seen(advisor.knowledge)
         self.left = 1000
         self._behind: dict[str, tuple[str, ...]] = {}
+        self._records: dict[object, Record] = {}
 
     def record(self, case: Case, *, assume_gaps: bool = False) -> Record:
-        """What the rules of the case would see; a closing step sees the result too, which is not worked out here."""
-        run = Run(self.knowledge, self.advisor.rules, self.advisor.setters, case, assume_gaps=assume_gaps)
-        run.steps()
-        return run.facts.record
+        """What the rules of the case would see; a closing step sees the result too, which is not worked out here.
+
+        The last ones are remembered: on its way into a box a case comes by the same answers many times.
+        """
+        key = assume_gaps, answers_of(case)
+        if key not in self._records:
+            if len(self._records) >= REMEMBERED:
+                self._records.clear()
+            self._records[key] = self.advisor.run(case, assume_gaps=assume_gaps).facts.record
+        return self._records[key]
 
     def behind(self, fact: str) -> tuple[str, ...]:
         """The questions on whose answers a fact rests, the nearest first."""
@@ -209,6 +216,11 @@ def _deciding(fact: str, knowledge: Knowledge) -> Iterator[str]:
         for instance in instances:
             if any(isinstance(each, Sets) and each.name == fact for each in instance.then):
                 yield from names(instance.when)
+
+
+def answers_of(case: Case) -> object:
+    """What tells two cases apart."""
+    return tuple(case.answers.items())
 
 
 def answered(case: Case, question: str, value: Value, knowledge: Knowledge) -> Case:

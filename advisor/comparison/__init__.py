@@ -3,6 +3,7 @@
 from collections.abc import Iterable
 from pathlib import Path
 
+from advisor.answers import point_kind_of
 from advisor.comparison.changing import Changed, Editions, changes
 from advisor.comparison.editions import edition
 from advisor.comparison.edits import Edit, edits
@@ -32,12 +33,13 @@ __all__ = [
 
 
 def compare(old: Knowledge, new: Knowledge, files: Iterable[Path]) -> Comparison:
-    """Compare two editions over these scenarios, and over everything that the edited rules can see."""
+    """Compare two editions over the scenarios about their kind of point, and over all that the edited rules can see."""
     paths = list(files)
     editions = Editions(old, new, edits(old, new))
     problems = Problems()
     if not editions.edits:
-        return Comparison(old, new, (), len(paths), (), (), ())
+        replayed = sum(point_kind_of(path) == new.point_kind.id for path in paths)
+        return Comparison(old, new, (), replayed, (), (), ())
     changed, cases = changes(paths, editions, problems)
     found = regions(editions, cases)
     return Comparison(old, new, editions.edits, len(cases), tuple(changed), tuple(found), tuple(problems))

@@ -5,21 +5,16 @@ from dataclasses import dataclass, field
 from functools import cached_property
 from pathlib import Path
 
-from advisor.advice import Advisor, TooOpen
+from advisor.advice import Advisor
 from advisor.advice.advising import setters_of
-from advisor.advice.branching import is_open
-from advisor.advice.running import CLOSING
-from advisor.answers import Saved, read_case
-from advisor.bending import Bender
-from advisor.comparison.edits import RULE, Edit, carried, sense, with_edits
-from advisor.comparison.meaning import Meaning, Sense, differing, sense_of, worst
-from advisor.conditions import Record, holds
+from advisor.answers import Saved, point_kind_of, read_case
+from advisor.bending import answers_of
+from advisor.comparison.edits import RULE, Edit, carried, with_edits
+from advisor.comparison.meaning import Meaning, Sense, Words, differing, worst
+from advisor.comparison.replays import Pair, RuleEdits, Said, say
 from advisor.documents import Problems
-from advisor.knowledge import Instance, Knowledge
-from advisor.mutation import otherwise, plain, records
-
-Said = Sense | str
-"""What an advice says; or why there is none."""
+from advisor.knowledge import Knowledge
+from advisor.mutation import by_rules, plain
 
 
 @dataclass(frozen=True, slots=True)
@@ -49,7 +44,8 @@ class Editions:
             whole = len(key) == len(self.edits)
             try:
                 mixed = self.new if whole else with_edits(self.old, self.new, key)
-                self.advisors[key] = plain(Advisor(mixed))
+                base = self.advisors.get(frozenset()) if self.only_rules else None
+                self.advisors[key] = by_rules(base, mixed) if base is not None else plain(Advisor(mixed))
             except (LookupError, TypeError, ValueError):
                 # An edit that names what another one declares cannot be made alone.
                 self.advisors[key] = None
@@ -73,85 +69,95 @@ def _in_order(old: Knowledge, new: Knowledge, step: str) -> bool:
 
 
 def changes(files: Iterable[Path], editions: Editions, problems: Problems) -> tuple[list[Changed], list[Saved]]:
-    """The scenarios that change, and the cases that were replayed."""
+    """The scenarios that change, and the cases that were replayed; those about another kind of point are left out."""
     found: list[Changed] = []
     cases: list[Saved] = []
+    both = _Both(editions)
     for path in files:
-        old = read_case(path, editions.old, Problems())
-        # Where only rules were edited, a case reads the same by either edition.
-        new = old if editions.only_rules else read_case(path, editions.new, Problems())
+        old, new = both.read(path)
         if old is None and new is None:
-            read_case(path, editions.new, problems)
+            if point_kind_of(path) == editions.new.point_kind.id:
+                read_case(path, editions.new, problems)
             continue
         cases += [case for case in (new or old,) if case is not None]
-        changed = _changed(path, old, new, editions)
+        changed = _changed(path, old, new, both)
         if changed is not None:
             found.append(changed)
     return found, cases
 
 
-def _changed(path: Path, old: Saved | None, new: Saved | None, editions: Editions) -> Changed | None:
+Found = tuple[Meaning, Mapping[tuple[str, ...], tuple[str, str]], tuple[Edit, ...]]
+"""What a change means, what differs, and what causes it."""
+
+
+class _Both:
+    """The scenarios by both editions."""
+
+    def __init__(self, editions: Editions) -> None:
+        self.editions = editions
+        self.words = Words(editions.old), Words(editions.new)
+        self.known: dict[object, Found | None] = {}
+        self._read: tuple[dict[Path, Saved], dict[Path, Saved]] = {}, {}
+        old, new = editions.advisor(()), editions.advisor(editions.edits)
+        touched = [pair for edit in editions.edits for pair in pairs(editions.old, editions.new, edit)]
+        self._rules = (
+            RuleEdits(old, new, touched) if editions.only_rules and old is not None and new is not None else None
+        )
+
+    def read(self, path: Path) -> tuple[Saved | None, Saved | None]:
+        """The case as either edition reads it; where only rules were edited, that is the same."""
+        old = read_case(path, self.editions.old, Problems(), self._read[0])
+        same = self.editions.only_rules
+        return old, old if same else read_case(path, self.editions.new, Problems(), self._read[1])
+
+    def said(self, old: Saved, new: Saved) -> tuple[Said, Said] | None:
+        """What both editions say; nothing where no edit concerns the case."""
+        if self._rules is not None:
+            return self._rules.said(old)
+        before, after = self.editions.advisor(()), self.editions.advisor(self.editions.edits)
+        return say(old, before, self.words[0]), say(new, after, self.words[1])
+
+
+def _changed(path: Path, old: Saved | None, new: Saved | None, both: _Both) -> Changed | None:
     if old is None or new is None:
         gone = ("cannot be read", "") if old is None else ("", "cannot be read")
-        return Changed(path.stem, path, Meaning.SAFETY, {("case",): gone}, editions.edits)
-    touching = _touching(old, editions)
-    if not touching:
+        return Changed(path.stem, path, Meaning.SAFETY, {("case",): gone}, both.editions.edits)
+    key = _key(old), _key(new)
+    if key not in both.known:
+        both.known[key] = _found(old, new, both)
+    found = both.known[key]
+    return Changed(path.stem, path, *found) if found is not None else None
+
+
+def _key(saved: Saved) -> object:
+    """What the advice on a scenario depends on; several scenarios may ask about one case."""
+    return saved.assume_gaps, saved.only, answers_of(saved.case)
+
+
+def _found(old: Saved, new: Saved, both: _Both) -> Found | None:
+    # One rule that does otherwise may change the facts that later rules see: no edit is left out beforehand.
+    edits = both.editions.edits
+    said = both.said(old, new)
+    if said is None:
         return None
-    before = _said(old, editions.advisor(()))
-    after = _said(new, editions.advisor(editions.edits))
+    before, after = said
     if isinstance(before, str) or isinstance(after, str):
         if before == after:
             return None
         pair = tuple(each if isinstance(each, str) else "advice" for each in (before, after))
-        return Changed(path.stem, path, Meaning.SAFETY, {("advice",): (pair[0], pair[1])}, tuple(touching))
+        return Meaning.SAFETY, {("advice",): (pair[0], pair[1])}, edits
     meaning = worst(before, after)
     if meaning is Meaning.SAME:
         return None
-    causes = _causes(old, new, after, meaning, touching, editions)
-    return Changed(path.stem, path, meaning, differing(before, after, meaning), causes)
+    return meaning, differing(before, after, meaning), _causes(old, new, after, meaning, both)
 
 
-def _said(saved: Saved, advisor: Advisor | None) -> Said:
-    if advisor is None:
-        return "no advice"
-    try:
-        return sense_of(advisor.advise(saved.case, assume_gaps=saved.assume_gaps, only=saved.only))
-    except TooOpen as fault:
-        return str(fault)
-
-
-def _touching(saved: Saved, editions: Editions) -> list[Edit]:
-    """The edits that may concern a scenario: rules that see it otherwise or say other words on it, all other edits."""
-    advisor = editions.advisor(())
-    if not editions.only_rules or advisor is None:
-        return list(editions.edits)
-    touched = [each for edit in editions.edits for each in pairs(editions.old, editions.new, edit)]
-    if is_open(saved.case, editions.old) or any(step == CLOSING for step, _, _ in touched):
-        try:
-            advice = advisor.advise(saved.case, assume_gaps=saved.assume_gaps, only=saved.only)
-        except TooOpen:
-            return list(editions.edits)
-        concerned = any(_concerns(was, now, seen) for step, was, now in touched for seen in records(advice, step))
-    else:
-        record = Bender(advisor).record(saved.case, assume_gaps=saved.assume_gaps)
-        concerned = any(_concerns(was, now, record) for _, was, now in touched)
-    # One rule that does otherwise may change the facts that later rules see, so then no edit is left out.
-    return list(editions.edits) if concerned else []
-
-
-def _concerns(was: Instance | None, now: Instance | None, record: Record) -> bool:
-    """Whether an instance does otherwise on a record, or says the same in other words."""
-    if otherwise(was, now, record):
-        return True
-    return was is not None and now is not None and holds(now.when, record) is True and sense(was) != sense(now)
-
-
-def pairs(old: Knowledge, new: Knowledge, edit: Edit) -> list[tuple[str, Instance | None, Instance | None]]:
+def pairs(old: Knowledge, new: Knowledge, edit: Edit) -> list[Pair]:
     """The instances that an edit touches, old beside new, by step."""
     rules = set(carried(old, new, edit))
     before = {each.id: (step, each) for step, found in old.instances.items() for each in found if each.rule.id in rules}
     after = {each.id: (step, each) for step, found in new.instances.items() for each in found if each.rule.id in rules}
-    result: list[tuple[str, Instance | None, Instance | None]] = []
+    result: list[Pair] = []
     for name in (*before, *(each for each in after if each not in before)):
         was, now = before.get(name), after.get(name)
         if was and now and was[0] != now[0]:
@@ -161,10 +167,9 @@ def pairs(old: Knowledge, new: Knowledge, edit: Edit) -> list[tuple[str, Instanc
     return result
 
 
-def _causes(
-    old: Saved, new: Saved, after: Sense, meaning: Meaning, touching: list[Edit], editions: Editions
-) -> tuple[Edit, ...]:
+def _causes(old: Saved, new: Saved, after: Sense, meaning: Meaning, both: _Both) -> tuple[Edit, ...]:
     """The smallest set of edits (none of which can be left out) that has the effect of all."""
+    editions = both.editions
     if len(editions.edits) == 1:
         return editions.edits
 
@@ -172,15 +177,15 @@ def _causes(
         advisor = editions.advisor(chosen)
         saved = new if advisor is not None and advisor.knowledge is editions.new else old
         try:
-            said = _said(saved, advisor)
+            said = say(saved, advisor, both.words[0])
         except (LookupError, TypeError, ValueError):
             return False
         return not isinstance(said, str) and said[meaning] == after[meaning]
 
-    for edit in touching:
+    for edit in editions.edits:
         if enough([edit]):
             return (edit,)
-    left = list(touching) if enough(touching) else list(editions.edits)
+    left = list(editions.edits)
     for edit in list(left):
         rest = [each for each in left if each != edit]
         if enough(rest):

@@ -2,6 +2,7 @@
 
 from collections.abc import Callable, Iterable, Iterator, Mapping
 from dataclasses import dataclass, fields, is_dataclass, replace
+from functools import cache
 
 from advisor.documents import Mark
 from advisor.knowledge import Instance, Knowledge
@@ -41,15 +42,24 @@ class Edit:
 
 def sense(thing: object) -> object:
     """A piece of knowledge as it can be compared: without the places in files."""
-    if isinstance(thing, Mark):
-        return None
-    if is_dataclass(thing):
-        return (type(thing).__name__, *(sense(getattr(thing, field.name)) for field in fields(thing)))
-    if isinstance(thing, Mapping):
-        return tuple((str(key), sense(value)) for key, value in thing.items())
+    parts = _parts(type(thing))  # type: ignore[arg-type]  # every class can be hashed
+    if parts is not None:
+        return (type(thing).__name__, *[sense(getattr(thing, name)) for name in parts])
+    if isinstance(thing, str | float | frozenset | bool | None):
+        return thing
     if isinstance(thing, list | tuple):
         return tuple(map(sense, thing))
+    if isinstance(thing, Mapping):
+        return tuple((str(key), sense(value)) for key, value in thing.items())
     return thing
+
+
+@cache
+def _parts(kind: type) -> tuple[str, ...] | None:
+    """The fields of a dataclass that count; nothing for anything else."""
+    if kind is Mark:
+        return ()
+    return tuple(each.name for each in fields(kind)) if is_dataclass(kind) else None
 
 
 def edits(old: Knowledge, new: Knowledge) -> tuple[Edit, ...]:

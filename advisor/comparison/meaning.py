@@ -1,13 +1,13 @@
 """How much a change means: nothing, other reasons, another order, another recommendation, or safety."""
 
-from collections.abc import Mapping
 from enum import StrEnum
 
 from advisor.advice import Advice
 from advisor.explanation.seeing import rules_seen
 from advisor.explanation.words import say_demand
-from advisor.knowledge import Citation
+from advisor.knowledge import Citation, Knowledge
 from advisor.mutation import told
+from advisor.specification import Demand
 
 
 class Meaning(StrEnum):
@@ -20,17 +20,78 @@ class Meaning(StrEnum):
     SAME = "same"
 
 
-Sense = Mapping[Meaning, Mapping[tuple[str, ...], str]]
-"""What an advice says, part by part, under the meaning that a change of it would have."""
+Parts = dict[tuple[str, ...], str]
+"""What is said, part by part."""
 
 _SAFETY = {"state", "withheld", "cautions", "referrals", "conflicts", "must"}
 
 
-def sense_of(advice: Advice) -> Sense:
-    """Everything that an advice says, by what a change of it means."""
-    parts: dict[Meaning, dict[tuple[str, ...], str]] = {each: {} for each in Meaning}
+class Words:
+    """Demands in words, each put into words once: most of them come again in case after case."""
+
+    def __init__(self, knowledge: Knowledge) -> None:
+        self._knowledge = knowledge
+        self._said: dict[object, str] = {}
+
+    def say(self, demand: Demand) -> str:
+        """The demand in words, which are the same whatever rule makes it."""
+        key = demand.test, demand.for_, demand.level, demand.void
+        if key not in self._said:
+            self._said[key] = say_demand(demand, self._knowledge)
+        return self._said[key]
+
+
+class Sense:
+    """What an advice says, under the meaning that a change of it would have; put into words as it is asked for."""
+
+    def __init__(self, advice: Advice, words: Words) -> None:
+        self._advice, self._words = advice, words
+        self._known: dict[Meaning, Parts] = {Meaning.SAME: {}}
+        self._branches = [(each.label, Sense(each.advice, words)) for each in advice.branches]
+
+    def __getitem__(self, meaning: Meaning) -> Parts:
+        """Everything whose change has this meaning."""
+        if meaning not in self._known:
+            self._known |= self._found(meaning)
+            for label, branch in self._branches:
+                self._known[meaning] |= {(*part, label): text for part, text in branch[meaning].items()}
+        return self._known[meaning]
+
+    def _found(self, meaning: Meaning) -> dict[Meaning, Parts]:
+        if meaning is Meaning.ORDER:
+            return {meaning: _order(self._advice)}
+        if meaning is Meaning.REASONS:
+            return {meaning: {**_told(self._advice, reasons=True)[meaning], **self._reasons()}}
+        return {meaning: _told(self._advice, reasons=False)[meaning] | self._demands(must=meaning is Meaning.SAFETY)}
+
+    def _demands(self, *, must: bool) -> Parts:
+        verb = "must" if must else "should"
+        demands = (each for each in self._advice.specification.demands if each.must is must)
+        said = ((each.property, self._words.say(each)) for each in demands)
+        return {(verb, name, text): text for name, text in said}
+
+    def _reasons(self) -> Parts:
+        """The rules that fired, with their words and sources; who demanded what; whom a caution concerns."""
+        advice = self._advice
+        found: Parts = {
+            ("fired", rule.id): f"{rule.rule.title} {rule.rule.because} {rule.rule.limits} {_cited(rule.rule.source)}"
+            for _, rule, outcome in rules_seen(advice)
+            if outcome and rule.binds
+        }
+        demands = advice.specification.demands
+        found |= {("demanded", each.rule, each.property): self._words.say(each) for each in demands}
+        for caution in advice.cautions:
+            found["cautioned", caution.caution] = f"{', '.join(caution.rules)}: {', '.join(caution.concerns)}"
+            written = advice.knowledge.cautions[caution.caution]
+            found["words", caution.caution] = f"{written.text} {_cited(written.source)}"
+        return found
+
+
+def _told(advice: Advice, *, reasons: bool) -> dict[Meaning, Parts]:
+    """What a scenario could expect of the advice, by what a change of it means; the reasons only where asked for."""
+    parts: dict[Meaning, Parts] = {each: {} for each in Meaning}
     shown = {name for line in (*advice.docket, *advice.quantities) for name in line.facts}
-    for part, text in told(advice, demands=False).items():
+    for part, text in told(advice, demands=False, reasons=reasons).items():
         if part[0] == "facts" and part[1] not in shown:
             meaning = Meaning.REASONS
         elif part[0] in _SAFETY:
@@ -40,37 +101,15 @@ def sense_of(advice: Advice) -> Sense:
         else:
             meaning = Meaning.RECOMMENDATION
         parts[meaning][part] = text
-    for demand in advice.specification.demands:
-        meaning = Meaning.SAFETY if demand.must else Meaning.RECOMMENDATION
-        said = say_demand(demand, advice.knowledge)
-        parts[meaning]["must" if demand.must else "should", demand.property, said] = said
-    parts[Meaning.ORDER] |= _order(advice)
-    parts[Meaning.REASONS] |= _reasons(advice)
     return parts
 
 
-def _order(advice: Advice) -> dict[tuple[str, ...], str]:
-    order: dict[tuple[str, ...], str] = {("order",): ", ".join(each.item for each in advice.shelf)}
+def _order(advice: Advice) -> Parts:
+    order: Parts = {("order",): ", ".join(each.item for each in advice.shelf)}
     order |= {("steps", each.item): str(each.steps) for each in advice.shelf}
     for line in advice.docket:
         order["order", line.row] = ", ".join(map(str, line.values))
     return order
-
-
-def _reasons(advice: Advice) -> dict[tuple[str, ...], str]:
-    """The rules that fired, with their words and sources; who demanded what; whom a caution concerns."""
-    found: dict[tuple[str, ...], str] = {
-        ("fired", rule.id): f"{rule.rule.title} {rule.rule.because} {rule.rule.limits} {_cited(rule.rule.source)}"
-        for _, rule, outcome in rules_seen(advice)
-        if outcome and rule.binds
-    }
-    demands = advice.specification.demands
-    found |= {("demanded", each.rule, each.property): say_demand(each, advice.knowledge) for each in demands}
-    for caution in advice.cautions:
-        found["cautioned", caution.caution] = f"{', '.join(caution.rules)}: {', '.join(caution.concerns)}"
-        written = advice.knowledge.cautions[caution.caution]
-        found["words", caution.caution] = f"{written.text} {_cited(written.source)}"
-    return found
 
 
 def _cited(source: tuple[Citation, ...]) -> str:

@@ -223,10 +223,12 @@ def waits_for(condition: Condition, record: Record) -> set[str]:
 
 def failures(condition: Condition, record: Record) -> tuple[Term, ...]:
     """The terms that made a condition fail; empty if it does not fail."""
+    if isinstance(condition, Every):
+        return tuple([term for part in condition.parts for term in failures(part, record)])
     if holds(condition, record) is not False:
         return ()
-    if isinstance(condition, Every | Either):
-        return tuple(term for part in condition.parts for term in failures(part, record))
+    if isinstance(condition, Either):
+        return tuple([term for part in condition.parts for term in failures(part, record)])
     return (condition,)
 
 

@@ -31,11 +31,16 @@ class _Open:
 
 
 class Builder:
-    """Takes the events of one text in order; `root` is the tree so far."""
+    """Takes the events of one text in order; `root` is the tree so far, `repeated` are keys refused
+    as written twice, with the line of the first.
 
-    def __init__(self, name: str) -> None:
+    Where `may_repeat` is given, no list but those under these keys holds an entry twice.
+    """
+
+    def __init__(self, name: str, may_repeat: frozenset[str] | None = None) -> None:
         self.root: Node | None = None
-        self._name = name
+        self.repeated: dict[Mark, int] = {}
+        self._name, self._may_repeat = name, may_repeat
         self._open: list[_Open] = []
         self._nodes = 0
         self._documents = 0
@@ -62,6 +67,7 @@ class Builder:
         elif isinstance(event, events.NodeEvent):
             self._take_node(event, self._mark(event))
         elif isinstance(event, events.CollectionEndEvent):
+            self._drop_repeated()
             self._open.pop()
 
     def _begin_document(self, event: events.Event) -> None:
@@ -131,6 +137,22 @@ class Builder:
             inner.last_key = inner.key
             inner.key = None
 
+    def _drop_repeated(self) -> None:
+        """Refuse the entries of the innermost list that stood in it before."""
+        node = self._open[-1].node
+        beyond = self._open[-2].last_key if len(self._open) > 1 else ""
+        if self._may_repeat is None or not isinstance(node, Sequence) or len(node) < 2 or beyond in self._may_repeat:
+            return
+        first: dict[str, int] = {}
+        *within, _ = self._loc()
+        for place, child in enumerate(node):
+            before = first.setdefault(repr(child), place)
+            if before != place:
+                message = f"This entry is written twice; it first stands in line {node[before].mark.line}"
+                self._faults.append((child.mark, message, "Keep one of the two", (*within, len(first) - 1)))
+        if len(first) < len(node):
+            node[:] = [node[place] for place in first.values()]
+
     def _accepted_key(self, mapping: Mapping, key: Node) -> Scalar:
         """The key, noted with its place, or `_REFUSED`."""
         if not isinstance(key, Scalar):
@@ -141,6 +163,7 @@ class Builder:
             self._fault(key.mark, "A key is missing before the colon", "Write the key, or put the text in quotes")
         elif key in mapping.key_marks:
             first = mapping.key_marks[key].line
+            self.repeated[key.mark] = first
             message = f"The key '{key}' is written twice; it first stands in line {first}"
             self._fault(key.mark, message, "Keep one of the two")
         else:

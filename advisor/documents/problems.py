@@ -2,7 +2,7 @@
 
 import difflib
 from collections.abc import Iterable, Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import Literal, NamedTuple
 
 Severity = Literal["error", "finding"]
@@ -20,7 +20,8 @@ class Mark(NamedTuple):
 class Problem:
     """One fault: where it stands, what it sits in (outermost first, named by id), what was seen and the mend.
 
-    An error keeps the document from being used; a finding only asks for a look.
+    An error keeps the document from being used; a finding only asks for a look. A name that is known nowhere is kept,
+    with the known name most like it: either of the two may be the misspelt one.
     """
 
     file: str
@@ -30,6 +31,8 @@ class Problem:
     message: str
     hint: str = ""
     severity: Severity = "error"
+    name: str = field(default="", compare=False)
+    like: str = field(default="", compare=False)
 
     @classmethod
     def at(
@@ -99,8 +102,19 @@ def nearest(word: str, known: Iterable[str]) -> str:
     >>> nearest("thickner", ["thickener", "form"])
     " Did you mean 'thickener'?"
     """
-    close = difflib.get_close_matches(word, list(known), n=1)
-    return f" Did you mean '{close[0]}'?" if close else ""
+    near = closest(word, known)
+    return f" Did you mean '{near}'?" if near else ""
+
+
+def closest(word: str, known: Iterable[str]) -> str:
+    """The known word most like this one, or nothing; one of the same letters comes first.
+
+    >>> closest("thickner", ["thickener", "form"]), closest("PE", ["CR", "EP"]), closest("zebra", ["form"])
+    ('thickener', 'EP', '')
+    """
+    words = list(known)
+    exchanged = [each for each in words if sorted(each) == sorted(word)]
+    return next(iter(exchanged or difflib.get_close_matches(word, words, n=1)), "")
 
 
 def _sentence(text: str) -> str:

@@ -1,13 +1,15 @@
 """Read a document to a tree of text, refusing whatever YAML does behind the reader's back."""
 
 import re
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
 from itertools import islice
 from pathlib import Path
+from typing import NamedTuple
 
 import yaml
 
 from advisor.documents.building import Builder, TooBig
+from advisor.documents.indentation import moved_line
 from advisor.documents.problems import Mark, Problem, Problems, nearest
 from advisor.documents.syntax import explained
 from advisor.documents.tree import Node
@@ -20,13 +22,28 @@ _STRAY = re.compile("[\x00-\x08\x0b\x0c\x0e-\x1f\x7f-\x9f\u2028\u2029\ud800-\udf
 _SAVE_AS_UTF8 = "Save the file as UTF-8 without a byte order mark"
 
 
-def read_document(path: Path, problems: Problems, name: str | None = None) -> Node | None:
+class Expected(NamedTuple):
+    """What the reader of a document knows of it beforehand."""
+
+    faults_in: Callable[[Node], int] | None = None
+    """Counts what is wrong in a tree; it helps to find the line that is indented wrongly."""
+    may_repeat: frozenset[str] | None = None
+    """The keys of lists that may hold an entry twice, where others may not."""
+
+
+ANYTHING = Expected()
+
+
+def read_document(
+    path: Path, problems: Problems, name: str | None = None, expected: Expected = ANYTHING
+) -> Node | None:
     """The document in a file, or nothing where there is nothing to look at.
 
     Args:
         path: the file.
         problems: gathers every fault; a tree may come back nevertheless, so that its contents can be checked too.
         name: how problems call the file; its path unless given.
+        expected: what is known of such documents.
     """
     name = name or str(path)
     try:
@@ -44,10 +61,10 @@ def read_document(path: Path, problems: Problems, name: str | None = None) -> No
     except UnicodeDecodeError as error:
         problems.add(_not_utf8(raw, error.start, name))
         return None
-    return read_text(text, name, problems)
+    return read_text(text, name, problems, expected)
 
 
-def read_text(text: str, name: str, problems: Problems) -> Node | None:
+def read_text(text: str, name: str, problems: Problems, expected: Expected = ANYTHING) -> Node | None:
     """The document in a text, or nothing where there is nothing to look at; `name` stands for the file."""
     if len(text.encode("utf-8", "surrogatepass")) > LARGEST_FILE:
         problems.add(_too_large(name))
@@ -56,12 +73,12 @@ def read_text(text: str, name: str, problems: Problems) -> Node | None:
     problems.extend(strays[:_MOST_STRAY_SIGNS])
     if "\0" in text or len(strays) > _MOST_STRAY_SIGNS:
         return None
-    return _read_clean(_STRAY.sub("\ufffd", text.removeprefix("\ufeff")), name, problems)
+    return _read_clean(_STRAY.sub("\ufffd", text.removeprefix("\ufeff")), name, problems, expected)
 
 
-def _read_clean(text: str, name: str, problems: Problems) -> Node | None:
+def _read_clean(text: str, name: str, problems: Problems, expected: Expected) -> Node | None:
     """The document in a text that holds printable characters only."""
-    builder = Builder(name)
+    builder = Builder(name, expected.may_repeat)
     try:
         for event in yaml.parse(text, Loader=_LOADER):
             builder.take(event)
@@ -70,12 +87,39 @@ def _read_clean(text: str, name: str, problems: Problems) -> Node | None:
         return None
     except yaml.YAMLError as error:
         problems.extend(builder.problems())
-        problems.add(explained(error, text, name, builder.innermost))
+        problem, indented = explained(error, text, name, builder.innermost)
+        problems.add(moved_line(text, problem, _tried, expected.faults_in) if indented else problem)
         return None
-    problems.extend(builder.problems())
+    problems.extend(_perhaps_moved(builder, text, expected))
     if builder.root is None:
         problems.add(Problem.at(Mark(name, 1, 1), "The document is empty", "Write its contents or delete the file"))
     return builder.root
+
+
+def _perhaps_moved(builder: Builder, text: str, expected: Expected) -> list[Problem]:
+    """What was refused; a key is also written twice where a line was moved into or out of the mapping."""
+    refused = builder.problems()
+    first = next((each for each in refused if each.mark in builder.repeated), None)
+    if first is None or expected.faults_in is None:
+        return refused
+    between = range(builder.repeated[first.mark], first.line)
+    moved = moved_line(text, first, _tried, expected.faults_in, among=between)
+    if moved is first:
+        return refused
+    return [moved, *(each for each in refused if each.mark not in builder.repeated)]
+
+
+def _tried(text: str) -> Node | None:
+    """The tree of a text that was changed on trial, if it reads without faults."""
+    builder = Builder("")
+    try:
+        for _ in yaml.parse(text, Loader=_LOADER):
+            pass  # most trials fail, and that shows sooner without a tree
+        for event in yaml.parse(text, Loader=_LOADER):
+            builder.take(event)
+    except (TooBig, yaml.YAMLError):
+        return None
+    return None if builder.problems() else builder.root
 
 
 def _refuse_no_file(path: Path) -> None:

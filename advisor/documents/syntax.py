@@ -12,20 +12,24 @@ class _Fault(NamedTuple):
     """How one fault of the parser is told; `begins` places it where the unfinished thing begins.
 
     The pattern is sought in the parser's context and problem, followed by what `_scene` noticed. `{sign}` is the
-    character at the place, `{line}` the line at which the parser gave up.
+    character at the place, `{line}` the line at which the parser gave up. `indented` faults are of indentation, so that
+    the line to be mended may be another one.
     """
 
     pattern: str
     message: str
     hint: str
     begins: bool = False
+    indented: bool = False
 
 
 _FAULTS = (
     _Fault("<tab>", "A tab stands where only spaces may", "Indent with spaces"),
     _Fault("(?:scanning|parsing) a tag|tag handle", "The tag here is not accepted",
            "Delete it, or put the text in quotes", begins=True),
-    _Fault("document start", "Something follows after the end of the document", "Delete the line '...'"),
+    _Fault("document start.*<after dots>", "Something follows after the end of the document", "Delete the line '...'"),
+    _Fault("document start", "This line stands further out than where the document begins",
+           "Give all keys of the outermost mapping the same indentation", indented=True),
     _Fault("quoted scalar.*(?:end of stream|document)", "A text in quotes begins here and is never closed",
            "Close it with the same quote sign", begins=True),
     _Fault("(?:node content|expected ',' or ).*<past the end>", "The bracket '{sign}' that opens here is not closed",
@@ -40,7 +44,7 @@ _FAULTS = (
     _Fault("mapping values are not allowed.*<after a colon>", "A second colon stands in this line",
            "Put a text that holds ': ' in quotes"),
     _Fault("mapping values are not allowed", "This key is indented deeper than the line above allows",
-           "Align it with the keys of the same mapping, or check the quotes above"),
+           "Align it with the keys of the same mapping, or check the quotes above", indented=True),
     _Fault("sequence entries are not allowed", "A list begins in the line of its key",
            "Begin it on the next line, or write it in brackets as [a, b]"),
     _Fault("<closing>", "The bracket '{sign}' closes nothing", "Delete it, or put the text in quotes"),
@@ -52,11 +56,11 @@ _FAULTS = (
     _Fault("block mapping.*<midline>", "Something is left over after the value",
            "Put the whole text in one pair of quotes, and check the quotes above"),
     _Fault("block mapping.*<dash>", "A list item stands where a key should",
-           "Indent it below the key that it belongs to"),
+           "Indent it below the key that it belongs to", indented=True),
     _Fault("block mapping", "The indentation of this line fits none of the lines above",
-           "Give all keys of one mapping the same indentation"),
+           "Give all keys of one mapping the same indentation", indented=True),
     _Fault("block collection", "This line stands among list items but does not fit them",
-           "Begin it with '- ' in the column of the others, or indent it below its item"),
+           "Begin it with '- ' in the column of the others, or indent it below its item", indented=True),
     _Fault("could not find expected ':'", "This line has no colon after its key",
            "Write 'key: value', or indent the line if it continues the text above", begins=True),
     _Fault("unknown escape", "A backslash in this text in double quotes begins no known escape",
@@ -67,10 +71,13 @@ _FAULTS = (
 )
 
 
-def explained(error: YAMLError, text: str, name: str, innermost: Mark) -> Problem:
-    """The problem that a parser's error stands for; `innermost` is where the innermost unfinished value begins."""
+def explained(error: YAMLError, text: str, name: str, innermost: Mark) -> tuple[Problem, bool]:
+    """The problem that a parser's error stands for, and whether it is one of indentation.
+
+    `innermost` is where the innermost unfinished value begins.
+    """
     if not isinstance(error, MarkedYAMLError) or error.problem_mark is None:
-        return Problem.at(Mark(name, 1, 1), "YAML cannot read this text", "Check that it is the right file")
+        return Problem.at(Mark(name, 1, 1), "YAML cannot read this text", "Check that it is the right file"), False
     lines = text.split("\n")
     end = Mark(name, error.problem_mark.line + 1, error.problem_mark.column + 1)
     context = error.context_mark or error.problem_mark
@@ -82,8 +89,8 @@ def explained(error: YAMLError, text: str, name: str, innermost: Mark) -> Proble
         if re.search(fault.pattern, scene):
             place = start if fault.begins else end
             message = fault.message.format(sign=_sign(lines, place), line=end.line)
-            return Problem.at(place, message, fault.hint)
-    return Problem.at(end, f"YAML cannot read this: {error.problem}", "Check the quotes and the indentation")
+            return Problem.at(place, message, fault.hint), fault.indented
+    return Problem.at(end, f"YAML cannot read this: {error.problem}", "Check the quotes and the indentation"), False
 
 
 def _scene(lines: list[str], start: Mark, end: Mark) -> str:
@@ -98,6 +105,7 @@ def _scene(lines: list[str], start: Mark, end: Mark) -> str:
         "<after a colon>": ": " in before,
         "<past the end>": end.line >= len(lines) and not sign,
         "<same line>": start.line == end.line,
+        "<after dots>": any(line.startswith("...") for line in lines[: end.line]),
     }
     return " ".join(name for name, seen in noticed.items() if seen)
 

@@ -7,14 +7,13 @@ from dataclasses import dataclass
 from advisor.advice import Advice
 from advisor.conditions import Bound, Condition, Domain, FactRef, Record, holds, leaves
 from advisor.conditions.terms import names
-from advisor.explanation.seeing import hides, record_at, rules_seen
+from advisor.explanation.seeing import hides, record_at, rules_seen, run_assuming, say_known
 from advisor.explanation.weighing import field_of
 from advisor.explanation.words import (
     OPERATORS,
     domain_of,
     listed,
     margin,
-    say_fact,
     say_margin,
     say_source,
     say_test,
@@ -117,11 +116,10 @@ def _say_waiting(advice: Advice, name: str) -> str:
 def _assumed(advice: Advice, name: str) -> Assumed:
     knowledge, assume = advice.knowledge, advice.knowledge.facts[name].assume
     sources = tuple(say_source(each, knowledge) for each in assume.source) if assume is not None else ()
-    value = HIDDEN if hides(advice, name) else say_fact(advice.facts[name], knowledge)
+    value = HIDDEN if hides(advice, name) else say_known(advice, name)
     rows = () if advice.withheld else rows_reached(advice, name)
-    return Assumed(
-        name, title_of(name, knowledge), value, advice.facts[name].note, sources, name in advice.keeping_open, rows
-    )
+    because = run_assuming(advice, name).facts[name].note
+    return Assumed(name, title_of(name, knowledge), value, because, sources, name in advice.keeping_open, rows)
 
 
 def _at_limit(advice: Advice) -> Iterator[str]:

@@ -103,7 +103,7 @@ def chart(advice: Advice) -> Chart | None:
         WIDTH - _RIGHT,
         _TOP,
         HEIGHT - _BOTTOM,
-        "Viscosity against temperature",
+        "Viscosity against temperature" + (f", for {advice.told_for}" if advice.told_for else ""),
         _describe(oils, running, advice, needed),
         tuple(_spread(lines)),
         tuple(_temperatures(axes)),

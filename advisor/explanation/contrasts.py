@@ -7,7 +7,7 @@ from difflib import get_close_matches
 from advisor.advice import Advice, Line
 from advisor.conditions import Bound, Coded, Condition, Domain, Member, Value, leaves
 from advisor.explanation.ruling import RuleReason, Rules
-from advisor.explanation.variants import deciding_end
+from advisor.explanation.seeing import deciding_run, run_against
 from advisor.explanation.weighing import Field, field_of, oil_title
 from advisor.explanation.words import (
     LEVELS,
@@ -83,9 +83,9 @@ def why_not(advice: Advice, subject: str) -> WhyNot:
 
 def product(advice: Advice, place: int, rules: Rules | None = None) -> WhyNot:
     """All demands that a product misses, musts first."""
-    end = deciding_end(advice, place)
-    if end is not advice:
-        return product(end, place)
+    run = deciding_run(advice, place)
+    if run is not advice:
+        return product(run, place)
     judgement = advice.judgement
     assert judgement is not None  # noqa: S101 - asked by the callers
     item = judgement.catalogue.items[place]
@@ -172,6 +172,9 @@ def _names_of(row: DocketRow, domain: Domain, value: Value) -> set[str]:
 
 def of_class(advice: Advice, line: Line, value: Coded, rules: Rules | None = None) -> WhyNot:
     """What stands against a class of a row, beside the recommended one."""
+    if advice.runs:
+        run = run_against(advice, line, advice.knowledge.domain(_property(advice, line)).decode(value))
+        return of_class(run, run.line(line.row), value)
     row = next(each for each in advice.knowledge.docket if each.id == line.row)
     domain = advice.knowledge.properties[row.recommends].domain
     said = say_value(domain, value)
@@ -198,6 +201,10 @@ def of_class(advice: Advice, line: Line, value: Coded, rules: Rules | None = Non
         _class_verdict(field, own, closest),
         tuple(_against(rules if rules is not None else Rules(advice), field, closest)),
     )
+
+
+def _property(advice: Advice, line: Line) -> str:
+    return next(each.recommends for each in advice.knowledge.docket if each.id == line.row)
 
 
 def _distance(field: Field, place: int) -> tuple[object, ...]:

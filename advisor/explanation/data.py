@@ -3,64 +3,40 @@
 import json
 import re
 from collections.abc import Mapping
-from math import isfinite
 from typing import Any
+
+from pydantic_core import PydanticSerializationError, to_json
 
 from advisor import __version__
 from advisor.advice import FORMAT, Advice
-from advisor.advice.model import Branch, CautionGiven, Line
+from advisor.advice.model import CautionGiven, Line
 from advisor.conditions import Domain, Value
 from advisor.explanation.data_judged import oils_data, shelf_data
 from advisor.explanation.data_terms import condition_data, demand_data
 from advisor.explanation.data_trace import trace_data
-from advisor.explanation.seeing import hides
+from advisor.explanation.data_variants import (
+    figures_data,
+    shelf_over_runs,
+    spread_data,
+    strictest_data,
+    variants_data,
+)
+from advisor.explanation.seeing import hides, run_assuming
 
 _UNSAFE = re.compile("[\x7f-\x9f\u200b-\u200f\u2028-\u202e\u2066-\u2069\ufeff\ud800-\udfff]")
-_ENCODER = json.JSONEncoder(ensure_ascii=False, allow_nan=False, separators=(",", ":"))
 Data = dict[str, Any]
 
 
 def as_json(advice: Advice) -> str:
     """The advice as JSON on one line; characters that steer a terminal are escaped."""
-    parts = (
-        f"{_dumps(key)}:{_shelf(value) if key == 'shelf' else _dumps(value)}" for key, value in as_data(advice).items()
-    )
-    return "{" + ",".join(parts) + "}\n"
-
-
-def _dumps(value: object) -> str:
-    text = _ENCODER.encode(value)
-    return (
-        text
-        if text.isascii() and "\x7f" not in text
-        else _UNSAFE.sub(lambda found: f"\\u{ord(found.group()):04x}", text)
-    )
-
-
-def _shelf(products: list[Data]) -> str:
-    """The shelf as JSON; misses that products share are written out once and used again."""
-    written: dict[int, str] = {}
-    found = []
-    for product in products:
-        misses = []
-        for each in product["misses"]:
-            text = written.get(id(each))
-            if text is None:
-                text = written[id(each)] = f"{{{_members(each)}}}"
-            misses.append(text)
-        head = _members({key: value for key, value in product.items() if key != "misses"})
-        found.append(f'{{{head},"misses":[{",".join(misses)}]}}')
-    return f"[{','.join(found)}]"
-
-
-def _members(data: Data) -> str:
-    """The members of a flat object; numbers are written here, since most members are numbers."""
-    return ",".join(
-        f'"{key}":{value!r}'
-        if type(value) is int or (type(value) is float and isfinite(value))
-        else f'"{key}":{_dumps(value)}'
-        for key, value in data.items()
-    )
+    data = as_data(advice)
+    try:
+        text = to_json(data, inf_nan_mode="null").decode()
+    except PydanticSerializationError:  # a lone surrogate in what was typed: UTF-8 cannot hold it
+        text = json.dumps(data, ensure_ascii=False, separators=(",", ":"))
+    if not text.isascii() or "\x7f" in text:
+        text = _UNSAFE.sub(lambda found: f"\\u{ord(found.group()):04x}", text)
+    return text + "\n"
 
 
 def as_data(advice: Advice) -> Data:
@@ -96,7 +72,7 @@ def as_data(advice: Advice) -> Data:
         "conflicts": [{"about": each.about, "rules": list(each.rules)} for each in advice.conflicts],
         "at_limit": [{each.what: each.name, "rule": each.rule} for each in advice.at_limit],
         "set_aside": list(advice.set_aside),
-        "branches": [_branch(each) for each in advice.branches],
+        **variants_data(advice),
         "trace": trace_data(advice),
     }
 
@@ -109,7 +85,7 @@ def _result(advice: Advice) -> Data:
         "docket": [_line(advice, each, numbers) for each in advice.docket],
         "usual_oils": oils_data(advice),
         "renewal": {line.row: _quantity(advice, line) for line in advice.quantities},
-        "shelf": shelf_data(advice),
+        "shelf": shelf_over_runs(advice) if advice.runs else shelf_data(advice),
         "fits": advice.fits,
     }
 
@@ -160,6 +136,8 @@ def _facts(advice: Advice) -> list[Data]:
             data["unit"] = unit
         if fact.note:
             data["note"] = fact.note
+        if fact.name in advice.spread:
+            data |= spread_data(advice.spread[fact.name])
         found.append(data)
     return found
 
@@ -182,6 +160,7 @@ def _line(advice: Advice, line: Line, numbers: Mapping[Any, int]) -> Data:
         data["barred"] = [[plain(value), list(rules)] for value, rules in (line.barred or {}).items()]
     if line.demands:
         data["demands"] = [numbers[demand] for demand in line.demands if demand in numbers]
+        data |= {"strictest": strictest} if (strictest := strictest_data(advice, line)) else {}
     if line.facts:
         data["facts"] = list(line.facts)
     if line.waits:
@@ -203,8 +182,8 @@ def _quantity(advice: Advice, line: Line) -> Data:
         row = next(each for each in advice.knowledge.docket if each.id == line.row)
         return data | {"shown_if": condition_data(row.shown_if, _domains(advice))}
     if line.differs:
-        return data | {"differs": True}
-    data["values"] = {name: plain(advice.facts[name].value) for name in line.facts if name in advice.facts}
+        data["differs"] = True
+    data["values"] = figures_data(advice, line.facts)
     return data | ({"waits": list(line.waits)} if line.waits else {})
 
 
@@ -213,30 +192,12 @@ def _domains(advice: Advice) -> Mapping[str, Domain]:
     return facts | {name: each.domain for name, each in advice.knowledge.computations.items()}
 
 
-def _branch(branch: Branch) -> Data:
-    """A branch in short: what it sets, its state, its classes, its codes and verdicts; and of a range the other end."""
-    data = {"label": branch.label, "settings": {name: plain(value) for name, value in branch.settings.items()}}
-    data |= _short(branch.advice)
-    return data | ({"other_end": _short(branch.other_end)} if branch.other_end is not None else {})
-
-
-def _short(advice: Advice) -> Data:
-    if advice.withheld:
-        return {"state": advice.state.value, "withheld": True}
-    return {
-        "state": advice.state.value,
-        "recommended": {line.row: [plain(each) for each in line.values] for line in advice.docket if line.values},
-        "designations": {"din": list(advice.codes.din), "iso": list(advice.codes.iso)},
-        "shelf": {each.item: each.verdict.value for each in advice.shelf},
-    }
-
-
 def _caution(advice: Advice, caution: CautionGiven) -> Data:
     data: Data = {"caution": caution.caution, "rules": list(caution.rules)}
     return data | ({"concerns": list(caution.concerns)} if caution.concerns and not advice.withheld else {})
 
 
 def _assumption(advice: Advice, name: str) -> Data:
-    fact = advice.facts[name]
+    fact = run_assuming(advice, name).facts[name]
     value = "withheld" if hides(advice, name) else plain(fact.value)
     return {"fact": name, "value": value, "because": fact.note, "keeps_open": name in advice.keeping_open}

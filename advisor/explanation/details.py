@@ -209,7 +209,7 @@ def changes_section(changes: Changes) -> Section:
 def sources_section(advice: Advice) -> Section:
     """The sources of the rules that fired, and how surely each was read."""
     cited: dict[str, set[str]] = {}
-    for _, instance, outcome in rules_seen(advice):
+    for _, instance, outcome in (each for run in advice.single for each in rules_seen(run)):
         if outcome is True:
             for each in _cited(instance):
                 cited.setdefault(each.id, set()).add(each.checked)

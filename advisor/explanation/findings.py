@@ -6,10 +6,10 @@ from collections.abc import Iterator
 from advisor.advice import Advice
 from advisor.explanation.blocks import GLYPHS, Block, Grid, Node, Para, Section, Tree, leaf
 from advisor.explanation.contrasts import Miss, WhyNot, product
-from advisor.explanation.reasons import WAITS, Why
+from advisor.explanation.reasons import WAITS, Why, differing
 from advisor.explanation.ruling import Rules
-from advisor.explanation.seeing import hides
-from advisor.explanation.words import SHEET_SILENT, harmless, say_fact, say_source, title_of
+from advisor.explanation.seeing import hides, say_known
+from advisor.explanation.words import SHEET_SILENT, harmless, say_source, title_of
 from advisor.explanation.workings import HIDDEN, Premise, Working
 from advisor.knowledge import Formed
 from advisor.shelf import Verdict
@@ -26,7 +26,7 @@ def answers_section(advice: Advice) -> Section:
     for name, answer in advice.case.answers.items():
         hidden = hides(advice, name)
         fact = advice.facts.get(name)
-        read = HIDDEN if hidden else say_fact(fact, advice.knowledge)
+        read = HIDDEN if hidden else say_known(advice, name)
         origin = "set aside: not asked here" if name in advice.set_aside else fact.origin.value if fact else ""
         rows.append((title_of(name, advice.knowledge), HIDDEN if hidden else answer.typed or "none", read, origin))
     return Section("answers", "Answers", (Grid(("Question", "As typed", "Counts as", "Origin"), tuple(rows)),))
@@ -161,11 +161,19 @@ def working_lines(working: Working) -> list[str]:
 
 def change_over_section(advice: Advice) -> Section | None:
     """The numbered steps of the recommended change-over."""
-    lines = [line for line in advice.docket if any(value in advice.knowledge.procedures for value in line.values)]
+    found = dict.fromkeys(
+        value
+        for run in advice.single
+        for line in run.docket
+        for value in line.values
+        if value in advice.knowledge.procedures
+    )
+    shared = {value for line in advice.docket for value in line.values}
     blocks: list[Block] = []
-    for value in (value for line in lines for value in line.values):
+    for value in found:
         procedure = advice.knowledge.procedures[str(value)]
-        blocks.append(Para(f"{procedure.title}:", strong=True))
+        where = "" if value in shared else f" (it {differing(advice)})"
+        blocks.append(Para(f"{procedure.title}{where}:", strong=True))
         blocks.append(Tree(leaf(*procedure.steps), numbered=True))
         blocks.append(Para(f"Source: {'; '.join(say_source(each, advice.knowledge) for each in procedure.source)}"))
     return Section("change_over", "Change-over", tuple(blocks)) if blocks else None

@@ -9,7 +9,7 @@ from advisor.explanation.changes import Changes, Near
 from advisor.explanation.clearances import least_clearances
 from advisor.explanation.reasons import Reason, Why
 from advisor.explanation.ruling import Rules
-from advisor.explanation.seeing import rules_seen
+from advisor.explanation.seeing import rules_seen, run_assuming
 from advisor.explanation.words import listed, say_fact, say_margin, say_test, say_value, title_of
 
 MOST_REASONS = 5
@@ -65,7 +65,8 @@ def _open(advice: Advice) -> Iterator[Node]:
         yield Node(f"Waiting for: {listed(titles, 'and')}.")
     for name in advice.keeping_open:
         yield Node(
-            f"{title_of(name, advice.knowledge)} was assumed, and that keeps the case open: {advice.facts[name].note}"
+            f"{title_of(name, advice.knowledge)} was assumed, and that keeps the case open: "
+            f"{run_assuming(advice, name).facts[name].note}"
         )
 
 
@@ -82,7 +83,7 @@ def caution_section(advice: Advice, changes: Changes) -> Section:
     nodes += [Node(f"Exactly at its limit: {each}.") for each in changes.at_limit]
     nodes += [
         Node(f"Close: {each.title} is {each.value}, {say_apart(each)} {_rules(each.rules)} ({each.limit}).")
-        for each in changes.near[:_SHOWN_NEAR]
+        for each in [near for near in changes.near if near.fact not in advice.spread][:_SHOWN_NEAR]
     ]
     nodes += _best_clearance(advice)
     nodes.append(Node(_how_sourced(advice)))
@@ -123,11 +124,13 @@ def _best_clearance(advice: Advice) -> Iterator[Node]:
         domain = judgement.domains[demand.property]
         said, seen = say_test(demand.test, advice.knowledge), say_value(domain, clear.seen)
         spare = say_margin(clear.margin, domain)
-        yield Node(f"Smallest margin of {best.item}: {said}, it has {seen}, {spare} to spare ({clear.rule}).")
+        told = f"; told for {advice.told_for}" if advice.told_for else ""
+        yield Node(f"Smallest margin of {best.item}: {said}, it has {seen}, {spare} to spare ({clear.rule}{told}).")
 
 
 def _how_sourced(advice: Advice) -> str:
-    fired = {each.rule.id: each.rule for _, each, outcome in rules_seen(advice) if outcome is True and each.binds}
+    seen = (each for run in advice.single for each in rules_seen(run))
+    fired = {each.rule.id: each.rule for _, each, outcome in seen if outcome is True and each.binds}
     weak = [name for name, rule in fired.items() if not any(cited.checked == "yes" for cited in rule.source)]
     if not weak:
         return f"Each of the {len(fired)} rules that fired cites a text that was read."

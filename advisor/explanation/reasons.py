@@ -8,8 +8,9 @@ from advisor.case import Origin
 from advisor.conditions import Condition, Every, FactRef, holds
 from advisor.conditions.terms import names
 from advisor.explanation.ruling import RuleReason, Rules, why_not_rule
+from advisor.explanation.seeing import say_known
 from advisor.explanation.weighing import Field, field_of
-from advisor.explanation.words import say_condition, say_demand, say_fact, say_test, say_value, title_of
+from advisor.explanation.words import say_condition, say_demand, say_test, say_value, title_of
 from advisor.explanation.workings import NotHere, Premise, premise
 from advisor.knowledge import Sets
 from advisor.shelf import places
@@ -83,13 +84,33 @@ def say_line(advice: Advice, line: Line) -> str:
         domain = knowledge.properties[row.recommends].domain
         said = " or ".join(dict.fromkeys(say_value(domain, each) for each in line.values))
         if line.differs:
-            return f"{said}, in every variant" if said else "differs between the variants"
+            return f"{said}, {everywhere(advice)}" if said else differing(advice)
         return said or (WAITS if line.waits else "nothing is left")
     if line.facts:
-        return "differs between the variants" if line.differs else _say_facts(advice, line.facts)
+        said = _say_facts(advice, line.facts)
+        return f"{said}, where a figure is given" if line.differs else said
     musts = [demand for demand in line.demands if demand.must] or list(line.demands)
     said = "; ".join(dict.fromkeys(_short_demand(demand, advice) for demand in musts))
+    if said and line.differs:
+        said += " (the strictest of all variants)" if _variants(advice) else " (the strictest along the range)"
     return said or (WAITS if line.waits else "nothing asked")
+
+
+def everywhere(advice: Advice) -> str:
+    """Where something holds that all runs of a case share."""
+    return "in every variant" if _variants(advice) else "over the whole range"
+
+
+def differing(advice: Advice) -> str:
+    """That something is not the same in all runs of a case."""
+    return "differs between the variants" if _variants(advice) else "differs along the range"
+
+
+def _variants(advice: Advice) -> bool:
+    """Whether something else than a range was left open."""
+    if advice.span is None:
+        return True
+    return any(set(branch.settings) - {advice.span.fact} for branch in advice.branches)
 
 
 def _short_demand(demand: Demand, advice: Advice) -> str:
@@ -97,10 +118,12 @@ def _short_demand(demand: Demand, advice: Advice) -> str:
 
 
 def _say_facts(advice: Advice, names_: tuple[str, ...]) -> str:
-    said = [say_fact(advice.facts.get(name), advice.knowledge) for name in names_]
+    said = [say_known(advice, name) for name in names_]
     if len(set(said)) == 1:
         return said[0]
     low_high = len(said) == 2 and names_[0].endswith("_lo")
+    if low_high and any(name in advice.spread for name in names_):
+        return f"{said[0]} at least, {said[1]} at most"
     if low_high:
         return f"{said[0].split(' ')[0]} to {said[1]}"
     rest = [f"{title_of(name, advice.knowledge)} {each}" for name, each in zip(names_[1:], said[1:], strict=True)]
@@ -187,10 +210,10 @@ def _say_set(advice: Advice, sets: Sets) -> str:
 
 
 def _notes(advice: Advice, line: Line, rules: Rules) -> tuple[str, ...]:
-    """Why a row is empty, where it is."""
+    """Why a row is empty, where it is; and for which run its reasons are told, where there are several."""
     row = next(each for each in advice.knowledge.docket if each.id == line.row)
     if not line.skipped:
-        return ()
+        return (f"told for {advice.told_for}",) if any(name in advice.spread for name in line.facts) else ()
     if row.section != "docket":
         return tuple(_guard(advice, row.shown_if, rules))
     return (f"only for {advice.knowledge.properties[row.recommends].of}",)

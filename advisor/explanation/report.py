@@ -1,5 +1,7 @@
 """The report of an advice: its sections in the order in which they are read."""
 
+from dataclasses import replace
+
 from advisor import __version__
 from advisor.advice import Advice
 from advisor.explanation import details, findings, first_screen
@@ -9,6 +11,7 @@ from advisor.explanation.reasons import why
 from advisor.explanation.ruling import Rules
 from advisor.explanation.variants import variants_section
 
+_OF_ONE_RUN = {"decisive", "why", "computed", "not_fired"}
 _THE_REST = (
     "Why each row stands, why not each class and product, every computation with its numbers, the rules that did not "
     "fire, what would change it, and the sources: add --full, or --markdown, --html FILE, --json."
@@ -20,7 +23,14 @@ def report(advice: Advice, *, full: bool = True) -> Report:
     title = advice.case.title or "A lubrication point without a name"
     about = f"{findings.about(advice)} gudgeon {__version__}."
     sections = _withheld(advice) if advice.withheld else _complete(advice) if full else _short(advice)
-    return Report(title, about, advice.state.value, tuple(each for each in sections if each is not None))
+    return Report(title, about, advice.state.value, tuple(_labelled(each, advice) for each in sections if each))
+
+
+def _labelled(section: Section, advice: Advice) -> Section:
+    """A section of derivations says for which run they are told, where something was left open."""
+    if not advice.told_for or section.id not in _OF_ONE_RUN:
+        return section
+    return replace(section, blocks=(*section.blocks, Para(f"Told for {advice.told_for}.")))
 
 
 def _withheld(advice: Advice) -> list[Section | None]:
@@ -42,7 +52,7 @@ def _short(advice: Advice) -> list[Section | None]:
     return [
         first_screen.state_section(advice, rules),
         first_screen.caution_section(advice, changes),
-        variants_section(advice),
+        variants_section(advice, full=False),
         first_screen.decisive_section(rows),
         findings.docket_section(rows),
         findings.shelf_section(advice, findings.shelf_verdicts(advice, rules), rules),
@@ -63,7 +73,7 @@ def _complete(advice: Advice) -> list[Section | None]:
     return [
         first_screen.state_section(advice, rules),
         first_screen.caution_section(advice, changes),
-        variants_section(advice),
+        variants_section(advice, full=True),
         first_screen.decisive_section(rows),
         findings.docket_section(rows),
         findings.shelf_section(advice, verdicts, rules),

@@ -1,12 +1,12 @@
 """Rules of a case in words: why one fired, or why it did not."""
 
 from collections.abc import Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from advisor.advice import Advice
 from advisor.conditions import Condition, Either, Every, FactRef, Record, failures, holds, waits_for
 from advisor.conditions.terms import Term, names
-from advisor.explanation.seeing import hides, instances_of, record_at
+from advisor.explanation.seeing import hides, instances_of, record_at, rules_seen
 from advisor.explanation.words import fill_in, say_failure, say_source, say_term, title_of
 from advisor.explanation.workings import HIDDEN, NotHere, Premise, premise
 from advisor.knowledge import Asks, Instance, Sets
@@ -94,19 +94,35 @@ class Rules:
         self.seen = instances_of(advice)
         self._said: dict[str, RuleReason] = {}
         self._premises: dict[str, Premise] = {}
+        self._of_runs: dict[str, Rules] = {}
 
     def reason(self, rule_id: str) -> RuleReason:
-        """A rule of this case in words.
+        """A rule of this case in words, from the first run in which it fired where something was left open.
 
         Raises:
             NotHere: where no visited step has that rule.
         """
         if rule_id not in self._said:
-            if rule_id not in self.seen:
+            label = self._fired_for(rule_id)
+            if label:
+                said = self._of_runs[label].reason(rule_id)
+                self._said[rule_id] = replace(said, saw=(f"for {label}", *said.saw))
+            elif rule_id in self.seen:
+                step, instance, _ = self.seen[rule_id]
+                self._said[rule_id] = self._say(step, instance)
+            else:
                 raise NotHere(f"'{rule_id}' is no rule of a step that this case went through.")
-            step, instance, _ = self.seen[rule_id]
-            self._said[rule_id] = self._say(step, instance)
         return self._said[rule_id]
+
+    def _fired_for(self, rule_id: str) -> str:
+        """The label of another run in which a rule fired that did not fire in this one; empty if there is none."""
+        if rule_id in self.seen and self.seen[rule_id][2] is True:
+            return ""
+        for label, run in self.advice.runs:
+            if any(outcome is True and instance.id == rule_id for _, instance, outcome in rules_seen(run)):
+                self._of_runs.setdefault(label, Rules(run))
+                return label
+        return ""
 
     def _say(self, step: str, instance: Instance) -> RuleReason:
         advice, knowledge = self.advice, self.advice.knowledge

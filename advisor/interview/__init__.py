@@ -17,6 +17,7 @@ from advisor.interview.outcome import (
     outcome_text,
     product_reasons,
     referrals_told,
+    variant_text,
 )
 from advisor.interview.session import Session
 from advisor.interview.wording import (
@@ -54,4 +55,5 @@ __all__ = [
     "row_shown",
     "rows_shown",
     "shown_value",
+    "variant_text",
 ]

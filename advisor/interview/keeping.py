@@ -14,7 +14,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from advisor import places
-from advisor.advice import Advice, Advisor
+from advisor.advice import Advice, Advisor, TooOpen
 from advisor.answers import Unsuitable, answer, read_case
 from advisor.case import Answer, Case
 from advisor.documents import Mapping, Node, Problems, Scalar, read_document, to_yaml, write_text_safely
@@ -204,7 +204,7 @@ def open_interview(advisor: Advisor, path: Path) -> "Session":
     tree = read_document(path, problems)
     if not isinstance(tree, Mapping) or problems.errors or str(tree.get("format", "")) != "1":
         raise Damaged(_moved_aside(path, problems))
-    case, notices = _case(path, tree, advisor.knowledge)
+    case, notices = _not_too_open(*_case(path, tree, advisor.knowledge), advisor)
     if "expect" in tree or "like" in tree:
         return copy_of(
             advisor,
@@ -246,6 +246,16 @@ def _case(path: Path, tree: Mapping, knowledge: Knowledge) -> tuple[Case, tuple[
         except Unsuitable as fault:
             notices.append(f"The answer to {name} was left out. {fault}")
     return Case(knowledge.point_kind.id, str(tree.get("title", path.stem)), answers), tuple(notices)
+
+
+def _not_too_open(case: Case, notices: tuple[str, ...], advisor: Advisor) -> tuple[Case, tuple[str, ...]]:
+    """The case without the last answers that leave too much open together; that is told."""
+    for name in reversed([name for name, each in case.answers.items() if each.left_open]):
+        try:
+            advisor.advise(case)
+        except TooOpen as fault:
+            case, notices = case.without(name), (*notices, f"The answer to {name} was left out. {fault}")
+    return case, notices
 
 
 def _texts(node: Node | None) -> list[str]:

@@ -1,11 +1,12 @@
 """What came out in a few words: the count, the reason beside each product, outcome, cautions, referrals."""
 
 from collections.abc import Mapping
+from textwrap import shorten
 
-from advisor.advice import Advice, Ranked, State
+from advisor.advice import Advice, Ranked, State, said_at
 from advisor.conditions import Coded, Member, Ticked
 from advisor.explanation.contrasts import VERDICTS
-from advisor.explanation.seeing import instances_of
+from advisor.explanation.seeing import deciding_run, instances_of
 from advisor.explanation.words import fill_in, say_value
 from advisor.interview.wording import asked, short_title
 from advisor.knowledge import Instance
@@ -25,7 +26,7 @@ def product_reasons(advice: Advice) -> list[str]:
 
 def _product_reason(whole: Advice, ranked: Ranked, known: Known) -> str:
     """What decides about a product, with the numbers: the first thing it misses, else the film it makes."""
-    advice = _where_so_judged(whole, ranked)
+    advice = deciding_run(whole, ranked.place)
     if advice.judgement is None:
         return ""
     missed = advice.judgement.shortfalls(ranked.place)
@@ -34,27 +35,21 @@ def _product_reason(whole: Advice, ranked: Ranked, known: Known) -> str:
         wanted = [each for each in wanted if each.seen is not None] or wanted
     if wanted and ranked.verdict in {Verdict.FALLS_SHORT, Verdict.UNPROVEN, Verdict.SECOND_BEST}:
         return _missed(advice, wanted[0], known)
-    return _film(advice, ranked) or (
-        "nothing missed so far" if ranked.verdict is Verdict.STILL_IN else "misses nothing"
-    )
-
-
-def _where_so_judged(advice: Advice, ranked: Ranked) -> Advice:
-    """The variant in which the product has this verdict."""
-    ends = [end for branch in advice.branches for end in (branch.advice, branch.other_end) if end is not None]
-    return next(
-        (end for end in ends for each in end.shelf if each.item == ranked.item and each.verdict is ranked.verdict),
-        advice,
-    )
+    return _film(whole, ranked) or ("nothing missed so far" if ranked.verdict is Verdict.STILL_IN else "misses nothing")
 
 
 def _film(advice: Advice, ranked: Ranked) -> str:
-    kappa = advice.judgement.columns.get("kappa") if advice.judgement else None
-    seen = kappa.values[ranked.place] if kappa else None
-    if not isinstance(seen, float):
+    """The film that a product makes; where something was left open, the lowest to the highest."""
+    columns = [
+        run.judgement.columns["kappa"] for run in advice.single if run.judgement and "kappa" in run.judgement.columns
+    ]
+    seen = [value for column in columns if isinstance(value := column.values[ranked.place], float)]
+    if not seen:
         return ""
-    musts = [each.test for each in advice.specification.demands if each.must and each.property == "kappa"]
-    return f"kappa {show(seen, '')}" + (f", asked {asked(advice.knowledge.domain('kappa'), musts)}" if musts else "")
+    demands = (each for run in advice.single for each in run.specification.demands)
+    musts = [each.test for each in demands if each.must and each.property == "kappa"]
+    said = " to ".join(dict.fromkeys((show(min(seen), ""), show(max(seen), ""))))
+    return f"kappa {said}" + (f", asked {asked(advice.knowledge.domain('kappa'), musts)}" if musts else "")
 
 
 def _missed(advice: Advice, shortfall: Shortfall, known: Known) -> str:
@@ -107,10 +102,30 @@ def outcome_text(advice: Advice) -> str:
         found.append(
             f"Worked out for {len(advice.branches)} variants: {' | '.join(each.label for each in advice.branches)}."
         )
+    elif advice.held_over:
+        found.append(f"This holds for {advice.held_over} as one.")
     found += [f"Cannot be had together: {', '.join(conflict.rules)}." for conflict in advice.conflicts]
     return " ".join(found)
 
 
+def variant_text(advice: Advice, number: int) -> str:
+    """Which variant this is, in few words; 0 is what all of them share."""
+    count = len(advice.branches)
+    if not number:
+        return f"what {count} variants share" if count else ""
+    branch = advice.branches[number - 1]
+    said = []
+    for name, value in branch.settings.items():
+        domain = advice.knowledge.domain(name)
+        ends = branch.stretch if advice.span is not None and name == advice.span.fact else None
+        if ends is not None:
+            said.append(" to ".join(dict.fromkeys(said_at(each, domain) for each in ends)))
+        else:
+            said.append(shorten(say_value(domain, value), _SHORT, placeholder=" ..."))
+    return f"variant {number} of {count}: {', '.join(said)}"
+
+
+_SHORT = 26
 _STATES = {
     State.SETTLED: "Settled.",
     State.OPEN: "Still open.",

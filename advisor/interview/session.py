@@ -50,6 +50,7 @@ class Session:
         self._changes = list(self._remembered())
         self._postponed: list[str] = []
         self._chosen: str | None = None
+        self.variant = 0  # which variant is looked at; 0 is the whole
         self.advice = self.before = advisor.advise(self.case)
 
     # ---- questions in turn -------------------------------------------------------------------------------------
@@ -160,7 +161,17 @@ class Session:
         self.history.append(f"{self.clock():%Y-%m-%d %H:%M} {what}")
         self._postponed = [name for name in self._postponed if name in self.open]
         self._chosen = chosen
+        self.variant = 0
         self.save()
+
+    @property
+    def shown(self) -> Advice:
+        """The advice that is looked at: the whole over all that was left open, or that of one variant."""
+        return self.advice.branches[self.variant - 1].advice if self.variant else self.advice
+
+    def next_variant(self) -> None:
+        """Look at the next variant; after the last one at the whole again."""
+        self.variant = (self.variant + 1) % (len(self.advice.branches) + 1)
 
     # ---- moving about ------------------------------------------------------------------------------------------
 
@@ -274,9 +285,8 @@ class Session:
                     answers[name] = answer(self.knowledge.facts[name], typed, strict=False)
                 except Unsuitable:
                     return
-        if {name: each.value for name, each in answers.items()} == {
-            name: each.value for name, each in self.case.answers.items()
-        }:
+        given = self.case.answers
+        if answers.keys() == given.keys() and all(each.says(given[name]) for name, each in answers.items()):
             self.case = Case(self.case.point_kind, self.case.title, answers)
             yield from changes
 

@@ -8,6 +8,8 @@ from advisor.advice import Advice, Line, falls_on
 from advisor.answers import DONT_KNOW
 from advisor.case import Answer
 from advisor.conditions import Bound, Condition, Domain, Either, Every, Member, Stated, Ticked, Value
+from advisor.explanation.reasons import differing, everywhere
+from advisor.explanation.seeing import say_known
 from advisor.explanation.words import say_value
 from advisor.knowledge import Declaration, Knowledge
 from advisor.specification import STRONG, Demand
@@ -46,7 +48,7 @@ def row_shown(advice: Advice, line: Line) -> RowShown:
         )
     recommends = next((row.recommends for row in advice.knowledge.docket if row.id == line.row), "")
     if recommends:
-        return RowShown(line.row, line.title, _choices(advice.knowledge.domain(recommends), line), rules)
+        return RowShown(line.row, line.title, _choices(advice, advice.knowledge.domain(recommends), line), rules)
     return RowShown(line.row, line.title, demands_text(advice, line.demands) or "nothing asked", rules)
 
 
@@ -66,13 +68,19 @@ def _narrowed(advice: Advice, line: Line) -> str:
     return f"{every - len(line.barred)} of {every} left"
 
 
-def _choices(domain: Domain, line: Line) -> str:
+def _choices(advice: Advice, domain: Domain, line: Line) -> str:
     said = " / ".join(f"{each:g}" if isinstance(each, float) else domain.label(each) for each in line.values)
     if line.differs:
-        return f"{said}, in every variant" if said else "differs between the variants"
+        return f"{said}, {everywhere(advice)}" if said else f"{differing(advice)}{_between(advice, line)}"
     if len(line.values) == len(domain.choices) > 1:
         return "any"
     return said or "no choice is left"
+
+
+def _between(advice: Advice, line: Line) -> str:
+    """Between which grades a row lies that the runs of a case do not share."""
+    found = [each for run in advice.single for each in run.line(line.row).values if isinstance(each, float)]
+    return f": {min(found):g} to {max(found):g}" if found else ""
 
 
 # ---- demands ---------------------------------------------------------------------------------------------------
@@ -162,7 +170,7 @@ def quantities_text(advice: Advice) -> str:
     known = [
         (line.title, text)
         for line in advice.quantities
-        if not line.skipped and not line.waits and (text := "differs" if line.differs else _facts(advice, line.facts))
+        if not line.skipped and not line.waits and (text := _figure(advice, line))
     ]
     waits = [name for line in advice.quantities for name in line.waits]
     parts = [f"{title} {text}" for title, text in known]
@@ -173,6 +181,15 @@ def quantities_text(advice: Advice) -> str:
             else f"waits for {_first_waited(advice.knowledge, waits)}"
         )
     return "; ".join(parts) or "none shown here"
+
+
+def _figure(advice: Advice, line: Line) -> str:
+    """A figure; where the runs of a case do not agree on it, the lowest to the highest."""
+    if not any(name in advice.spread for name in line.facts):
+        text = _facts(advice, line.facts)
+    else:
+        text = ", ".join(dict.fromkeys(say_known(advice, name) for name in line.facts))
+    return f"{text} where given" if text and line.differs else text
 
 
 def _facts(advice: Advice, names: Sequence[str]) -> str:

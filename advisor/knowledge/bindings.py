@@ -30,7 +30,7 @@ class Bindings:
         """What computes a fact, and the domain that follows from it."""
         facts_only = replace(self, properties={})
         if shape.formula is not None and shape.looked_up is None:
-            formed, domain = facts_only.formed(shape.formula, tree, scope)
+            formed, domain = facts_only.formed(shape.formula, tree, tree.mark, scope)
             if shape.limits:
                 domain = replace(domain, low=shape.limits[0], high=shape.limits[1])
             return formed, domain
@@ -41,7 +41,7 @@ class Bindings:
         return None, Domain("number")
 
     def of_property(
-        self, shape: PropertyShape, tree: Mapping, domain: Domain, scope: Scope
+        self, shape: PropertyShape, tree: Mapping, mark: Mark, domain: Domain, scope: Scope
     ) -> Formed | LookedUp | WorstOf | None:
         """What computes a property, if anything does."""
         ways = [way for way in ("formula", "looked_up", "worst_of", "concluded") if getattr(shape, way) is not None]
@@ -50,20 +50,20 @@ class Bindings:
                 tree.key_marks[ways[-1]], f"a property is found in one way, not by {' and '.join(ways)}", "keep one"
             )
         if shape.formula is not None:
-            formed, found = self.formed(shape.formula, tree, scope)
+            formed, found = self.formed(shape.formula, tree, mark, scope)
             if formed is not None and (domain.kind != "number" or (found.unit and found.unit != domain.unit)):
                 scope.problem(tree["formula"].mark, f"{shape.formula} gives a number in {found.unit or 'no unit'}")
             return formed
         if shape.looked_up is not None:
-            return self._reads(shape.looked_up, tree, domain, scope)
+            return self._reads(shape.looked_up, tree, tree, domain, scope)
         if shape.worst_of is not None:
             pairs = zip(shape.worst_of, list_in(tree, "worst_of"), strict=True)
-            parts = [self._reads(part.looked_up, node, domain, scope) for part, node in pairs]
+            parts = [self._reads(part.looked_up, node, tree, domain, scope) for part, node in pairs]
             return WorstOf(tuple(part for part in parts if part is not None))
         return None
 
-    def formed(self, name: str, tree: Mapping, scope: Scope) -> tuple[Formed | None, Domain]:
-        """A formula with its inputs, and the domain of its result."""
+    def formed(self, name: str, tree: Mapping, mark: Mark, scope: Scope) -> tuple[Formed | None, Domain]:
+        """A formula with its inputs, and the domain of its result; what it is for stands at the mark."""
         formula, node = FORMULAS.get(name), tree.get("in")
         if formula is None:
             hint = nearest(name, FORMULAS).strip() or "'gudgeon compute' lists them"
@@ -71,7 +71,7 @@ class Bindings:
             return None, Domain("number")
         domain = Domain("number", self._unit(formula, mapping_in(node)))
         if not isinstance(node, Mapping):
-            at = node.mark if node is not None else tree["formula"].mark
+            at = node.mark if node is not None else mark
             scope.problem(at, f"formula {name} needs its inputs", "in: {input: fact or number}")
             return None, domain
         wanted = {each.name: each for each in formula.inputs}
@@ -139,18 +139,24 @@ class Bindings:
         if not table.matrix and column not in table.columns:
             at = node["column"].mark if "column" in node else node.mark
             message = f"'{column}' is no column of table {table.id}" if column else "the column to be read is missing"
-            scope.problem(at, message, nearest(column, table.columns).strip() or f"it has {', '.join(table.columns)}")
+            scope.stranger(at, column, message, table.columns, f"it has {', '.join(table.columns)}")
             return None
         otherwise = self._otherwise(node, domain, scope)
         return LookedUp(shape.table, by, column, shape.combine or "", otherwise) if by else None
 
-    def _reads(self, shape: LookUpShape, node: Node, domain: Domain, scope: Scope) -> LookedUp | None:
+    def _reads(
+        self, shape: LookUpShape, node: Node, owner: Mapping, domain: Domain, scope: Scope
+    ) -> LookedUp | None:
         """The look-up of a property; every value that it can find must be one that the property may have."""
         how = self.looked_up(shape, mapping_in(node, "looked_up"), domain, scope)
-        for mark, found in self._found(how) if how else ():
+        name, declared = scope.trail[-1], bool(self._column(shape).choices)
+        for row, found in self._found(how) if how else ():
             if not domain.accepts(found):
-                message = f"'{found}' is read from here for {scope.trail[-1]}, which cannot be that"
-                scope.problem(mark, message, nearest(str(found), domain.choices).strip() or "check both declarations")
+                at, message = row, f"'{found}' is read from here for {name}, which cannot be that"
+                if declared:
+                    at = owner.key_marks.get("choices", row)
+                    message = f"'{found}' is a choice in table {shape.table}, from which {name} is read, and not here"
+                scope.stranger(at, str(found), message, domain.choices, "check both declarations")
         return how
 
     def _found(self, how: LookedUp) -> Iterator[tuple[Mark, Value]]:
@@ -188,8 +194,8 @@ class Bindings:
     def _pair(self, table: Table, column: str, name: Node, by: Node, scope: Scope) -> bool:
         if column not in table.columns:
             at = by.key_marks[column] if isinstance(by, Mapping) else by.mark
-            hint = nearest(column, table.columns).strip() or f"it has {', '.join(table.columns)}"
-            scope.problem(at, f"'{column}' is no column of table {table.id}", hint)
+            hint = f"it has {', '.join(table.columns)}"
+            scope.stranger(at, column, f"'{column}' is no column of table {table.id}", table.columns, hint)
             return False
         domain = self.facts.get(str(name)) or self.properties.get(str(name))
         if not isinstance(name, Scalar) or domain is None or scope.lost.has("names", str(name)):

@@ -95,7 +95,6 @@ class CrossChecks:
                 if step == "closing":
                     _closes(tree, scope)
         self._may_conflict()
-        self._procedures()
 
     def _may_conflict(self) -> None:
         for rule in self.knowledge.rules.values():
@@ -105,15 +104,6 @@ class CrossChecks:
                     mark = place_of(other, self.rules[rule.id]["may_conflict"])
                     message, known = f"'{other}' is no rule", self.knowledge.rules
                     scope.unknown(mark, "rules", other, message, known, "name a rule by its id")
-
-    def _procedures(self) -> None:
-        """Each way of changing over has its steps."""
-        change_over = self.knowledge.properties.get("change_over")
-        for choice in change_over.domain.choices if change_over else ():
-            if change_over and choice not in self.knowledge.procedures:
-                message = f"cautions.yaml has no steps for the change-over '{choice}'"
-                scope = self.ground.over({}, "properties", "change_over")
-                scope.unknown(change_over.mark, "procedures", choice, message, (), "add them under 'change_over'")
 
 
 def _ready(knowledge: Knowledge, order: Map[str, int]) -> dict[str, int]:

@@ -27,11 +27,12 @@ def domains_of(
     for name, placed in raw.items():
         shape, scope = placed.shape, ground.at(name)
         before = len(scope.problems)
-        domain = column_domain(shape, placed.tree, labels, scope)
+        domain = column_domain(shape, placed.tree, placed.parent.key_marks[name], labels, scope)
         if domain.kind == "item":
             domain = replace(domain, choices={**items, **domain.choices}, open_choices=scope.lost.may_have("items", ""))
         borrowed = shape.choices_of is None or shape.choices_of in labels
-        if domain.kind in {"choice", "scale", "several"} and not domain.choices and borrowed:
+        sound = len(scope.problems) == before
+        if sound and domain.kind in {"choice", "scale", "several"} and not domain.choices and borrowed:
             scope.problem(placed.tree["kind"].mark, f"a {domain.kind} needs its choices", "list them under 'choices:'")
         found[name] = replace(domain, step=_step(placed.tree, scope))
         if len(scope.problems) > before or not borrowed:
@@ -45,7 +46,7 @@ def _step(tree: Mapping, scope: Scope) -> Step | None:
         return None
     if isinstance(node, Mapping) and len(node) == 1:
         kind, size = next(iter(node.items()))
-        if kind == "places":
+        if kind == "places" and isinstance(size, Scalar) and str(size) == "yes":
             return Step("places")
         if kind in {"absolute", "ratio"}:
             return _sized(kind, size, scope)
@@ -97,6 +98,7 @@ class FactReader:
                 "a fact has exactly one of question, concluded and tunable",
                 f"this one has {' and '.join(kinds) or 'none'}",
             )
+            scope.lost.lose("names", name)
         self.citations.read(shape.source, tree, scope)
         question = self._question(shape, tree, scope)
         if scope.lost.has("names", name):
@@ -110,7 +112,7 @@ class FactReader:
             assume=self._assumption(shape.assume, tree.get("assume"), domain, scope.at("assume")),
             unasked=self._unasked(shape, tree, domain, asked, scope.at("unasked")),
             filled=self._filled(shape, tree, domain, asked, scope.at("filled")),
-            concluded=concluded(shape.concluded, tree.get("concluded"), domain, scope.at("concluded")),
+            concluded=concluded(name, shape.concluded, tree.get("concluded"), domain, scope.at("concluded")),
             tunable=self._assumption(shape.tunable, tree.get("tunable"), domain, scope.at("tunable")),
         )
 
@@ -194,8 +196,10 @@ class FactReader:
         return FromItem(name, wanted, value(node["otherwise"], domain, scope))
 
 
-def concluded(shape: ConcludedShape | None, node: Node | None, domain: Domain, scope: Scope) -> Concluded | None:
-    """What a concluded fact or property starts from."""
+def concluded(
+    name: str, shape: ConcludedShape | None, node: Node | None, domain: Domain, scope: Scope
+) -> Concluded | None:
+    """What a concluded fact or property starts from; one of which that is not known is lost."""
     if shape is None or not isinstance(node, Mapping):
         return None
     if shape.combine != "one" and not domain.ordered:
@@ -204,6 +208,7 @@ def concluded(shape: ConcludedShape | None, node: Node | None, domain: Domain, s
     try:
         return Concluded(value(node["otherwise"], domain, scope), shape.combine)
     except Mistyped:
+        scope.lost.lose("names", name)
         return None
 
 
@@ -214,6 +219,7 @@ def read_properties(
     found: dict[str, Property] = {}
     for name, placed in raw.items():
         shape, tree, domain = placed.shape, placed.tree, bindings.properties[name]
+        mark = placed.parent.key_marks[name]
         scope = ground.over(bindings.properties, "properties", name, what="property")
         citations.read(shape.source, tree, scope)
         sound = not scope.lost.has("names", name)
@@ -221,12 +227,12 @@ def read_properties(
             name,
             shape.title,
             domain,
-            placed.parent.key_marks[name],
+            mark,
             shape.of or "",
             shape.test,
             shape.hidden,
-            bindings.of_property(shape, tree, domain, scope) if sound else None,
-            concluded(shape.concluded, tree.get("concluded"), domain, scope.at("concluded")) if sound else None,
+            bindings.of_property(shape, tree, mark, domain, scope) if sound else None,
+            concluded(name, shape.concluded, tree.get("concluded"), domain, scope.at("concluded")) if sound else None,
             _same_item(shape, tree, bindings.facts, scope.at("same")),
         )
     return found

@@ -29,17 +29,41 @@ from advisor.knowledge.schema import (
 Sections = Mapping[str, Space | None]
 
 
-class TableUseShape(Shape):
-    """A table, and the columns of it that a code reads."""
+class DinLowerShape(Shape):
+    """The table of lower temperatures, and the columns of it that a code reads."""
 
     table: Id
-    letter: Id | None = None
-    upper: Id | None = None
-    lower: Id | None = None
-    water_test: Id | None = None
-    rating_to: Id | None = None
-    environment: Id | None = None
-    rust: Id | None = None
+    lower: Id
+
+
+class LowerShape(DinLowerShape):
+    """The same with a letter for each."""
+
+    letter: Id
+
+
+class UpperShape(Shape):
+    """The table of upper temperatures."""
+
+    table: Id
+    letter: Id
+    upper: Id
+
+
+class DinUpperShape(UpperShape):
+    """The same with the water test that goes with each letter."""
+
+    water_test: Id
+    rating_to: Id
+
+
+class WaterGridShape(Shape):
+    """The table of water symbols."""
+
+    table: Id
+    letter: Id
+    environment: Id
+    rust: Id
 
 
 class LettersShape(Shape):
@@ -71,8 +95,6 @@ class StandardShape(Shape):
     written: Text
     need: Name
     cold: Name
-    upper: TableUseShape
-    lower: TableUseShape
     nlgi: Name
     source: Citations = Field(default_factory=list)
 
@@ -81,6 +103,8 @@ class DinShape(StandardShape):
     """DIN 51825."""
 
     kind: Text
+    upper: DinUpperShape
+    lower: DinLowerShape
     water_test: Name
     water_rating: Name
     rating_at_most: Number
@@ -93,7 +117,9 @@ class IsoShape(StandardShape):
 
     prefix: Text
     water: Name
-    water_grid: TableUseShape
+    upper: UpperShape
+    lower: LowerShape
+    water_grid: WaterGridShape
     load: LoadSymbolShape
     none_when: Tree = None
 

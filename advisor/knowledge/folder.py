@@ -1,13 +1,13 @@
 """The files of a knowledge folder, read into shapes; and the folder's fingerprint."""
 
 import hashlib
-from collections.abc import Iterator
+from collections.abc import Collection, Iterator
 from collections.abc import Mapping as Map
 from dataclasses import dataclass, field
 from pathlib import Path
 from typing import Generic, TypeVar
 
-from advisor.documents import Mapping, Problem, Problems, nearest
+from advisor.documents import Mapping, Node, Problem, Problems, closest, nearest
 from advisor.knowledge.files import (
     MAY_HAVE,
     SHAPES,
@@ -54,6 +54,7 @@ class Folder:
     root: Path
     problems: Problems
     lost: Lost = field(default_factory=Lost)
+    trees: list[Node] = field(default_factory=list)
     files: dict[str, tuple[File, Mapping]] = field(default_factory=dict)
     kinds: dict[str, PointKindShape] = field(default_factory=dict)
     steps: tuple[str, ...] = ()
@@ -71,7 +72,7 @@ class Folder:
 
     def keep(self, name: str, shape: type[Filed]) -> tuple[Filed, Mapping] | None:
         """Read a file and keep it."""
-        found = read_file(self.root / name, shape, self.problems, self.lost)
+        found = read_file(self.root / name, shape, self.problems, self.lost, self.trees)
         if found is not None:
             self.files[name] = found
         return found
@@ -100,7 +101,7 @@ def read_folder(root: Path, point_kind: str, shelf: Path | None, problems: Probl
     _read_properties(folder)
     _read_facts(folder, "facts.yaml")
     _read_kind(folder, point_kind)
-    folder.shelf = read_file(shelf or root / "shelf" / "demo.yaml", ShelfFile, problems, folder.lost)
+    folder.shelf = read_file(shelf or root / "shelf" / "demo.yaml", ShelfFile, problems, folder.lost, folder.trees)
     if folder.shelf is None:
         folder.lost.lose_whole("items")
     return folder
@@ -189,7 +190,7 @@ def _listed(shapes: list[T], tree: Mapping, section: str, step: str, kind: str) 
 def _strays(folder: Folder) -> None:
     """Files that nothing reads: a misspelt name would otherwise drop its rules silently."""
     places = {"common", *(kind.folder for kind in folder.kinds.values())}
-    stems = [*folder.steps, "facts"]
+    stems, misspelt = [*folder.steps, "facts"], dict[str, Path]()
     for path in sorted(folder.root.rglob("*")):
         parts = path.relative_to(folder.root).parts
         if not path.is_file() or path.name == "README.md" or any(part.startswith(".") for part in parts):
@@ -201,8 +202,27 @@ def _strays(folder: Folder) -> None:
             else path.suffix == ".yaml" and (place in {"tables", "shelf"} or (place in places and path.stem in stems))
         )
         if not known:
-            near = nearest(path.stem, stems).strip() if place in places else ""
+            near = closest(path.stem, stems) if place in places else ""
             if place in places or place == "tables":
                 folder.lost.lose_whole("tables" if place == "tables" else "names", "rules")
-            hint = near or "rename it, or take it out"
+            if step := _misspelt_step(folder, path.stem, near, places):
+                misspelt.setdefault(step, path)
+                continue
+            hint = f"Did you mean '{near}'?" if near else "rename it, or take it out"
             folder.problems.add(Problem(str(path), 1, 1, (), "nothing reads this file", hint))
+    for step, path in misspelt.items():
+        mark = mapping_in(folder.files["steps.yaml"][1], "steps").key_marks[step]
+        message = f"no file holds the step '{step}', while nothing reads {path}"
+        folder.problems.add(Problem.at(mark, message, f"Is '{path.stem}' meant here?", ("steps",)))
+
+
+def _misspelt_step(folder: Folder, stem: str, near: str, places: Collection[str]) -> str:
+    """The step without a file that is misspelt, if a file that nothing reads shows how it should be called.
+
+    Its title says so, or the same name on several files.
+    """
+    steps = folder.kept("steps.yaml", StepsFile)
+    own, files = (sum((folder.root / each / f"{name}.yaml").exists() for each in places) for name in (near, stem))
+    if steps is None or near not in folder.steps or own:
+        return ""
+    return near if files > 1 or steps[0].steps[near].title.lower().replace(" ", "_") == stem else ""

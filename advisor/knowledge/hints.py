@@ -47,6 +47,9 @@ _CODE = {
     "nlgi": "The property that holds the NLGI class.",
     "source": _SOURCE,
 }
+_LETTER = "The column with the letter."
+_LOWER = {"table": _TABLE, "lower": "The column with the lower temperature, °C."}
+_UPPER = {"table": _TABLE, "letter": _LETTER, "upper": "The column with the upper temperature, °C."}
 _LETTERS = {"property": "The property that decides.", "values": "The values for which the letter is printed."}
 
 HINTS: Mapping[str, Mapping[str, str]] = {
@@ -206,13 +209,17 @@ HINTS: Mapping[str, Mapping[str, str]] = {
     },
     "PointKindShape": {"title": "What people call it.", "folder": "The folder with its facts and steps."},
     "PurposeShape": {"title": "What the step is called.", "for": "What the step settles."},
-    "TableUseShape": {
-        "table": _TABLE,
-        "letter": "The column with the letter.",
-        "upper": "The column with the upper temperature, °C.",
-        "lower": "The column with the lower temperature, °C.",
+    "DinLowerShape": _LOWER,
+    "LowerShape": {**_LOWER, "letter": _LETTER},
+    "UpperShape": _UPPER,
+    "DinUpperShape": {
+        **_UPPER,
         "water_test": "The column with the temperature of the water test, °C.",
         "rating_to": "The column with the worst rating that still counts.",
+    },
+    "WaterGridShape": {
+        "table": _TABLE,
+        "letter": _LETTER,
         "environment": "The column with the presence of water.",
         "rust": "The column with the protection against rust.",
     },

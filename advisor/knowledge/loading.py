@@ -1,5 +1,6 @@
 """From a knowledge folder to knowledge: read, type, resolve, cross-check; every fault at once."""
 
+from collections.abc import Iterable
 from collections.abc import Mapping as Map
 from dataclasses import replace
 from pathlib import Path
@@ -20,6 +21,7 @@ from advisor.knowledge.files import (
     UsualOilsFile,
 )
 from advisor.knowledge.folder import Folder, fingerprint, read_folder
+from advisor.knowledge.misspelt import told_where_misspelt
 from advisor.knowledge.model import Computation, DocketRow, Fork, Instance, Knowledge, PointKind, Rule, Step, UsualOils
 from advisor.knowledge.particulars import Cautions, Particulars
 from advisor.knowledge.products import items_of, read_products
@@ -67,11 +69,12 @@ def examine(root: Path, point_kind: str, shelf: Path | None, problems: Problems)
     folder = read_folder(root, point_kind, shelf, found)
     knowledge = _Loader(folder, point_kind).knowledge() if folder is not None else None
     known = set(problems)
-    problems.extend(problem for problem in _thinned(found) if problem not in known)
+    told = told_where_misspelt(found, folder.trees if folder is not None else ())
+    problems.extend(problem for problem in _thinned(told) if problem not in known)
     return None if found.errors else knowledge
 
 
-def _thinned(problems: Problems) -> list[Problem]:
+def _thinned(problems: Iterable[Problem]) -> list[Problem]:
     """The problems; of many that say the same, as after the loss of a declaration, the first few."""
     alike: dict[str, list[Problem]] = {}
     for problem in problems:

@@ -4,8 +4,10 @@ from collections.abc import Iterable
 from dataclasses import dataclass, field
 from typing import Literal
 
-Space = Literal["sources", "tables", "names", "cautions", "referrals", "rules", "procedures", "items", "rows"]
-"""What a name names; facts and properties share one space, and a table may have lost some of its rows."""
+Space = Literal[
+    "sources", "tables", "names", "cautions", "referrals", "rules", "procedures", "items", "rows", "choices",
+]  # fmt: skip
+"""What a name names; facts and properties share one space; a table may have lost some of its rows or ids."""
 
 
 @dataclass(slots=True)

@@ -3,7 +3,7 @@
 from collections.abc import Mapping as Map
 
 from advisor.conditions import Domain, Value
-from advisor.documents import Mapping, Node, Scalar, Sequence, nearest
+from advisor.documents import Mapping, Mark, Scalar, Sequence
 from advisor.knowledge.citations import Citations
 from advisor.knowledge.folder import Placed
 from advisor.knowledge.model import Table
@@ -21,14 +21,17 @@ def read_matrix(
 ) -> Table:
     """A matrix; raises Unusable where its sides or its values are not known."""
     shape, tree = placed.shape, placed.tree
-    sides, kinds = _listed(tree, "of", labels, scope), _listed(tree, "values", labels, scope)
+    mark = placed.parent.key_marks[name]
+    sides, kinds = _listed(tree, "of", mark, labels, scope), _listed(tree, "values", mark, labels, scope)
     if not isinstance(tree["rows"], Mapping):
         scope.problem(tree["rows"].mark, "the rows of a matrix are a mapping", "rows: {a: {a: C, b: T}, b: {b: C}}")
     if not sides or not kinds or not isinstance(tree["rows"], Mapping):
         raise Unusable
     values = Domain("choice", choices=kinds)
+    before = len(scope.problems)
     cells = _cells(mapping_in(tree, "rows"), sides, values, scope)
-    _complete(tree, cells, sides, scope)
+    if len(scope.problems) == before:
+        _complete(tree, cells, sides, scope)
     side = Domain("choice", choices=sides)
     return Table(
         name,
@@ -72,7 +75,7 @@ def _complete(tree: Mapping, cells: Map[tuple[str, str], Value], sides: Map[str,
     rows, order = mapping_in(tree, "rows"), list(sides)
     for place, left in enumerate(order):
         blank = [right for right in order[place:] if (left, right) not in cells]
-        if blank and not (left in rows and not isinstance(rows[left], Mapping)):
+        if blank:
             at = next((each for each in order[place:] if each in rows), None)
             mark = rows.key_marks[at] if at else tree.key_marks["rows"]
             pairs = ", ".join(f"{left} x {right}" for right in blank[:3])
@@ -82,23 +85,21 @@ def _complete(tree: Mapping, cells: Map[tuple[str, str], Value], sides: Map[str,
 
 def _known_side(name: str, parent: Mapping, sides: Map[str, str], scope: Scope) -> None:
     if name not in sides:
-        scope.problem(
-            parent.key_marks[name], f"'{name}' is no row or column of this matrix", nearest(name, sides).strip()
-        )
+        scope.stranger(parent.key_marks[name], name, f"'{name}' is no row or column of this matrix", sides)
 
 
-def _listed(tree: Mapping, key: str, labels: Map[str, Map[str, str]], scope: Scope) -> dict[str, str]:
+def _listed(tree: Mapping, key: str, mark: Mark, labels: Map[str, Map[str, str]], scope: Scope) -> dict[str, str]:
     """The ids that 'of' or 'values' lists; empty where they cannot be known."""
-    node: Node = tree.get(key) or tree
-    within = mapping_in(node)
+    within = mapping_in(tree, key)
     choices, table = within.get("choices"), within.get("choices_of")
     if isinstance(choices, Sequence) and choices and all(isinstance(each, Scalar) for each in choices):
         return {str(each): str(each) for each in choices}
-    if isinstance(choices, Mapping) and choices and key in tree:
+    if isinstance(choices, Mapping) and choices:
         return {each: str(label) for each, label in choices.items()}
-    if isinstance(table, Scalar) and key in tree:
+    if isinstance(table, Scalar):
         if str(table) not in labels:
             scope.unknown(table.mark, "tables", str(table), f"'{table}' is no table", labels)
         return dict(labels.get(str(table), {}))
-    scope.problem(node.mark, f"a matrix lists its ids under '{key}'", f"{key}: {{choices: [a, b]}}")
+    mark = tree[key].mark if key in tree else mark
+    scope.problem(mark, f"a matrix lists its ids under '{key}'", f"{key}: {{choices: [a, b]}}")
     return {}

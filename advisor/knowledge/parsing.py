@@ -31,6 +31,8 @@ def condition(node: Node, scope: Scope) -> Condition:
         return ALWAYS
     if not isinstance(node, Mapping):
         raise scope.fault(node, "a condition is written as 'name: test'", "for instance {water_exposure: wash}")
+    if not node:
+        raise scope.fault(node, "the condition is empty", "name what it asks, or write 'always'")
     return _all([lambda name=name, test=test: _entry(node, name, test, scope) for name, test in node.items()], Every)  # type: ignore[misc]
 
 
@@ -168,8 +170,8 @@ def _cell(node: Scalar, domain: Domain, scope: Scope) -> Value:
     if scope.table is None or scope.row is None:
         raise scope.fault(node, "{row: ...} needs 'each_row_of'", "name the table with each_row_of")
     if name not in scope.table.columns:
-        hint = nearest(name, scope.table.columns).strip() or f"it has {', '.join(scope.table.columns)}"
-        raise scope.fault(node, f"'{name}' is no column of table {scope.table.id}", hint)
+        message, hint = f"'{name}' is no column of table {scope.table.id}", f"it has {', '.join(scope.table.columns)}"
+        raise scope.stranger(node.mark, name, message, scope.table.columns, hint)
     column = scope.table.columns[name]
     if domain.kind == "number" and (column.kind != "number" or column.unit != domain.unit):
         raise scope.fault(
@@ -186,5 +188,5 @@ def _cell(node: Scalar, domain: Domain, scope: Scope) -> Value:
         if any(problem.mark == node.mark for problem in scope.problems):
             raise Mistyped
         message = f"'{cell}' in row '{scope.row.id}' (line {scope.row.mark.line}) is not one of the choices here"
-        raise scope.fault(node, message, nearest(str(cell), domain.choices).strip() or "check both declarations")
+        raise scope.stranger(node.mark, str(cell), message, domain.choices, "check both declarations")
     return cell

@@ -6,7 +6,7 @@ from contextlib import suppress
 from dataclasses import dataclass
 
 from advisor.conditions import ALWAYS, Condition, Domain, Value
-from advisor.documents import Mapping, Node, Scalar
+from advisor.documents import Mapping, Mark, Node, Scalar, closest
 from advisor.knowledge.citations import Citations
 from advisor.knowledge.files import CautionsFile, DesignationsFile, DocketFile, ForksFile, UsualOilsFile
 from advisor.knowledge.model import Caution, DocketRow, Fork, Procedure, Table, UsualOils
@@ -34,7 +34,7 @@ class Particulars:
         return (
             self._warnings(shape.cautions, mapping_in(tree, "cautions"), "cautions"),
             self._warnings(shape.referrals, mapping_in(tree, "referrals"), "referrals"),
-            self._procedures(shape, mapping_in(tree, "change_over")),
+            self._procedures(shape, mapping_in(tree, "change_over"), tree.key_marks.get("change_over", tree.mark)),
         )
 
     def _warnings(self, shapes: Map[str, CautionShape], parent: Mapping, part: str) -> dict[str, Caution]:
@@ -50,13 +50,19 @@ class Particulars:
             for name, shape in shapes.items()
         }
 
-    def _procedures(self, shape: CautionsFile, parent: Mapping) -> dict[str, Procedure]:
+    def _procedures(self, shape: CautionsFile, parent: Mapping, mark: Mark) -> dict[str, Procedure]:
+        """The steps of each way of changing over; each choice has its own."""
         scope = self.ground.over({}, "change_over")
-        choices = self.properties["change_over"].choices if "change_over" in self.properties else None
-        for name in shape.change_over:
-            if choices is not None and name not in choices and not scope.lost.has("names", "change_over"):
-                message = f"'{name}' is no choice of the property change_over"
-                scope.unknown(parent.key_marks[name], "names", name, message, choices, "rename it")
+        sound = "change_over" in self.properties and not scope.lost.has("names", "change_over")
+        choices = self.properties["change_over"].choices if sound else dict.fromkeys(shape.change_over, "")
+        strange = [name for name in shape.change_over if name not in choices]
+        for name in strange:
+            message = f"'{name}' is no choice of the property change_over"
+            scope.unknown(parent.key_marks[name], "names", name, message, choices, "rename it")
+        for choice in choices:
+            if choice not in shape.change_over and not closest(choice, strange):
+                message = f"there are no steps for the change-over '{choice}'"
+                scope.unknown(mark, "procedures", choice, message, (), f"add '{choice}:' with its steps")
         return {
             name: Procedure(
                 name,

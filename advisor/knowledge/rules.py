@@ -3,10 +3,11 @@
 import re
 from collections.abc import Mapping as Map
 from contextlib import suppress
-from dataclasses import dataclass, replace
+from dataclasses import dataclass, field, replace
 
 from advisor.conditions import ALWAYS, Coded, Condition, Domain, Every, Value, alternatives, holds, negated
-from advisor.documents import Mapping, Node
+from advisor.conditions.terms import names as names_in
+from advisor.documents import Mapping, Mark, Node
 from advisor.knowledge.citations import Citations
 from advisor.knowledge.lost import Space
 from advisor.knowledge.model import Asks, Band, Conclusion, Instance, Refers, Row, Rule, Sets, Table, Warns
@@ -30,6 +31,16 @@ class Names:
     tables: Map[str, Table]
     cautions: frozenset[str]
     referrals: frozenset[str]
+    no_facts: Map[str, str] = field(init=False)
+    """What is said of a property that stands where a fact should."""
+    no_properties: Map[str, str] = field(init=False)
+    """What is said of a fact that stands where a property should."""
+
+    def __post_init__(self) -> None:
+        said = "a condition sees facts; properties belong in 'for' and demands"
+        object.__setattr__(self, "no_facts", dict.fromkeys(self.properties, said))
+        said = "that is a fact; a demand and 'for' speak of properties"
+        object.__setattr__(self, "no_properties", dict.fromkeys(self.facts, said))
 
 
 @dataclass(frozen=True, slots=True)
@@ -42,10 +53,8 @@ class RuleReader:
 
     def read(self, shape: RuleShape, tree: Mapping, step: str, point_kind: str) -> tuple[Rule, tuple[Instance, ...]]:
         """One written rule and its instances, one per row that applies."""
-        beyond = dict.fromkeys(self.names.properties, "a condition sees facts; properties belong in 'for' and demands")
-        scope = replace(
-            self.ground.over(self.names.facts, "rules", f"'{shape.id}'"), facts=self.names.facts, hints=beyond
-        )
+        ground = replace(self.ground, facts=self.names.facts, hints=self.names.no_facts)
+        scope = ground.over(self.names.facts, "rules", f"'{shape.id}'")
         before = len(scope.problems)
         table = self._table(shape, tree, scope)
         rule = self._rule(shape, tree, step, point_kind, table, scope)
@@ -133,16 +142,16 @@ class RuleReader:
         if not isinstance(node, Mapping):
             scope.problem(node.mark, "an example is written {fact: value}", "name each fact that the condition names")
             return {}
-        found: dict[str, Value] = {}
+        found, here = dict[str, Value](), scope.at(key)
         for name, child in node.items():
             with suppress(Mistyped):
-                found[name] = value(child, scope.domain(name, node.key_marks[name]), scope.at(key))
+                found[name] = value(child, scope.domain(name, node.key_marks[name]), here)
         return found
 
     def _instance(
         self, rule: Rule, tree: Mapping, shape: RuleShape, table: Table | None, row: Row | None, scope: Scope
     ) -> Instance:
-        here = replace(scope, table=table, row=row)
+        here = replace(scope, table=table, row=row) if row else scope
         faulty = False
         when: Condition = ALWAYS
         try:
@@ -204,20 +213,15 @@ class RuleReader:
             raise scope.unknown(node.mark, space, name, message, known, f"add it under '{space}'")
         return name
 
-    def _property_scope(self, scope: Scope) -> Scope:
-        return replace(
-            scope,
-            names=self.names.properties,
-            what="property",
-            may_ask_stated=True,
-            hints=dict.fromkeys(self.names.facts, "that is a fact; a demand and 'for' speak of properties"),
-        )
-
     def _for(self, node: Mapping, scope: Scope) -> Condition:
-        return condition(node["for"], self._property_scope(scope).at("for")) if "for" in node else ALWAYS
+        if "for" not in node:
+            return ALWAYS
+        here = scope.of(self.names.properties, "property", self.names.no_properties, stated=True)
+        return condition(node["for"], here.at("for"))
 
     def _asks(self, node: Node, level: int, for_: Condition, scope: Scope) -> Asks:
-        here = replace(self._property_scope(scope).at("must" if level == 0 else "should"), may_ask_stated=False)
+        here = scope.of(self.names.properties, "property", self.names.no_properties)
+        here = here.at("must" if level == 0 else "should")
         if not isinstance(node, Mapping) or len(node) != 1 or "either" in node:
             raise scope.fault(node, "a demand names one property", "write several demands, or use 'for'")
         test = condition(node, here)
@@ -227,7 +231,7 @@ class RuleReader:
         if not isinstance(node, Mapping) or len(node) != 1:
             raise scope.fault(node, "'set' names one fact or property", "set: {name: value}")
         name, child = next(iter(node.items()))
-        here = replace(scope, names=self.names.concluded, what="concluded fact or property").at("set")
+        here = scope.of(self.names.concluded, "concluded fact or property", scope.hints).at("set")
         domain = here.domain(name, node.key_marks[name])
         if for_ is not ALWAYS and name in self.names.facts:
             raise scope.fault(
@@ -245,21 +249,35 @@ class RuleReader:
             return
         lacking = [key for key in ("fires", "silent") if key not in tree]
         if lacking:
-            beside = next((tree.key_marks[key] for key in ("fires", "silent") if key in tree), tree.mark)
             hint = " and ".join(f"'{key}:'" for key in lacking)
-            scope.problem(beside, "a rule with a condition needs two examples", f"add {hint} with facts")
+            scope.problem(tree.mark, "a rule with a condition needs two examples", f"add {hint} with facts")
             return
+        named = {name for instance in instances for name in names_in(instance.when)}
         for key, facts, wanted in (("fires", rule.fires, True), ("silent", rule.silent, False)):
             record = {name: self.names.facts[name].code(each) for name, each in facts.items()}
             outcomes = [holds(instance.when, record) for instance in instances]
             good = any(outcomes) if wanted else not any(outcome is None or outcome for outcome in outcomes)
             if not good:
                 seen = "holds" if any(outcomes) else "is undecided" if None in outcomes else "fails"
-                scope.problem(
-                    tree[key].mark,
-                    f"with this example the condition {seen}",
-                    f"it should {'hold' if wanted else 'fail'}: give every fact that the condition names",
-                )
+                self._contradicted(tree, key, seen, [name for name in facts if name not in named], scope)
+
+    def _contradicted(self, tree: Mapping, key: str, seen: str, beyond: list[str], scope: Scope) -> None:
+        """Tell that condition and example contradict: at the condition, if the example goes beyond what it names."""
+        should, when, example = "hold" if key == "fires" else "fail", _lacking(tree), tree[key].mark
+        if beyond and seen != "is undecided":
+            message = f"the condition {seen} with the example '{key}' in line {example.line}, and should {should}"
+            scope.problem(when, message, f"it does not name '{beyond[0]}', as the example does; is that missing here?")
+        else:
+            facts = f"give every fact that the condition names, or mend the condition in line {when.line}"
+            scope.problem(example, f"with this example the condition {seen}", f"it should {should}: {facts}")
+
+
+def _lacking(tree: Mapping) -> Mark:
+    """Where a condition may lack something: an 'either' with one alternative left, else the condition itself."""
+    when = tree["when"]
+    if isinstance(when, Mapping) and len(list_in(when, "either")) == 1:
+        return when.key_marks["either"]
+    return tree.key_marks["when"]
 
 
 def _record(row: Row, columns: Map[str, Domain]) -> dict[str, Coded]:

@@ -197,10 +197,10 @@ class RuleShape(Shape):
     id: Name
     title: Text
     status: Literal["draft", "agreed", "retired"]
-    when: Tree
-    unless: Tree = None
     each_row_of: Id | None = None
     where: Tree = None
+    when: Tree
+    unless: Tree = None
     then: Annotated[list[ConclusionShape], Field(min_length=1)]
     because: Text
     limits: Text = ""

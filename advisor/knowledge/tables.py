@@ -4,7 +4,7 @@ from collections.abc import Mapping as Map
 from contextlib import suppress
 
 from advisor.conditions import Domain, Value
-from advisor.documents import Mapping, Mark, Node, Scalar, Sequence, nearest
+from advisor.documents import Mapping, Mark, Node, Scalar, Sequence, closest
 from advisor.knowledge.citations import Citations
 from advisor.knowledge.folder import Placed
 from advisor.knowledge.matrix import Unusable, read_matrix
@@ -19,6 +19,7 @@ _ROW_EXTRAS = ("source", "note")
 def read_tables(raw: Map[str, Placed[TableShape]], citations: Citations, ground: Scope) -> dict[str, Table]:
     """All tables, typed; what uses a table that is damaged as a whole is not told again."""
     labels = {name: _labels(placed.shape, placed.tree) for name, placed in raw.items()}
+    ground.lost.lose_all("choices", (name for name, placed in raw.items() if _nameless(placed.shape, placed.tree)))
     tables: dict[str, Table] = {}
     for name, placed in raw.items():
         before = len(ground.problems)
@@ -52,8 +53,18 @@ def _labels(shape: TableShape, tree: Mapping) -> dict[str, str]:
     return {str(row[key]): str(row.get("title", str(row[key]).replace("_", " "))) for row in rows}
 
 
-def column_domain(shape: DomainShape, node: Node, tables: Map[str, Map[str, str]], scope: Scope) -> Domain:
-    """A domain as declared for a column, fact or property (choices of other tables resolved)."""
+def _nameless(shape: TableShape, tree: Mapping) -> bool:
+    """Whether a row has lost its id, so that not all the choices are known."""
+    rows, key = list_in(tree, "rows"), shape.key
+    return any(not isinstance(row, Mapping) or (key and not isinstance(row.get(key), Scalar)) for row in rows)
+
+
+def column_domain(
+    shape: DomainShape, node: Node, mark: Mark, tables: Map[str, Map[str, str]], scope: Scope
+) -> Domain:
+    """A domain as declared for a column, fact or property at the mark (choices of other tables resolved)."""
+    if shape.kind == "number" and "unit" not in shape.model_fields_set:
+        scope.problem(mark, "a number has a unit, and it is missing here", "add 'unit:', and \"\" where there is none")
     choices: dict[str, str] = {}
     if shape.choices_of:
         if shape.choices_of not in tables:
@@ -81,7 +92,8 @@ def column_domain(shape: DomainShape, node: Node, tables: Map[str, Map[str, str]
         choices,
         places,
         shape.named or {},
-        open_choices=shape.kind == "choice" and not choices,
+        open_choices=shape.kind == "choice"
+        and (not choices or scope.lost.has("choices", shape.choices_of or "")),
     )
 
 
@@ -115,17 +127,18 @@ def _table(
     columns: dict[str, Domain] = {}
     bands: set[str] = set()
     for column, node in mapping_in(tree, "columns").items():
-        domain, band = _column(node, labels, scope.at("columns", column))
+        mark = mapping_in(tree, "columns").key_marks[column]
+        domain, band = _column(node, mark, labels, scope.at("columns", column))
         columns[column] = domain
         if band:
             bands.add(column)
     if not columns:
-        scope.problem(tree.mark, "the table has no columns", "declare them under 'columns:'")
+        scope.problem(placed.parent.key_marks[name], "the table has no columns", "declare them under 'columns:'")
     key = shape.key or ""
     if key and key not in columns:
-        scope.problem(tree["key"].mark, f"the key '{key}' is no column", nearest(key, columns).strip())
+        scope.stranger(tree["key"].mark, key, f"the key '{key}' is no column", columns)
     if not isinstance(tree.get("rows"), Sequence):
-        scope.problem(tree.key_marks["rows"], "rows are a list of mappings", "- {column: value, ...}")
+        scope.problem(tree["rows"].mark, "rows are a list of mappings", "- {column: value, ...}")
     if len(scope.problems) > before or any(each not in labels for each in _borrowed(tree)):
         raise Unusable
     _undeclared(tree, columns, scope)
@@ -140,14 +153,14 @@ def _borrowed(tree: Mapping) -> list[str]:
     return [str(table) for column in columns if (table := mapping_in(columns, column).get("choices_of")) is not None]
 
 
-def _column(node: Node, labels: Map[str, Map[str, str]], scope: Scope) -> tuple[Domain, bool]:
+def _column(node: Node, mark: Mark, labels: Map[str, Map[str, str]], scope: Scope) -> tuple[Domain, bool]:
     band = isinstance(node, Mapping) and str(node.get("kind", "")) == "band"
     if band and isinstance(node, Mapping):
         node = _as_number(node)
     shape = shaped(node, DomainShape, scope.problems)
     if shape is None:
         return Domain("choice", open_choices=True), False
-    return column_domain(shape, node, labels, scope), band
+    return column_domain(shape, node, mark, labels, scope), band
 
 
 def _as_number(node: Mapping) -> Mapping:
@@ -199,15 +212,16 @@ def _undeclared(tree: Mapping, columns: Map[str, Domain], scope: Scope) -> None:
         for name, mark in node.key_marks.items() if isinstance(node, Mapping) else ():
             if name not in columns and name not in _ROW_EXTRAS:
                 found.setdefault(name, []).append(mark)
+    filled = {name for node in list_in(tree, "rows") if isinstance(node, Mapping) for name in node}
     for name, marks in found.items():
-        near = nearest(name, columns).strip()
         if len(marks) == 1:
-            scope.problem(marks[0], f"'{name}' is no column of this table", near or "declare it under 'columns:'")
+            hint = "declare it under 'columns:'"
+            scope.stranger(marks[0], name, f"'{name}' is no column of this table", columns, hint)
         else:
-            declared = mapping_in(tree, "columns")
-            at = next((mark for column, mark in declared.key_marks.items() if f"'{column}'" in near), declared.mark)
+            near = closest(name, [column for column in columns if column not in filled])
+            at = mapping_in(tree, "columns").key_marks[near] if near else tree.key_marks["columns"]
             message = f"'{name}' is declared nowhere, and {len(marks)} rows have it, the first in line {marks[0].line}"
-            scope.problem(at, message, near or f"add '{name}: {{kind: ...}}'")
+            scope.problem(at, message, f"Did you mean '{near}'?" if near else f"add '{name}: {{kind: ...}}'")
     if any(len(marks) > 1 for marks in found.values()):
         raise Unusable
 

@@ -5,7 +5,7 @@ from collections.abc import Mapping as Map
 from dataclasses import dataclass, field, replace
 
 from advisor.conditions import Domain, Value
-from advisor.documents import Mapping, Mark, Node, Problem, Problems, Scalar, Sequence, as_number, nearest
+from advisor.documents import Mapping, Mark, Node, Problem, Problems, Scalar, Sequence, as_number, closest
 from advisor.knowledge.lost import Lost, Space
 from advisor.knowledge.model import Band, Cell, Row, Table
 
@@ -35,11 +35,37 @@ class Scope:
 
     def at(self, *trail: str) -> "Scope":
         """The same scope further down the trail."""
-        return replace(self, trail=self.trail + trail)
+        return self._with(self.names, self.trail + trail, self.what)
 
     def over(self, names: Map[str, Domain], *trail: str, what: str = "fact") -> "Scope":
         """The same ground with other names."""
-        return replace(self, names=names, trail=trail, what=what)
+        return self._with(names, trail, what)
+
+    def of(self, names: Map[str, Domain], what: str, hints: Map[str, str], *, stated: bool = False) -> "Scope":
+        """The same place with other names, and what is said of names that belong elsewhere."""
+        return self._with(names, self.trail, what, hints, stated)
+
+    def _with(
+        self,
+        names: Map[str, Domain],
+        trail: tuple[str, ...],
+        what: str,
+        hints: Map[str, str] | None = None,
+        stated: bool | None = None,
+    ) -> "Scope":
+        """The scope with these; written out, because one is made for every value of the knowledge."""
+        return Scope(
+            self.problems,
+            names,
+            self.facts,
+            self.table,
+            self.row,
+            trail,
+            what,
+            self.may_ask_stated if stated is None else stated,
+            self.hints if hints is None else hints,
+            self.lost,
+        )
 
     def fault(self, node: Node, message: str, hint: str = "") -> Mistyped:
         """Record a problem at a node."""
@@ -48,7 +74,16 @@ class Scope:
 
     def problem(self, mark: Mark, message: str, hint: str = "") -> None:
         """Record a problem at a mark, once."""
-        problem = Problem.at(mark, message, hint, self.trail)
+        self._record(Problem.at(mark, message, hint, self.trail))
+
+    def stranger(self, mark: Mark, name: str, message: str, known: Iterable[str], hint: str = "") -> Mistyped:
+        """Record that a name is none of those known; the hint asks for the one most like it, where there is one."""
+        like = closest(name, known)
+        hint = f"Did you mean '{like}'?" if like else hint
+        self._record(replace(Problem.at(mark, message, hint, self.trail), name=name, like=like))
+        return Mistyped()
+
+    def _record(self, problem: Problem) -> None:
         if problem not in tuple(self.problems):
             self.problems.add(problem)
 
@@ -57,7 +92,7 @@ class Scope:
     ) -> Mistyped:
         """Record that a name names nothing, unless it may have stood in what is lost."""
         if not self.lost.may_have(space, name):
-            self.problem(mark, message, nearest(name, known).strip() or hint)
+            self.stranger(mark, name, message, known, hint)
         return Mistyped()
 
     def domain(self, name: str, mark: Mark) -> Domain:
@@ -84,8 +119,8 @@ def value(node: Node, domain: Domain, scope: Scope) -> Value:
     if domain.kind == "text" or domain.accepts(text):
         return text
     known = list(domain.choices)
-    hint = nearest(text, known).strip() or f"known here: {', '.join(known[:12])}{' ...' if len(known) > 12 else ''}"
-    raise scope.fault(node, f"'{text}' is not one of the choices", hint)
+    hint = f"known here: {', '.join(known[:12])}{' ...' if len(known) > 12 else ''}"
+    raise scope.stranger(node.mark, text, f"'{text}' is not one of the choices", known, hint)
 
 
 def _ticks(node: Node, domain: Domain, scope: Scope) -> Value:

@@ -1,8 +1,8 @@
 """Mutation: would the scenarios notice if a rule were changed a little? Those that nobody notices come with a case."""
 
-from advisor.mutation.killing import otherwise, records
+from advisor.mutation.effects import draws, records
 from advisor.mutation.measuring import TRIES, Measured, Survivor, measure
-from advisor.mutation.standing_in import PlainRules, plain
+from advisor.mutation.standing_in import PlainRules, by_rules, keeps_facts, plain
 from advisor.mutation.telling import told
 from advisor.mutation.wording import as_data, as_text, summary
 
@@ -13,8 +13,10 @@ __all__ = [
     "Survivor",
     "as_data",
     "as_text",
+    "by_rules",
+    "draws",
+    "keeps_facts",
     "measure",
-    "otherwise",
     "plain",
     "records",
     "summary",

@@ -8,6 +8,7 @@ from multiprocessing import get_context
 from pathlib import Path
 
 from advisor.advice import Advisor
+from advisor.answers import Saved
 from advisor.bending import Bender
 from advisor.documents import Problems
 from advisor.knowledge import Knowledge, load
@@ -121,6 +122,6 @@ def _dealt(all_of_them: Sequence[Mutant], share: Share) -> list[Mutant]:
 
 def _scenarios(files: Iterable[Path], knowledge: Knowledge) -> list[Scenario]:
     """The scenarios that count; those at fault are told by the replay."""
-    problems = Problems()
-    read = (read_scenario(file, knowledge, problems) for file in files)
+    problems, cases = Problems(), dict[Path, Saved]()
+    read = (read_scenario(file, knowledge, problems, cases) for file in files)
     return [each for each in read if each is not None and each.status != "retired"]

@@ -34,6 +34,11 @@ class Mutant:
         return f"{self.rule}: {'/'.join(map(str, self.key))}"
 
 
+def pairs_of(mutant: Mutant, knowledge: Knowledge) -> list[tuple[Instance, Instance | None]]:
+    """The changed instances as they were and as they become."""
+    return [(knowledge.instances[mutant.step][place], after) for place, after in mutant.changed.items()]
+
+
 def mutants(knowledge: Knowledge) -> list[Mutant]:
     """All mutants of the agreed rules, step by step in the order of the files."""
     stepper = Stepper(knowledge)

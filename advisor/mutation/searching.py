@@ -2,17 +2,19 @@
 
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass, field
-from itertools import islice
+from itertools import islice, takewhile
 
-from advisor.advice import Advice, Advisor, TooOpen
+from advisor.advice import Advisor, TooOpen
+from advisor.advice.advising import setters_of
 from advisor.bending import MOST_FIXES, Bender, answered, apart, possible, unmet, where
-from advisor.boxes import Box
+from advisor.boxes import Box, uncovered
 from advisor.case import Case
 from advisor.conditions import Record
-from advisor.knowledge import Knowledge
-from advisor.mutation.killing import Jury, touches
-from advisor.mutation.mutants import Mutant
-from advisor.mutation.standing_in import by_mutant
+from advisor.knowledge import Knowledge, Refers
+from advisor.mutation.effects import Effects
+from advisor.mutation.killing import Jury
+from advisor.mutation.mutants import Mutant, pairs_of
+from advisor.mutation.standing_in import Advised, advised, by_mutant, keeps_facts
 from advisor.mutation.telling import Part, told
 from advisor.replay import Scenario
 
@@ -33,6 +35,34 @@ class Found:
     lost: Mapping[Part, str]
 
 
+@dataclass(frozen=True, slots=True)
+class _Told:
+    """A case by the knowledge as it is, and all that its advice tells."""
+
+    advised: Advised
+    parts: dict[Part, str]
+
+
+class _Trial:
+    """A mutant that is tried on cases."""
+
+    def __init__(self, advisor: Advisor, mutant: Mutant, knowledge: Knowledge) -> None:
+        self._advisor = advisor
+        self.does = Effects(mutant, knowledge.instances[mutant.step])
+        self._same_facts = keeps_facts(pairs_of(mutant, knowledge), knowledge)
+        self._whole = self._same_facts or advisor.setters == setters_of(knowledge)
+
+    def told(self, before: _Told) -> dict[Part, str]:
+        """What the advice by the mutant tells.
+
+        Raises:
+            TooOpen: where too much is left open at once.
+        """
+        if self._whole and before.advised.run is not None and not self.does.on(before.advised.advice):
+            return before.parts
+        return told(before.advised.by(self._advisor, same_facts=self._same_facts))
+
+
 @dataclass(slots=True)
 class Search:
     """Looks for killing cases near the scenarios."""
@@ -40,7 +70,7 @@ class Search:
     jury: Jury
     bender: Bender
     seen: dict[int, Record] = field(default_factory=dict)
-    told_of: dict[object, tuple[Advice, dict[Part, str]]] = field(default_factory=dict)
+    told_of: dict[object, _Told] = field(default_factory=dict)
 
     @property
     def advisor(self) -> Advisor:
@@ -57,51 +87,61 @@ class Search:
                 found += where(was.when, known)
             else:
                 found += [*apart(was.when, after.when, known), *apart(after.when, was.when, known)]
-        return possible(found, known)
+        ended = self._ended_before(mutant.step)
+        return [piece for box in possible(found, known) for piece in uncovered(box, ended)]
+
+    def _ended_before(self, step: str) -> list[Box]:
+        """Where a referral that withholds ends the case at an earlier step, so that no rule of this one is asked."""
+        known = self.advisor.knowledge
+        found: list[Box] = []
+        for earlier in takewhile(lambda each: each.id != step, known.steps):
+            for each in known.instances.get(earlier.id, ()):
+                if each.binds and any(isinstance(then, Refers) and then.withhold for then in each.then):
+                    found += where(each.when, known)
+        return found
 
     def find(self, mutant: Mutant, tries: int) -> tuple[Found | None, int]:
         """A case that kills, if these many tries find one, and how many were made."""
-        twin = by_mutant(self.advisor, mutant)
+        trial = _Trial(by_mutant(self.advisor, mutant), mutant, self.advisor.knowledge)
         self.bender.left = tries * RECORDS_A_TRY
         count = 0
-        for scenario, case in islice(self._cases(mutant), tries):
+        for scenario, case in islice(self._cases(mutant, trial.does), tries):
             count += 1
-            found = self._compared(scenario, case, twin)
+            found = self._compared(scenario, case, trial)
             if found is not None:
                 return found, count
         return None, count
 
-    def _compared(self, scenario: Scenario, case: Case, twin: Advisor) -> Found | None:
-        saved = scenario.saved
+    def _compared(self, scenario: Scenario, case: Case, trial: "_Trial") -> Found | None:
         try:
-            _, before = self._advised(scenario, case)
-            after = told(twin.advise(case, assume_gaps=saved.assume_gaps, only=saved.only))
+            before = self._told(scenario, case)
+            after = trial.told(before)
         except TooOpen:
             return None
-        if before == after:
+        if before.parts == after:
             return None
-        kept = {part: text for part, text in before.items() if after.get(part) != text}
-        lost = {part: text for part, text in after.items() if before.get(part) != text}
+        kept = {part: text for part, text in before.parts.items() if after.get(part) != text}
+        lost = {part: text for part, text in after.items() if before.parts.get(part) != text}
         return Found(self.advisor.knowledge, scenario, case, kept, lost)
 
-    def _advised(self, scenario: Scenario, case: Case) -> tuple[Advice, dict[Part, str]]:
+    def _told(self, scenario: Scenario, case: Case) -> "_Told":
         """The advice by the knowledge as it is, and what it tells; the last ones are remembered."""
         key = _key(scenario, case)
         if key not in self.told_of:
             if len(self.told_of) >= REMEMBERED:
                 self.told_of.clear()
             saved = scenario.saved
-            advice = self.advisor.advise(case, assume_gaps=saved.assume_gaps, only=saved.only)
-            self.told_of[key] = advice, told(advice)
+            found = advised(self.advisor, case, assume_gaps=saved.assume_gaps, only=saved.only)
+            self.told_of[key] = _Told(found, told(found.advice))
         return self.told_of[key]
 
-    def _cases(self, mutant: Mutant) -> Iterator[tuple[Scenario, Case]]:
+    def _cases(self, mutant: Mutant, does: Effects) -> Iterator[tuple[Scenario, Case]]:
         """Cases on which the mutant's rules do otherwise: scenarios bent into its region, then shaken a little."""
         region = self.region(mutant)
         told_of: set[object] = set()
         reached: list[tuple[Scenario, Case]] = []
         for scenario, case in self._bent_into(region):
-            if (key := _key(scenario, case)) not in told_of and self._touched(mutant, scenario, case):
+            if (key := _key(scenario, case)) not in told_of and self._touched(does, scenario, case):
                 told_of.add(key)
                 reached.append((scenario, case))
                 yield scenario, case
@@ -110,12 +150,11 @@ class Search:
                 told_of.add(key)
                 yield scenario, case
 
-    def _touched(self, mutant: Mutant, scenario: Scenario, case: Case) -> bool:
+    def _touched(self, does: Effects, scenario: Scenario, case: Case) -> bool:
         try:
-            advice, _ = self._advised(scenario, case)
+            return does.touches(self._told(scenario, case).advised.advice)
         except TooOpen:
             return False
-        return touches(mutant, self.advisor.knowledge.instances[mutant.step], advice)
 
     def _bent_into(self, region: Sequence[Box]) -> Iterator[tuple[Scenario, Case]]:
         """Every box in turn, the scenarios that lack least of it first."""

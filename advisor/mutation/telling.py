@@ -6,6 +6,7 @@ from advisor.advice import Advice, Ranked
 from advisor.case import Origin
 from advisor.conditions import Bound, Condition, FactRef, Member, Ticked, Value, leaves
 from advisor.conditions.terms import Term
+from advisor.explanation.seeing import deciding_run
 from advisor.knowledge import Knowledge
 from advisor.replay.falling import falling
 from advisor.shelf import Judgement, Verdict
@@ -16,8 +17,11 @@ Part = tuple[str, ...]
 _WORDS = {"<": "below", "<=": "at_most", ">": "above", ">=": "at_least"}
 
 
-def told(advice: Advice, *, demands: bool = True) -> dict[Part, str]:
-    """Everything that a scenario can expect of the advice, and what it would have to say."""
+def told(advice: Advice, *, demands: bool = True, reasons: bool = True) -> dict[Part, str]:
+    """Everything that a scenario can expect of the advice, and what it would have to say.
+
+    Without `reasons` the rules are left out that bar a value or rule out a product.
+    """
     parts = dict[Part, str]()
     parts["state",] = str(advice.state)
     parts["withheld",] = "yes" if advice.withheld else "no"
@@ -32,8 +36,8 @@ def told(advice: Advice, *, demands: bool = True) -> dict[Part, str]:
     parts |= _facts(advice)
     if not advice.withheld:
         parts |= {("codes", "din"): _listed(advice.codes.din), ("codes", "iso"): _listed(advice.codes.iso)}
-        parts |= _docket(advice)
-        parts |= dict(_products(advice))
+        parts |= _docket(advice, reasons=reasons)
+        parts |= dict(_products(advice, reasons=reasons))
         parts |= _demanded(advice) if demands else {}
     return parts
 
@@ -51,20 +55,21 @@ def _facts(advice: Advice) -> dict[Part, str]:
     return found
 
 
-def _docket(advice: Advice) -> dict[Part, str]:
+def _docket(advice: Advice, *, reasons: bool) -> dict[Part, str]:
     found: dict[Part, str] = {}
     rows = {row.id: row.recommends for row in advice.knowledge.docket}
     for line in advice.docket:
         if name := rows[line.row]:
             found["recommended", name] = _listed(line.values)
-            for value, rules in (line.barred or {}).items():
+            for value, rules in (line.barred or {}).items() if reasons else ():
                 found |= {("barred", name, written(value), rule): rule.partition("/")[0] for rule in rules}
     return found
 
 
-def _products(advice: Advice) -> Iterator[tuple[Part, str]]:
+def _products(advice: Advice, *, reasons: bool) -> Iterator[tuple[Part, str]]:
     for ranked in advice.shelf:
-        rules = _deciding(advice.judgement, ranked) if advice.judgement else ()
+        judgement = deciding_run(advice, ranked.place).judgement if reasons else None
+        rules = _deciding(judgement, ranked) if judgement else ()
         yield ("products", ranked.item), ranked.verdict.value
         for rule in rules:
             yield ("products", ranked.item, rule), f"{ranked.verdict.value} by {rule}"

@@ -134,7 +134,7 @@ def _no_number(text: str, plain: str, unit: str) -> Unreadable:
 def _odd_rest(text: str, rest: str, unit: str) -> Unreadable:
     """The refusal of what follows the number."""
     if _RANGE.search(rest):
-        return Unreadable(f"{_quoted(text)} looks like a range, which is not accepted yet. Write one number.")
+        return Unreadable(f"{_quoted(text)} looks like a range. Write one number, or as an answer two dots: 70..90.")
     if _ANOTHER_NUMBER.search(rest):
         return _two_numbers(text)
     for canonical, kind in KINDS.items():

@@ -2,11 +2,12 @@
 
 import math
 from collections.abc import Iterable
+from dataclasses import replace
 from functools import singledispatch
 
 from advisor.advice import Advice, Ranked
 from advisor.case import Origin
-from advisor.explanation.seeing import rules_seen
+from advisor.explanation.seeing import deciding_run, rules_seen
 from advisor.knowledge import Instance, Refers, Warns
 from advisor.quantities import show
 from advisor.replay import docket_compared, reasons
@@ -41,7 +42,20 @@ from advisor.specification import Conflict
 
 def differences(advice: Advice, expectations: Iterable[Expectation]) -> tuple[Difference, ...]:
     """Every expectation that the advice does not meet, in the order written."""
-    return tuple(found for each in expectations if (found := compare(each, advice)) is not None)
+    return tuple(found for each in expectations if (found := _difference(each, advice)) is not None)
+
+
+_OF_EVERY_RUN = FactIs | FactWithin | Bars | AsksFor | AsksAtLeast | DemandedBy | IntervalIs | FillIs
+"""What is expected of each run of a case that leaves something open: it cannot be put together."""
+
+
+def _difference(expected: Expectation, advice: Advice) -> Difference | None:
+    if not isinstance(expected, _OF_EVERY_RUN):
+        return compare(expected, advice)
+    for label, run in advice.runs:
+        if (found := compare(expected, run)) is not None:
+            return replace(found, because=(f"So it is for {label}.", *found.because))
+    return None if advice.runs else compare(expected, advice)
 
 
 @singledispatch
@@ -162,6 +176,8 @@ def _product(expected: ProductIs, advice: Advice) -> Difference | None:
     ranked = next((each for each in advice.shelf if each.item == expected.item), None)
     if ranked is None or advice.judgement is None:
         return Difference("products", expected.item, wanted, "no verdict", ("Products are withheld.",), expected.mark)
+    advice = deciding_run(advice, ranked.place)
+    assert advice.judgement is not None  # noqa: S101 - the product has a verdict
     rules = _deciding(advice.judgement, ranked)
     if ranked.verdict is expected.verdict and (not expected.rule or reasons.named(rules, expected.rule)):
         return None
@@ -226,7 +242,8 @@ def _conflict(expected: ConflictBetween, advice: Advice) -> Difference | None:
 
 @compare.register
 def _rule(expected: RuleIs, advice: Advice) -> Difference | None:
-    fired = any(outcome and reasons.named((rule.id,), expected.rule) for _, rule, outcome in rules_seen(advice))
+    seen = (each for run in advice.single for each in rules_seen(run))
+    fired = any(outcome and reasons.named((rule.id,), expected.rule) for _, rule, outcome in seen)
     if fired is expected.fires:
         return None
     wanted, got = ("fires", "silent") if expected.fires else ("silent", "fires")

@@ -4,7 +4,7 @@ from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 from pathlib import Path
 
-from advisor.advice import Advice, Advisor
+from advisor.advice import Advice, Advisor, TooOpen
 from advisor.answers import Saved, point_kind_of, read_case
 from advisor.documents import Mapping as Tree
 from advisor.documents import Node, Problem, Problems, Scalar
@@ -45,10 +45,11 @@ class Played:
 
     @property
     def fired(self) -> frozenset[str]:
-        """The rules that fired and count, one for each row of their table."""
+        """The rules that fired and count in any run, one for each row of their table."""
         return frozenset(
             instance.id
-            for step in self.advice.trace
+            for run in self.advice.single
+            for step in run.trace
             for instance, outcome in zip(step.instances, step.outcomes, strict=True)
             if outcome and instance.binds
         )
@@ -101,7 +102,10 @@ def replay(files: Iterable[Path], advisors: Mapping[str, Advisor]) -> Outcome:
         advisor = advisors[kind]
         scenario = read_scenario(file, advisor.knowledge, problems, read[kind])
         if scenario is not None and scenario.status != "retired":
-            played.append(play(scenario, advisor))
+            try:
+                played.append(play(scenario, advisor))
+            except TooOpen as fault:
+                problems.add(Problem.at(_at(scenario.saved.tree, "answers").mark, str(fault).rstrip(".")))
     return Outcome(tuple(played), tuple(dict.fromkeys(problems)))
 
 

@@ -5,7 +5,7 @@ from textual.containers import Vertical
 from textual.content import Content
 
 from advisor.advice import State
-from advisor.interview import RowShown, Session, care_text, codes_text, quantities_text, rows_shown
+from advisor.interview import RowShown, Session, care_text, codes_text, quantities_text, rows_shown, variant_text
 from advisor.screens.glyphs import Glyphs
 from advisor.screens.row import Row
 
@@ -36,14 +36,16 @@ class Docket(Vertical):
         yield Row(id="care", classes="line")
 
     def show(self) -> None:
-        """Show the session's advice."""
-        advice, changed = self.session.advice, self.session.changed_rows()
+        """Show the advice that is looked at."""
+        advice, changed = self.session.shown, self.session.changed_rows()
         shown = {each.id: each for each in rows_shown(advice)}
         settled = sum(not each.waits_for for each in shown.values())
-        state = "withheld: see the referral" if advice.withheld else f"{settled} of {len(self.titles)} rows settled"
+        variant = variant_text(self.session.advice, self.session.variant)
+        state = f"{settled} of {len(self.titles)} rows settled" if not variant else f"{variant}, F7 for the next"
+        state = "withheld: see the referral" if advice.withheld else state
         state += "" if advice.withheld or advice.state is State.SETTLED else f", the case is {_STATES[advice.state]}"
         self.query_one("#docket_heading", Row).show(
-            Content.assemble(("DOCKET", "bold $accent"), (f"  {state}", "$quiet"))
+            Content.assemble(("DOCKET", "bold $accent"), (self.glyphs.words(f"  {state}"), "$quiet"))
         )
         for row, title in self.titles:
             each = shown.get(row) or RowShown(row, title, "withheld", ())

@@ -45,4 +45,4 @@ class Actions(Provider):
                 yield Hit(score, Content(text), partial(self.app.run_action, action, self.screen), text)
 
 
-_OWN = {"back", "later", "docket", "why", "chart", "map", "stop_here", "undo", "save_as", "dont_know"}
+_OWN = {"back", "later", "docket", "why", "chart", "map", "variant", "stop_here", "undo", "save_as", "dont_know"}

@@ -142,8 +142,11 @@ class QuestionPanel(Vertical):
         except Unsuitable as fault:
             return f"! {fault}"
         value: Value | None = given.value
+        if given.span is not None:
+            low, high = (exactly(each, question.domain.unit) for each in given.span)
+            return f"reads as a range, {low} to {high}"
         if not isinstance(value, float):
-            return "reads as a range" if given.span else ""
+            return ""
         return f"reads as {exactly(value, question.domain.unit)}{', an estimate' if given.estimate else ''}"
 
 

@@ -45,6 +45,7 @@ class Sheet(Screen[None]):
         Binding("f3", "view('why')", "Why", key_display="F3", id="why"),
         Binding("f4", "view('chart')", "Chart", key_display="F4", id="chart"),
         Binding("f5", "view('map')", "Map", key_display="F5", id="map"),
+        Binding("f7", "variant", "Variant", key_display="F7", id="variant"),
         Binding("f8", "stop_here", "Stop", key_display="F8", id="stop_here"),
         Binding("ctrl+p", "app.command_palette", "All", key_display="^p", priority=True, id="palette"),
         Binding("ctrl+q", "app.quit", "Quit", key_display="^q", priority=True, id="quit"),
@@ -116,8 +117,8 @@ class Sheet(Screen[None]):
             self.query_one(QuestionMap).show()
         elif self.view or self.app.size.width >= _WIDE:
             self.query_one(Docket).show()
-            self.query_one(Shelf).show(self.session.advice)
-            self.query_one(Chart).show(self.session.advice)
+            self.query_one(Shelf).show(self.session.shown)
+            self.query_one(Chart).show(self.session.shown)
 
     def _to_the_question(self) -> None:
         if self.is_mounted and self.query_one("#left").max_scroll_y > 0:
@@ -212,6 +213,14 @@ class Sheet(Screen[None]):
     def _focus_editor(self) -> None:
         self.query_one(QuestionPanel).take_keys()
 
+    async def action_variant(self) -> None:
+        """Show the next variant of what was left open; in the interview of a narrow window, beside the docket."""
+        self.session.next_variant()
+        if not self.view and self.app.size.width < _WIDE:
+            await self.action_view("docket")
+        else:
+            self.show()
+
     async def action_stop_here(self) -> None:
         """End before the questions that only tune quantity and interval."""
         self.query_one(QuestionPanel).stopped = True
@@ -221,6 +230,8 @@ class Sheet(Screen[None]):
         """Which keys do something now; the others stay out of the footer."""
         if action == "stop_here":
             return self.session.only_quantities_left and not self.query_one(QuestionPanel).stopped
+        if action == "variant":
+            return bool(self.session.advice.branches)
         if action == "dont_know":
             return self.session.question is not None and not self.view
         return True

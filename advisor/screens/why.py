@@ -4,9 +4,11 @@ from rich.text import Text
 from textual.widgets import Tree
 from textual.widgets.tree import TreeNode
 
+from advisor.advice import Advice
 from advisor.explanation import why, why_not
 from advisor.explanation.reasons import Why, say_line
 from advisor.explanation.ruling import RuleReason
+from advisor.explanation.variants import course_lines, figure_lines, lead, variant_lines
 from advisor.explanation.workings import Premise
 from advisor.interview import VERDICTS, Session, cautions_told, referrals_told, rows_shown
 from advisor.screens.glyphs import Glyphs
@@ -27,12 +29,13 @@ class WhyTree(Tree[Subject]):
         self._shown: object = None
 
     def show(self) -> None:
-        """Derive the advice as it stands."""
-        advice = self.session.advice
+        """Derive the advice that is looked at."""
+        advice = self.session.shown
         if advice is self._shown:
             return
         self._shown = advice
         self.clear()
+        self._show_variants(advice)
         for to, text in referrals_told(advice):
             self._leaf(self.root.add(self._label("goes to", to), expand=True), text)
         for row in () if advice.withheld else rows_shown(advice):
@@ -49,18 +52,38 @@ class WhyTree(Tree[Subject]):
             self._leaf(care, text)
         self.cursor_line = 0
 
+    def _show_variants(self, advice: Advice) -> None:
+        """What was left open: which variant this is, what each has of its own, and what changes along a range."""
+        number = self.session.variant
+        if number:
+            self._leaf(self.root, f"Variant {number}: {self.session.advice.branches[number - 1].label}")
+        for title, lines in variant_lines(advice):
+            node = self.root.add(self._label(title, ""), expand=True)
+            for line in lines:
+                self._leaf(node, line)
+        if advice.span is None:
+            return
+        title = self.session.knowledge.title(advice.span.fact)
+        along = self.root.add(self._label("Along the range", title), expand=False)
+        for text in (*lead(advice), *figure_lines(advice, full=False)):
+            self._leaf(along, text)
+        for variant in dict.fromkeys(each.variant for each in advice.courses):
+            node = along.add(self._label("variant", variant), expand=True) if variant else along
+            for line in course_lines(advice, variant):
+                self._leaf(node, line)
+
     def on_tree_node_expanded(self, event: Tree.NodeExpanded[Subject]) -> None:
         """Work out what stands behind a row or a product when it is opened."""
         if event.node.data is None or event.node.children:
             return
         what, name = event.node.data
         if what == "row":
-            self._row(event.node, why(self.session.advice, name))
+            self._row(event.node, why(self.session.shown, name))
         else:
             self._item(event.node, name)
 
     def _item(self, node: Node, item: str) -> None:
-        for miss in why_not(self.session.advice, item).misses:
+        for miss in why_not(self.session.shown, item).misses:
             inner = node.add(self._label(miss.strength, f"{miss.demand}; {miss.seen}"), expand=False)
             self._rule(inner, miss.rule)
         if not node.children:

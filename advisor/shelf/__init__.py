@@ -1,8 +1,9 @@
 """The shelf and the usual oils: judged and ranked column by column against a specification."""
 
-from advisor.shelf.catalogue import Catalogue, Item, Raise, all_reads, choices, products, reads, usual_oils
+from advisor.shelf.catalogue import Catalogue, Item, Raise, all_reads, facts_read
 from advisor.shelf.columns import Column, judge, places
 from advisor.shelf.judging import Judgement, Shortfall, Verdict, at_limit, steps_short
+from advisor.shelf.stocking import choices, products, usual_oils
 
 __all__ = [
     "Catalogue",
@@ -15,10 +16,10 @@ __all__ = [
     "all_reads",
     "at_limit",
     "choices",
+    "facts_read",
     "judge",
     "places",
     "products",
-    "reads",
     "steps_short",
     "usual_oils",
 ]

@@ -1,8 +1,7 @@
 """A catalogue: items with their properties as columns, the fixed ones once, the others anew for each case."""
 
-from collections.abc import Mapping, Sequence
-from contextlib import suppress
-from dataclasses import dataclass, replace
+from collections.abc import Iterable, Mapping, Sequence
+from dataclasses import dataclass
 
 from advisor.case import Fact, Origin
 from advisor.computations import looked_up
@@ -10,6 +9,7 @@ from advisor.conditions import Coded, Condition, Value
 from advisor.formulas import FORMULAS, OutOfRange
 from advisor.knowledge import Formed, Knowledge, LookedUp, Property, WorstOf
 from advisor.shelf.columns import Column, judge
+from advisor.specification import Demand, mentions
 
 
 @dataclass(frozen=True, slots=True)
@@ -39,7 +39,10 @@ class Catalogue:
         self.knowledge = knowledge
         self.everything = (1 << len(self.items)) - 1
         self.place = {item.code: place for place, item in enumerate(self.items)}
+        self._empty = Column({}, len(self.items))
         self._order = _dependency_order(knowledge.properties)
+        self._behind = {name: all_reads(frozenset({name}), knowledge.properties) for name in knowledge.properties}
+        self._known: dict[tuple[str, tuple[Value | None, ...]], dict[tuple[Coded | None, ...], Coded | None]] = {}
         self._fixed: dict[str, Column] = {}
         self._changing: list[Property] = []
         for name in self._order:
@@ -77,7 +80,7 @@ class Catalogue:
         columns = dict(self._fixed)
         given = {name: self.knowledge.properties[name].domain.code(value) for name, value in (context or {}).items()}
         for name, coded in given.items():
-            columns[name] = _filled(columns.get(name), coded, len(self.items))
+            columns[name] = columns.get(name, self._empty).filled(coded)
         for prop in self._changing:
             if prop.name not in needed:
                 continue
@@ -86,10 +89,18 @@ class Catalogue:
                 continue
             column = self._column(prop, columns, facts)
             if prop.name in given:
-                column = _filled(column, given[prop.name], len(self.items))
+                column = column.filled(given[prop.name])
             if column.present or column.waiting:
                 columns[prop.name] = column
         return columns
+
+    def looked_at(
+        self, demands: Iterable[Demand], raises: Iterable[Raise], also: Iterable[str] = ()
+    ) -> frozenset[str]:
+        """The properties that these demands and raises look at, and every property that those are found from."""
+        names = {name for demand in demands for name in (demand.property, *mentions(demand.for_))}
+        names.update(also, *(mentions(each.for_) for each in raises))
+        return frozenset().union(*(self._behind[name] for name in names if name in self._behind))
 
     def names_with(self, name: str) -> frozenset[str]:
         """The properties that items with this property can have, and that property itself."""
@@ -116,25 +127,27 @@ class Catalogue:
                     moved = at[value] & applies
                     at[value] &= ~moved
                     at[each.value] = at.get(each.value, 0) | moved
-        return Column.from_masks(at, len(self.items))
+        return Column(at, len(self.items))
 
     def _column(self, prop: Property, columns: Mapping[str, Column], facts: Mapping[str, Fact]) -> Column:
         how = prop.how
         if how is None:
             code = prop.domain.code
-            return Column(
+            return Column.of(
                 [None if (value := item.values.get(prop.name)) is None else code(value) for item in self.items]
             )
         if _waits(prop, self.knowledge, facts):
-            return Column([None] * len(self.items), waiting=True)
+            return Column({}, len(self.items), waiting=True)
         if isinstance(how, Formed):
-            return Column(self._formed(how, columns, facts))
+            return Column.of(self._formed(how, columns, facts))
         parts = (how,) if isinstance(how, LookedUp) else how.parts
         found = self._looked_up(parts, prop, columns, facts)
         place = self.place.get(str(facts[prop.same_item].value)) if prop.same_item else None
         if place is not None:
-            found[place] = prop.domain.code("same")
-        return Column(found)
+            found = {value: items & ~(1 << place) for value, items in found.items()}
+            same = prop.domain.code("same")
+            found[same] = found.get(same, 0) | 1 << place
+        return Column(found, len(self.items))
 
     def _formed(self, how: Formed, columns: Mapping[str, Column], facts: Mapping[str, Fact]) -> list[Coded | None]:
         function = FORMULAS[how.formula].function
@@ -163,19 +176,40 @@ class Catalogue:
 
     def _looked_up(
         self, parts: Sequence[LookedUp], prop: Property, columns: Mapping[str, Column], facts: Mapping[str, Fact]
-    ) -> list[Coded | None]:
+    ) -> dict[Coded, int]:
         """The worst of some look-ups, by the parts that an item has; looked up once per combination of values."""
-        names = list(dict.fromkeys(name for part in parts for _, name in part.by if name in self.knowledge.properties))
-        values = [columns[name].values if name in columns else [None] * len(self.items) for name in names]
-        known: dict[tuple[Coded | None, ...], Coded | None] = {}
-        found: list[Coded | None] = []
-        for row in zip(*values, strict=True) if values else ((),) * len(self.items):
+        by = dict.fromkeys(name for part in parts for _, name in part.by)
+        names = [name for name in by if name in self.knowledge.properties]
+        of_case = tuple([facts[name].value for name in by if name not in self.knowledge.properties])
+        named = not any(isinstance(each, float | int) for each in of_case)
+        known = self._known.setdefault((prop.name, of_case), {}) if named else {}
+        found: dict[Coded, int] = {}
+        for row, items in self._alike(names, columns):
             if row not in known:
-                has = dict(zip(names, row, strict=True))
-                worst = [each for part in parts if (each := self._look(part, prop, has, facts)) is not None]
-                known[row] = max(worst) if len(worst) > 1 else worst[0] if worst else None
-            found.append(known[row])
+                known[row] = self._worst(parts, prop, dict(zip(names, row, strict=True)), facts)
+            value = known[row]
+            if value is not None:
+                found[value] = found.get(value, 0) | items
         return found
+
+    def _worst(
+        self, parts: Sequence[LookedUp], prop: Property, row: Mapping[str, Coded | None], facts: Mapping[str, Fact]
+    ) -> Coded | None:
+        found = [each for part in parts if (each := self._look(part, prop, row, facts)) is not None]
+        return max(found) if len(found) > 1 else found[0] if found else None
+
+    def _alike(self, names: Sequence[str], columns: Mapping[str, Column]) -> list[tuple[tuple[Coded | None, ...], int]]:
+        """The items by their combination of values of these properties."""
+        groups: list[tuple[tuple[Coded | None, ...], int]] = [((), self.everything)]
+        for name in names:
+            column = columns.get(name, self._empty)
+            split: list[tuple[tuple[Coded | None, ...], int]] = []
+            for row, items in groups:
+                split += [((*row, value), both) for value, mask in column.by_value.items() if (both := items & mask)]
+                if lacking := items & ~column.present:
+                    split.append(((*row, None), lacking))
+            groups = split
+        return groups
 
     def _look(
         self, how: LookedUp, prop: Property, row: Mapping[str, Coded | None], facts: Mapping[str, Fact]
@@ -206,9 +240,9 @@ def all_reads(names: frozenset[str], properties: Mapping[str, Property]) -> froz
     return frozenset(found)
 
 
-def _filled(column: Column | None, coded: Coded, size: int) -> Column:
-    """The column with a value put in where items lack one."""
-    return Column([coded if value is None else value for value in column.values] if column else [coded] * size)
+def facts_read(prop: Property, knowledge: Knowledge) -> frozenset[str]:
+    """The facts of a case that a property is found from."""
+    return frozenset(name for name in (*reads(prop), prop.same_item) if name and name not in knowledge.properties)
 
 
 def reads(prop: Property) -> list[str]:
@@ -221,10 +255,10 @@ def reads(prop: Property) -> list[str]:
 
 
 def _waits(prop: Property, knowledge: Knowledge, facts: Mapping[str, Fact]) -> bool:
-    names = [name for name in reads(prop) if name not in knowledge.properties] + (
-        [prop.same_item] if prop.same_item else []
+    return any(
+        name not in facts or facts[name].origin in {Origin.UNANSWERED, Origin.VOID}
+        for name in facts_read(prop, knowledge)
     )
-    return any(name not in facts or facts[name].origin in {Origin.UNANSWERED, Origin.VOID} for name in names)
 
 
 def _dependency_order(properties: Mapping[str, Property]) -> list[str]:
@@ -241,54 +275,3 @@ def _dependency_order(properties: Mapping[str, Property]) -> list[str]:
         if prop.concluded is None:
             visit(name, ())
     return done + [name for name, prop in properties.items() if prop.concluded is not None]
-
-
-def products(knowledge: Knowledge, only: frozenset[str] | None = None) -> Catalogue:
-    """The shelf as a catalogue."""
-    return Catalogue(
-        [Item(each.item, each.title, each.values) for each in knowledge.shelf if only is None or each.item in only],
-        knowledge,
-    )
-
-
-def usual_oils(knowledge: Knowledge) -> Catalogue:
-    """Every family of the base-oil table with every grade that it is made in."""
-    how = knowledge.usual_oils
-    table = knowledge.tables[how.table]
-    items: list[Item] = []
-    for row in table.rows:
-        low, high, index = (row.cells.get(column) for column in (how.low, how.high, how.index))
-        if not all(isinstance(each, float) for each in (low, high, index)):
-            continue
-        label = knowledge.properties[how.family].domain.label(row.id)
-        for grade in knowledge.properties["vg"].domain.places:
-            if low <= grade <= high:  # type: ignore[operator]  # floats by the check above
-                values = {how.family: row.id, "vg": grade, **_viscosities(grade, float(index))}  # type: ignore[arg-type]  # a float
-                items.append(Item(f"{row.id} {grade:g}", f"{label}, ISO VG {grade:g}", values))
-    return Catalogue(items, knowledge)
-
-
-def _viscosities(grade: float, index: float) -> dict[str, Value]:
-    """The two viscosities of an oil at the midpoint of its grade."""
-    midpoint = float(FORMULAS["grade_midpoint"].function(grade))
-    found: dict[str, Value] = {"viscosity_40": midpoint}
-    with suppress(OutOfRange):
-        found["viscosity_100"] = FORMULAS["viscosity_100_from_index"].function(midpoint, index)
-    return found
-
-
-def choices(knowledge: Knowledge, incumbent: Item | None = None) -> Catalogue:
-    """Every choice of every property that the docket recommends, as items with that one property."""
-    items: list[Item] = []
-    for row in knowledge.docket:
-        prop = knowledge.properties.get(row.recommends)
-        if prop is None or prop.concluded is not None or row.recommends in {"vg", knowledge.usual_oils.family}:
-            continue
-        for choice in prop.domain.choices:
-            values: dict[str, Value] = {row.recommends: choice}
-            if prop.of:
-                values["form"] = prop.of
-            items.append(Item(f"{row.recommends}={choice}", prop.domain.choices[choice], values))
-    if incumbent is not None:
-        items.append(replace(incumbent))
-    return Catalogue(items, knowledge)

@@ -6,44 +6,63 @@ for the others it is unknown, because they lack a value.
 
 from bisect import bisect_left, bisect_right
 from collections.abc import Mapping, Sequence
+from itertools import compress, count
 
 from advisor.conditions import Bound, Coded, Condition, Either, Every, Member, Stated, Ticked, Valueless
 
+_SET = bytes.maketrans(b"01", bytes((0, 1)))
+
 
 class Column:
-    """The coded values of one property, item by item; None where the item lacks it."""
+    """The coded values of one property: by value the items that have it; None where an item lacks one."""
 
-    __slots__ = ("_edges", "_upto", "by_value", "present", "values", "waiting")
+    __slots__ = ("_edges", "_upto", "_values", "by_value", "present", "size", "waiting")
 
-    def __init__(self, values: Sequence[Coded | None], *, waiting: bool = False) -> None:
-        self.values = values
+    def __init__(self, by_value: Mapping[Coded, int], size: int, *, waiting: bool = False) -> None:
+        self.by_value = {value: items for value, items in by_value.items() if items}
+        self.size = size
         self.waiting = waiting
-        by_value: dict[Coded, int] = {}
         present = 0
-        bit = 1
-        for value in values:
-            if value is not None:
-                by_value[value] = by_value.get(value, 0) | bit
-                present |= bit
-            bit <<= 1
-        self.by_value = by_value
+        for items in self.by_value.values():
+            present |= items
         self.present = present
+        self._values: Sequence[Coded | None] | None = None
         self._edges: list[float] | None = None
         self._upto: list[int] = []
 
     @classmethod
-    def from_masks(cls, masks: Mapping[Coded, int], size: int) -> "Column":
-        """The column in which each value stands at the places of its mask."""
-        values: list[Coded | None] = [None] * size
-        for value, mask in masks.items():
-            for place in places(mask):
-                values[place] = value
-        return cls(values)
+    def of(cls, values: Sequence[Coded | None]) -> "Column":
+        """The column of these values, item by item."""
+        by_value: dict[Coded, int] = {}
+        bit = 1
+        for value in values:
+            if value is not None:
+                by_value[value] = by_value.get(value, 0) | bit
+            bit <<= 1
+        column = cls(by_value, len(values))
+        column._values = values
+        return column
+
+    @property
+    def values(self) -> Sequence[Coded | None]:
+        """The value of each item."""
+        if self._values is None:
+            values: list[Coded | None] = [None] * self.size
+            for value, items in self.by_value.items():
+                for place in places(items):
+                    values[place] = value
+            self._values = values
+        return self._values
+
+    def filled(self, coded: Coded) -> "Column":
+        """The column with a value put in where items lack one."""
+        lacking = ((1 << self.size) - 1) & ~self.present
+        return Column(self.by_value | {coded: self.by_value.get(coded, 0) | lacking}, self.size)
 
     def below(self, limit: float, *, or_equal: bool) -> int:
         """The items whose value is below (or at) a limit."""
         if self._edges is None:
-            self._edges = sorted(value for value in self.by_value if isinstance(value, float | int))
+            self._edges = sorted(self.by_value)  # type: ignore[arg-type]  # thresholds meet numbers only
             gathered = 0
             self._upto = [0]
             for value in self._edges:
@@ -106,10 +125,11 @@ def _met(term: Bound | Member | Ticked, column: Column) -> int:
 
 
 def places(mask: int) -> list[int]:
-    """The places of the set bits, low first."""
-    found = []
-    while mask:
-        low = mask & -mask
-        found.append(low.bit_length() - 1)
-        mask ^= low
-    return found
+    """The places of the set bits, low first.
+
+    >>> places(0b10110)
+    [1, 2, 4]
+    """
+    if mask & (mask - 1) == 0:
+        return [mask.bit_length() - 1] if mask else []
+    return list(compress(count(), bin(mask)[:1:-1].encode().translate(_SET)))

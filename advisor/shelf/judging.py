@@ -1,10 +1,10 @@
 """Judging a catalogue against a specification: verdicts, shortfalls with margins, and the ranking."""
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from enum import StrEnum
 from typing import NamedTuple
 
-from advisor.conditions import Bound, Coded, Condition, Domain, Either, Every, Member, Stated, Ticked, leaves
+from advisor.conditions import ALWAYS, Bound, Coded, Condition, Domain, Either, Every, Member, Stated, Ticked, leaves
 from advisor.conditions.terms import SIGNS
 from advisor.shelf.catalogue import Catalogue
 from advisor.shelf.columns import Column, judge, places
@@ -21,7 +21,9 @@ class Verdict(StrEnum):
     FALLS_SHORT = "falls_short"
 
 
-_RANK = {verdict: place for place, verdict in enumerate(Verdict)}
+Steps = tuple[int, int, int, int]
+"""Whole steps short of the shoulds, level by level."""
+_NOT_COUNTED: Steps = (0, 0, 0, 0)
 
 
 class Shortfall(NamedTuple):
@@ -61,10 +63,11 @@ class Judgement:
                 self.misses_strong |= failing | missing
 
     def _judge(self, demand: Demand, everything: int, *, missing_counts: bool) -> tuple[int, int]:
-        if self._waits(demand.for_):
-            return 0, 0
-        _, not_for = judge(demand.for_, self.columns, everything)
-        applies = everything & ~not_for
+        applies = everything
+        if demand.for_ is not ALWAYS:
+            if self._waits(demand.for_):
+                return 0, 0
+            applies = everything & ~judge(demand.for_, self.columns, everything)[1]
         if demand.void:
             return 0, applies if missing_counts else 0
         column = self.columns.get(demand.property)
@@ -92,7 +95,7 @@ class Judgement:
             return Verdict.STILL_IN
         return Verdict.SECOND_BEST if self.misses_strong >> place & 1 else Verdict.FITS
 
-    def steps(self, among: int) -> dict[int, tuple[int, int, int, int]]:
+    def steps(self, among: int) -> dict[int, Steps]:
         """For the items among these: the whole steps short of the shoulds, added level by level."""
         short = {place: [0, 0, 0, 0] for place in places(among)}
         for demand, failing, missing in zip(self.demands, self.failing, self.missing, strict=True):
@@ -107,14 +110,16 @@ class Judgement:
 
     def _add(self, demand: Demand, failing: int, level: int, short: dict[int, list[int]]) -> None:
         column = self.columns[demand.property]
-        known: dict[Coded, int] = {}
-        for place in places(failing):
-            value = column.values[place]
-            if value is None:
-                continue
-            if value not in known:
-                known[value] = steps_short(demand.test, value, self.domains[demand.property])
-            short[place][level] += known[value]
+        short_of = shortness(demand.test, self.domains[demand.property])
+        if failing.bit_count() < len(column.by_value):
+            for place in places(failing):
+                short[place][level] += short_of(column.values[place])  # type: ignore[arg-type]  # what fails has a value
+            return
+        for value, items in column.by_value.items():
+            if both := items & failing:
+                steps = short_of(value)
+                for place in places(both):
+                    short[place][level] += steps
 
     def shortfalls(self, place: int) -> list[Shortfall]:
         """Every demand that the item misses, musts first."""
@@ -134,17 +139,28 @@ class Judgement:
                 )
         return sorted(found, key=lambda each: each.demand.level)
 
-    def ranking(self, *, is_open: bool = False) -> list[tuple[int, Verdict, tuple[int, int, int, int]]]:
+    def ranking(self, *, is_open: bool = False) -> list[tuple[int, Verdict, Steps]]:
         """All items, best first: by verdict, by steps short level by level, by item code."""
-        alive = self.catalogue.everything & ~self.fails_must
-        steps = self.steps(alive)
-        none = (0, 0, 0, 0)
-        rows = [
-            (_RANK[verdict := self.verdict(place, is_open=is_open)], steps.get(place, none), item.code, place, verdict)
-            for place, item in enumerate(self.catalogue.items)
+        steps = self.steps(self.catalogue.everything & ~self.fails_must)
+        codes = self.catalogue.items
+        found: list[tuple[int, Verdict, Steps]] = []
+        for verdict, items in self._by_verdict(is_open=is_open):
+            rows = sorted((steps.get(place, _NOT_COUNTED), codes[place].code, place) for place in places(items))
+            found += [(place, verdict, short) for short, _, place in rows]
+        return found
+
+    def _by_verdict(self, *, is_open: bool) -> list[tuple[Verdict, int]]:
+        """The items that each verdict is given to, in the order of the ranking."""
+        good = self.passing
+        second = 0 if is_open else good & self.misses_strong
+        best = 0 if is_open else good & ~second
+        return [
+            (Verdict.FITS, best),
+            (Verdict.SECOND_BEST, second),
+            (Verdict.STILL_IN, good if is_open else 0),
+            (Verdict.UNPROVEN, self.unproven & ~self.fails_must),
+            (Verdict.FALLS_SHORT, self.fails_must),
         ]
-        rows.sort()
-        return [(place, verdict, short) for _, short, _, place, verdict in rows]
 
 
 def steps_short(test: Condition, value: Coded, domain: Domain) -> int:
@@ -153,28 +169,49 @@ def steps_short(test: Condition, value: Coded, domain: Domain) -> int:
     >>> steps_short(Member("nlgi", frozenset({3.0, 4.0})), 6.0, Domain("scale"))
     2
     """
-    if isinstance(test, Every):
-        return max((steps_short(part, value, domain) for part in test.parts), default=0)
-    if isinstance(test, Either):
-        return min((steps_short(part, value, domain) for part in test.parts), default=1)
-    if isinstance(test, Bound) and isinstance(value, float | int) and isinstance(test.limit, float | int):
-        if _meets(test, value):
-            return 0
-        return domain.steps_between(value, test.limit)
+    return shortness(test, domain)(value)
+
+
+def shortness(test: Condition, domain: Domain) -> Callable[[Coded], int]:
+    """How many steps a value is short of this test, as a function made once for all values."""
+    if isinstance(test, Every | Either):
+        parts = [shortness(part, domain) for part in test.parts]
+        if len(parts) == 1:
+            return parts[0]
+        pick, without = (max, 0) if isinstance(test, Every) else (min, 1)
+        return lambda value: pick((part(value) for part in parts), default=without)
+    if isinstance(test, Bound) and isinstance(test.limit, float | int):
+        return _short_of_bound(test.sign, test.limit, domain)
     if isinstance(test, Member):
+        return _short_of_members(test, domain)
+    if isinstance(test, Ticked):
+        return lambda value: 1 if isinstance(value, frozenset) and test.among.isdisjoint(value) is test.wanted else 0
+    met = isinstance(test, Stated) and test.wanted
+    return lambda _: 0 if met else 1
+
+
+def _short_of_bound(sign: str, limit: float, domain: Domain) -> Callable[[Coded], int]:
+    meets, between = SIGNS[sign], domain.steps_between
+
+    def short(value: Coded) -> int:
+        if not isinstance(value, float | int):
+            return 1
+        return 0 if meets(value, limit) else between(value, limit)
+
+    return short
+
+
+def _short_of_members(test: Member, domain: Domain) -> Callable[[Coded], int]:
+    numbers = [each for each in test.among if isinstance(each, float)] if test.wanted else []
+
+    def short(value: Coded) -> int:
         if (value in test.among) is test.wanted:
             return 0
-        numbers = [each for each in test.among if isinstance(each, float)]
-        if test.wanted and numbers and isinstance(value, float):
+        if numbers and isinstance(value, float):
             return min(domain.steps_between(value, each) for each in numbers)
         return 1
-    if isinstance(test, Ticked) and isinstance(value, frozenset):
-        return 0 if (not test.among.isdisjoint(value)) is test.wanted else 1
-    return 0 if isinstance(test, Stated) and test.wanted else 1
 
-
-def _meets(test: Bound, value: float) -> bool:
-    return isinstance(test.limit, float | int) and SIGNS[test.sign](value, test.limit)
+    return short
 
 
 def limits_of(test: Condition) -> list[float]:

@@ -200,7 +200,11 @@ def test_a_demand_for_thin_films_waits_until_the_film_is_known(advisor: Advisor,
     """EP is asked of a spherical roller only where kappa is below 1: until kappa is known nothing falls short of it."""
     whole = make_case(bearing_type="spherical_roller", cage="pressed_steel")
     advice = advisor.advise(Case(whole.point_kind, "", {"bearing_type": whole.answers["bearing_type"]}))
-    assert {each.verdict.value for each in advice.shelf} == {"still_in"}
+    assert advice.judgement is not None
+    out = [each.place for each in advice.shelf if each.verdict.value != "still_in"]
+    missed = {each.demand.property for place in out for each in advice.judgement.shortfalls(place) if each.demand.must}
+    assert "load_additive" not in missed
+    assert len(out) < len(advice.shelf) / 2
     assert "speed_rpm" in advice.line("additive").waits
 
 

@@ -9,13 +9,17 @@ from pathlib import Path
 import pytest
 from click.testing import CliRunner
 
+from advisor.advice import Advisor
+from advisor.answers import read_case
 from advisor.bending import domains_seen, inside
 from advisor.cli import gudgeon
 from advisor.comparison import Comparison, Editions, Meaning, as_markdown, as_text, compare, edition, edits, regions
 from advisor.comparison.changing import pairs
 from advisor.comparison.edits import with_edits
+from advisor.comparison.meaning import Sense, Words, differing, worst
 from advisor.comparison.regions import differs_on
 from advisor.conditions import holds
+from advisor.documents import Problems
 from advisor.knowledge import Instance, Knowledge
 from advisor.mishaps import Refusal
 from advisor.places import knowledge_folder, scenario_folder
@@ -154,6 +158,81 @@ def test_every_witness_differs_by_both_engines(knowledge: Knowledge, tmp_path: P
     by_name = {now.id: (was, now) for _, was, now in pairs(knowledge, other, editions.edits[0]) if now is not None}
     for each in regions(editions, []):
         assert differs_on(each.witness.record, *by_name[each.instance], domains_seen(other))
+
+
+NEAR = (
+    "dry_motor_bearing",
+    "hot_bearing_steel",
+    "hot_spells_past_five_percent",
+    "creeping_ball_bearing_takes_the_thickest_oil",
+    "film_at_a_creep_is_more_than_kappa",
+    "sealed_motor_bearing",
+    "no_temperature_measured",
+    "both_policies_side_by_side",
+    "ball_bearing_in_an_oil_system",
+)
+MORE: dict[str, tuple[str, list[tuple[str, str]]]] = {
+    "the closing step": (
+        "closing.yaml",
+        [
+            ("recommended_kappa: {below: 0.4}", "recommended_kappa: {below: 1.6}"),
+            ("below: 5000}", "below: 500000}"),
+            (
+                "silent: {recommended_kappa: 0.2, speed_factor: 12000}",
+                "silent: {recommended_kappa: 2, speed_factor: 12000}",
+            ),
+        ],
+    ),
+    "a conclusion that later rules see": ("form.yaml", [("usual_top_vg: 680", "usual_top_vg: 320")]),
+    "a referral that withholds": (
+        "safeguards.yaml",
+        [("      - refer: bearing_change\n        withhold: yes", "      - refer: bearing_change")],
+    ),
+    "a rule no longer agreed": (
+        "temperature.yaml",
+        [
+            (
+                "    title: Bearing steel changes size in the heat\n    status: agreed",
+                "    title: Bearing steel changes size in the heat\n    status: draft",
+            )
+        ],
+    ),
+}
+
+
+@pytest.mark.parametrize("name", [*EDITS, *MORE])
+def test_a_scenario_changes_as_its_whole_advice_does_and_no_other_changes(
+    name: str, knowledge: Knowledge, tmp_path: Path
+) -> None:
+    file, changes = (EDITS | MORE)[name]
+    other = edited(tmp_path, f"rolling_bearing/{file}", *changes)
+    files = [SCENARIOS / f"{each}.yaml" for each in NEAR]
+    found = {each.path: (each.meaning, dict(each.differences)) for each in compare(knowledge, other, files).changed}
+    assert found == {path: each for path in files if (each := _from_the_start(path, knowledge, other)) is not None}
+    assert found or name == "two alternatives"
+
+
+def _from_the_start(path: Path, old: Knowledge, new: Knowledge) -> object:
+    """What a scenario says otherwise by the other edition, both advised on from the start."""
+    said = []
+    for edition_ in (old, new):
+        saved = read_case(path, edition_, Problems())
+        assert saved is not None
+        advice = Advisor(edition_).advise(saved.case, assume_gaps=saved.assume_gaps, only=saved.only)
+        said.append(Sense(advice, Words(edition_)))
+    meaning = worst(*said)
+    return None if meaning is Meaning.SAME else (meaning, differing(*said, meaning))
+
+
+def test_a_scenario_about_another_kind_of_point_is_left_out(
+    knowledge: Knowledge, hot_steel: Knowledge, tmp_path: Path
+) -> None:
+    text = (SCENARIOS / "hot_bearing_steel.yaml").read_text(encoding="utf-8")
+    other = tmp_path / "gear.yaml"
+    other.write_text(text.replace("point_kind: rolling_bearing", "point_kind: gear"), encoding="utf-8")
+    found = compare(knowledge, hot_steel, [other, SCENARIOS / "dry_motor_bearing.yaml"])
+    assert found.replayed == 1
+    assert found.problems == ()
 
 
 def test_a_whole_case_is_named_where_answers_lead_into_the_region(compared: Comparison) -> None:

@@ -2,7 +2,7 @@
 
 import pytest
 
-from advisor.documents import Faulty, Mark, Problem, Problems, nearest
+from advisor.documents import Faulty, Mark, Problem, Problems, closest, nearest
 
 
 def test_a_problem_reads_as_place_trail_sentence_and_mend() -> None:
@@ -41,3 +41,8 @@ def test_all_errors_are_raised_at_once() -> None:
 def test_only_a_near_word_is_suggested() -> None:
     assert nearest("thicknr", ["form", "thickener"]) == " Did you mean 'thickener'?"
     assert nearest("zebra", ["form", "thickener"]) == ""
+
+
+def test_a_short_word_is_like_another_of_the_same_letters() -> None:
+    assert closest("PE", ["CR", "EP"]) == "EP"
+    assert closest("PE", ["CR", "ES"]) == ""

@@ -226,3 +226,16 @@ def test_a_case_saved_as_a_scenario_reads_as_one_and_replaces_nothing(advisor: A
     with pytest.raises(Unwritable, match="exists already"):
         session.save_scenario(path, "Fan", "again")
     session.close()
+
+
+def test_a_file_that_leaves_too_much_open_is_opened_without_its_last_range(advisor: Advisor, tmp_path: Path) -> None:
+    path = tmp_path / "open.yaml"
+    path.write_text(
+        "format: 1\ntitle: made by hand\npoint_kind: rolling_bearing\n"
+        "answers: {running_temperature_c: 70..90 °C, load_ratio: 0.1..0.2}\n",
+        encoding="utf-8",
+    )
+    session = open_interview(advisor, path)
+    assert list(session.case.answers) == ["running_temperature_c"]
+    assert any("load_ratio was left out. Too much is left open at once" in each for each in session.notices)
+    session.close()

@@ -340,3 +340,42 @@ def test_the_final_answers_alone_decide_the_advice(advisor: Advisor) -> None:
         phases=[Phase.explicit, Phase.reuse, Phase.generate],  # a walk is short enough to be read as it is
     )
     run_state_machine_as_test(Wandering, settings=settled)
+
+
+# ---- variants -------------------------------------------------------------------------------------------------------
+
+
+def test_variants_are_looked_at_one_by_one_and_an_answer_returns_to_the_whole(advisor: Advisor) -> None:
+    """Anhydrous calcium stands 90 °C with 10 K kept (common practice), the letter G of DIN 51825 reaches 100 °C."""
+    session = Session(advisor)
+    answer_all(session, {**MOTOR, "running_temperature_c": "70..90 °C"})
+    whole, count = session.advice, len(session.advice.branches)
+    assert 1 < count <= 6
+    assert session.shown is whole
+    seen = []
+    for _ in range(count):
+        session.next_variant()
+        seen.append(session.shown)
+    assert seen == [each.advice for each in whole.branches]
+    assert (seen[0].codes.din, seen[-1].codes.din) == (("K2G-10",), ("K2K-10",))
+    session.next_variant()
+    assert session.shown is whole
+    session.next_variant()
+    give(session, running_temperature_c="75 °C")
+    assert session.shown is session.advice
+    assert not session.advice.branches
+
+
+def test_without_anything_left_open_there_is_no_variant_to_look_at(advisor: Advisor) -> None:
+    session = Session(advisor)
+    answer_all(session, MOTOR)
+    session.next_variant()
+    assert session.shown is session.advice
+
+
+def test_too_much_left_open_is_refused_as_an_answer(advisor: Advisor) -> None:
+    session = Session(advisor)
+    give(session, running_temperature_c="70..90 °C")
+    with pytest.raises(Unsuitable, match="Too much is left open at once"):
+        give(session, load_ratio="0.1..0.2")
+    assert "load_ratio" not in session.case.answers

@@ -23,6 +23,7 @@ BEARINGS, MIXING, SEALS = "tables/bearings.yaml", "tables/compatibility.yaml", "
 HOT_STEEL = "    when: {t_eff_c: {above: 120}}\n"
 HOT_STEEL_THEN = "      - caution: dimensional_stability\n"
 HOT_STEEL_BECAUSE = '    because: "At {t_eff_c} ordinary bearing steel may grow."\n'
+SEALED_CAUTION = "      - caution: do_not_lubricate\n"
 SEALED = "    when: {supply: sealed_no_fitting}\n"
 STEADY_NEED = "title: steady temperature with margin, formula: total, in: {a: t_eff_c, b: 10}}"
 LIGHT_DRIVE = "      - should: {start_viscosity: {at_most: 8000}}\n        level: 2\n"
@@ -357,7 +358,67 @@ CASES = [
         "'nobody' is no rule",
         offset=1,
     ),
+    Damage(
+        "misspelt declaration of a fact",
+        FACTS,
+        "  feed_line_max_c:\n",
+        "  feed_lien_max_c:\n",
+        "'feed_lien_max_c' is used nowhere, while 'feed_line_max_c'",
+        hint="Is 'feed_line_max_c' meant here?",
+    ),
+    Damage(
+        "misspelt declaration that is used once",
+        "cautions.yaml",
+        "  do_not_lubricate:\n",
+        "  do_not_lubricatte:\n",
+        "'do_not_lubricatte' is used nowhere",
+    ),
+    Damage(
+        "misspelt declaration of a source",
+        "sources.yaml",
+        "  iso_1629: {title",
+        "  iso_1692: {title",
+        "'iso_1692' is used nowhere",
+        most=1,
+    ),
+    Damage(
+        "misspelt choice",
+        FACTS,
+        "      sealed_no_fitting: sealed",
+        "      sealed_no_fiting: sealed",
+        "'sealed_no_fiting' is used nowhere",
+    ),
+    Damage(
+        "misspelt column",
+        BEARINGS,
+        "      special_share: {kind",
+        "      spezial_share: {kind",
+        "'special_share' is declared nowhere",
+    ),
+    Damage(
+        "misspelt row of a matrix",
+        MIXING,
+        "      AlX: {AlX: C",
+        "      AX: {AlX: C",
+        "'AX' is no row or column",
+    ),
+    Damage(
+        "misspelt step",
+        "steps.yaml",
+        "  renewal: {title",
+        "  reneawl: {title",
+        "no file holds the step 'reneawl'",
+        hint="Is 'renewal' meant here?",
+    ),
     # ---- twice -----------------------------------------------------------------------------------------------
+    Damage("conclusion twice", SAFEGUARDS, SEALED_CAUTION, SEALED_CAUTION * 2, "This entry is written twice", offset=1),
+    Damage(
+        "value twice in a list",
+        "docket.yaml",
+        "demands: [lower_service_c, start_viscosity]",
+        "demands: [lower_service_c, lower_service_c]",
+        "This entry is written twice",
+    ),
     Damage(
         "duplicate rule id",
         SAFEGUARDS,
@@ -404,6 +465,39 @@ CASES = [
         most=2,
     ),
     # ---- rules -----------------------------------------------------------------------------------------------
+    Damage(
+        "empty condition", SAFEGUARDS, SEALED, "    when: {}\n", "the condition is empty", hint="or write 'always'"
+    ),
+    Damage(
+        "condition that lacks what its example gives",
+        VISCOSITY,
+        "      load_ratio: {below: 0.01}\n    then:\n",
+        "    then:\n",
+        "the condition holds with the example 'silent'",
+        offset=-2,
+        hint="it does not name 'load_ratio'",
+    ),
+    Damage(
+        "number without unit",
+        FACTS,
+        '  feed_line_max_c:\n    title: hottest section of the feed line\n    kind: number\n    unit: "°C"\n',
+        "  feed_line_max_c:\n    title: hottest section of the feed line\n    kind: number\n",
+        "a number has a unit",
+    ),
+    Damage(
+        "step of places that is no yes",
+        "properties.yaml",
+        "    step: {places: yes}\n",
+        "    step: {places: {a: yes}}\n",
+        "this is no step",
+    ),
+    Damage(
+        "code without a column that it reads",
+        "designations.yaml",
+        "upper: upper_c, water_test: water_test_c, rating_to",
+        "upper: upper_c, rating_to",
+        "'water_test' is missing here",
+    ),
     Damage(
         "placeholder for an unknown fact",
         TEMPERATURE,
@@ -586,6 +680,36 @@ CASES = [
         "tab", TEMPERATURE, HOT_STEEL, HOT_STEEL.replace("    when", "\twhen"), "A tab stands where only spaces may"
     ),
     Damage("quote never closed", "usual_oils.yaml", 'family"}]', "family}]", "never closed"),
+    Damage(
+        "one entry moved out",
+        "steps.yaml",
+        "  viscosity: {title",
+        "viscosity: {title",
+        "The indentation of this line does not suit that of line ",
+        hint="Begin it in column 3",
+    ),
+    Damage(
+        "key moved out, its values left",
+        "facts.yaml",
+        "    tunable:\n",
+        "  tunable:\n",
+        "The indentation of this line does not suit that of line ",
+    ),
+    Damage(
+        "key moved out beside one of its name",
+        "facts.yaml",
+        "      source: [{id: common_practice}]\n",
+        "    source: [{id: common_practice}]\n",
+        "The indentation of this line does not suit that of line ",
+    ),
+    Damage(
+        "heading moved in",
+        "cautions.yaml",
+        "change_over:\n",
+        "  change_over:\n",
+        "'change_over' stands in the wrong place",
+    ),
+    Damage("first line moved in", "forks.yaml", "format: 1\n", "  format: 1\n", "The indentation of this line does"),
     Damage("second document", "docket.yaml", "quantities:\n", "---\nquantities:\n", "A second document begins here"),
 ]
 

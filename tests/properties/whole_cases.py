@@ -81,9 +81,8 @@ def _joined(case: Case, name: str, value: Value) -> Value:
 
 
 def ends(advice: Advice) -> list[Advice]:
-    """The advice itself, or those of its branches where something was left open."""
-    found = [end for branch in advice.branches for end in (branch.advice, branch.other_end) if end is not None]
-    return found or [advice]
+    """The advice itself, or those of its runs where something was left open."""
+    return list(advice.single)
 
 
 @cache

@@ -402,3 +402,53 @@ def test_a_fault_of_our_own_ends_in_a_sentence_a_log_and_kept_answers(
         drive(knowledge, NARROW, script)
     assert [path.suffix for path in tmp_path.glob("gudgeon-*")] == [".log"]
     assert "bore_mm" in next(kept.glob("*.yaml")).read_text(encoding="utf-8")
+
+
+@both_sizes
+def test_the_variants_of_a_range_are_stepped_through_by_one_key(knowledge: Knowledge, size: tuple[int, int]) -> None:
+    """DIN 51825: G reaches 100 °C, 20 K above the steady temperature; so the code changes after 80 °C."""
+
+    async def script(app: Gudgeon, pilot: Pilot[None]) -> None:
+        session = await begin(app, pilot)
+        await fill(app, pilot, until="running_temperature_c")
+        await pilot.press("7", "0", "full_stop", "full_stop", "9", "0")
+        await pilot.pause()
+        assert "reads as a range, 70 °C to 90 °C" in text(app)
+        assert "F7" not in text(app)
+        await pilot.press("enter")
+        await pilot.pause()
+        await fill(app, pilot)
+        count = len(session.advice.branches)
+        assert 1 < count <= 6
+        assert "F7 Variant" in text(app)
+        codes = []
+        for number in range(1, count + 1):
+            await pilot.press("f7")
+            await pilot.pause()
+            assert f"variant {number} of {count}: " in text(app)
+            codes += [line.split("Code")[1].split()[0] for line in lines(app) if " Code  " in line]
+        assert (codes[0], codes[-1]) == ("K2G-10,", "K2K-10,")
+        await pilot.press("f3")
+        await pilot.pause()
+        assert f"Variant {count}: running temperature" in text(app)
+        await pilot.press("f3", "f7")
+        await pilot.pause()
+        assert f"what {count} variants share" in text(app)
+        await pilot.press("f3")
+        await pilot.pause()
+        assert "Variant 1: running temperature 70 °C" in text(app)
+
+    drive(knowledge, size, script)
+
+
+def test_the_variant_key_does_nothing_where_nothing_was_left_open(knowledge: Knowledge) -> None:
+    async def script(app: Gudgeon, pilot: Pilot[None]) -> None:
+        session = await begin(app, pilot)
+        await fill(app, pilot)
+        before = text(app)
+        await pilot.press("f7")
+        await pilot.pause()
+        assert text(app) == before
+        assert session.variant == 0
+
+    drive(knowledge, NARROW, script)
