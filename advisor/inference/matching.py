@@ -5,6 +5,7 @@ The engine is fast to lie when it is used loosely: see the limits in `compiling`
 
 import importlib
 import threading
+import weakref
 from collections.abc import Mapping, Sequence
 from typing import Final, Protocol, cast
 
@@ -70,6 +71,8 @@ class Matcher:
         self._spellings = [(each.fact, each.head, each.plain_below, each) for each in compiled.spellings]
         self._rule_sets = compiled.rule_sets
         self._handles: list[int | None] = [None] * len(compiled.rule_sets)
+        # The engine's memory lies outside Python: a matcher that is dropped must give it back.
+        weakref.finalize(self, _give_back, self._engine, self._handles, self._owner).atexit = False
 
     def fired(self, record: Record) -> frozenset[int]:
         """The positions of all conditions that definitely hold.
@@ -91,11 +94,7 @@ class Matcher:
     def close(self) -> None:
         """Give the engine's memory back; a later case would build the rule sets anew."""
         self._check_owner()
-        for place, handle in enumerate(self._handles):
-            if handle is not None:
-                self._handles[place] = None
-                self._engine.delete_state(handle, _SESSION)
-                self._engine.delete_ruleset(handle)
+        _give_back(self._engine, self._handles, self._owner)
 
     def _fired_names(self, place: int, message: str) -> list[str]:
         # The handle is taken away while in use. Whatever interrupts the case, Ctrl-C included, leaves it taken:
@@ -130,3 +129,14 @@ class Matcher:
     def _check_owner(self) -> None:
         if threading.get_ident() != self._owner:
             raise EngineFault("The rule engine was called from a foreign thread; make one Matcher in each thread.")
+
+
+def _give_back(engine: Engine, handles: list[int | None], owner: int) -> None:
+    """Delete the rule sets behind these handles; in a foreign thread they are left alone."""
+    if threading.get_ident() != owner:
+        return
+    for place, handle in enumerate(handles):
+        if handle is not None:
+            handles[place] = None
+            engine.delete_state(handle, _SESSION)
+            engine.delete_ruleset(handle)

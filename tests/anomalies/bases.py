@@ -82,14 +82,17 @@ def _fixed() -> dict[str, Tree]:
             "designations": {
                 "din": {
                     **standard, "kind": "K", "water_test": "n0", "water_rating": "vg", "rating_at_most": 1,
-                    "upper": upper, "lower": {"table": "letters", "lower": "top_c"},
+                    "upper": {**upper, "water_test": "top_c", "rating_to": "top_c"},
+                    "lower": {"table": "letters", "lower": "top_c"},
                     "additive": {"P": {"property": "form", "values": ["grease"]}},
                     "base_oil": {"table": "oils", "property": "base_oil", "letters": "id"},
                 },
                 "iso": {
                     **standard, "prefix": "X", "water": "n0", "upper": upper,
-                    "lower": {"table": "letters", "lower": "top_c"},
-                    "water_grid": {"table": "letters", "letter": "letter"},
+                    "lower": {"table": "letters", "letter": "letter", "lower": "top_c"},
+                    "water_grid": {
+                        "table": "letters", "letter": "letter", "environment": "top_c", "rust": "top_c",
+                    },
                     "load": {"property": "form", "values": ["grease"], "with": "B", "without": "A"},
                 },
             }
@@ -107,16 +110,16 @@ def _fixed() -> dict[str, Tree]:
                 "vg": {"title": "VG", "kind": "number", "unit": "ISO VG", "places": [32, 46, 68]},
                 "viscosity_40": {"title": "at 40", "kind": "number", "unit": "mm²/s", "limits": [1, 9000]},
                 "viscosity_100": {"title": "at 100", "kind": "number", "unit": "mm²/s", "limits": [1, 900]},
-                "kappa": {"title": "kappa", "kind": "number", "limits": [0, 99]},
+                "kappa": {"title": "kappa", "kind": "number", "unit": "", "limits": [0, 99]},
                 "pair": {"title": "pair", "kind": "scale", "choices": ["same", "other"]},
-                "speciality": {"title": "special", "kind": "number", "limits": [1, 5]},
+                "speciality": {"title": "special", "kind": "number", "unit": "", "limits": [1, 5]},
             }
         },
         "tables/all.yaml": {
             "tables": {
                 "oils": {
                     "title": "Oils", "key": "id",
-                    "columns": {"id": {"kind": "choice"}, "vi": {"kind": "number"}, **{
+                    "columns": {"id": {"kind": "choice"}, "vi": {"kind": "number", "unit": ""}, **{
                         each: {"kind": "number", "unit": "ISO VG"} for each in ("from_vg", "to_vg")}},
                     "rows": [{"id": each, "from_vg": 32, "to_vg": 46, "vi": 95} for each in OILS],
                 },

@@ -1,5 +1,6 @@
 """Nothing that goes wrong in the engine may reach advice: refused, noticed, or mended by a new engine."""
 
+import gc
 import math
 import os
 import subprocess
@@ -23,6 +24,7 @@ from advisor.inference import (
     UnfitCondition,
     Unsendable,
 )
+from advisor.inference.matching import load_engine
 
 DOMAINS = {
     "speed_rpm": Domain("number"),
@@ -251,6 +253,20 @@ def test_a_closed_matcher_may_be_closed_again_and_builds_anew(matcher: Matcher) 
     matcher.close()
     matcher.close()
     assert matcher.fired(FAST) == set(range(51))
+
+
+def test_a_matcher_that_is_dropped_gives_its_memory_back(monkeypatch: pytest.MonkeyPatch) -> None:
+    engine = load_engine()
+    given_back: list[int] = []
+    delete = engine.delete_ruleset
+    monkeypatch.setattr(engine, "delete_ruleset", lambda handle: (given_back.append(handle), delete(handle)))
+    dropped = Matcher(CONDITIONS, DOMAINS)
+    dropped.fired(FAST)
+    handles = [each for each in dropped._handles if each is not None]
+    del dropped
+    gc.collect()
+    assert handles
+    assert given_back == handles
 
 
 def test_a_matcher_closes_after_an_interruption(monkeypatch: pytest.MonkeyPatch, matcher: Matcher) -> None:
