@@ -35,7 +35,7 @@ def _fact_row(fact: Declaration) -> dict[str, Any]:
         "origin": origin,
     }
     if domain.choices and domain.kind != "item":
-        row["choices"] = list(domain.choices)
+        row["choices"] = dict(domain.choices)
     if fact.question:
         row |= {"ask": fact.question.ask, "section": fact.question.section, "decides": fact.question.decides}
     if fact.assume:
@@ -90,8 +90,12 @@ def facts_text(rows: Sequence[dict[str, Any]]) -> str:
         kind = f"{row['kind']} {row['unit']}".strip()
         lines.append(f"{row['id']:<30} {row['origin']:<10} {kind:<16} {row['title']}")
         if "choices" in row:
-            lines.append(f"    {', '.join(row['choices'])}")
+            lines.append(f"    {', '.join(_choice(*each) for each in row['choices'].items())}")
     return "\n".join(lines) if lines else "No fact contains these words."
+
+
+def _choice(name: str, title: str) -> str:
+    return name if name.replace("_", " ") == title else f"{name} ({title})"
 
 
 def rules_text(rows: Sequence[dict[str, Any]]) -> str:

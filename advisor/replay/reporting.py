@@ -29,6 +29,8 @@ def summary(outcome: Outcome) -> str:
         else "all as expected"
     )
     faulty = len({problem.file for problem in outcome.problems})
+    if faulty and not played:
+        return f"{_count(faulty, 'file')} could not be replayed, and nothing else was."
     return f"{words}; {_count(faulty, 'file')} could not be replayed." if faulty else f"{words}."
 
 
