@@ -82,7 +82,8 @@ def _state(expected: StateIs, advice: Advice) -> Difference | None:
     because = [f"{each.rule} refers to {each.to}." for each in advice.referrals]
     because += [_conflict_words(each) for each in advice.conflicts]
     because += [
-        f"'{each.fact}' is not answered; {', '.join(each.waiting[: reasons.MOST])} wait for it."
+        f"'{each.fact}' is not answered, and this waits for it: {', '.join(each.waiting[: reasons.MOST])}. "
+        "Answer it in the case; a question that old cases may leave out has 'optional' and 'unasked'."
         for each in advice.open_questions
         if each.decides == "lubricant"
     ]
