@@ -160,7 +160,7 @@ def compare(old: str, new: str, scenarios: Path | None, kind: str, as_json: bool
     from advisor import replay as replaying
 
     with comparison.edition(old) as before, comparison.edition(new) as after:
-        editions = _edition(before, kind, old), _edition(after, kind, new)
+        editions = comparison.beside(lambda: _edition(before, kind, old), lambda: _edition(after, kind, new))
         compared = comparison.compare(*editions, replaying.find([scenarios] if scenarios else []))
     for problem in compared.problems:
         print(problem, file=sys.stderr)  # noqa: T201 - words beside the output

@@ -1,15 +1,16 @@
 """Two editions of the knowledge compared: which scenarios change and what that means, and where else rules differ."""
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Iterator, Sequence
 from pathlib import Path
 
-from advisor.answers import point_kind_of
+from advisor.answers import Saved, point_kind_of, read_case
 from advisor.comparison.changing import Changed, Editions, changes
 from advisor.comparison.editions import edition
 from advisor.comparison.edits import Edit, edits
 from advisor.comparison.meaning import Meaning
-from advisor.comparison.regions import Region, Witness, regions
+from advisor.comparison.regions import MOST_NEAR, Region, Witness, regions
 from advisor.comparison.reporting import Comparison, as_data, as_markdown, as_text, summary
+from advisor.comparison.sharing import beside
 from advisor.documents import Problems
 from advisor.knowledge import Knowledge
 
@@ -24,6 +25,7 @@ __all__ = [
     "as_data",
     "as_markdown",
     "as_text",
+    "beside",
     "compare",
     "edition",
     "edits",
@@ -36,10 +38,18 @@ def compare(old: Knowledge, new: Knowledge, files: Iterable[Path]) -> Comparison
     """Compare two editions over the scenarios about their kind of point, and over all that the edited rules can see."""
     paths = list(files)
     editions = Editions(old, new, edits(old, new))
-    problems = Problems()
     if not editions.edits:
         replayed = sum(point_kind_of(path) == new.point_kind.id for path in paths)
         return Comparison(old, new, (), replayed, (), (), ())
-    changed, cases = changes(paths, editions, problems)
-    found = regions(editions, cases)
-    return Comparison(old, new, editions.edits, len(cases), tuple(changed), tuple(found), tuple(problems))
+    found = changes(paths, editions)
+    told = regions(editions, list(_some_of(found.paths, editions)))
+    return Comparison(old, new, editions.edits, len(found.paths), found.changed, tuple(told), found.problems)
+
+
+def _some_of(paths: Sequence[Path], editions: Editions) -> Iterator[Saved]:
+    """As many of the scenarios as are looked at for a whole case in a region."""
+    read: tuple[dict[Path, Saved], dict[Path, Saved]] = {}, {}
+    for path in paths[:: max(1, len(paths) // MOST_NEAR)]:
+        case = read_case(path, editions.new, Problems(), read[0]) or read_case(path, editions.old, Problems(), read[1])
+        if case is not None:
+            yield case

@@ -1,6 +1,6 @@
 """Which scenarios an edition changes, what the change means, and which edits cause it."""
 
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass, field
 from functools import cached_property
 from pathlib import Path
@@ -12,7 +12,8 @@ from advisor.bending import answers_of
 from advisor.comparison.edits import RULE, Edit, carried, with_edits
 from advisor.comparison.meaning import Meaning, Sense, Words, differing, worst
 from advisor.comparison.replays import Pair, RuleEdits, Said, say
-from advisor.documents import Problems
+from advisor.comparison.sharing import halves
+from advisor.documents import Problem, Problems
 from advisor.knowledge import Knowledge
 from advisor.mutation import by_rules, plain
 
@@ -68,22 +69,24 @@ def _in_order(old: Knowledge, new: Knowledge, step: str) -> bool:
     return [each for each in before if each in after] == [each for each in after if each in before]
 
 
-def changes(files: Iterable[Path], editions: Editions, problems: Problems) -> tuple[list[Changed], list[Saved]]:
-    """The scenarios that change, and the cases that were replayed; those about another kind of point are left out."""
-    found: list[Changed] = []
-    cases: list[Saved] = []
+@dataclass(frozen=True, slots=True)
+class Replayed:
+    """The scenarios that were replayed, those of them that change, and what is wrong with the files of others."""
+
+    paths: tuple[Path, ...]
+    changed: tuple[Changed, ...]
+    problems: tuple[Problem, ...]
+
+
+def changes(files: Iterable[Path], editions: Editions) -> Replayed:
+    """The scenarios that change; those about another kind of point are left out."""
     both = _Both(editions)
-    for path in files:
-        old, new = both.read(path)
-        if old is None and new is None:
-            if point_kind_of(path) == editions.new.point_kind.id:
-                read_case(path, editions.new, problems)
-            continue
-        cases += [case for case in (new or old,) if case is not None]
-        changed = _changed(path, old, new, both)
-        if changed is not None:
-            found.append(changed)
-    return found, cases
+    parts = halves(both.replayed, list(files))
+    return Replayed(
+        tuple(path for part in parts for path in part.paths),
+        tuple(each for part in parts for each in part.changed),
+        tuple(dict.fromkeys(each for part in parts for each in part.problems)),
+    )
 
 
 Found = tuple[Meaning, Mapping[tuple[str, ...], tuple[str, str]], tuple[Edit, ...]]
@@ -104,7 +107,21 @@ class _Both:
             RuleEdits(old, new, touched) if editions.only_rules and old is not None and new is not None else None
         )
 
-    def read(self, path: Path) -> tuple[Saved | None, Saved | None]:
+    def replayed(self, files: Sequence[Path]) -> Replayed:
+        """These scenarios by both editions."""
+        changed: list[Changed] = []
+        paths: list[Path] = []
+        problems = Problems()
+        for path in files:
+            old, new = self._read_by_both(path)
+            if old is not None or new is not None:
+                paths.append(path)
+                changed += [each for each in (_changed(path, old, new, self),) if each is not None]
+            elif point_kind_of(path) == self.editions.new.point_kind.id:
+                read_case(path, self.editions.new, problems)
+        return Replayed(tuple(paths), tuple(changed), tuple(problems))
+
+    def _read_by_both(self, path: Path) -> tuple[Saved | None, Saved | None]:
         """The case as either edition reads it; where only rules were edited, that is the same."""
         old = read_case(path, self.editions.old, Problems(), self._read[0])
         same = self.editions.only_rules

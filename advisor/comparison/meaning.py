@@ -52,9 +52,11 @@ class Sense:
     def __getitem__(self, meaning: Meaning) -> Parts:
         """Everything whose change has this meaning."""
         if meaning not in self._known:
-            self._known |= self._found(meaning)
-            for label, branch in self._branches:
-                self._known[meaning] |= {(*part, label): text for part, text in branch[meaning].items()}
+            found = self._found(meaning)
+            for each in found:
+                for label, branch in self._branches:
+                    found[each] |= {(*part, label): text for part, text in branch[each].items()}
+            self._known |= found
         return self._known[meaning]
 
     def _found(self, meaning: Meaning) -> dict[Meaning, Parts]:
@@ -62,7 +64,9 @@ class Sense:
             return {meaning: _order(self._advice)}
         if meaning is Meaning.REASONS:
             return {meaning: {**_told(self._advice, reasons=True)[meaning], **self._reasons()}}
-        return {meaning: _told(self._advice, reasons=False)[meaning] | self._demands(must=meaning is Meaning.SAFETY)}
+        told_of = _told(self._advice, reasons=False)
+        both = (Meaning.SAFETY, Meaning.RECOMMENDATION)
+        return {each: told_of[each] | self._demands(must=each is Meaning.SAFETY) for each in both}
 
     def _demands(self, *, must: bool) -> Parts:
         verb = "must" if must else "should"

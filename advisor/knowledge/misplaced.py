@@ -44,16 +44,22 @@ def sunk_section(tree: Node, shape: type[Shape], faulty: Collection[Loc]) -> lis
     return []
 
 
-def one_level_away(
-    tree: Node, shape: type[Shape], loc: Loc, keys: list[str], faulty: Collection[Loc]
-) -> Loc | None:
-    """The key that keeps one of the keys from its place: itself, or the one that took it along, one level out or in."""
-    here, around = child_at(tree, loc), child_at(tree, loc[:-1])
-    own = fields_of(entry) if (entry := shape_at(shape, loc)) else {}
-    for beside, beneath in around.items() if loc and isinstance(around, Mapping) else ():
-        taken = isinstance(beneath, Mapping) and set(keys) & set(beneath)
-        if taken and beside in own and _is_faulty((*loc[:-1], beside), faulty):
-            return (*loc[:-1], beside)
+def taken_out(tree: Node, shape: type[Shape], faulty: Collection[Loc]) -> dict[Loc, Loc]:
+    """The keys that stand among the entries of a section although they belong to the entry before, which is given."""
+    found: dict[Loc, Loc] = {}
+    for name, section in tree.items() if isinstance(tree, Mapping) else ():
+        entries = section if isinstance(section, Mapping) else Mapping()
+        for before, entry in pairwise(entries):
+            own, inner = shape_at(shape, (name, entry)), entries[before]
+            belongs = own is not None and entry in fields_of(own) and isinstance(inner, Mapping) and entry not in inner
+            if belongs and _is_faulty((name, entry), faulty):
+                found[name, entry] = (name, before)
+    return found
+
+
+def one_level_away(tree: Node, shape: type[Shape], loc: Loc, keys: list[str]) -> Loc | None:
+    """Where one of the keys stands in the mapping around or in one within, if it does not belong there."""
+    here = child_at(tree, loc)
     near = [loc[:-1], *((*loc, str(each)) for each in here)] if loc and isinstance(here, Mapping) else []
     for each in near:
         node, known = child_at(tree, each), shape_at(shape, each)

@@ -18,7 +18,7 @@ from advisor.conditions import (
     Value,
 )
 from advisor.documents import Mapping, Node, Scalar, Sequence, nearest
-from advisor.knowledge.model import Band
+from advisor.knowledge.model import Band, Row, Table
 from advisor.knowledge.values import Blank, Mistyped, Scope, value
 
 _THRESHOLDS = {"above": ">", "at_least": ">=", "below": "<", "at_most": "<="}
@@ -185,8 +185,17 @@ def _cell(node: Scalar, domain: Domain, scope: Scope) -> Value:
     if isinstance(cell, Band):
         raise scope.fault(node, f"column '{name}' holds bands, not values", "name another column")
     if domain.kind != "number" and not domain.accepts(cell):
-        if any(problem.mark == node.mark for problem in scope.problems):
-            raise Mistyped
-        message = f"'{cell}' in row '{scope.row.id}' (line {scope.row.mark.line}) is not one of the choices here"
-        raise scope.stranger(node.mark, str(cell), message, domain.choices, "check both declarations")
+        raise _unsuitable(node, cell, domain, scope.table, scope.row, scope)
     return cell
+
+
+def _unsuitable(node: Scalar, cell: Value, domain: Domain, table: Table, row: Row, scope: Scope) -> Mistyped:
+    """Tell a cell that is none of the choices where a rule reads it: at its row, if the cells of other rows suit."""
+    cells = [each.cells[str(node)] for each in table.rows if str(node) in each.cells]
+    if any(not isinstance(each, Band) and domain.accepts(each) for each in cells):
+        message = f"'{cell}' is not one of the choices in line {node.mark.line} of {node.mark.file}, where it is read"
+        return scope.stranger(row.mark, str(cell), message, domain.choices, "check both declarations")
+    if any(problem.mark == node.mark for problem in scope.problems):
+        return Mistyped()
+    message = f"'{cell}' in row '{row.id}' (line {row.mark.line}) is not one of the choices here"
+    return scope.stranger(node.mark, str(cell), message, domain.choices, "check both declarations")

@@ -10,6 +10,7 @@ from advisor.documents import Expected, Mapping, Node, Problem, Problems, Scalar
 from advisor.knowledge.files import File
 from advisor.knowledge.kinds import ID
 from advisor.knowledge.lost import Lost
+from advisor.knowledge.misplaced import taken_out
 from advisor.knowledge.schema import Shape
 from advisor.knowledge.shapes import tell
 
@@ -66,6 +67,7 @@ def _recovered(tree: Mapping, shape: type[Filed], problems: Problems, lost: Lost
     unknown = [error["loc"] for error in errors if error["type"] == "extra_forbidden"]
     strange = {str(loc[0]) for loc in unknown if len(loc) == 1}
     places = {error["loc"][:2] for error in errors if error["loc"][0] not in strange}
+    places |= {before[:2] for before in taken_out(tree, shape, [error["loc"] for error in errors]).values()}
     if any(len(place) < 2 or place[0] not in shape.sections for place in places) or (strange and not shape.sections):
         return None
     for loc in unknown:

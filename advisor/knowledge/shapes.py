@@ -14,6 +14,7 @@ from advisor.knowledge.misplaced import (
     moved_key,
     one_level_away,
     sunk_section,
+    taken_out,
     told_already,
     where_it_belongs,
 )
@@ -44,23 +45,24 @@ def tell(tree: Node, shape: type[Shape], fault: ValidationError, problems: Probl
     errors = fault.errors()
     faulty = [tuple(error["loc"]) for error in errors]
     strange = {tuple(error["loc"]) for error in errors if error["type"] == "extra_forbidden"}
-    foreign, sunk = foreign_entries(strange), sunk_section(tree, shape, faulty)
+    sunk, taken = sunk_section(tree, shape, faulty), taken_out(tree, shape, faulty)
+    foreign = [loc for loc in foreign_entries(strange) if not _is_within(loc, (*sunk, *taken))]
     if foreign:
         problems.add(misplaced_entries(tree, shape, foreign, strange))
     if sunk:
         problems.add(moved_key(tree, (), sunk[0]))
     missing = _missing_keys(errors, strange)
-    moved = {loc: at for loc, keys in missing.items() if (at := one_level_away(tree, shape, loc, keys, faulty))}
+    moved = {before: at for at, before in taken.items()}
+    moved |= {loc: at for loc, keys in missing.items() if (at := one_level_away(tree, shape, loc, keys))}
     passed = (*foreign, *sunk, *moved.values())
     _tell_each(tree, shape, [error for error in errors if not _is_within(error["loc"], passed)], strange, problems)
-    for loc, keys in missing.items():
-        if _is_within(loc, passed):
-            continue
-        lacking = keys
-        if at := moved.get(loc):
+    for loc, at in moved.items():
+        if not _is_within(loc, passed):
             problems.add(moved_key(tree, loc, at))
-            lacking = [key for key in keys if key != at[-1] and child_at(tree, (*at, key)) is None]
-        if lacking:
+    for loc, keys in missing.items():
+        at = moved.get(loc, ())
+        lacking = [key for key in keys if not at or (key != at[-1] and child_at(tree, (*at, key)) is None)]
+        if lacking and not _is_within(loc, passed):
             problems.add(_missing(tree, shape, loc, lacking))
 
 
