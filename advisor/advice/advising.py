@@ -132,9 +132,8 @@ class Advisor:
         of_cautions = (name for _, warns in run.drawn.warns for name in mentions(warns.for_))
         needed = catalogue.looked_at(specification.demands, raises, (*self.always_needed, *of_cautions))
         incumbent = str(facts["incumbent"].value) if "incumbent" in facts else ""
-        found = self.recommender(incumbent).recommend(specification, facts, raises, run.waiting, needed)
-        columns = catalogue.for_case(facts, raises, needed=needed)
-        judgement = Judgement(catalogue, columns, specification.demands, domains, missing_counts=True)
+        found = self.recommender(incumbent).recommend(specification, run.judgements, raises, run.waiting, needed)
+        judgement = run.judgements.of(catalogue, specification.demands, domains, raises, needed=needed)
         shelf = _ranked(judgement, is_open=False)
         closing = closing_record(run, found, shelf)
         run.fire(CLOSING, (), closing)

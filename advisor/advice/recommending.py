@@ -2,14 +2,14 @@
 
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
+from functools import partial
 
 from advisor.advice.model import Candidate, Line
 from advisor.advice.waiting import Waiting
-from advisor.case import Fact
 from advisor.conditions import Value
 from advisor.knowledge import DocketRow, Knowledge
-from advisor.shelf import Catalogue, Judgement, Raise, judge, places
-from advisor.specification import MUST, Conflict, Demand, Specification, mentions, smallest_cover
+from advisor.shelf import Catalogue, Judgement, Judgements, Raise, judge, places
+from advisor.specification import MUST, Conflict, Specification, mentions, smallest_cover
 
 Steps = tuple[int, int, int, int]
 
@@ -42,45 +42,35 @@ class Recommender:
     def recommend(
         self,
         specification: Specification,
-        facts: Mapping[str, Fact],
+        judgements: Judgements,
         raises: Sequence[Raise],
         waiting: Waiting,
         needed: frozenset[str],
     ) -> Recommendation:
         """The recommended class of every row."""
-        found = Recommendation()
+        judged = partial(judgements.of, domains=self.domains, raises=raises, lenient=True)
+        found, context = Recommendation(), dict[str, Value]()
         demands = specification.class_demands
         own = self.incumbent is not None
         about_form = [demand for demand in demands if own or demand.property == "form"]
         seen = needed if own else needed & self.choices.looked_at(about_form, raises)
-        first = self._judged(self.choices, about_form, facts, raises, {}, seen)
+        first = judged(self.choices, about_form, needed=seen)
         form_row = next((row for row in self.knowledge.docket if row.recommends == "form"), None)
         if form_row is not None:
             line = self._choice_line(form_row, first, found, waiting)
             found.form = str(line.values[0]) if len(line.values) == 1 else ""
-        context: dict[str, Value] = {"form": found.form} if found.form else {}
-        found.oils = self._judged(self.oils, demands, facts, raises, context, needed)
+        if found.form:
+            context["form"] = found.form
+        found.oils = judged(self.oils, demands, needed=needed, context=context)
         self._oil_rows(found, first, waiting)
         if found.kappa is not None:
             context["kappa"] = found.kappa
-        found.choices = self._judged(self.choices, demands, facts, raises, context, needed)
+        found.choices = judged(self.choices, demands, needed=needed, context=context)
         for row in self.knowledge.docket:
             if row.section == "docket" and row.recommends and row.id not in found.lines:
                 self._choice_row(row, found, waiting)
         self._change_over(found, waiting)
         return found
-
-    def _judged(
-        self,
-        catalogue: Catalogue,
-        demands: Sequence[Demand],
-        facts: Mapping[str, Fact],
-        raises: Sequence[Raise],
-        context: Mapping[str, Value],
-        needed: frozenset[str],
-    ) -> Judgement:
-        columns = catalogue.for_case(facts, raises, needed=needed, lenient=True, context=context)
-        return Judgement(catalogue, columns, demands, self.domains, missing_counts=False)
 
     def _fewest(self, judgement: Judgement, among: int) -> tuple[list[int], dict[int, Steps]]:
         steps = judgement.steps(among)

@@ -11,7 +11,7 @@ from advisor.case import Case, Origin
 from advisor.conditions import Coded, FactRef, Record
 from advisor.inference import StepRules
 from advisor.knowledge import Asks, Instance, Knowledge, Refers, Sets, Warns
-from advisor.shelf import Raise
+from advisor.shelf import Judgements, Raise
 from advisor.specification import Conflict, Demand, with_limits
 
 CLOSING = "closing"
@@ -49,6 +49,7 @@ class Run:
         self.trace: list[StepTrace] = []
         self.undecided: list[tuple[Instance, frozenset[str]]] = []
         self.waiting = Waiting(knowledge.facts)
+        self.judgements = Judgements(self.facts.facts)
 
     def steps(self) -> bool:
         """Run all steps but the closing one; False where a withheld referral ended the case."""
@@ -88,6 +89,7 @@ class Run:
         twin = copy(self)
         twin.knowledge, twin.rules = knowledge, rules
         twin.drawn, twin.trace, twin.undecided, twin.waiting = Drawn(), [], [], Waiting(knowledge.facts)
+        twin.judgements = self.judgements.again()
         for each in self.trace:
             if each.step != CLOSING:
                 same = rules[each.step] is self.rules[each.step]

@@ -4,7 +4,7 @@ from collections.abc import Iterable, Iterator, Sequence
 from pathlib import Path
 
 from advisor.answers import Saved, point_kind_of, read_case
-from advisor.comparison.changing import Changed, Editions, changes
+from advisor.comparison.changing import Changed, Editions, Replayed, Replays
 from advisor.comparison.editions import edition
 from advisor.comparison.edits import Edit, edits
 from advisor.comparison.meaning import Meaning
@@ -33,6 +33,11 @@ __all__ = [
     "summary",
 ]
 
+LEAST = 60
+"""With fewer scenarios it takes longer to make a process."""
+_HERE = 0.45
+"""The share of the scenarios that is replayed where the regions are looked for."""
+
 
 def compare(old: Knowledge, new: Knowledge, files: Iterable[Path]) -> Comparison:
     """Compare two editions over the scenarios about their kind of point, and over all that the edited rules can see."""
@@ -41,9 +46,22 @@ def compare(old: Knowledge, new: Knowledge, files: Iterable[Path]) -> Comparison
     if not editions.edits:
         replayed = sum(point_kind_of(path) == new.point_kind.id for path in paths)
         return Comparison(old, new, (), replayed, (), (), ())
-    found = changes(paths, editions)
-    told = regions(editions, list(_some_of(found.paths, editions)))
+    found, told = _found(paths, editions)
     return Comparison(old, new, editions.edits, len(found.paths), found.changed, tuple(told), found.problems)
+
+
+def _found(paths: list[Path], editions: Editions) -> tuple[Replayed, list[Region]]:
+    """The scenarios replayed, and the regions; where there are many, a part of the scenarios beside the rest."""
+    replays = Replays(editions)
+    cut = round(len(paths) * _HERE) if len(paths) >= LEAST else len(paths)
+
+    def here() -> tuple[Replayed, list[Region]]:
+        return replays.replayed(paths[:cut]), regions(editions, list(_some_of(paths, editions)))
+
+    if cut == len(paths):
+        return here()
+    (first, told), rest = beside(here, lambda: replays.replayed(paths[cut:]))
+    return first.with_more(rest), told
 
 
 def _some_of(paths: Sequence[Path], editions: Editions) -> Iterator[Saved]:

@@ -12,7 +12,6 @@ from advisor.bending import answers_of
 from advisor.comparison.edits import RULE, Edit, carried, with_edits
 from advisor.comparison.meaning import Meaning, Sense, Words, differing, worst
 from advisor.comparison.replays import Pair, RuleEdits, Said, say
-from advisor.comparison.sharing import halves
 from advisor.documents import Problem, Problems
 from advisor.knowledge import Knowledge
 from advisor.mutation import by_rules, plain
@@ -77,24 +76,18 @@ class Replayed:
     changed: tuple[Changed, ...]
     problems: tuple[Problem, ...]
 
-
-def changes(files: Iterable[Path], editions: Editions) -> Replayed:
-    """The scenarios that change; those about another kind of point are left out."""
-    both = _Both(editions)
-    parts = halves(both.replayed, list(files))
-    return Replayed(
-        tuple(path for part in parts for path in part.paths),
-        tuple(each for part in parts for each in part.changed),
-        tuple(dict.fromkeys(each for part in parts for each in part.problems)),
-    )
+    def with_more(self, other: "Replayed") -> "Replayed":
+        """These and more."""
+        problems = tuple(dict.fromkeys((*self.problems, *other.problems)))
+        return Replayed((*self.paths, *other.paths), (*self.changed, *other.changed), problems)
 
 
 Found = tuple[Meaning, Mapping[tuple[str, ...], tuple[str, str]], tuple[Edit, ...]]
 """What a change means, what differs, and what causes it."""
 
 
-class _Both:
-    """The scenarios by both editions."""
+class Replays:
+    """Scenarios by both editions."""
 
     def __init__(self, editions: Editions) -> None:
         self.editions = editions
@@ -108,7 +101,7 @@ class _Both:
         )
 
     def replayed(self, files: Sequence[Path]) -> Replayed:
-        """These scenarios by both editions."""
+        """These scenarios by both editions; those about another kind of point are left out."""
         changed: list[Changed] = []
         paths: list[Path] = []
         problems = Problems()
@@ -135,7 +128,7 @@ class _Both:
         return say(old, before, self.words[0]), say(new, after, self.words[1])
 
 
-def _changed(path: Path, old: Saved | None, new: Saved | None, both: _Both) -> Changed | None:
+def _changed(path: Path, old: Saved | None, new: Saved | None, both: Replays) -> Changed | None:
     if old is None or new is None:
         gone = ("cannot be read", "") if old is None else ("", "cannot be read")
         return Changed(path.stem, path, Meaning.SAFETY, {("case",): gone}, both.editions.edits)
@@ -151,7 +144,7 @@ def _key(saved: Saved) -> object:
     return saved.assume_gaps, saved.only, answers_of(saved.case)
 
 
-def _found(old: Saved, new: Saved, both: _Both) -> Found | None:
+def _found(old: Saved, new: Saved, both: Replays) -> Found | None:
     # One rule that does otherwise may change the facts that later rules see: no edit is left out beforehand.
     edits = both.editions.edits
     said = both.said(old, new)
@@ -184,7 +177,7 @@ def pairs(old: Knowledge, new: Knowledge, edit: Edit) -> list[Pair]:
     return result
 
 
-def _causes(old: Saved, new: Saved, after: Sense, meaning: Meaning, both: _Both) -> tuple[Edit, ...]:
+def _causes(old: Saved, new: Saved, after: Sense, meaning: Meaning, both: Replays) -> tuple[Edit, ...]:
     """The smallest set of edits (none of which can be left out) that has the effect of all."""
     editions = both.editions
     if len(editions.edits) == 1:

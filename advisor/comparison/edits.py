@@ -69,13 +69,23 @@ def edits(old: Knowledge, new: Knowledge) -> tuple[Edit, ...]:
         before, after = getattr(old, part), getattr(new, part)
         found += [Edit(kind, name, how) for name, how in _between(before, after, _differ)]
     for part, kind in _WHOLE.items():
-        if sense(getattr(old, part)) != sense(getattr(new, part)):
+        if _differ(getattr(old, part), getattr(new, part)):
             found.append(Edit(kind, kind, "changed"))
     return tuple(found)
 
 
 def _differ(one: object, other: object) -> bool:
-    return sense(one) != sense(other)
+    """Whether two pieces mean something else; most of them are the same but for places in files, and soon told so."""
+    if one is other or type(one) is not type(other):
+        return one is not other and sense(one) != sense(other)
+    parts = _parts(type(one))  # type: ignore[arg-type]  # every class can be hashed
+    if parts is not None:
+        return any(_differ(getattr(one, name), getattr(other, name)) for name in parts)
+    if isinstance(one, tuple | list) and isinstance(other, tuple | list):
+        return len(one) != len(other) or any(map(_differ, one, other))
+    if isinstance(one, Mapping) and isinstance(other, Mapping):
+        return list(one) != list(other) or any(map(_differ, one.values(), other.values()))
+    return one != other
 
 
 def _between(
@@ -105,11 +115,11 @@ def _rule_edits(old: Knowledge, new: Knowledge) -> Iterator[Edit]:
 
     def differs(one: object, other: object) -> bool:
         name = _rule_of(one) or _rule_of(other)
-        if name is None or sense(old.rules[name]) != sense(new.rules[name]):
+        if name is None or _differ(old.rules[name], new.rules[name]):
             return name is not None
         rows = {each.id: each for each in before[name]}
         same_row = [(rows[each.id], each) for each in after[name] if each.id in rows]
-        return any(_means(was) != _means(now) for was, now in same_row if sense(was.row) == sense(now.row))
+        return any(_means(was) != _means(now) for was, now in same_row if not _differ(was.row, now.row))
 
     whole = {name: (name, each) for name, each in before.items()}
     whole_after = {name: (name, each) for name, each in after.items()}

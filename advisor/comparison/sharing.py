@@ -4,15 +4,11 @@ import gc
 import os
 import sys
 import warnings
-from collections.abc import Callable, Sequence
+from collections.abc import Callable
 from multiprocessing import get_context
 from multiprocessing.connection import Connection
 from typing import TypeVar
 
-LEAST = 60
-"""With fewer things to work on it takes longer to make a process."""
-
-Thing = TypeVar("Thing")
 One = TypeVar("One")
 Other = TypeVar("Other")
 
@@ -54,11 +50,3 @@ def _send(receiving: Connection, sending: Connection, work: Callable[[], object]
         sending.send(work())
     except (Exception, KeyboardInterrupt):
         return
-
-
-def halves(work: Callable[[Sequence[Thing]], One], things: Sequence[Thing], least: int = LEAST) -> list[One]:
-    """What the work comes to on either half, at the same time; on the whole where that is little."""
-    if len(things) < least:
-        return [work(things)]
-    middle = len(things) // 2
-    return list(beside(lambda: work(things[:middle]), lambda: work(things[middle:])))

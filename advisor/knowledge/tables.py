@@ -154,8 +154,11 @@ def _borrowed(tree: Mapping) -> list[str]:
 
 
 def _column(node: Node, mark: Mark, labels: Map[str, Map[str, str]], scope: Scope) -> tuple[Domain, bool]:
-    band = isinstance(node, Mapping) and str(node.get("kind", "")) == "band"
-    if band and isinstance(node, Mapping):
+    if not isinstance(node, Mapping):
+        scope.problem(mark, "a column is declared by its kind, as a mapping", "write {kind: number, unit: mm}")
+        return Domain("choice", open_choices=True), False
+    band = str(node.get("kind", "")) == "band"
+    if band:
         node = _as_number(node)
     shape = shaped(node, DomainShape, scope.problems)
     if shape is None:

@@ -18,9 +18,13 @@ class Mistyped(Exception):
     """The part has no value; a problem was recorded for it, or for what it names."""
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(slots=True, eq=False)
 class Scope:
-    """What names mean in one place of the knowledge."""
+    """What names mean in one place of the knowledge.
+
+    Nothing changes a scope once it is made. It is not frozen because one is made for every value, and a frozen one
+    takes five times as long.
+    """
 
     problems: Problems
     names: Map[str, Domain]

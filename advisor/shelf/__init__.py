@@ -2,6 +2,7 @@
 
 from advisor.shelf.catalogue import Catalogue, Item, Raise, all_reads, facts_read
 from advisor.shelf.columns import Column, judge, places
+from advisor.shelf.judgements import Judgements
 from advisor.shelf.judging import Judgement, Shortfall, Verdict, at_limit, steps_short
 from advisor.shelf.stocking import choices, products, usual_oils
 
@@ -10,6 +11,7 @@ __all__ = [
     "Column",
     "Item",
     "Judgement",
+    "Judgements",
     "Raise",
     "Shortfall",
     "Verdict",

@@ -1,6 +1,6 @@
 """Judging a catalogue against a specification: verdicts, shortfalls with margins, and the ranking."""
 
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Callable, Iterator, Mapping, Sequence
 from enum import StrEnum
 from typing import NamedTuple
 
@@ -24,6 +24,8 @@ class Verdict(StrEnum):
 Steps = tuple[int, int, int, int]
 """Whole steps short of the shoulds, level by level."""
 _NOT_COUNTED: Steps = (0, 0, 0, 0)
+_SOUGHT = 4
+"""Demands beside one another that may have gone or come between two judgements."""
 
 
 class Shortfall(NamedTuple):
@@ -45,6 +47,7 @@ class Judgement:
         domains: Mapping[str, Domain],
         *,
         missing_counts: bool,
+        like: "Judgement | None" = None,
     ) -> None:
         self.catalogue, self.columns, self.demands, self.domains = catalogue, columns, tuple(demands), domains
         everything = catalogue.everything
@@ -52,8 +55,8 @@ class Judgement:
         self.missing: list[int] = []
         self.fails_must = self.unproven = self.misses_strong = 0
         self._waiting = frozenset(name for name, column in columns.items() if column.waiting)
-        for demand in self.demands:
-            failing, missing = self._judge(demand, everything, missing_counts=missing_counts)
+        for demand, known in zip(self.demands, _known(self.demands, like), strict=True):
+            failing, missing = known or self._judge(demand, everything, missing_counts=missing_counts)
             self.failing.append(failing)
             self.missing.append(missing)
             if demand.level == MUST:
@@ -161,6 +164,22 @@ class Judgement:
             (Verdict.UNPROVEN, self.unproven & ~self.fails_must),
             (Verdict.FALLS_SHORT, self.fails_must),
         ]
+
+
+def _known(demands: Sequence[Demand], like: Judgement | None) -> Iterator[tuple[int, int] | None]:
+    """For each demand who misses it and who lacks the value, where another judgement of the same columns has it.
+
+    The two have most of their demands in common, and in the same order.
+    """
+    at = 0
+    for demand in demands:
+        near = range(at, min(at + _SOUGHT, len(like.demands))) if like is not None else ()
+        place = next((each for each in near if like is not None and like.demands[each] == demand), None)
+        if like is None or place is None:
+            yield None
+        else:
+            at = place + 1
+            yield like.failing[place], like.missing[place]
 
 
 def steps_short(test: Condition, value: Coded, domain: Domain) -> int:

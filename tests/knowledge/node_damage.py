@@ -15,12 +15,9 @@ import re
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass
 from functools import lru_cache
-from pathlib import Path
 from typing import NamedTuple
 
 import yaml
-
-from advisor.documents import Problem
 
 Loc = tuple[str | int, ...]
 _LOADER: type = getattr(yaml, "CSafeLoader", yaml.SafeLoader)
@@ -251,7 +248,7 @@ def _moved(line: str, shift: int) -> str:
     return line[min(-shift, len(line) - len(line.lstrip(" "))) :]
 
 
-# ---- drawing and judging -------------------------------------------------------------------------------------------
+# ---- drawing -------------------------------------------------------------------------------------------------------
 
 KINDS: dict[str, Callable[[str, Entry, random.Random], Damaged]] = {
     "deleted": delete,
@@ -290,22 +287,3 @@ def _plain(node: yaml.Node | None) -> object:
     if isinstance(node, yaml.SequenceNode):
         return ("list", [_plain(each) for each in node.value])
     return node.value if node is not None else None
-
-
-def stands_right(problem: Problem, damaged: Damaged, file: Path) -> bool:
-    """Whether a problem stands on the damaged line, or names a lost declaration on a line that uses it."""
-    return (problem.file == str(file) and problem.line in damaged.lines) or _stands_at_use(problem, damaged, file)
-
-
-def _stands_at_use(problem: Problem, damaged: Damaged, file: Path) -> bool:
-    """What uses a step is a file of its name; there the problem stands in the first line."""
-    path = Path(problem.file)
-    if problem.message == "nothing reads this file":
-        return path.stem in damaged.lost
-    missed = [name for name in damaged.lost if _names(problem.message, name)]
-    lines = (damaged.text if path == file else path.read_text(encoding="utf-8")).splitlines()
-    return problem.line <= len(lines) and any(_names(lines[problem.line - 1], name) for name in missed)
-
-
-def _names(text: str, name: str) -> bool:
-    return re.search(rf"(?<!\w){re.escape(name)}(?!\w)", text) is not None

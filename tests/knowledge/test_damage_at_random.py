@@ -9,6 +9,7 @@ example contradict each other, and either may be wrong; so may either of two spe
 import dataclasses
 import gc
 import random
+import re
 from collections import Counter
 from collections.abc import Iterator, Mapping
 from functools import cache
@@ -24,7 +25,7 @@ from advisor.knowledge.files import File
 from advisor.knowledge.lost import Lost
 from advisor.knowledge.reading import read_file
 from tests.knowledge.damage import SHIPPED, copied, listing
-from tests.knowledge.node_damage import KINDS, Damaged, draw, entries, stands_right
+from tests.knowledge.node_damage import KINDS, Damaged, draw, entries
 
 SEED, DAMAGES, LEAST_SHARE, MOST_PROBLEMS = 2_026, 500, 0.99, 15
 LEAST_OF_ALL = 0.97
@@ -76,6 +77,25 @@ def _sound_files_are_read_once(monkeypatch: pytest.MonkeyPatch) -> Iterator[None
     monkeypatch.setattr("advisor.knowledge.folder.read_file", read)
     yield
     gc.unfreeze()
+
+
+def stands_right(problem: Problem, damaged: Damaged, file: Path) -> bool:
+    """Whether a problem stands on the damaged line, or names a lost declaration on a line that uses it."""
+    return (problem.file == str(file) and problem.line in damaged.lines) or _stands_at_use(problem, damaged, file)
+
+
+def _stands_at_use(problem: Problem, damaged: Damaged, file: Path) -> bool:
+    """What uses a step is a file of its name; there the problem stands in the first line."""
+    path = Path(problem.file)
+    if problem.message == "nothing reads this file":
+        return path.stem in damaged.lost
+    missed = [name for name in damaged.lost if _names(problem.message, name)]
+    lines = (damaged.text if path == file else path.read_text(encoding="utf-8")).splitlines()
+    return problem.line <= len(lines) and any(_names(lines[problem.line - 1], name) for name in missed)
+
+
+def _names(text: str, name: str) -> bool:
+    return re.search(rf"(?<!\w){re.escape(name)}(?!\w)", text) is not None
 
 
 @dataclasses.dataclass
