@@ -1,7 +1,7 @@
 """From a case to advice: `Advisor(knowledge).advise(case)`."""
 
 from advisor.advice.advising import Advisor
-from advisor.advice.branching import TooOpen, is_open
+from advisor.advice.branching import TooOpen
 from advisor.advice.merging import KAPPA
 from advisor.advice.model import (
     FORMAT,
@@ -47,6 +47,5 @@ __all__ = [
     "StepTrace",
     "TooOpen",
     "falls_on",
-    "is_open",
     "said_at",
 ]

@@ -3,8 +3,9 @@
 from collections.abc import Sequence
 from dataclasses import replace
 
-from advisor.advice.branching import advise_over, is_open
+from advisor.advice.branching import advise_over
 from advisor.advice.closing import cautions, closing_record, musts_at_limit
+from advisor.advice.left_open import is_open
 from advisor.advice.model import Advice, Line, Ranked, State
 from advisor.advice.recommending import Recommendation, Recommender
 from advisor.advice.running import CLOSING, Run
@@ -73,12 +74,21 @@ class Advisor:
         def run_once(case: Case) -> Advice:
             return self.advice_of(self.run(case, assume_gaps=assume_gaps), only)
 
-        if is_open(case, self.knowledge, assume_gaps=assume_gaps):
+        run = self.run_if_settled(case, assume_gaps=assume_gaps)
+        if run is None:
             return advise_over(case, self.knowledge, run_once, assume_gaps=assume_gaps)
-        return run_once(case)
+        return self.advice_of(run, only)
+
+    def run_if_settled(self, case: Case, *, assume_gaps: bool = False) -> Run | None:
+        """The run of a case; none where the case leaves something open and may have to be run more than once."""
+        run = Run(self.knowledge, self.rules, self.setters, case, assume_gaps=assume_gaps)
+        if is_open(case, run.facts, self.knowledge):
+            return None
+        run.steps()
+        return run
 
     def run(self, case: Case, *, assume_gaps: bool = False) -> Run:
-        """A case on settled answers, led through all steps but the closing one."""
+        """A case led through all steps but the closing one."""
         run = Run(self.knowledge, self.rules, self.setters, case, assume_gaps=assume_gaps)
         run.steps()
         return run

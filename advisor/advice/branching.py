@@ -10,7 +10,6 @@ from advisor.advice.left_open import (
     TooOpen,
     Variant,
     is_asked,
-    is_open,
     limits_on,
     open_ranges,
     standing_for,
@@ -26,7 +25,7 @@ from advisor.advice.steadiness import Steadiness
 from advisor.case import Answer, Case
 from advisor.knowledge import Knowledge
 
-__all__ = ["TooOpen", "advise_over", "is_open"]
+__all__ = ["TooOpen", "advise_over"]
 
 MOST_LOOKED_AT = 300
 """Values of a range that are looked at over all variants, before changes between them are found to the step."""

@@ -42,11 +42,10 @@ class _Open:
     fork: str = ""
 
 
-def is_open(case: Case, knowledge: Knowledge, *, assume_gaps: bool = False) -> bool:
-    """Whether the case may have to be run more than once."""
+def is_open(case: Case, facts: Facts, knowledge: Knowledge) -> bool:
+    """Whether the case may have to be run more than once; `facts` are those that are asked."""
     if any(answer.left_open for answer in case.answers.values()):
         return True
-    facts = Facts(case, knowledge, assume_gaps=assume_gaps)
     return next(_still_open(Variant(case), facts, knowledge), None) is not None
 
 

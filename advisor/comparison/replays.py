@@ -2,7 +2,7 @@
 
 from collections.abc import Sequence
 
-from advisor.advice import Advice, Advisor, TooOpen, is_open
+from advisor.advice import Advice, Advisor, TooOpen
 from advisor.advice.running import CLOSING, Run
 from advisor.answers import Saved
 from advisor.comparison.edits import sense
@@ -41,9 +41,8 @@ class RuleEdits:
 
     def said(self, saved: Saved) -> tuple[Said, Said] | None:
         """What both say; nothing where no edited rule does or says otherwise."""
-        if is_open(saved.case, self._old.knowledge, assume_gaps=saved.assume_gaps):
-            return self._of_several(saved)
-        return self._of_one(saved)
+        run = self._old.run_if_settled(saved.case, assume_gaps=saved.assume_gaps)
+        return self._of_several(saved) if run is None else self._of_one(saved, run)
 
     def _of_several(self, saved: Saved) -> tuple[Said, Said] | None:
         """A case that is run once for each way to settle what it leaves open."""
@@ -56,8 +55,7 @@ class RuleEdits:
             return None
         return Sense(before, self._words[0]), say(saved, self._new, self._words[1])
 
-    def _of_one(self, saved: Saved) -> tuple[Said, Said] | None:
-        run = self._old.run(saved.case, assume_gaps=saved.assume_gaps)
+    def _of_one(self, saved: Saved, run: Run) -> tuple[Said, Said] | None:
         if not self._may_concern(run):
             return None
         before = self._old.advice_of(run, saved.only)

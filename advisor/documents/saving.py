@@ -24,9 +24,21 @@ def write_text_safely(path: Path, text: str) -> None:
         message = f"'{path}' was not written: the text holds half a character. Delete it and save again."
         raise Unwritable(message) from error
     try:
-        _replace(path.resolve(), raw)
-    except (OSError, RuntimeError) as error:  # RuntimeError: links that lead in a circle
+        _replace(_followed(path), raw)
+    except OSError as error:
         raise Unwritable(f"'{path}' was not written: {_why(path, error)}") from error
+
+
+def _followed(path: Path) -> Path:
+    """What the path leads to; raises an OSError where links lead in a circle."""
+    circle = OSError(errno.ELOOP, "its links lead in a circle")
+    try:
+        target = path.resolve()
+    except RuntimeError as error:  # Python 3.11 and 3.12; 3.13 gives back a link of the circle
+        raise circle from error
+    if target.is_symlink():
+        raise circle
+    return target
 
 
 def _replace(target: Path, raw: bytes) -> None:
@@ -67,7 +79,7 @@ def _sync_folder(folder: Path) -> None:
             os.close(handle)
 
 
-def _why(path: Path, error: OSError | RuntimeError) -> str:
+def _why(path: Path, error: OSError) -> str:
     """What kept the file from being written, and the mend."""
     match error:
         case FileNotFoundError() | NotADirectoryError():
@@ -83,5 +95,5 @@ def _why(path: Path, error: OSError | RuntimeError) -> str:
         case OSError(errno=errno.ENAMETOOLONG):
             why, mend = "the name is too long", "Choose a shorter one"
         case _:
-            why, mend = str(getattr(error, "strerror", None) or error), "Choose another place"
+            why, mend = error.strerror or str(error), "Choose another place"
     return f"{why}. {mend}."

@@ -146,7 +146,10 @@ _Y = Input("viscosity_100", "Y", "mm²/s", 2, 500, "up", _TEXT_100, JOINTS)
 _U = Input("viscosity_40", "U", "mm²/s", 2, 50_000, "down", "kinematic viscosity at 40 °C")
 _CONFIRMED = "The coefficients agree with the published table of L and H within 0.11 %."
 _INDEX = "VI = 100·(L − U)/(L − H) where U ≥ H; else VI = (10^N − 1)/0.00715 + 100, N = (log10 H − log10 U)/log10 Y"
-_DIPS = "At the joints of the coefficient table the index may dip by up to 1 unit."
+_DIPS = (
+    "At the joints of the coefficient table the index may dip: by up to 1 unit between -50 and 400, "
+    "by up to 1 unit and 2 % of what lies beyond these elsewhere."
+)
 
 FORMULAS: tuple[Formula, ...] = (
     Formula(

@@ -4,7 +4,7 @@ from collections.abc import Iterable, Mapping, Sequence
 from copy import copy
 from dataclasses import dataclass, replace
 
-from advisor.advice import Advice, Advisor, is_open
+from advisor.advice import Advice, Advisor
 from advisor.advice.advising import setters_of
 from advisor.advice.running import Run
 from advisor.case import Case
@@ -102,9 +102,9 @@ def advised(advisor: Advisor, case: Case, *, assume_gaps: bool, only: frozenset[
     Raises:
         TooOpen: where too much is left open at once.
     """
-    if is_open(case, advisor.knowledge, assume_gaps=assume_gaps):
+    run = advisor.run_if_settled(case, assume_gaps=assume_gaps)
+    if run is None:
         return Advised(case, assume_gaps, only, advisor.advise(case, assume_gaps=assume_gaps, only=only), None)
-    run = advisor.run(case, assume_gaps=assume_gaps)
     return Advised(case, assume_gaps, only, advisor.advice_of(run, only), run)
 
 

@@ -2,6 +2,7 @@
 
 from collections.abc import Callable, Iterator, Mapping, Sequence
 from enum import StrEnum
+from itertools import repeat
 from typing import NamedTuple
 
 from advisor.conditions import ALWAYS, Bound, Coded, Condition, Domain, Either, Every, Member, Stated, Ticked, leaves
@@ -55,8 +56,9 @@ class Judgement:
         self.missing: list[int] = []
         self.fails_must = self.unproven = self.misses_strong = 0
         self._waiting = frozenset(name for name, column in columns.items() if column.waiting)
-        for demand, known in zip(self.demands, _known(self.demands, like), strict=True):
-            failing, missing = known or self._judge(demand, everything, missing_counts=missing_counts)
+        known = _known(self.demands, like) if like is not None else repeat(None, len(self.demands))
+        for demand, before in zip(self.demands, known, strict=True):
+            failing, missing = before or self._judge(demand, everything, missing_counts=missing_counts)
             self.failing.append(failing)
             self.missing.append(missing)
             if demand.level == MUST:
@@ -102,7 +104,7 @@ class Judgement:
         """For the items among these: the whole steps short of the shoulds, added level by level."""
         short = {place: [0, 0, 0, 0] for place in places(among)}
         for demand, failing, missing in zip(self.demands, self.failing, self.missing, strict=True):
-            if demand.level == MUST:
+            if demand.level == MUST or not (failing | missing) & among:
                 continue
             level = demand.level - 1
             for place in places(missing & among):
@@ -166,16 +168,16 @@ class Judgement:
         ]
 
 
-def _known(demands: Sequence[Demand], like: Judgement | None) -> Iterator[tuple[int, int] | None]:
+def _known(demands: Sequence[Demand], like: Judgement) -> Iterator[tuple[int, int] | None]:
     """For each demand who misses it and who lacks the value, where another judgement of the same columns has it.
 
     The two have most of their demands in common, and in the same order.
     """
     at = 0
     for demand in demands:
-        near = range(at, min(at + _SOUGHT, len(like.demands))) if like is not None else ()
-        place = next((each for each in near if like is not None and like.demands[each] == demand), None)
-        if like is None or place is None:
+        near = range(at, min(at + _SOUGHT, len(like.demands)))
+        place = next((each for each in near if like.demands[each] == demand), None)
+        if place is None:
             yield None
         else:
             at = place + 1

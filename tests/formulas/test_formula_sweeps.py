@@ -42,8 +42,8 @@ ORDERED = [("bore_mm", "outside_mm"), ("viscosity_100", "viscosity_40"), ("stead
            ("ball_diameter_mm", "pitch_diameter_mm"), ("viscosity_a", "viscosity", "viscosity_b")]
 # Dips against the declared direction that ASTM D2270 brings along at the joints of its table, and their size.
 DIPS: dict[str, Callable[[float], float]] = {
-    "viscosity_index": lambda result: 1 + 0.02 * max(0, -result - 50),
-    "reported_viscosity_index": lambda result: 2 + 0.02 * max(0, -result - 50),
+    "viscosity_index": lambda result: 1 + 0.02 * max(0, -result - 50, result - 400),
+    "reported_viscosity_index": lambda result: 2 + 0.02 * max(0, -result - 50, result - 400),
     "viscosity_100_from_index": lambda result: 0.01 * result,
     "viscosity_of_index_0": lambda result: 0.002 * result,
     "viscosity_of_index_100": lambda result: 0.002 * result,
