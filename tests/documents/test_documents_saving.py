@@ -107,7 +107,7 @@ def test_a_folder_is_not_replaced(tmp_path: Path) -> None:
 def test_links_in_a_circle_are_told(tmp_path: Path) -> None:
     (tmp_path / "a").symlink_to(tmp_path / "b")
     (tmp_path / "b").symlink_to(tmp_path / "a")
-    with pytest.raises(Unwritable, match="its links lead in a circle. Choose another place."):
+    with pytest.raises(Unwritable, match="its links lead in a circle"):
         write_text_safely(tmp_path / "a", "x")
     assert sorted(path.name for path in tmp_path.iterdir()) == ["a", "b"]
 
