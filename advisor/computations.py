@@ -21,18 +21,16 @@ class Outcome(NamedTuple):
 
 def compute(computation: Computation, facts: Mapping[str, Fact], tables: Mapping[str, Table]) -> Outcome:
     """The outcome of one computation on the facts known so far."""
-    how = computation.how
-    needed = (
-        [each for each in how.inputs.values() if isinstance(each, str)]
-        if isinstance(how, Formed)
-        else [n for _, n in how.by]
-    )
-    waits = frozenset(name for name in needed if name not in facts or facts[name].origin is Origin.UNANSWERED)
-    if waits:
-        return Outcome(waits=waits)
-    for name in needed:
-        if facts[name].origin is Origin.VOID:
-            return Outcome(void=f"{name} has no value: {facts[name].note}")
+    how, void = computation.how, ""
+    waits = []
+    for name in computation.needs:
+        fact = facts.get(name)
+        if fact is None or fact.origin is Origin.UNANSWERED:
+            waits.append(name)
+        elif fact.origin is Origin.VOID and not void:
+            void = f"{name} has no value: {fact.note}"
+    if waits or void:
+        return Outcome(waits=frozenset(waits)) if waits else Outcome(void=void)
     outcome = _formed(how, facts) if isinstance(how, Formed) else looked_up(how, lambda name: facts[name].value, tables)
     domain = computation.domain
     if isinstance(outcome.value, float) and not domain.low <= outcome.value <= domain.high:

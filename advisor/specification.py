@@ -261,4 +261,4 @@ def smallest_cover(parts: list[frozenset[Coded]], whole: frozenset[Coded]) -> tu
 
 def mentions(condition: Condition) -> set[str]:
     """The names that a condition looks at."""
-    return set(names(condition))
+    return set(names(condition)) if condition is not ALWAYS else set()

@@ -6,7 +6,7 @@ from dataclasses import replace
 from advisor.advice.branching import advise_over
 from advisor.advice.closing import cautions, closing_record, musts_at_limit
 from advisor.advice.left_open import is_open
-from advisor.advice.model import Advice, Line, Ranked, State
+from advisor.advice.model import Advice, Line, State
 from advisor.advice.recommending import Recommendation, Recommender
 from advisor.advice.running import CLOSING, Run
 from advisor.case import Case
@@ -14,7 +14,7 @@ from advisor.conditions import holds
 from advisor.designations import CodesFound, Designer
 from advisor.inference import StepRules
 from advisor.knowledge import CLOSING_FACTS, Knowledge, Sets
-from advisor.shelf import Catalogue, Item, Judgement, choices, facts_read, products, usual_oils
+from advisor.shelf import Catalogue, Item, choices, facts_read, products, usual_oils
 from advisor.specification import Conflict, Specification, combine, mentions
 
 _WITHHELD = "withheld: see the referral"
@@ -144,13 +144,10 @@ class Advisor:
         incumbent = str(facts["incumbent"].value) if "incumbent" in facts else ""
         found = self.recommender(incumbent).recommend(specification, run.judgements, raises, run.waiting, needed)
         judgement = run.judgements.of(catalogue, specification.demands, domains, raises, needed=needed)
-        shelf = _ranked(judgement, is_open=False)
-        closing = closing_record(run, found, shelf)
+        closing = closing_record(run, found, judgement)
         run.fire(CLOSING, (), closing)
         questions = run.open_questions(self.read_by)
         is_open = any(each.decides == "lubricant" for each in questions)
-        if is_open:
-            shelf = _ranked(judgement, is_open=True)
         assumed, keeping = run.assumptions()
         conflicts = _conflicts(specification, found, run)
         return Advice(
@@ -162,7 +159,7 @@ class Advisor:
             specification=specification,
             docket=self._docket(run, found, specification),
             quantities=self._quantities(run),
-            shelf=shelf,
+            shelf=judgement.ranking(is_open=is_open),
             judgement=judgement,
             oils=found.oils,
             choices=found.choices,
@@ -226,13 +223,6 @@ def setters_of(knowledge: Knowledge) -> dict[str, list[str]]:
         if declaration.concluded is not None:
             found.setdefault(last.get(name, knowledge.steps[0].id), []).append(name)
     return found
-
-
-def _ranked(judgement: Judgement, *, is_open: bool) -> tuple[Ranked, ...]:
-    items = judgement.catalogue.items
-    return tuple(
-        Ranked(place, items[place].code, verdict, steps) for place, verdict, steps in judgement.ranking(is_open=is_open)
-    )
 
 
 def _conflicts(specification: Specification, found: Recommendation, run: Run) -> tuple[Conflict, ...]:

@@ -1,38 +1,35 @@
 """What can be said only once all is judged: cautions with what they concern, musts met with nothing to spare."""
 
-from collections.abc import Sequence
+from collections.abc import Set as AbstractSet
 
-from advisor.advice.model import AtLimit, CautionGiven, Ranked
+from advisor.advice.model import AtLimit, CautionGiven
 from advisor.advice.recommending import Recommendation
 from advisor.advice.running import RESULT_OF, Run
 from advisor.conditions import ALWAYS, VOID, Bound, Coded, Condition, failures
 from advisor.conditions.terms import Void
 from advisor.knowledge import Asks, Instance
-from advisor.shelf import Judgement, Verdict, at_limit, judge, places
+from advisor.shelf import Judgement, at_limit, judge, places
 from advisor.specification import MUST, mentions, with_limits
 
-IN = frozenset({Verdict.FITS, Verdict.SECOND_BEST, Verdict.STILL_IN})
-"""Verdicts of products that may be used."""
 
-
-def closing_record(run: Run, found: Recommendation, shelf: Sequence[Ranked]) -> dict[str, Coded | Void]:
+def closing_record(run: Run, found: Recommendation, judgement: Judgement) -> dict[str, Coded | Void]:
     """What the closing step sees: the facts, and named results."""
     record: dict[str, Coded | Void] = dict(run.facts.record)
     record["recommended_kappa"] = VOID if found.kappa is None else found.kappa
     record["recommended_form"] = found.form or VOID
-    record["shelf_fits"] = float(any(each.verdict in IN for each in shelf))
+    record["shelf_fits"] = float(judgement.passing != 0)
     for result, fact in RESULT_OF.items():
         if fact not in run.facts.basis and fact in run.facts.facts:
-            record[result] = _verdict_on(str(run.facts.facts[fact].value), shelf)
+            record[result] = _verdict_on(str(run.facts.facts[fact].value), judgement)
     return record
 
 
-def _verdict_on(item: str, shelf: Sequence[Ranked]) -> str:
+def _verdict_on(item: str, judgement: Judgement) -> str:
     """What became of a named product: that of the machine maker, or the one in use."""
-    ranked = next((each for each in shelf if each.item == item), None)
-    if ranked is None:
+    place = judgement.catalogue.place.get(item)
+    if place is None:
         return "none_named" if item in {"none_named", "none"} else "not_on_the_shelf"
-    return Verdict.FITS.value if ranked.verdict is Verdict.STILL_IN else ranked.verdict.value
+    return judgement.verdict(place).value
 
 
 def cautions(run: Run, recommendation: Recommendation | None, judgement: Judgement | None) -> tuple[CautionGiven, ...]:
@@ -65,20 +62,21 @@ def _concerned(for_: Condition, recommendation: Recommendation | None, judgement
     if recommendation is None or judgement is None:
         return []
     found: list[str] = []
+    told_by = mentions(for_)
     winners = [place for places_ in recommendation.winners.values() for place in places_]
     for one, chosen in ((recommendation.oils, recommendation.oil_winners), (recommendation.choices, winners)):
         if one is not None:
-            meeting = _meeting(for_, one)
+            meeting = _meeting(for_, told_by, one)
             found += [one.catalogue.items[place].title for place in chosen if meeting >> place & 1]
-    meeting = _meeting(for_, judgement) & judgement.passing
+    meeting = _meeting(for_, told_by, judgement) & judgement.passing
     return found + [judgement.catalogue.items[place].code for place in places(meeting)]
 
 
-def _meeting(for_: Condition, judgement: Judgement) -> int:
+def _meeting(for_: Condition, told_by: AbstractSet[str], judgement: Judgement) -> int:
     """The items that do not fail the condition and have at least one of the properties it names."""
     _, failing = judge(for_, judgement.columns, judgement.catalogue.everything)
     told = 0
-    for name in mentions(for_):
+    for name in told_by:
         column = judgement.columns.get(name)
         told |= column.present if column else 0
     return told & ~failing

@@ -3,11 +3,11 @@
 from collections.abc import Callable, Iterable, Sequence
 from dataclasses import replace
 
-from advisor.advice.model import Advice, Branch, CautionGiven, Course, Line, Ranked, Span, Spread, State
+from advisor.advice.model import Advice, Branch, CautionGiven, Course, Line, Span, Spread, State
 from advisor.case import Case, Fact
 from advisor.conditions import Bound, Condition, Value
 from advisor.designations import CodesFound, Designer, din_serves, iso_serves
-from advisor.shelf import Verdict
+from advisor.shelf import Ranked, Verdict
 from advisor.specification import Demand
 
 KAPPA = "recommended_kappa"

@@ -9,7 +9,7 @@ from advisor.case import Case, Fact
 from advisor.conditions import Record, Value
 from advisor.designations import CodesFound
 from advisor.knowledge import Instance, Knowledge
-from advisor.shelf import Judgement, Verdict
+from advisor.shelf import Judgement, Ranked, Verdict
 from advisor.specification import Conflict, Demand, Specification
 
 FORMAT = 1
@@ -84,15 +84,6 @@ class Line:
     skipped: bool = False
     differs: bool = False
     barred: Mapping[Value, tuple[str, ...]] | None = None
-
-
-class Ranked(NamedTuple):
-    """A product with its verdict and the whole steps it misses of the shoulds, level by level."""
-
-    place: int
-    item: str
-    verdict: Verdict
-    steps: tuple[int, int, int, int]
 
 
 @dataclass(frozen=True, slots=True)

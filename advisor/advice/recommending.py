@@ -9,7 +9,7 @@ from advisor.advice.waiting import Waiting
 from advisor.conditions import Value
 from advisor.knowledge import DocketRow, Knowledge
 from advisor.shelf import Catalogue, Judgement, Judgements, Raise, judge, places
-from advisor.specification import MUST, Conflict, Specification, mentions, smallest_cover
+from advisor.specification import Conflict, Specification, mentions, smallest_cover
 
 Steps = tuple[int, int, int, int]
 
@@ -83,7 +83,7 @@ class Recommender:
         assert oils is not None  # noqa: S101 - judged just before
         passing = oils.passing
         if not passing:
-            found.conflicts.append(self._oil_conflict(oils))
+            found.conflicts.append(_conflict("usual oils", oils, self.oils.everything))
         ordinary, _ = judge(self.knowledge.usual_oils.ordinary, oils.columns, self.oils.everything)
         pool = passing & ordinary or self._least_special(oils, passing)
         steps = oils.steps(pool)
@@ -129,31 +129,14 @@ class Recommender:
         least = min((value for place in places(passing) if (value := column.values[place]) is not None), default=None)
         return passing if least is None else passing & column.by_value[least]
 
-    def _oil_conflict(self, oils: Judgement) -> Conflict:
-        musts = [
-            (demand, failing)
-            for demand, failing in zip(oils.demands, oils.failing, strict=True)
-            if demand.level == MUST and failing
-        ]
-        chosen = smallest_cover(
-            [frozenset(map(float, places(failing))) for _, failing in musts],
-            frozenset(map(float, places(self.oils.everything))),
-        )
-        return Conflict("usual oils", tuple(sorted({musts[each][0].rule for each in chosen or ()})))
-
     def _barred_oils(self, oils: Judgement, name: str) -> dict[Value, tuple[str, ...]]:
         """Values of which no usual oil passes, with the rules that bar them."""
         column = oils.columns[name]
         barred: dict[Value, tuple[str, ...]] = {}
+        musts = oils.musts_failed(oils.catalogue.everything)
         for coded, items in column.by_value.items():
-            if items & oils.passing:
-                continue
-            rules = {
-                demand.rule
-                for demand, failing in zip(oils.demands, oils.failing, strict=True)
-                if demand.level == MUST and failing & items
-            }
-            barred[self.domains[name].decode(coded)] = tuple(sorted(rules))
+            if not items & oils.passing:
+                barred[self.domains[name].decode(coded)] = _barring(musts, items)
         return barred
 
     def _choice_row(self, row: DocketRow, found: Recommendation, waiting: Waiting) -> None:
@@ -180,36 +163,18 @@ class Recommender:
             pool |= 1 << self.incumbent
         passing = pool & judgement.passing
         winners, steps = self._fewest(judgement, passing)
+        musts = judgement.musts_failed(family)
         barred = {
-            judgement.catalogue.items[place].values[name]: tuple(
-                sorted(
-                    {
-                        demand.rule
-                        for demand, failing in zip(judgement.demands, judgement.failing, strict=True)
-                        if demand.level == MUST and failing >> place & 1
-                    }
-                )
-            )
+            judgement.catalogue.items[place].values[name]: _barring(musts, 1 << place)
             for place in places(family & judgement.fails_must)
         }
         if family and not family & judgement.passing:
-            found.conflicts.append(self._choice_conflict(name, judgement, family))
+            found.conflicts.append(_conflict(name, judgement, family))
         values = self._values(judgement, name, winners)
         found.winners[name] = winners
         line = self._line(row, values, judgement, steps, waiting, barred)
         found.lines[row.id] = line
         return line
-
-    def _choice_conflict(self, name: str, judgement: Judgement, family: int) -> Conflict:
-        musts = [
-            (demand, failing & family)
-            for demand, failing in zip(judgement.demands, judgement.failing, strict=True)
-            if demand.level == MUST and failing & family
-        ]
-        chosen = smallest_cover(
-            [frozenset(map(float, places(failing))) for _, failing in musts], frozenset(map(float, places(family)))
-        )
-        return Conflict(name, tuple(sorted({musts[each][0].rule for each in chosen or ()})))
 
     def _values(self, judgement: Judgement, name: str, winners: Sequence[int]) -> list[Value]:
         column = judgement.columns[name]
@@ -301,3 +266,17 @@ class Recommender:
                 continue
             values += [own] if place == self.incumbent or not oils else [max(own, oil) for oil in oils]
         return values
+
+
+def _barring(musts: Sequence[tuple[str, int]], items: int) -> tuple[str, ...]:
+    """The rules of the musts that some of the items fail."""
+    return tuple(sorted({rule for rule, failing in musts if failing & items}))
+
+
+def _conflict(about: str, judgement: Judgement, among: int) -> Conflict:
+    """The fewest rules that together leave none of these items."""
+    musts = judgement.musts_failed(among)
+    chosen = smallest_cover(
+        [frozenset(map(float, places(failing))) for _, failing in musts], frozenset(map(float, places(among)))
+    )
+    return Conflict(about, tuple(sorted({musts[each][0] for each in chosen or ()})))

@@ -59,7 +59,7 @@ def _parts(kind: type) -> tuple[str, ...] | None:
     """The fields of a dataclass that count; nothing for anything else."""
     if kind is Mark:
         return ()
-    return tuple(each.name for each in fields(kind)) if is_dataclass(kind) else None
+    return tuple(each.name for each in fields(kind) if each.compare) if is_dataclass(kind) else None
 
 
 def edits(old: Knowledge, new: Knowledge) -> tuple[Edit, ...]:

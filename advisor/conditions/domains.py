@@ -36,7 +36,7 @@ class Domain:
     """The declared domain of a fact or a property.
 
     `choices` maps ids to labels in their declared order; for scales low comes first.
-    `places` lists the only numbers that exist (ISO viscosity grades).
+    `places` lists the only numbers that exist (ISO viscosity grades). `order` is the place of each choice.
     """
 
     kind: str
@@ -48,10 +48,10 @@ class Domain:
     places: tuple[float, ...] = ()
     named: Mapping[str, float] = field(default_factory=dict)
     open_choices: bool = False
-    _order: Mapping[str, int] = field(default_factory=dict, init=False, repr=False, compare=False)
+    order: Mapping[str, int] = field(default_factory=dict, init=False, repr=False, compare=False)
 
     def __post_init__(self) -> None:
-        object.__setattr__(self, "_order", {choice: place for place, choice in enumerate(self.choices)})
+        object.__setattr__(self, "order", {choice: place for place, choice in enumerate(self.choices)})
 
     @property
     def ordered(self) -> bool:
@@ -65,7 +65,7 @@ class Domain:
         1.0
         """
         if self.kind in {"scale", "yes_no"}:
-            return float(self._order[str(value)])
+            return float(self.order[str(value)])
         if isinstance(value, tuple):
             return frozenset(value)
         return value

@@ -34,7 +34,7 @@ def as_json(advice: Advice) -> str:
         text = to_json(data, inf_nan_mode="null").decode()
     except PydanticSerializationError:  # a lone surrogate in what was typed: UTF-8 cannot hold it
         text = json.dumps(data, ensure_ascii=False, separators=(",", ":"))
-    if not text.isascii() or "\x7f" in text:
+    if not text.isprintable():  # tells sooner than the search
         text = _UNSAFE.sub(lambda found: f"\\u{ord(found.group()):04x}", text)
     return text + "\n"
 

@@ -1,5 +1,6 @@
 """Judged catalogues as plain data, made column by column: what many items miss alike is made once."""
 
+from collections.abc import Callable
 from typing import Any
 
 from advisor.advice import Advice
@@ -7,7 +8,7 @@ from advisor.conditions import Coded, Domain
 from advisor.explanation.clearances import Clearance, least_clearances, limits_in
 from advisor.explanation.data_terms import number
 from advisor.explanation.seeing import recommended_oils
-from advisor.shelf import Judgement, Verdict, places, steps_short
+from advisor.shelf import Judgement, Verdict, places, shortness
 from advisor.specification import Demand
 
 Data = dict[str, Any]
@@ -49,15 +50,18 @@ def _add_failing(judgement: Judgement, place: int, demand: Demand, found: list[l
         return
     values, domain = judgement.columns[demand.property].values, judgement.domains[demand.property]
     limits = limits_in(demand.test) if domain.kind == "number" else []
+    short_of = shortness(demand.test, domain)
     known: dict[Coded | None, Data] = {}
     for item in places(failing):
         seen = values[item]
         if seen not in known:
-            known[seen] = _miss(place, demand, seen, domain, limits)
+            known[seen] = _miss(place, seen, domain, limits, short_of if demand.level else None)
         found[item].append(known[seen])
 
 
-def _miss(place: int, demand: Demand, seen: Coded | None, domain: Domain, limits: list[float]) -> Data:
+def _miss(
+    place: int, seen: Coded | None, domain: Domain, limits: list[float], short_of: Callable[[Coded], int] | None
+) -> Data:
     if seen is None:
         return {"demand": place, "seen": None}
     data: Data = {"demand": place, "seen": _plain(domain, seen)}
@@ -65,8 +69,8 @@ def _miss(place: int, demand: Demand, seen: Coded | None, domain: Domain, limits
         data["margin"] = abs(seen - limits[0])  # type: ignore[operator]  # limits stand on numbers only
     elif limits:
         data["margin"] = min(abs(seen - limit) for limit in limits)  # type: ignore[operator]  # the same
-    if demand.level:
-        data["steps"] = steps_short(demand.test, seen, domain)
+    if short_of is not None:
+        data["steps"] = short_of(seen)
     return data
 
 

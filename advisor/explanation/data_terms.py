@@ -62,9 +62,11 @@ def in_order(among: Iterable[Coded], domain: Domain | None) -> list[Any]:
     """Choices in their declared order, so that sets give the same bytes every time."""
     if domain is None:
         return sorted(map(str, among))
-    order = {choice: place for place, choice in enumerate(domain.choices)}
     meant = [domain.decode(each) for each in among]
-    return [number(each) for each in sorted(meant, key=lambda each: (order.get(str(each), len(order)), str(each)))]
+    if len(meant) > 1:
+        order = domain.order
+        meant.sort(key=lambda each: (order.get(str(each), len(order)), str(each)))
+    return [number(each) for each in meant]
 
 
 def number(value: Value) -> Any:

@@ -3,6 +3,7 @@
 import re
 from collections.abc import Mapping
 from dataclasses import dataclass, replace
+from functools import lru_cache
 
 from advisor.advice import Advice
 from advisor.case import Fact, Origin
@@ -107,10 +108,17 @@ def _symbol(advice: Advice, symbol: str, unit: str, text: str, bound: str | floa
 def put_in(formula: Formula, numbers: Mapping[str, float]) -> str:
     """The equation with every known input symbol replaced by its number."""
     known = {each.symbol: _number(numbers[each.name]) for each in formula.inputs if each.name in numbers}
-    if not known:
-        return formula.equation
-    symbols = "|".join(sorted(map(re.escape, known), key=len, reverse=True))
-    return re.sub(rf"(?<!\w)(?:{symbols})(?!\w)", lambda found: known[found.group()], formula.equation)
+    pieces = _pieces(formula.equation, tuple(known))
+    return "".join([known[piece] if place % 2 else piece for place, piece in enumerate(pieces)])
+
+
+@lru_cache(maxsize=1024)
+def _pieces(equation: str, symbols: tuple[str, ...]) -> tuple[str, ...]:
+    """The equation cut before and after every one of these symbols: text and symbol by turns."""
+    if not symbols:
+        return (equation,)
+    longest_first = "|".join(sorted(map(re.escape, symbols), key=len, reverse=True))
+    return tuple(re.split(rf"(?<!\w)({longest_first})(?!\w)", equation))
 
 
 def _number(value: float) -> str:

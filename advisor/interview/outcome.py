@@ -3,7 +3,7 @@
 from collections.abc import Mapping
 from textwrap import shorten
 
-from advisor.advice import Advice, Ranked, State, said_at
+from advisor.advice import Advice, State, said_at
 from advisor.conditions import Coded, Member, Ticked
 from advisor.explanation.contrasts import VERDICTS
 from advisor.explanation.seeing import deciding_run, instances_of
@@ -11,7 +11,7 @@ from advisor.explanation.words import fill_in, say_value
 from advisor.interview.wording import asked, short_title
 from advisor.knowledge import Instance
 from advisor.quantities import show
-from advisor.shelf import Shortfall, Verdict
+from advisor.shelf import Ranked, Shortfall, Verdict
 from advisor.specification import STRONG
 
 Known = Mapping[str, tuple[str, Instance, bool | None]]

@@ -128,7 +128,7 @@ class WorstOf:
 
 @dataclass(frozen=True, slots=True)
 class Computation:
-    """A fact that is computed or looked up in a step."""
+    """A fact that is computed or looked up in a step; `needs` are the facts it is found from."""
 
     fact: str
     title: str
@@ -137,6 +137,12 @@ class Computation:
     step: str
     mark: Mark
     source: tuple[Citation, ...] = ()
+    needs: tuple[str, ...] = field(init=False, repr=False, compare=False)
+
+    def __post_init__(self) -> None:
+        how = self.how
+        bound = how.inputs.values() if isinstance(how, Formed) else [name for _, name in how.by]
+        object.__setattr__(self, "needs", tuple(each for each in bound if isinstance(each, str)))
 
 
 @dataclass(frozen=True, slots=True)

@@ -5,7 +5,7 @@ from collections.abc import Iterable
 from dataclasses import replace
 from functools import singledispatch
 
-from advisor.advice import Advice, Ranked
+from advisor.advice import Advice
 from advisor.case import Origin
 from advisor.explanation.seeing import deciding_run, rules_seen
 from advisor.knowledge import Instance, Refers, Warns
@@ -36,7 +36,7 @@ from advisor.replay.expectations import (
     StateIs,
     WithheldIs,
 )
-from advisor.shelf import Judgement, Verdict
+from advisor.shelf import Judgement, Ranked, Verdict
 from advisor.specification import Conflict
 
 

@@ -4,11 +4,11 @@ from textual.app import ComposeResult
 from textual.containers import Vertical, VerticalScroll
 from textual.content import Content
 
-from advisor.advice import Advice, Ranked
+from advisor.advice import Advice
 from advisor.interview import VERDICTS, count_text, product_reasons
 from advisor.screens.glyphs import Glyphs
 from advisor.screens.row import Row
-from advisor.shelf import Verdict
+from advisor.shelf import Ranked, Verdict
 
 _BAR = 10
 

@@ -3,7 +3,7 @@
 from advisor.shelf.catalogue import Catalogue, Item, Raise, all_reads, facts_read
 from advisor.shelf.columns import Column, judge, places
 from advisor.shelf.judgements import Judgements
-from advisor.shelf.judging import Judgement, Shortfall, Verdict, at_limit, steps_short
+from advisor.shelf.judging import Judgement, Ranked, Shortfall, Verdict, at_limit, shortness, steps_short
 from advisor.shelf.stocking import choices, products, usual_oils
 
 __all__ = [
@@ -13,6 +13,7 @@ __all__ = [
     "Judgement",
     "Judgements",
     "Raise",
+    "Ranked",
     "Shortfall",
     "Verdict",
     "all_reads",
@@ -22,6 +23,7 @@ __all__ = [
     "judge",
     "places",
     "products",
+    "shortness",
     "steps_short",
     "usual_oils",
 ]

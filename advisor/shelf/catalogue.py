@@ -38,7 +38,8 @@ class Catalogue:
         self.items = tuple(items)
         self.knowledge = knowledge
         self.everything = (1 << len(self.items)) - 1
-        self.place = {item.code: place for place, item in enumerate(self.items)}
+        self.codes = [item.code for item in self.items]
+        self.place = {code: place for place, code in enumerate(self.codes)}
         self._empty = Column({}, len(self.items))
         self._order = _dependency_order(knowledge.properties)
         self._behind = {name: all_reads(frozenset({name}), knowledge.properties) for name in knowledge.properties}
@@ -160,19 +161,15 @@ class Catalogue:
             else:
                 fixed = facts[each].value if isinstance(each, str) else each
                 parts.append([fixed] * len(self.items))  # type: ignore[list-item]  # formula inputs are numbers
-        positional = FORMULAS[how.formula].inputs
-        order = [names.index(each.name) for each in positional]
-        parts = [parts[place] for place in order]
-        found: list[Coded | None] = []
-        for row in zip(*parts, strict=True):
-            if None in row:
-                found.append(None)
-                continue
+        ordered = [parts[names.index(each.name)] for each in FORMULAS[how.formula].inputs]
+
+        def result(*row: Coded | None) -> float | None:
             try:
-                found.append(float(function(*row)))
+                return None if None in row else float(function(*row))
             except (OutOfRange, ArithmeticError):
-                found.append(None)
-        return found
+                return None
+
+        return list(map(result, *ordered))
 
     def _looked_up(
         self, parts: Sequence[LookedUp], prop: Property, columns: Mapping[str, Column], facts: Mapping[str, Fact]

@@ -6,6 +6,7 @@ for the others it is unknown, because they lack a value.
 
 from bisect import bisect_left, bisect_right
 from collections.abc import Mapping, Sequence
+from functools import cache
 from itertools import compress, count
 
 from advisor.conditions import Bound, Coded, Condition, Either, Every, Member, Stated, Ticked, Valueless
@@ -34,11 +35,9 @@ class Column:
     def of(cls, values: Sequence[Coded | None]) -> "Column":
         """The column of these values, item by item."""
         by_value: dict[Coded, int] = {}
-        bit = 1
-        for value in values:
+        for value, bit in zip(values, _bits(len(values)), strict=True):
             if value is not None:
-                by_value[value] = by_value.get(value, 0) | bit
-            bit <<= 1
+                by_value[value] = by_value[value] | bit if value in by_value else bit
         column = cls(by_value, len(values))
         column._values = values
         return column
@@ -73,6 +72,12 @@ class Column:
 
 
 Columns = Mapping[str, Column]
+
+
+@cache
+def _bits(size: int) -> tuple[int, ...]:
+    """The masks of single items."""
+    return tuple(1 << place for place in range(size))
 
 
 def judge(condition: Condition, columns: Columns, everything: int) -> tuple[int, int]:

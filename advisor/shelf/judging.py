@@ -37,6 +37,15 @@ class Shortfall(NamedTuple):
     steps: int
 
 
+class Ranked(NamedTuple):
+    """A product with its verdict and the whole steps it misses of the shoulds, level by level."""
+
+    place: int
+    item: str
+    verdict: Verdict
+    steps: Steps
+
+
 class Judgement:
     """All items of a catalogue against all demands, as masks."""
 
@@ -73,6 +82,8 @@ class Judgement:
             if self._waits(demand.for_):
                 return 0, 0
             applies = everything & ~judge(demand.for_, self.columns, everything)[1]
+            if not applies:
+                return 0, 0
         if demand.void:
             return 0, applies if missing_counts else 0
         column = self.columns.get(demand.property)
@@ -84,6 +95,14 @@ class Judgement:
     def _waits(self, condition: Condition) -> bool:
         """Whether a `for` speaks of a property that is not known for any item until questions are answered."""
         return bool(self._waiting) and any(term.name in self._waiting for term in leaves(condition))
+
+    def musts_failed(self, among: int) -> list[tuple[str, int]]:
+        """The rule of each must that some of these items fail, with the items."""
+        return [
+            (demand.rule, both)
+            for demand, failing in zip(self.demands, self.failing, strict=True)
+            if demand.level == MUST and (both := failing & among)
+        ]
 
     @property
     def passing(self) -> int:
@@ -144,15 +163,19 @@ class Judgement:
                 )
         return sorted(found, key=lambda each: each.demand.level)
 
-    def ranking(self, *, is_open: bool = False) -> list[tuple[int, Verdict, Steps]]:
+    def ranking(self, *, is_open: bool = False) -> tuple[Ranked, ...]:
         """All items, best first: by verdict, by steps short level by level, by item code."""
         steps = self.steps(self.catalogue.everything & ~self.fails_must)
-        codes = self.catalogue.items
-        found: list[tuple[int, Verdict, Steps]] = []
+        codes = self.catalogue.codes
+        found: list[Ranked] = []
         for verdict, items in self._by_verdict(is_open=is_open):
-            rows = sorted((steps.get(place, _NOT_COUNTED), codes[place].code, place) for place in places(items))
-            found += [(place, verdict, short) for short, _, place in rows]
-        return found
+            order = sorted(places(items), key=codes.__getitem__)
+            if verdict is Verdict.FALLS_SHORT:
+                found += [Ranked(place, codes[place], verdict, _NOT_COUNTED) for place in order]
+            else:
+                order.sort(key=steps.__getitem__)
+                found += [Ranked(place, codes[place], verdict, steps[place]) for place in order]
+        return tuple(found)
 
     def _by_verdict(self, *, is_open: bool) -> list[tuple[Verdict, int]]:
         """The items that each verdict is given to, in the order of the ranking."""
