@@ -122,8 +122,8 @@ def mutate(
     shelf: Path | None,
 ) -> int:
     """Change every agreed rule in one place after the other; 1 where a change goes unnoticed."""
-    from advisor import mutation
     from advisor import replay as replaying
+    from advisor.mutation import measuring, wording
 
     found = replaying.find(files)
     if not found:
@@ -136,13 +136,13 @@ def mutate(
         if unknown:
             raise Refusal(f"'{unknown[0]}' is no rule of {kind}. 'gudgeon rules' lists them.")
     measured = [
-        mutation.measure(root, kind, shelf, found, rules=rules, tries=mutation.TRIES if tries is None else tries)
+        measuring.measure(root, kind, shelf, found, rules=rules, tries=measuring.TRIES if tries is None else tries)
         for kind in kinds
     ]
     if as_json:
-        say(as_json_text([mutation.as_data(each) for each in measured]))
+        say(as_json_text([wording.as_data(each) for each in measured]))
     else:
-        say("\n\n".join(mutation.as_text(each) for each in measured))
+        say("\n\n".join(wording.as_text(each) for each in measured))
     return NOT_SETTLED if any(len(each.survivors) > each.equivalent for each in measured) else DONE
 
 

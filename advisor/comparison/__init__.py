@@ -35,7 +35,7 @@ __all__ = [
 
 LEAST = 60
 """With fewer scenarios it takes longer to make a process."""
-_HERE = 0.45
+_HERE = 0.49
 """The share of the scenarios that is replayed where the regions are looked for."""
 
 

@@ -6,9 +6,9 @@ from advisor.advice import Advice
 from advisor.case import Origin
 from advisor.conditions import Bound, Condition, FactRef, Member, Ticked, Value, leaves
 from advisor.conditions.terms import Term
+from advisor.explanation.falling import falling
 from advisor.explanation.seeing import deciding_run
 from advisor.knowledge import Knowledge
-from advisor.replay.falling import falling
 from advisor.shelf import Judgement, Ranked, Verdict
 
 Part = tuple[str, ...]

@@ -3,13 +3,13 @@
 from advisor.advice import Advice
 from advisor.conditions import Condition, Domain
 from advisor.documents import Mapping, Node, Scalar, Sequence
+from advisor.explanation.falling import falling
 from advisor.explanation.words import LEVELS, say_test
 from advisor.knowledge import Knowledge, Mistyped, condition
 from advisor.replay import reasons
 from advisor.replay.checking import Checker
 from advisor.replay.differing import Difference
 from advisor.replay.expectations import DemandedBy
-from advisor.replay.falling import falling
 
 Told = tuple[str, Condition, int]
 """A property, the test on it, and the level."""

@@ -3,6 +3,7 @@
 from advisor.advice import Advice, Line
 from advisor.conditions import Domain, Value, holds
 from advisor.designations import Designer, din_serves, iso_serves
+from advisor.explanation.falling import Demands, asks, falling, nothing, say_at_least, turns_against
 from advisor.explanation.words import say_test
 from advisor.quantities import show
 from advisor.replay import reasons
@@ -20,7 +21,6 @@ from advisor.replay.expectations import (
     Recommends,
     fill_row,
 )
-from advisor.replay.falling import Demands, asks, falling, nothing, say_at_least, turns_against
 from advisor.specification import mentions
 
 _WITHHELD = "withheld"

@@ -9,6 +9,7 @@ from advisor.answers import Saved
 from advisor.conditions import Domain, Value
 from advisor.designations import Designer, NoCode
 from advisor.documents import Mapping, Node, Problems, Scalar, Sequence, nearest
+from advisor.explanation.falling import nothing
 from advisor.knowledge import Knowledge, Mistyped, condition, value
 from advisor.replay.checking import Checker
 from advisor.replay.demanded import read_demanded
@@ -38,7 +39,6 @@ from advisor.replay.expectations import (
     WithheldIs,
     fill_row,
 )
-from advisor.replay.falling import nothing
 from advisor.shelf import Verdict
 
 _ANY = ("", "any")

@@ -14,13 +14,14 @@ from advisor.cli import gudgeon
 from advisor.conditions import Bound, Every
 from advisor.documents import Problems
 from advisor.knowledge import Asks, Knowledge, Warns
-from advisor.mutation import TRIES, Measured, Survivor, as_data, as_text, keeps_facts, measure, told
+from advisor.mutation import keeps_facts, told
 from advisor.mutation.effects import Effects, only_cautions
 from advisor.mutation.killing import Jury, assemble
+from advisor.mutation.measuring import TRIES, Measured, Survivor, measure
 from advisor.mutation.mutants import Mutant, mutants, pairs_of
 from advisor.mutation.searching import Search
 from advisor.mutation.standing_in import by_mutant, plain
-from advisor.mutation.wording import as_scenario, say_mutant
+from advisor.mutation.wording import as_data, as_scenario, as_text, say_mutant
 from advisor.places import knowledge_folder, scenario_folder
 from advisor.replay import play, read_scenario
 

@@ -3,7 +3,7 @@
 import pytest
 
 from advisor.conditions import ALWAYS, Bound, Condition, Domain, Member
-from advisor.replay.falling import asks, nothing, say_at_least, turns_against
+from advisor.explanation.falling import asks, nothing, say_at_least, turns_against
 from advisor.specification import Demand
 
 ADDITIVE = Domain("scale", choices={"none": "none", "anti_wear": "anti-wear", "ep": "EP"})
