@@ -120,6 +120,12 @@ class Replays:
         same = self.editions.only_rules
         return old, old if same else read_case(path, self.editions.new, Problems(), self._read[1])
 
+    def why_unread(self, path: Path, knowledge: Knowledge) -> str:
+        """What keeps an edition from reading a case."""
+        problems = Problems()
+        read_case(path, knowledge, problems)
+        return "; ".join(each.message for each in problems)
+
     def said(self, old: Saved, new: Saved) -> tuple[Said, Said] | None:
         """What both editions say; nothing where no edit concerns the case."""
         if self._rules is not None:
@@ -130,8 +136,10 @@ class Replays:
 
 def _changed(path: Path, old: Saved | None, new: Saved | None, both: Replays) -> Changed | None:
     if old is None or new is None:
-        gone = ("cannot be read", "") if old is None else ("", "cannot be read")
-        return Changed(path.stem, path, Meaning.SAFETY, {("case",): gone}, both.editions.edits)
+        editions = both.editions
+        why = f"is not understood: {both.why_unread(path, editions.old if old is None else editions.new)}"
+        gone = (why, "is understood") if old is None else ("is understood", why)
+        return Changed(path.stem, path, Meaning.SAFETY, {("case",): gone}, editions.edits)
     key = _key(old), _key(new)
     if key not in both.known:
         both.known[key] = _found(old, new, both)

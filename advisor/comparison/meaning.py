@@ -126,7 +126,12 @@ def worst(old: Sense, new: Sense) -> Meaning:
 
 
 def differing(old: Sense, new: Sense, meaning: Meaning) -> dict[tuple[str, ...], tuple[str, str]]:
-    """The parts of one meaning that differ: what was said, what is said now; empty where nothing is."""
-    before, after = old[meaning], new[meaning]
+    """The parts of one meaning that differ: what was said, what is said now; empty where nothing is.
+
+    A change in safety is told with what it changes in the recommendation.
+    """
+    told = (meaning, Meaning.RECOMMENDATION) if meaning is Meaning.SAFETY else (meaning,)
+    before = {part: text for each in told for part, text in old[each].items()}
+    after = {part: text for each in told for part, text in new[each].items()}
     names = (*before, *(each for each in after if each not in before))
     return {name: (before.get(name, ""), after.get(name, "")) for name in names if before.get(name) != after.get(name)}

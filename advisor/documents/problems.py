@@ -1,6 +1,7 @@
 """What is wrong in a document, where it stands and how to mend it; all of it at once."""
 
 import difflib
+import re
 from collections.abc import Iterable, Iterator
 from dataclasses import dataclass, field
 from typing import Literal, NamedTuple
@@ -48,7 +49,7 @@ class Problem:
 
     def __str__(self) -> str:
         within = f"at {' > '.join(self.trail)}: " if self.trail else ""
-        hint = f" {_sentence(self.hint)}" if self.hint else ""
+        hint = f" {_sentence(_begun(self.hint))}" if self.hint else ""
         return f"{self.file}:{self.line}:{self.column}: {within}{_sentence(self.message)}{hint}"
 
 
@@ -96,6 +97,11 @@ class Problems:
         return len(self._gathered)
 
 
+_WORD_FIRST = re.compile(r"[a-z]+[ .,;]|[a-z]+$|known here:")
+_LIKENESS, _LIKENESS_OF_SHORT, _SHORT = 0.75, 0.6, 8
+"""In a long word a slip leaves most letters alike; two names of the trade may have as much in common as 0.6."""
+
+
 def nearest(word: str, known: Iterable[str]) -> str:
     """The question ` Did you mean 'x'?` for the known word most like this one, or nothing.
 
@@ -114,7 +120,13 @@ def closest(word: str, known: Iterable[str]) -> str:
     """
     words = list(known)
     exchanged = [each for each in words if sorted(each) == sorted(word)]
-    return next(iter(exchanged or difflib.get_close_matches(word, words, n=1)), "")
+    likeness = _LIKENESS if len(word) > _SHORT else _LIKENESS_OF_SHORT
+    return next(iter(exchanged or difflib.get_close_matches(word, words, n=1, cutoff=likeness)), "")
+
+
+def _begun(text: str) -> str:
+    """The text with a capital, where it begins with a word and not with a key, a code or a name."""
+    return text[0].upper() + text[1:] if _WORD_FIRST.match(text) else text
 
 
 def _sentence(text: str) -> str:

@@ -190,7 +190,17 @@ def say_condition(condition: Condition, knowledge: Knowledge, record: Record | N
         return " and ".join(say_condition(part, knowledge, known) for part in condition.parts) or "always"
     if isinstance(condition, Either):
         return "either " + " or ".join(f"({say_condition(part, knowledge, known)})" for part in condition.parts)
-    return f"{title_of(condition.name, knowledge)} is {say_wanted(condition, knowledge, known)}"
+    title = title_of(condition.name, knowledge)
+    if isinstance(condition, Ticked):
+        return f"under {title}, {_say_ticks(condition, knowledge)}"
+    return f"{title} is {say_wanted(condition, knowledge, known)}"
+
+
+def _say_ticks(term: Ticked, knowledge: Knowledge) -> str:
+    ticks = _in_order(domain_of(term.name, knowledge), term.among)
+    if term.wanted or len(ticks) == 1:
+        return f"{listed(ticks)} is {'' if term.wanted else 'not '}ticked"
+    return f"none of {listed(ticks, 'and')} is ticked"
 
 
 def say_test(test: Condition, knowledge: Knowledge, record: Record | None = None) -> str:

@@ -21,6 +21,8 @@ from advisor.knowledge.misplaced import (
 from advisor.knowledge.schema import Shape
 from advisor.knowledge.shape_places import Loc, child_at, fields_of, path_to, shape_at, trail_to
 
+MOST_ON_A_LINE = 2
+"""Keys of an entry that a hint shows on one line."""
 _OF_THE_KEY = {"extra_forbidden", "too_short", "too_long"}
 """The faults told at the key rather than at its value."""
 
@@ -132,5 +134,18 @@ def _words(tree: Node, shape: type[Shape], error: ErrorDetails, loc: Loc) -> tup
         return f"'{seen}' is not known here", nearest(seen, expected).strip() or f"known here: {', '.join(expected)}"
     if kind in _PLAIN:
         message, hint = _PLAIN[kind]
-        return message.format(seen=seen), hint
+        return message.format(seen=seen), _as_written(shape, kind, loc) or hint
     return str(error["msg"]), ""
+
+
+def _as_written(shape: type[Shape], kind: str, loc: Loc) -> str:
+    """How a list, or an entry of one, is written on one line with the keys that each entry needs; else nothing."""
+    is_list = kind == "list_type"
+    if not is_list and not isinstance(loc[-1] if loc else "", int):
+        return ""
+    entry = shape_at(shape, (*loc, 0) if is_list else loc)
+    keys = [each.alias or name for name, each in entry.model_fields.items() if each.is_required()] if entry else []
+    if not 0 < len(keys) <= MOST_ON_A_LINE:
+        return ""
+    written = "{" + ", ".join(f"{key}: ..." for key in keys) + "}"
+    return f"write [{written}]" if is_list else f"write {written}"

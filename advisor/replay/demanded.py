@@ -35,8 +35,9 @@ def _demand(node: Node, name: Scalar, checker: Checker) -> Told:
     strength = "must" if "must" in node else "should"
     level = 0
     if strength == "should":
-        word = checker.word(node.get("level", Scalar("", node.mark)), _LEVELS, "level")
-        level = _LEVELS[word]
+        if "level" not in node:
+            raise checker.problem(node.mark, "the level of a should is missing", _HINT, name)
+        level = _LEVELS[checker.word(node["level"], _LEVELS, "level")]
     test = node[strength]
     if not isinstance(test, Mapping) or len(test) != 1:
         raise checker.problem(test.mark, "a demand names one property", _HINT, name)

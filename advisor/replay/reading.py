@@ -58,6 +58,7 @@ def read_expectations(saved: Saved, knowledge: Knowledge, problems: Problems) ->
         return ()
     for key, node in tree.items():
         read = reader.readers.get(key)
+        reader.key = key if read is not None else ""
         if read is None:
             reader.problem(
                 tree.key_marks[key],
@@ -65,7 +66,6 @@ def read_expectations(saved: Saved, knowledge: Knowledge, problems: Problems) ->
                 nearest(key, reader.readers) or f"Known: {', '.join(reader.readers)}",
             )
             continue
-        reader.key = key
         try:
             reader.found += read(node)
         except Mistyped:
