@@ -5,6 +5,7 @@ from typing import Any
 
 from advisor.advice import Advice
 from advisor.conditions import Coded, Domain
+from advisor.explanation.changing_over import change_overs
 from advisor.explanation.clearances import Clearance, least_clearances, limits_in
 from advisor.explanation.data_terms import number
 from advisor.explanation.seeing import recommended_oils
@@ -22,11 +23,14 @@ def shelf_data(advice: Advice) -> list[Data]:
     misses = _misses(judgement)
     alive = [each.place for each in advice.shelf if each.verdict is not Verdict.FALLS_SHORT]
     closest = least_clearances(judgement, alive)
+    needed = change_overs(advice)
     found = []
     for each in advice.shelf:
         data: Data = {"item": each.item, "verdict": each.verdict.value, "steps": list(each.steps)}
         if each.place in closest:
             data["closest"] = _closest(closest[each.place])
+        if each.item in needed:
+            data["change_over"] = needed[each.item]
         found.append(data | {"misses": misses[each.place]})
     return found
 

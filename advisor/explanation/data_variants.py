@@ -3,6 +3,7 @@
 from typing import Any
 
 from advisor.advice import KAPPA, Advice, Branch, Course, Line, Reading, Spread
+from advisor.explanation.changing_over import change_overs
 from advisor.explanation.data_judged import shelf_data
 from advisor.explanation.data_terms import demand_data, number
 
@@ -102,6 +103,7 @@ def shelf_over_runs(advice: Advice) -> list[Data]:
     """Every product by its worst verdict, with what it misses in the run that gave it, and which run that is."""
     found: list[Data] = []
     told: dict[int, dict[str, Data]] = {}
+    needed = change_overs(advice)
     for each in advice.shelf:
         place = next(count for count, (_, run) in enumerate(advice.runs) if each in run.shelf)
         label, run = advice.runs[place]
@@ -111,6 +113,8 @@ def shelf_over_runs(advice: Advice) -> list[Data]:
         found.append(product | {"told_for": label, "misses": [_miss(run, miss) for miss in product["misses"]]})
         if "closest" in product:
             found[-1]["closest"] = _miss(run, product["closest"])
+        if each.item in needed:
+            found[-1]["change_over"] = needed[each.item]
     return found
 
 

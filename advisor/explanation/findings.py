@@ -2,14 +2,16 @@
 
 from collections import Counter
 from collections.abc import Iterator
+from typing import Any
 
 from advisor.advice import Advice
 from advisor.explanation.blocks import GLYPHS, Block, Grid, Node, Para, Section, Tree, leaf
+from advisor.explanation.changing_over import change_overs, differ_from_the_classes, say_change_over
 from advisor.explanation.contrasts import Miss, WhyNot, product
-from advisor.explanation.reasons import WAITS, Why, differing
+from advisor.explanation.reasons import WAITS, Why
 from advisor.explanation.ruling import Rules
 from advisor.explanation.seeing import hides, say_known
-from advisor.explanation.words import SHEET_SILENT, harmless, say_source, title_of
+from advisor.explanation.words import SHEET_SILENT, harmless, listed, say_source, title_of
 from advisor.explanation.workings import HIDDEN, Premise, Working
 from advisor.knowledge import Formed
 from advisor.shelf import Verdict
@@ -59,7 +61,14 @@ def shelf_section(advice: Advice, verdicts: list[WhyNot], rules: Rules) -> Secti
         each for each, ranked in zip(verdicts, advice.shelf, strict=False) if ranked.verdict is not Verdict.FALLS_SHORT
     ]
     shown = alive[:_TOP] or verdicts[:_SHORT]
-    blocks: list[Block] = [Grid(("Product", "Verdict", "What it misses"), tuple(_shelf_row(each) for each in shown))]
+    rows = [_shelf_row(each) for each in shown]
+    head = ("Product", "Verdict", "What it misses")
+    blocks: list[Block] = [Grid(head, tuple(rows))]
+    if differ_from_the_classes(advice):
+        needed = change_overs(advice)
+        told = [say_change_over(advice, choice) if (choice := needed.get(each.subject)) else "" for each in shown]
+        with_it = tuple((*row[:2], each, row[2]) for row, each in zip(rows, told, strict=True))
+        blocks = [Grid((*head[:2], "Change-over", head[2]), with_it)]
     rest = advice.shelf[len(shown) :]
     if rest:
         blocks.append(Para(f"{len(rest)} more, counted by the first demand that each one misses:"))
@@ -119,12 +128,29 @@ def codes_section(advice: Advice) -> Section:
         f"DIN 51825: {', '.join(codes.din) or f'none, since {codes.din_none}'}",
         f"ISO 6743-9: {', '.join(codes.iso) or f'none, since {codes.iso_none}'}",
     ]
-    after = (
-        (Para("These are the lowest codes that suffice; a higher letter serves as well."),)
-        if codes.din or codes.iso
-        else ()
-    )
-    return Section("codes", "Designations", (Tree(leaf(*lines)), *after))
+    after = ["These are the lowest codes that suffice; a higher letter serves as well."] if codes.din or codes.iso else []
+    if codes.din and (letters := base_oil_letters(advice)):
+        named = listed([f"{letter} for {title}" for title, letter in letters.items()])
+        after.append(
+            "The code alone would buy mineral oil, which is ruled out here. Ask for the base oil as well; its letters "
+            f"stand before the NLGI grade: {named}."
+        )
+    return Section("codes", "Designations", (Tree(leaf(*lines)), *map(Para, after)))
+
+
+def base_oil_letters(advice: Advice) -> dict[str, str]:
+    """The letters of DIN 51502 of the recommended base oils, where no oil without a letter passes the musts."""
+    told: Any = advice.knowledge.designations.get("din", {})
+    if "base_oil" not in told or advice.oils is None:
+        return {}
+    table, name = advice.knowledge.tables[str(told["base_oil"]["table"])], str(told["base_oil"]["property"])
+    domain, column = advice.knowledge.properties[name].domain, advice.oils.columns[name]
+    letters = {row.id: str(row.cells.get(str(told["base_oil"]["letters"]), "")) for row in table.rows}
+    passing = {str(domain.decode(value)) for value, items in column.by_value.items() if items & advice.oils.passing}
+    recommended = [value for line in advice.docket if line.row == name for value in line.values]
+    if not recommended or any(not letters.get(each) for each in passing):
+        return {}
+    return {domain.label(value): letters[str(value)] for value in recommended}
 
 
 def quantities_section(advice: Advice, whys: list[Why]) -> Section:
@@ -157,26 +183,6 @@ def working_lines(working: Working) -> list[str]:
     numbers = [working.equation, working.substituted] if working.equation != working.substituted else [working.equation]
     source = [f"source: {'; '.join(working.sources)}"] if working.sources else []
     return [*numbers, f"with {symbols}", *source, *(f"warning: {each}" for each in working.warnings)]
-
-
-def change_over_section(advice: Advice) -> Section | None:
-    """The numbered steps of the recommended change-over."""
-    found = dict.fromkeys(
-        value
-        for run in advice.single
-        for line in run.docket
-        for value in line.values
-        if value in advice.knowledge.procedures
-    )
-    shared = {value for line in advice.docket for value in line.values}
-    blocks: list[Block] = []
-    for value in found:
-        procedure = advice.knowledge.procedures[str(value)]
-        where = "" if value in shared else f" (it {differing(advice)})"
-        blocks.append(Para(f"{procedure.title}{where}:", strong=True))
-        blocks.append(Tree(leaf(*procedure.steps), numbered=True))
-        blocks.append(Para(f"Source: {'; '.join(say_source(each, advice.knowledge) for each in procedure.source)}"))
-    return Section("change_over", "Change-over", tuple(blocks)) if blocks else None
 
 
 def cautions_section(advice: Advice) -> Section | None:

@@ -7,6 +7,7 @@ from advisor.advice import Advice
 from advisor.explanation import details, findings, first_screen
 from advisor.explanation.blocks import Para, Report, Section
 from advisor.explanation.changes import what_would_change
+from advisor.explanation.changing_over import change_over_section
 from advisor.explanation.reasons import why
 from advisor.explanation.ruling import Rules
 from advisor.explanation.variants import variants_section
@@ -58,7 +59,7 @@ def _short(advice: Advice) -> list[Section | None]:
         findings.shelf_section(advice, findings.shelf_verdicts(advice, rules), rules),
         findings.codes_section(advice),
         findings.quantities_section(advice, figures),
-        findings.change_over_section(advice),
+        change_over_section(advice),
         findings.cautions_section(advice),
         Section("rest", "The rest", (Para(_THE_REST),)),
         findings.last_word(advice),
@@ -79,7 +80,7 @@ def _complete(advice: Advice) -> list[Section | None]:
         findings.shelf_section(advice, verdicts, rules),
         findings.codes_section(advice),
         findings.quantities_section(advice, figures),
-        findings.change_over_section(advice),
+        change_over_section(advice),
         findings.cautions_section(advice),
         details.why_section([*rows, *figures]),
         *details.why_not_sections(advice, verdicts, rules),

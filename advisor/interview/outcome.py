@@ -5,6 +5,7 @@ from textwrap import shorten
 
 from advisor.advice import Advice, State, said_at
 from advisor.conditions import Coded, Member, Ticked
+from advisor.explanation.changing_over import change_overs, differ_from_the_classes, say_change_over
 from advisor.explanation.contrasts import VERDICTS
 from advisor.explanation.seeing import deciding_run, instances_of
 from advisor.explanation.words import fill_in, say_value
@@ -21,7 +22,12 @@ Known = Mapping[str, tuple[str, Instance, bool | None]]
 def product_reasons(advice: Advice) -> list[str]:
     """For each product of the shelf what decides about it, in the order of the shelf."""
     known = instances_of(advice)
-    return [_product_reason(advice, each, known) for each in advice.shelf]
+    needed = change_overs(advice) if differ_from_the_classes(advice) else {}
+    reasons = [_product_reason(advice, each, known) for each in advice.shelf]
+    return [
+        f"{say_change_over(advice, needed[each.item])}; {reason}" if each.item in needed else reason
+        for each, reason in zip(advice.shelf, reasons, strict=True)
+    ]
 
 
 def _product_reason(whole: Advice, ranked: Ranked, known: Known) -> str:

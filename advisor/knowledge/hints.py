@@ -189,7 +189,12 @@ HINTS: Mapping[str, Mapping[str, str]] = {
         "source": _SOURCE,
     },
     "ReferralShape": {**_CAUTION, "to": "Who decides."},
-    "ProcedureShape": {"title": "What is done.", "steps": "The steps in their order.", "source": _SOURCE},
+    "ProcedureShape": {
+        "title": "What is done.",
+        "steps": "The steps in their order.",
+        "leads_to": "Other procedures that the steps refer to.",
+        "source": _SOURCE,
+    },
     "DocketRowShape": {
         "id": "The id of the row.",
         "title": "What the reader sees.",

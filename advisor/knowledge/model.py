@@ -315,11 +315,12 @@ class Caution:
 
 @dataclass(frozen=True, slots=True)
 class Procedure:
-    """Numbered steps of a change-over."""
+    """Numbered steps of a change-over; `leads_to` are others that its steps refer to."""
 
     id: str
     title: str
     steps: tuple[str, ...]
+    leads_to: tuple[str, ...]
     source: tuple[Citation, ...]
 
 

@@ -6,7 +6,7 @@ from contextlib import suppress
 from dataclasses import dataclass
 
 from advisor.conditions import ALWAYS, Condition, Domain, Value
-from advisor.documents import Mapping, Mark, Node, Scalar, closest
+from advisor.documents import Mapping, Mark, Node, Scalar, closest, locate
 from advisor.knowledge.citations import Citations
 from advisor.knowledge.files import CautionsFile, DesignationsFile, DocketFile, ForksFile, UsualOilsFile
 from advisor.knowledge.model import Caution, DocketRow, Fork, Procedure, Table, UsualOils
@@ -63,15 +63,27 @@ class Particulars:
             if choice not in shape.change_over and not closest(choice, strange):
                 message = f"there are no steps for the change-over '{choice}'"
                 scope.unknown(mark, "procedures", choice, message, (), f"add '{choice}:' with its steps")
+        for name, each in shape.change_over.items():
+            self._leads_somewhere(mapping_in(parent, name), each.leads_to, shape, scope.at(name))
         return {
             name: Procedure(
                 name,
                 each.title,
                 tuple(each.steps),
+                tuple(each.leads_to),
                 self.citations.read(each.source, mapping_in(parent, name), scope.at(name)),
             )
             for name, each in shape.change_over.items()
         }
+
+    @staticmethod
+    def _leads_somewhere(node: Mapping, led_to: list[str], shape: CautionsFile, scope: Scope) -> None:
+        """Report the procedures that steps lead to and that are not there."""
+        for place, each in enumerate(led_to):
+            if each not in shape.change_over:
+                mark = locate(node, ("leads_to", place))
+                message = f"there are no steps for the change-over '{each}'"
+                scope.unknown(mark, "procedures", each, message, shape.change_over, "name one that is there")
 
     def forks(self, shape: ForksFile, tree: Mapping) -> dict[str, Fork]:
         """The contested points."""

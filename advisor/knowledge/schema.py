@@ -266,6 +266,7 @@ class ProcedureShape(Shape):
 
     title: Text
     steps: list[Text]
+    leads_to: list[Name] = []
     source: Citations = []
 
 
