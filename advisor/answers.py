@@ -6,7 +6,6 @@ from dataclasses import dataclass, field
 from pathlib import Path
 
 from advisor.case import Answer, Case
-from advisor.conditions import Value
 from advisor.documents import Mapping, Mark, Node, Problem, Problems, Scalar, Sequence, nearest, read_document
 from advisor.knowledge import Declaration, Knowledge
 from advisor.quantities import Unreadable, parse, show
@@ -14,7 +13,6 @@ from advisor.quantities import Unreadable, parse, show
 DONT_KNOW = "dont_know"
 UNANSWERED = "unanswered"
 OR = " or "
-_NUMBER = re.compile(r"^[+\-−]?[\d.,'’\s]+")
 _CODE = re.compile(r"([A-Z]*)\s*(\d+(?:/\d+)?)")
 
 
@@ -69,12 +67,20 @@ def _span(declaration: Declaration, text: str, *, strict: bool) -> Answer:
     """A range such as `70..90 °C`: the unit of its end serves for both."""
     low_text, _, high_text = (part.strip() for part in text.partition(".."))
     high = _number(declaration, high_text, strict=strict)
-    unit = _NUMBER.sub("", high_text).strip()
-    bare = not any(letter.isalpha() or letter in '%"°' for letter in low_text)
-    low = _number(declaration, f"{low_text} {unit}" if bare and low_text else low_text, strict=strict)
+    unit = _unit_typed(declaration, high_text, strict=strict)
+    bare = _unit_typed(declaration, low_text, strict=strict) == ""
+    low = _number(declaration, f"{low_text} {unit}" if bare and unit else low_text, strict=strict)
     if not isinstance(low.value, float) or not isinstance(high.value, float) or not low.value < high.value:
         raise Unsuitable(f"'{text}' is no range: write the lower value first, as in 70..90.")
     return Answer(None, text, span=(low.value, high.value))
+
+
+def _unit_typed(declaration: Declaration, text: str, *, strict: bool) -> str | None:
+    """The unit that stands behind a number, empty where none does; nothing where this is no number."""
+    try:
+        return parse(text, declaration.domain.unit, strict=strict).typed_unit
+    except Unreadable:
+        return None
 
 
 def _alternatives(declaration: Declaration, text: str) -> Answer:
@@ -114,13 +120,6 @@ def _ticks(declaration: Declaration, text: str) -> tuple[str, ...]:
         return ()
     ticked = {_choice(declaration, part.strip()) for part in text.split(",") if part.strip()}
     return tuple(choice for choice in declaration.domain.choices if choice in ticked)
-
-
-def show_answer(declaration: Declaration, value: Value) -> str:
-    """A canonical value as a person reads it."""
-    if isinstance(value, float):
-        return show(value, declaration.domain.unit)
-    return declaration.domain.label(value)
 
 
 @dataclass(frozen=True, slots=True)
@@ -186,7 +185,8 @@ def read_case(
     only = _only(tree.get("shelf"), knowledge, problems)
     gaps = str(tree.get("gaps", "open"))
     if gaps not in {"open", DONT_KNOW}:
-        _fault(problems, tree["gaps"], ("gaps",), f"'{gaps}' is not known here", f"gaps: open, or gaps: {DONT_KNOW}")
+        seen = _seen(tree["gaps"])
+        _fault(problems, tree["gaps"], ("gaps",), f"{seen} is not known here", f"gaps: open, or gaps: {DONT_KNOW}")
     if len(problems) > before:
         return None
     ordered = {name: answers[name] for name in knowledge.facts if name in answers}
@@ -209,7 +209,7 @@ def _head(tree: Mapping, knowledge: Knowledge, problems: Problems) -> None:
         _fault(problems, tree["title"], ("title",), "the title is text", "title: Pump motor, drive end")
     kind, wanted = str(tree.get("point_kind", "")), knowledge.point_kind.id
     if kind != wanted and (kind or "like" not in tree):
-        message = f"'{kind}' is no kind of point here" if kind else "the kind of point is missing"
+        message = f"{_seen(tree['point_kind'])} is no kind of point here" if kind else "the kind of point is missing"
         _fault(problems, tree.get("point_kind", tree), (), message, f"point_kind: {wanted}")
 
 
@@ -227,14 +227,14 @@ def _base(
         return None
     other = path.parent / f"{like}.yaml"
     if other in (*above, path):
-        _fault(problems, like, ("like",), f"'{like}' leads back to this file", "break the circle")
+        _fault(problems, like, ("like",), f"{_seen(like)} leads back to this file", "break the circle")
         return None
     if not isinstance(like, Scalar) or "/" in like or not other.is_file():
         _fault(
             problems,
             like,
             ("like",),
-            f"there is no scenario '{like}' beside this file",
+            f"{_seen(like)} is no scenario beside this file",
             nearest(str(like), [each.stem for each in path.parent.glob("*.yaml")]).strip() or "name a file beside it",
         )
         return None
@@ -295,8 +295,13 @@ def _only(node: Node | None, knowledge: Knowledge, problems: Problems) -> frozen
     for each in node:
         if str(each) not in known:
             hint = nearest(str(each), known).strip() or "name a product of the shelf by its item code"
-            _fault(problems, each, ("shelf",), f"'{each}' is no product of the shelf", hint)
+            _fault(problems, each, ("shelf",), f"{_seen(each)} is no product of the shelf", hint)
     return frozenset(str(each) for each in node)
+
+
+def _seen(node: object) -> str:
+    """A node as a message names it."""
+    return f"'{node}'" if isinstance(node, str) else "a list or a mapping"
 
 
 def _fault(problems: Problems, at: Node | Mark, trail: tuple[str, ...], message: str, hint: str = "") -> None:

@@ -1,30 +1,54 @@
 """The command line: parses, calls one room, prints. Heavy rooms are imported inside their commands."""
 
-import sys
-from collections.abc import Callable
+from collections.abc import Callable, Iterator
+from contextlib import contextmanager
 from pathlib import Path
 from typing import Any
 
 import click
 
 from advisor import __version__
+from advisor.mishaps import DONE, Unheard, guarded
 
 knowledge_option = click.option(
     "--knowledge",
     "knowledge",
     type=click.Path(path_type=Path),
-    envvar="GUDGEON_KNOWLEDGE",
     help="Folder of the knowledge; without it the one that is shipped.",
 )
 shelf_option = click.option(
     "--shelf",
     type=click.Path(path_type=Path),
-    envvar="GUDGEON_SHELF",
     help="File of the products that the site can use; without it the shelf of the knowledge.",
 )
 
 
-@click.group(invoke_without_command=True, context_settings={"help_option_names": ["-h", "--help"]})
+@contextmanager
+def _heard() -> Iterator[None]:
+    """Tell a broken pipe apart: click would end with 1, which here says that something differs."""
+    try:
+        yield
+    except BrokenPipeError:
+        raise Unheard from None
+
+
+class _Commands(click.Group):
+    """The commands; neither their output nor their help takes a broken pipe for an outcome."""
+
+    def make_context(self, *arguments: Any, **extra: Any) -> click.Context:
+        """As click does it, helps included."""
+        with _heard():
+            return super().make_context(*arguments, **extra)
+
+    def invoke(self, ctx: click.Context) -> Any:
+        """As click does it."""
+        with _heard():
+            return super().invoke(ctx)
+
+
+@click.group(
+    cls=_Commands, invoke_without_command=True, context_settings={"help_option_names": ["-h", "--help"]}
+)
 @click.version_option(__version__, prog_name="gudgeon")
 @click.pass_context
 def gudgeon(context: click.Context) -> None:
@@ -94,7 +118,10 @@ def replay(**options: Any) -> None:
 @click.option("--scenarios", type=click.Path(path_type=Path), help="Folder of the scenarios.")
 @click.option("--knowledge", type=click.Path(path_type=Path), help="Folder of the knowledge.")
 def approve(**options: Any) -> None:
-    """Sign for one GROUP of changed expectations; without GROUP list what is to be signed."""
+    """Sign for one GROUP of changed expectations; without GROUP list what is to be signed.
+
+    GROUP 'begin' starts the log, APPROVALS.log in the folder of the scenarios; keep it under version control there.
+    """
     _run("approve", options)
 
 
@@ -167,14 +194,23 @@ def _run(command: str, options: dict[str, Any]) -> None:
     from advisor import commands
 
     work: Callable[..., int] = getattr(commands, command)
-    sys.exit(work(**options))
+    click.get_current_context().exit(work(**options))
 
 
 def main() -> None:
-    """The entry point: usage and files at fault end with 2, our own faults with 3 and the path of a log."""
-    from advisor.mishaps import guarded
+    """The entry point: usage and files at fault end with 2, our own faults with 3 and a log, interruptions with 130."""
+    guarded(_outcome)
 
-    guarded(gudgeon)
+
+def _outcome() -> int:
+    """The exit code that the words of the command line come to; of click's own faults only wrong usage is told here."""
+    try:
+        return int(gudgeon.main(standalone_mode=False) or DONE)
+    except click.ClickException as fault:
+        fault.show()
+        return fault.exit_code
+    except click.Abort as fault:
+        raise fault.__cause__ or KeyboardInterrupt from None
 
 
 if __name__ == "__main__":

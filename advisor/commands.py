@@ -5,9 +5,18 @@ import sys
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from advisor.desk import advisors_for, as_json_text, count, kinds_in, loaded, say
+from advisor.desk import (
+    advisors_for,
+    as_json_text,
+    count,
+    kinds_in,
+    loaded,
+    loaded_for_now,
+    say,
+    what_counts,
+    write,
+)
 from advisor.mishaps import DONE, NOT_SETTLED, USAGE, Refusal
-from advisor.places import knowledge_folder
 from advisor.reviewing import approve, compare, mutate, replay
 
 __all__ = [
@@ -66,19 +75,18 @@ def interview(
 ) -> int:
     """Start or resume an interview: the sheet on a terminal that can show it, else line by line."""
 
-    def load() -> "Knowledge":
+    def kind() -> str:
         from advisor.answers import point_kind_of
 
-        known = file is not None and file.is_file()
-        return loaded(knowledge, shelf, point_kind_of(file) if known and file is not None else "rolling_bearing")
+        return point_kind_of(file) if file is not None and file.is_file() else "rolling_bearing"
 
     if plain or os.environ.get("TERM", "dumb") == "dumb" or not (sys.stdin.isatty() and sys.stdout.isatty()):
         from advisor.screens import plain as lines
 
-        return lines.run(load, file)
+        return lines.run(lambda: loaded(knowledge, shelf, kind()), file)
     from advisor.screens import running
 
-    return running.run(load, file, plain_glyphs=plain_glyphs)
+    return running.run(lambda: loaded_for_now(knowledge, shelf, kind()), file, plain_glyphs=plain_glyphs)
 
 
 def check(folder: Path | None, shelf: Path | None, everything: bool = False) -> int:
@@ -86,9 +94,9 @@ def check(folder: Path | None, shelf: Path | None, everything: bool = False) -> 
     from advisor.documents import Problems
     from advisor.knowledge import examine
 
-    root = folder or knowledge_folder()
+    root, products = what_counts(folder, shelf)
     problems = Problems()
-    bodies = [knowledge for kind in kinds_in(root) if (knowledge := examine(root, kind, shelf, problems)) is not None]
+    bodies = [found for kind in kinds_in(root) if (found := examine(root, kind, products, problems)) is not None]
     for problem in problems:
         say(str(problem))
     if len(problems):
@@ -132,14 +140,10 @@ def advise(
     """Print the advice for a saved case."""
     from advisor import explanation
     from advisor.answers import point_kind_of
-    from advisor.documents import Unwritable, write_text_safely
 
     advice = _advice(file, loaded(knowledge, shelf, point_kind_of(file)), assume=assume)
     if html is not None:
-        try:
-            write_text_safely(html, explanation.html(advice))
-        except Unwritable as fault:
-            raise Refusal(str(fault)) from None
+        write(html, explanation.html(advice))
     text = (
         explanation.as_json(advice)
         if as_json
@@ -202,16 +206,16 @@ def _rule(name: str, as_json: bool, knowledge: Path | None) -> int:
 
 def schema(file: str | None, out: Path | None) -> int:
     """Print the schema of a knowledge file, list the schemas, or write them all into a folder."""
-    from advisor.documents import Unwritable, nearest, write_text_safely
+    from advisor.documents import nearest
     from advisor.knowledge import editor_schema
 
     if out is not None:
         try:
             out.mkdir(parents=True, exist_ok=True)
-            for name in editor_schema.NAMES:
-                write_text_safely(out / f"{name}.schema.json", editor_schema.schema_text(name))
-        except (Unwritable, OSError) as fault:
-            raise Refusal(f"The schemas were not written: {fault}") from None
+        except OSError as fault:
+            raise Refusal(f"The schemas were not written: '{out}' is no folder: {fault.strerror}.") from None
+        for name in editor_schema.NAMES:
+            write(out / f"{name}.schema.json", editor_schema.schema_text(name))
         say(f"{out}: {len(editor_schema.NAMES)} schemas.")
         return DONE
     if file is None:

@@ -2,13 +2,12 @@
 
 from __future__ import annotations
 
-import re
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 from difflib import get_close_matches
 
 from advisor.formulas import FORMULAS, LOOKUPS, Choice, Formula, Input, Lookup, Named, OutOfRange
-from advisor.formulas.formula import plain, with_unit
+from advisor.formulas.formula import plain, put_in, with_unit
 from advisor.quantities import Quantity, Unreadable, parse, show
 
 HOW_SURE = {
@@ -163,10 +162,7 @@ def _example(wanted: Input | Choice) -> str:
 def _numbers_put_in(computed: Computed) -> str:
     """The equation with every input symbol on its right-hand sides replaced by its number."""
     numbers = {each.symbol: _number(_plain_value(computed.values[each.name])) for each in computed.formula.inputs}
-    symbols = "|".join(sorted(map(re.escape, numbers), key=len, reverse=True))
-    # A power may follow the symbol, a letter or an index may not.
-    alone = rf"(?<!\w)(?:{symbols})(?!(?![²³])\w)"
-    return re.sub(alone, lambda found: numbers[found.group()], computed.formula.equation)
+    return put_in(computed.formula.equation, numbers)
 
 
 def _number(value: float | str) -> str:

@@ -1,6 +1,7 @@
-"""What every command needs: the knowledge loaded, and output written."""
+"""What every command needs: the knowledge that counts, loaded; and output written."""
 
 import gc
+import os
 import sys
 from pathlib import Path
 from typing import TYPE_CHECKING
@@ -13,20 +14,55 @@ if TYPE_CHECKING:
     from advisor.knowledge import Knowledge
 
 
-def loaded(knowledge: Path | None, shelf: Path | None, point_kind: str = "rolling_bearing") -> "Knowledge":
-    """The knowledge that the command line, the settings or the shipped folder name."""
-    from advisor.documents import Faulty
-    from advisor.knowledge import load
+def what_counts(knowledge: Path | None, shelf: Path | None) -> tuple[Path, Path | None]:
+    """The folder and the shelf that count: of the command line, else the variables, else the settings, else shipped."""
     from advisor.settings import settings
 
     kept = settings()
-    try:
-        loaded = load(knowledge or kept.knowledge or knowledge_folder(), point_kind, shelf or kept.shelf)
-    except Faulty as fault:
-        raise Refusal(f"{fault}\n{count(len(fault.problems))} in the knowledge; nothing was done.") from None
-    # Knowledge lives as long as the process: the collector need not walk it again for every advice.
+    folder = knowledge or _named("GUDGEON_KNOWLEDGE") or kept.knowledge or knowledge_folder()
+    return folder, shelf or _named("GUDGEON_SHELF") or kept.shelf
+
+
+def _named(variable: str) -> Path | None:
+    named = os.environ.get(variable)
+    return Path(named) if named else None
+
+
+def loaded(knowledge: Path | None, shelf: Path | None, point_kind: str = "rolling_bearing") -> "Knowledge":
+    """The knowledge that counts, loaded for good: for a command that keeps it until it ends."""
+    found = loaded_for_now(knowledge, shelf, point_kind)
+    # The collector need not walk it again for every advice.
     gc.freeze()
-    return loaded
+    return found
+
+
+def loaded_for_now(knowledge: Path | None, shelf: Path | None, point_kind: str = "rolling_bearing") -> "Knowledge":
+    """The knowledge that counts, for the sheet, which may load it in a thread and again."""
+    folder, products = what_counts(knowledge, shelf)
+    return read_knowledge(folder, point_kind, products)
+
+
+def read_knowledge(
+    folder: Path, point_kind: str, shelf: Path | None, told: str = "in the knowledge; nothing was done"
+) -> "Knowledge":
+    """The knowledge of this folder; where it is at fault, the command ends with all its problems, told so."""
+    from advisor.documents import Faulty
+    from advisor.knowledge import load
+
+    try:
+        return load(folder, point_kind, shelf)
+    except Faulty as fault:
+        raise Refusal(f"{fault}\n{count(len(fault.problems))} {told}.") from None
+
+
+def write(path: Path, text: str) -> None:
+    """Write a file that the user asked for; where that fails, the command ends with the reason."""
+    from advisor.documents import Unwritable, write_text_safely
+
+    try:
+        write_text_safely(path, text)
+    except Unwritable as fault:
+        raise Refusal(str(fault)) from None
 
 
 def say(text: str) -> None:
@@ -59,6 +95,11 @@ def advisors_for(kinds: list[str], knowledge: Path | None, shelf: Path | None) -
     """One advisor for each kind of point that the knowledge has; a kind that it lacks is told where a file names it."""
     from advisor.advice import Advisor
 
-    known = kinds_in(knowledge or knowledge_folder())
-    chosen = [kind for kind in kinds if kind in known] or known[:1]
-    return {kind: Advisor(loaded(knowledge, shelf, kind)) for kind in chosen}
+    folder, products = what_counts(knowledge, shelf)
+    return {kind: Advisor(loaded(folder, products, kind)) for kind in known_of(kinds, folder)}
+
+
+def known_of(kinds: list[str], folder: Path) -> list[str]:
+    """Those of the kinds that a knowledge folder declares; where it declares none of them, its first."""
+    known = kinds_in(folder)
+    return [kind for kind in kinds if kind in known] or known[:1]

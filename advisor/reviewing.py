@@ -4,7 +4,17 @@ import sys
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from advisor.desk import advisors_for, as_json_text, count, kinds_in, loaded, say
+from advisor.desk import (
+    advisors_for,
+    as_json_text,
+    kinds_in,
+    known_of,
+    loaded,
+    read_knowledge,
+    say,
+    what_counts,
+    write,
+)
 from advisor.mishaps import DONE, NOT_SETTLED, USAGE, Refusal
 from advisor.places import knowledge_folder
 
@@ -25,7 +35,6 @@ def replay(
     """Replay scenarios, or advice that was saved as JSON, and tell what differs."""
     from advisor import approval
     from advisor import replay as replaying
-    from advisor.documents import Unwritable, write_text_safely
 
     if any(each.suffix == ".json" for each in files):
         return _replay_saved(files, as_json, knowledge, shelf)
@@ -36,10 +45,7 @@ def replay(
     outcome = replaying.replay(found, advisors)
     covered = replaying.coverage(outcome, [each.knowledge for each in advisors.values()]) if coverage else None
     if junit is not None:
-        try:
-            write_text_safely(junit, replaying.as_junit(outcome))
-        except Unwritable as fault:
-            raise Refusal(str(fault)) from None
+        write(junit, replaying.as_junit(outcome))
     review, faults = approval.review_of(found, outcome, advisors)
     for problem in (*outcome.problems, *faults):
         print(problem, file=sys.stderr)  # noqa: T201 - words beside the output
@@ -102,15 +108,8 @@ def approve(
 def _advisors_of(folder: Path, kinds: list[str]) -> "dict[str, Advisor]":
     """Advisors on the knowledge of this folder with its own shelf, whatever the settings say: what is signed for."""
     from advisor.advice import Advisor
-    from advisor.documents import Faulty
-    from advisor.knowledge import load
 
-    known = kinds_in(folder)
-    try:
-        chosen = [kind for kind in kinds if kind in known] or known[:1]
-        return {kind: Advisor(load(folder, kind, None)) for kind in chosen}
-    except Faulty as fault:
-        raise Refusal(f"{fault}\n{count(len(fault.problems))} in the knowledge; nothing was done.") from None
+    return {kind: Advisor(read_knowledge(folder, kind, None)) for kind in known_of(kinds, folder)}
 
 
 def mutate(
@@ -128,15 +127,15 @@ def mutate(
     found = replaying.find(files)
     if not found:
         raise Refusal("There is no scenario here, so nothing would notice a change. Name a file or a folder with some.")
-    root = knowledge or knowledge_folder()
+    root, products = what_counts(knowledge, shelf)
     kinds = _kinds(found, root)
     for kind in kinds:
-        known = loaded(root, shelf, kind).rules
+        known = loaded(root, products, kind).rules
         unknown = [rule for rule in rules if rule not in known]
         if unknown:
             raise Refusal(f"'{unknown[0]}' is no rule of {kind}. 'gudgeon rules' lists them.")
     measured = [
-        measuring.measure(root, kind, shelf, found, rules=rules, tries=measuring.TRIES if tries is None else tries)
+        measuring.measure(root, kind, products, found, rules=rules, tries=measuring.TRIES if tries is None else tries)
         for kind in kinds
     ]
     if as_json:
@@ -151,7 +150,7 @@ def _kinds(files: list[Path], root: Path) -> list[str]:
     from advisor import replay as replaying
 
     known = kinds_in(root)
-    return ([kind for kind in replaying.kinds_of(files) if kind in known] if len(known) > 1 else known) or known[:1]
+    return known_of(replaying.kinds_of(files), root) if len(known) > 1 else known
 
 
 def compare(old: str, new: str, scenarios: Path | None, kind: str, as_json: bool, markdown: bool) -> int:
@@ -164,16 +163,10 @@ def compare(old: str, new: str, scenarios: Path | None, kind: str, as_json: bool
         compared = comparison.compare(*editions, replaying.find([scenarios] if scenarios else []))
     for problem in compared.problems:
         print(problem, file=sys.stderr)  # noqa: T201 - words beside the output
-    write = comparison.as_markdown if markdown else comparison.as_text
-    say(as_json_text(comparison.as_data(compared)) if as_json else write(compared))
+    tell = comparison.as_markdown if markdown else comparison.as_text
+    say(as_json_text(comparison.as_data(compared)) if as_json else tell(compared))
     return NOT_SETTLED if compared.changed or compared.regions else DONE
 
 
 def _edition(root: Path, kind: str, named: str) -> "Knowledge":
-    from advisor.documents import Faulty
-    from advisor.knowledge import load
-
-    try:
-        return load(root, kind, None)
-    except Faulty as fault:
-        raise Refusal(f"{fault}\n{count(len(fault.problems))} in {named}; nothing was compared.") from None
+    return read_knowledge(root, kind, None, f"in {named}; nothing was compared")

@@ -38,9 +38,19 @@ def settings(file: Path | None = None) -> Settings:
             )
         elif not isinstance(value, Scalar) or not value:
             _fault(problems, value.mark, f"'{key}' is one path")
+    named = {key: _path(path.parent, value, problems) for key, value in entries.items() if isinstance(value, Scalar)}
     if len(problems):
         raise Refusal("\n".join(map(str, problems)))
-    return Settings(*(path.parent / str(entries[key]) if key in entries else None for key in _KEYS))
+    return Settings(*(named.get(key) for key in _KEYS))
+
+
+def _path(folder: Path, value: Scalar, problems: Problems) -> Path:
+    """The path in full; `~` stands for the user's own folder."""
+    try:
+        return folder / Path(str(value)).expanduser()
+    except RuntimeError:
+        _fault(problems, value.mark, f"there is no user of '{value}'", "write the folder in full")
+        return folder
 
 
 def _fault(problems: Problems, mark: object, message: str, hint: str = "") -> None:

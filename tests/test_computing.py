@@ -124,7 +124,9 @@ def test_what_a_missing_input_advises_to_write_can_be_read(name: str) -> None:
 def test_a_look_up_answers_in_names_with_the_sentence_beside_them() -> None:
     # SAE J300:2015: 6.5 mm²/s at 100 °C lies in grade 12 and in grade 16.
     computed = compute("sae_j300_grades", {"viscosity_100": "6.5 cSt"})
-    assert as_data(computed)["result"]["value"] == ["12", "16"]  # type: ignore[index]
+    result = as_data(computed)["result"]
+    assert isinstance(result, dict)
+    assert result["value"] == ["12", "16"]
     assert "SAE = 12 (high shear at least 2.0) or 16" in render_text(computed)
 
 

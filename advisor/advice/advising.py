@@ -190,7 +190,11 @@ class Advisor:
             if row.id in found.lines:
                 lines.append(found.lines[row.id])
                 continue
-            about = tuple(demand for demand in specification.demands if demand.property in row.demands)
+            asked = [name for name in row.demands if self.knowledge.properties[name].of in {"", found.form or ""}]
+            if row.demands and not asked:
+                lines.append(Line(row.id, row.title, skipped=True))
+                continue
+            about = tuple(demand for demand in specification.demands if demand.property in asked)
             waits = (
                 *run.waiting.for_properties(frozenset(row.demands)),
                 *sorted(run.facts.questions_behind(row.facts)),

@@ -23,11 +23,16 @@ _MOST_IN_ENGINE = 60
 
 @dataclass(frozen=True, slots=True)
 class Reading:
-    """How a table is looked up: the names that stand for its columns; `single` where one row must answer."""
+    """How a table is read: the names that stand for its columns; `single` where one row must answer.
+
+    `whole` where some row must; `by_rules` where rules over its rows read it, so that its columns stand for themselves.
+    """
 
     table: Table
     by: tuple[tuple[str, str], ...]
     single: bool
+    whole: bool
+    by_rules: bool = False
 
 
 def tables(ground: Ground, proving: Proving) -> Iterator[Finding]:
@@ -57,14 +62,17 @@ def of_reading(reading: Reading, ground: Ground, proving: Proving) -> Iterator[F
             )
             witness = _overlapping(reading, (rows[number], others[0]), _record(axes, shared), ground, proving, told)
             yield _overlap(reading, rows[number], others, witness)
-    if table.policy == "complete":
+    if reading.whole:
         gaps = joined(list(islice(grid.gaps(tuple(each.everything for each in axes)), _MOST_REGIONS)))
         for told, region in enumerate(gaps[:_MOST_TOLD]):
             yield _gap(reading, len(gaps), _missed(reading, _record(axes, region), ground, proving, told))
 
 
 def _readings(table: Table, knowledge: Knowledge) -> list[Reading]:
-    """The different ways in which facts and properties look the table up; else its bands and key by themselves."""
+    """The different ways in which facts and properties look the table up.
+
+    Else its bands and key are judged by themselves, and what the rules over its rows compare.
+    """
     hows = [each.how for each in knowledge.computations.values()]
     hows += [part for prop in knowledge.properties.values() for part in _parts(prop.how)]
     hows += [each.filled for each in knowledge.facts.values() if each.filled is not None]
@@ -72,10 +80,31 @@ def _readings(table: Table, knowledge: Knowledge) -> list[Reading]:
     for how in hows:
         if isinstance(how, LookedUp) and how.table == table.id:
             ways[how.by] = ways.get(how.by, False) or not how.combine
-    if not ways:
+    looked_up = bool(ways)
+    if table.bands and not looked_up:
         own = tuple((column, column) for column in table.columns if column in table.bands or column == table.key)
-        ways = {own: True} if table.bands else {}
-    return [Reading(table, by, single) for by, single in ways.items()]
+        ways = {own: True}
+    readings = [Reading(table, by, single, table.policy == "complete") for by, single in ways.items()]
+    return readings if looked_up else [*readings, *_by_rules(table, knowledge)]
+
+
+def _by_rules(table: Table, knowledge: Knowledge) -> Iterator[Reading]:
+    """What the rules over the rows of a table compare: one row for each case, and of choices a row for all of them.
+
+    The rules pass over a row without such a cell; that no two rows have one key, the loader sees to.
+    """
+    compared = {column for rule in knowledge.rules.values() if rule.table == table.id for column in rule.matched}
+    columns = [each for each in table.columns if each in (compared & {table.key} if table.key else compared)]
+    choices = [each for each in columns if table.columns[each].kind != "number"]
+    if columns and not table.key:
+        yield _reading_of(table, columns, single=True)
+    if choices and table.policy == "complete":
+        yield _reading_of(table, choices, single=False)
+
+
+def _reading_of(table: Table, columns: list[str], *, single: bool) -> Reading:
+    filled = replace(table, rows=tuple(row for row in table.rows if row.cells.keys() >= set(columns)))
+    return Reading(filled, tuple((each, f"row.{each}") for each in columns), single, not single, by_rules=True)
 
 
 def _parts(how: object) -> list[LookedUp]:
@@ -121,20 +150,24 @@ def _overlap(reading: Reading, row: Row, others: list[Row], witness: Witness) ->
         others[0].mark,
         f"table {reading.table.id} is to have one row for each case, and row '{row.id}' (line {row.mark.line})"
         f" overlaps with row '{others[0].id}'{more}",
-        "part the rows, or give the table 'policy: all' and its look-ups 'combine'",
+        "take one of them out, or give the table 'policy: all'"
+        if reading.by_rules
+        else "part the rows, or give the table 'policy: all' and its look-ups 'combine'",
         witness,
     )
 
 
 def _gap(reading: Reading, count: int, witness: Witness) -> Finding:
-    where = ", ".join(name for _, name in reading.by)
+    where = ", ".join(column if reading.by_rules else name for column, name in reading.by)
     regions = f"{count} such regions" if count < _MOST_TOLD else f"{count} such regions or more"
     regions = "nowhere else" if count == 1 else regions
     return Finding(
         "gap",
         reading.table.mark,
         f"table {reading.table.id} is to be complete, and no row takes some values of {where} ({regions})",
-        "add a row for them, or leave a cell blank where it does not matter",
+        "add a row for them: the rules over its rows say nothing of them"
+        if reading.by_rules
+        else "add a row for them, or leave a cell blank where it does not matter",
         witness,
     )
 

@@ -17,10 +17,10 @@ from advisor.documents import Problem, Problems, Unwritable, nearest, read_text,
 from advisor.mishaps import Refusal
 from advisor.replay import Outcome, find, replay
 
-_LOCK = ".APPROVALS.lock"
+_LOCKED = ".APPROVALS"
 _WHAT = {
-    RULE: "what rule {about} changes",
-    KIND: "what changes of kind {about}",
+    RULE: "differences that name rule {about}",
+    KIND: "differences of kind {about}",
     EDITED: "{about} as changed by hand",
     NEW: "{about} as a new scenario",
     GONE: "that {about} is gone",
@@ -64,11 +64,15 @@ def reviewed(root: Path, outcome: Outcome, advisors: Mapping[str, Advisor], prob
 def review_of(
     files: Iterable[Path], outcome: Outcome, advisors: Mapping[str, Advisor]
 ) -> tuple[Review | None, Problems]:
-    """What is to be signed where the files have a log, and what is wrong with it or with what they record of it."""
+    """What is to be signed where the files have a log, and what is wrong with it or with what they record of it.
+
+    Where something is wrong nothing can be signed, and nothing is said to be.
+    """
     problems = Problems()
     root = log_above(files)
     if root is not None:
-        return reviewed(root, outcome, advisors, problems), problems
+        found = reviewed(root, outcome, advisors, problems)
+        return (None if len(problems) else found), problems
     for played in outcome.played:
         node = played.scenario.saved.tree.get(RECORD)
         if node is not None:
@@ -222,15 +226,16 @@ def _write(root: Path, texts: Mapping[str, str], signed: tuple[Signed, ...], log
 
 @contextmanager
 def _locked(root: Path) -> Iterator[None]:
-    """One approval at a time."""
-    lock = root / _LOCK
+    """One approval at a time; one that was killed on this machine is not in the way."""
+    from advisor.interview import Keeper
+
+    keeper = Keeper(root / _LOCKED)
+    if not keeper.take():
+        who = f" (process {keeper.holder})" if keeper.holder else ""
+        raise Refusal(f"Another approval is going on here{who}. If it was broken off, delete {keeper.lock}.")
     try:
-        os.close(os.open(lock, os.O_CREAT | os.O_EXCL | os.O_WRONLY))
-    except FileExistsError:
-        raise Refusal(f"Another approval is going on here. If it was broken off, delete {lock}.") from None
-    except OSError as fault:
-        raise Refusal(f"'{root}' cannot be written: {fault.strerror}. Nothing was approved.") from None
-    try:
+        if not keeper.lock.is_file():
+            raise Refusal(f"'{root}' cannot be written. Nothing was approved.")
         yield
     finally:
-        lock.unlink(missing_ok=True)
+        keeper.release()

@@ -5,16 +5,21 @@ from collections.abc import Iterable, Iterator
 from functools import singledispatch
 
 from advisor.advice import Advice
+from advisor.case import Origin
 from advisor.conditions import Bound, Value, leaves
 from advisor.documents import Mapping, Node
-from advisor.replay.docket_compared import bars
+from advisor.explanation.falling import nothing
+from advisor.replay.demanded import told_by
+from advisor.replay.docket_compared import bars, strengths
 from advisor.replay.expectations import (
+    ASKING,
     INTERVAL_ROW,
     AsksAtLeast,
     AsksFor,
     Bars,
     CodeServes,
     ConflictBetween,
+    DemandedBy,
     FactIs,
     FactWithin,
     FillIs,
@@ -26,6 +31,7 @@ from advisor.replay.expectations import (
     WithheldIs,
     fill_row,
 )
+from advisor.replay.written_demands import write_demands, write_list, write_test, write_value
 from advisor.shelf import Verdict
 
 Candidate = tuple[tuple[str, ...], str]
@@ -36,25 +42,23 @@ _SPREAD = 0.05
 
 @singledispatch
 def candidates(_expected: object, _advice: Advice, _node: Node) -> Iterator[Candidate]:
-    """What could be written instead; nothing where the expectation can only be withdrawn."""
+    """What could be written instead; nothing where what was expected is there no more, and the expectation goes."""
     yield from ()
+
+
+@singledispatch
+def is_gone(_expected: object, _advice: Advice) -> bool:
+    """Whether what was expected is there no more: then it may be withdrawn where nothing can be written instead."""
+    return True
+
+
+@is_gone.register
+def _no_demand(expected: AsksAtLeast, advice: Advice) -> bool:
+    return not any(each.property == expected.property for run in advice.single for each in run.specification.demands)
 
 
 def _whole(texts: Iterable[str]) -> Iterator[Candidate]:
     return (((), text) for text in texts)
-
-
-def _written(value: Value) -> str:
-    """A value as a scenario writes it."""
-    if isinstance(value, tuple):
-        return _list(value)
-    if isinstance(value, float):
-        return f"{value:.0f}" if value.is_integer() and abs(value) < 1e15 else repr(value)
-    return value if value[:1].isalpha() and value.replace("_", "a").replace("-", "a").isalnum() else f'"{value}"'
-
-
-def _list(values: Iterable[Value]) -> str:
-    return f"[{', '.join(map(_written, values))}]"
 
 
 @candidates.register
@@ -70,27 +74,31 @@ def _withheld(_expected: WithheldIs, advice: Advice, _node: Node) -> Iterator[Ca
 @candidates.register
 def _fact_is(expected: FactIs, advice: Advice, _node: Node) -> Iterator[Candidate]:
     fact = advice.facts.get(expected.name)
-    return _whole([] if fact is None else ["void" if fact.value is None else _written(fact.value)])
+    if fact is None or (fact.value is None and fact.origin is not Origin.VOID):
+        return _whole([])
+    return _whole(["void" if fact.value is None else write_value(fact.value)])
 
 
 @candidates.register
 def _fact_within(expected: FactWithin, advice: Advice, node: Node) -> Iterator[Candidate]:
     fact = advice.facts.get(expected.name)
     value = fact.value if fact is not None else None
+    if fact is not None and fact.origin is Origin.VOID:
+        yield (), "void"
     if not isinstance(value, float) or not isinstance(node, Mapping):
         return
     if "about" in node:
         yield ("about",), f"{value:.4g}" if abs(value) < 1e4 else f"{value:.0f}"
-        yield ("about",), _written(value)
+        yield ("about",), write_value(value)
     else:
-        yield ("from",) if value < expected.low else ("to",), _written(value)
+        yield ("from",) if value < expected.low else ("to",), write_value(value)
 
 
 @candidates.register
 def _recommends(expected: Recommends, advice: Advice, node: Node) -> Iterator[Candidate]:
     shown = _recommended(advice, expected.property)
     if shown:
-        yield ("expected",) if isinstance(node, Mapping) else (), _list(shown)
+        yield ("expected",) if isinstance(node, Mapping) else (), write_list(shown)
 
 
 def _recommended(advice: Advice, name: str) -> tuple[Value, ...]:
@@ -102,7 +110,7 @@ def _recommended(advice: Advice, name: str) -> tuple[Value, ...]:
 def _keeps_from(expected: KeepsFrom, advice: Advice, _node: Node) -> Iterator[Candidate]:
     shown = _recommended(advice, expected.property)
     left = [value for value in expected.values if value not in shown]
-    return _whole([_list(left)] if left else [])
+    return _whole([write_list(left)] if left else [])
 
 
 @candidates.register
@@ -113,31 +121,58 @@ def _bars(expected: Bars, advice: Advice, _node: Node) -> Iterator[Candidate]:
 
 
 @candidates.register
-def _asks_for(expected: AsksFor, _advice: Advice, _node: Node) -> Iterator[Candidate]:
-    value = [] if expected.value is None else [_bare(expected.value)]
-    said = [f"{strength} {each}" for strength in ("must", "should") for each in value]
-    return _whole([*said, "unwanted", "allowed"])
+def _asks_for(expected: AsksFor, advice: Advice, _node: Node) -> Iterator[Candidate]:
+    domain = advice.knowledge.properties[expected.property].domain
+    values = [expected.value] if expected.value is not None else [*domain.choices][::-1]
+    asking = {each for run in advice.single for value in values for each in strengths(run, expected.property, value)}
+    levels = [each for each in ASKING if each[-1].isdigit()] if expected.strength.startswith("should_") else []
+    for strength in ("must", *levels, "should"):
+        if strength.partition("_")[0] in asking:
+            yield from _whole(f"{strength} {_bare(value)}" for value in values)
+    if nothing(domain):
+        yield from _whole(["unwanted", "allowed"])
 
 
 def _bare(value: Value) -> str:
-    return _written(value).strip('"')
+    return _bare_text(write_value(value))
+
+
+def _bare_text(text: str) -> str:
+    return text.strip('"')
 
 
 @candidates.register
 def _asks_at_least(expected: AsksAtLeast, advice: Advice, node: Node) -> Iterator[Candidate]:
-    """The same test with a limit that the demands have now, the strictest first."""
+    """The same test with a limit that the demands have now, the strictest first; else as a demand says it now."""
+    knowledge, name = advice.knowledge, expected.property
+    demands = [each for run in advice.single for each in run.specification.demands if each.property == name]
     key = next(iter(node)) if isinstance(node, Mapping) and len(node) == 1 else ""
-    domain = advice.knowledge.properties[expected.property].domain
+    operator = key or ("" if isinstance(node, Mapping) else str(node).partition(" ")[2].strip().partition(" ")[0])
     limits = {
         term.limit
-        for demand in advice.specification.demands
-        if demand.property == expected.property
+        for demand in demands
         for term in leaves(demand.test)
         if isinstance(term, Bound) and isinstance(term.limit, float)
     }
-    for limit in sorted(limits, reverse=key in {"at_least", "above"}):
-        meant = domain.decode(limit)
-        yield ((key,) if key else ()), _written(float(meant) if isinstance(meant, int) else meant)
+    domain = knowledge.properties[name].domain
+    said = [write_value(domain.decode(each)) for each in sorted(limits, reverse=operator in {"at_least", "above"})]
+    if key:
+        yield from (((key,), each) for each in said)
+    if operator:
+        wishes = sorted({f"should_{each.level}" for each in demands if not each.must})
+        others = ("must", *wishes) if expected.strength == "must" else (*wishes, "must")
+        for strength in dict.fromkeys((expected.strength, *others)):
+            yield from _whole(f"{strength} {operator} {_bare_text(each)}" for each in said)
+    yield from _whole(dict.fromkeys(write_test(each.test, knowledge) for each in demands if each.must))
+
+
+@candidates.register
+def _demanded_by(expected: DemandedBy, advice: Advice, _node: Node) -> Iterator[Candidate]:
+    """What the rule demands now, in the order in which it does."""
+    for run in advice.single:
+        found = told_by(expected.rule, run)
+        order = [(each.property, each.test, each.level) for each in run.specification.demands]
+        yield (), write_demands([each for each in dict.fromkeys(order) if each in found], advice.knowledge)
 
 
 @candidates.register
@@ -160,7 +195,7 @@ def _product(expected: ProductIs, advice: Advice, _node: Node) -> Iterator[Candi
 
 @candidates.register
 def _conflict(_expected: ConflictBetween, advice: Advice, _node: Node) -> Iterator[Candidate]:
-    return _whole(_list(dict.fromkeys(rule.partition("/")[0] for rule in each.rules)) for each in advice.conflicts)
+    return _whole(write_list(dict.fromkeys(rule.partition("/")[0] for rule in each.rules)) for each in advice.conflicts)
 
 
 @candidates.register
@@ -181,4 +216,4 @@ def _fill(expected: FillIs, advice: Advice, _node: Node) -> Iterator[Candidate]:
     line = next((each for each in advice.quantities if each.row == fill_row(expected.part) and not each.skipped), None)
     facts = [advice.facts.get(name) for name in line.facts] if line is not None else []
     values = [fact.value for fact in facts if fact is not None and fact.value is not None]
-    return _whole([_list(values)] if len(values) == 2 else [])
+    return _whole([write_list(values)] if len(values) == 2 else [])

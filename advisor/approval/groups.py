@@ -8,11 +8,11 @@ from collections.abc import Iterable, Iterator, Set
 from dataclasses import dataclass
 from pathlib import Path
 
+from advisor.approval.safety import on_safety
 from advisor.approval.standing import Standing
 from advisor.replay import Difference, Outcome, Played
 
 _WORD = re.compile(r"[a-z][a-z0-9_]*")
-_SAFETY = {"state", "withheld", "cautions", "referrals", "conflicts", "barred", "must_not"}
 RULE, KIND, EDITED, NEW, GONE = "rule", "kind", "edited", "new", "gone"
 
 
@@ -23,11 +23,8 @@ class Item:
     path: str
     played: Played | None = None
     difference: Difference | None = None
-
-    @property
-    def safety(self) -> bool:
-        """Whether people could come to harm by it: the state, what is withheld, cautions, referrals, bars."""
-        return self.difference is not None and self.difference.kind in _SAFETY
+    safety: bool = False
+    """Whether people could come to harm by it."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -54,7 +51,7 @@ class Group:
 def groups(outcome: Outcome, standing: Standing, rules: Set[str], knowledge: str) -> tuple[Group, ...]:
     """Everything that is to be signed: what bears on safety first, then the group with the most differences."""
     items = [
-        Item(_within(played.scenario.path, standing.root), played, difference)
+        Item(_within(played.scenario.path, standing.root), played, difference, on_safety(difference, played))
         for played in outcome.differing
         for difference in played.differences
     ]

@@ -16,6 +16,7 @@ NOTHING = "none"
 _FIRST = re.compile(r"entry (\d+), (\d{4}-\d{2}-\d{2}), signed by (.+)")
 _SCENARIO = re.compile(r"  scenario: (.+), before ([0-9a-f]+|none), after ([0-9a-f]+|none)")
 _KNOWLEDGE = re.compile(r"  knowledge: before ([0-9a-f]+|none), after ([0-9a-f]+)")
+_SCENARIO_LINE = "  scenario: "
 _FOLLOWS, _SEAL = "  follows: ", "  seal: "
 _MEND = "Put the log back as it was from your version control; then sign again what is missing"
 
@@ -60,9 +61,19 @@ class Entry:
         """The digest of everything written, the seal of the entry before it included."""
         return hashlib.sha256("\n".join(self.lines()).encode()).hexdigest()
 
-    def text(self) -> str:
+    def sealed(self) -> str:
         """The entry as it is written."""
         return "\n".join([*self.lines(), _SEAL + self.seal])
+
+    def text(self) -> str:
+        """What the signer reads of it: of the first entry, which names every scenario, only how many there are."""
+        if self.group != BEGIN:
+            return self.sealed()
+        lines = [each for each in self.lines() if not each.startswith(_SCENARIO_LINE)]
+        many = len(self.scenarios)
+        return "\n".join(
+            [*lines[:-1], f"  {many} scenario{'' if many == 1 else 's'} signed as they are", _SEAL + self.seal]
+        )
 
 
 @dataclass(frozen=True, slots=True)
@@ -88,7 +99,7 @@ class Log:
 
     def with_entry(self, entry: Entry) -> str:
         """The text of the log with one entry appended."""
-        return "\n\n".join([HEAD, *(each.text() for each in (*self.entries, entry))]) + "\n"
+        return "\n\n".join([HEAD, *(each.sealed() for each in (*self.entries, entry))]) + "\n"
 
 
 def read_log(path: Path, problems: Problems) -> Log | None:
@@ -102,6 +113,11 @@ def read_log(path: Path, problems: Problems) -> Log | None:
         text = path.read_bytes().decode("utf-8")
     except (OSError, UnicodeDecodeError):
         _tell(problems, path, 1, "the log cannot be read as text")
+        return None
+    if "\r" in text:
+        message = "the log has other line ends than it was written with: \\r\\n (Windows) or \\r in place of \\n"
+        hint = f"Put it back with its own; the line '{NAME} -text' in .gitattributes keeps git from changing line ends"
+        problems.add(Problem.at(Mark(str(path), 1, 1), message, hint))
         return None
     return _read(text, path, problems)
 
@@ -130,7 +146,7 @@ def _read(text: str, path: Path, problems: Problems) -> Log | None:
 
 def _fault(entry: Entry | None, block: str, number: int, follows: str) -> str:
     """What is wrong with an entry at its place; empty where nothing is."""
-    if entry is None or entry.text() != block:
+    if entry is None or entry.sealed() != block:
         return f"entry {number} is not as it was sealed: it was changed later"
     if entry.number != number:
         return f"entry {entry.number} stands in the place of entry {number}: entries were deleted, added or moved"

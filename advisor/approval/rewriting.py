@@ -4,7 +4,7 @@ from collections.abc import Iterator, Sequence
 from dataclasses import replace
 
 from advisor.advice import Advice
-from advisor.approval.candidates import candidates
+from advisor.approval.candidates import candidates, is_gone
 from advisor.documents import (
     Mapping,
     Mark,
@@ -18,54 +18,61 @@ from advisor.documents import (
 from advisor.documents import Sequence as Listed
 from advisor.mishaps import Refusal
 from advisor.replay import Difference, Expectation, Played, differences, read_expectations
+from advisor.replay.expectations import DemandedBy
 
 _NOWHERE = Mark("", 1, 1)
 WITHDRAWN = "withdrawn"
 
 
 def rewritten(text: str, played: Played, chosen: Sequence[Difference]) -> tuple[str, tuple[str, ...]]:
-    """The text of a scenario in which these differences are accepted, and what was accepted in words.
+    """The text of a scenario in which these differences are accepted, and what was accepted of each in words.
 
     Raises:
         Refusal: where an expectation can only be changed by hand.
     """
-    words: list[str] = []
+    words: dict[int, str] = {}
     tree = _tree(text, played)
     expectations = list(_expectations(tree, played))
     if expectations != list(played.scenario.expectations):
         raise Refusal(f"{played.scenario.path} was changed while it was replayed. Replay again.")
-    for difference in sorted(chosen, key=lambda each: each.mark, reverse=True):
+    for at, difference in sorted(enumerate(chosen), key=lambda each: each[1].mark, reverse=True):
         place = next(
             number
             for number, each in enumerate(expectations)
             if each.mark == difference.mark and differences(played.advice, [each])
         )
         text, said = _accepted(text, tree, expectations, place, played, difference)
-        words.append(said)
+        words[at] = said
         tree = _tree(text, played)
         expectations = list(_expectations(tree, played))
-    return text, tuple(reversed(words))
+    return text, tuple(words[at] for at in range(len(chosen)))
 
 
 def _accepted(
     text: str, tree: Mapping, expectations: list[Expectation], place: int, played: Played, difference: Difference
 ) -> tuple[str, str]:
-    """The text with one expectation as the advice has it now: rewritten where that can be, else withdrawn."""
+    """The text with one expectation as the advice has it now; it is withdrawn only where nothing is there any more."""
     expected = expectations[place]
     loc, node = _written_at(tree, expected.mark)
     kept = [_unplaced(each) for number, each in enumerate(expectations) if number != place]
+    tried = not is_gone(expected, played.advice)
     for steps, written in candidates(expected, played.advice, node):
+        tried = True
         changed = replaced(text, (*loc, *steps), written)
         found = _sound(changed, tree, played)
         if found is not None and _only_one_new(found, kept, played.advice):
-            return changed, _said(difference, f"now {written}")
+            return changed, _rewritten_words(expected, difference, " ".join([*map(str, steps), written]))
+    if tried:
+        how = f"Write there what there is now ({difference.got}), or delete the entry and expect something else"
+        raise _by_hand(difference, "no value, limit or test in its place says what there is now", how)
     try:
         changed = removed(text, loc)
     except Uneditable as fault:
-        raise _by_hand(difference, str(fault)) from None
+        raise _by_hand(difference, str(fault), "Write it on a line of its own, or delete it") from None
     found = _sound(changed, tree, played)
     if found is None or [_unplaced(each) for each in found] != kept:
-        raise _by_hand(difference, "it is the only one there, or it hangs together with others")
+        how = "Delete it and expect something else of this case, or set the scenario to 'status: retired'"
+        raise _by_hand(difference, "it is the only one there, or it hangs together with others", how)
     return changed, _said(difference, f"{WITHDRAWN}, seen {difference.got}")
 
 
@@ -81,12 +88,23 @@ def _only_one_new(found: list[Expectation], kept: list[Expectation], advice: Adv
     return not rest and len(new) == 1 and not differences(advice, new)
 
 
-def _by_hand(difference: Difference, why: str) -> Refusal:
+def _by_hand(difference: Difference, why: str, how: str) -> Refusal:
     mark = difference.mark
     return Refusal(
         f"{mark.file}:{mark.line}:{mark.column}: '{difference.kind}' cannot be rewritten here: {why}. "
-        "Change the scenario by hand, replay, and sign the change. Nothing was written."
+        f"{how}; then replay, and sign the change by hand. Nothing was written."
     )
+
+
+def _rewritten_words(expected: Expectation, difference: Difference, written: str) -> str:
+    """What was accepted in words; of several demands of a rule only those that change."""
+    was, now = difference.expected.split("; "), difference.got.split("; ")
+    stay = [each for each in was if each in now]
+    if not isinstance(expected, DemandedBy) or not stay:
+        return _said(difference, f"now {written}")
+    changed = replace(difference, expected="; ".join(each for each in was if each not in stay) or "nothing more")
+    told = "; ".join(each for each in now if each not in stay) or "nothing more"
+    return _said(changed, f"now {told}; {len(stay)} of its demands stay{'s' if len(stay) == 1 else ''}")
 
 
 def _said(difference: Difference, outcome: str) -> str:

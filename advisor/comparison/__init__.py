@@ -1,15 +1,16 @@
 """Two editions of the knowledge compared: which scenarios change and what that means, and where else rules differ."""
 
-from collections.abc import Iterable, Iterator, Sequence
+from collections.abc import Iterable, Iterator, Mapping, Sequence
 from pathlib import Path
 
 from advisor.answers import Saved, point_kind_of, read_case
 from advisor.comparison.changing import Changed, Editions, Replayed, Replays
+from advisor.comparison.data import as_data
 from advisor.comparison.editions import edition
 from advisor.comparison.edits import Edit, edits
 from advisor.comparison.meaning import Meaning
-from advisor.comparison.regions import MOST_NEAR, Region, Witness, regions
-from advisor.comparison.reporting import Comparison, as_data, as_markdown, as_text, summary
+from advisor.comparison.regions import MOST_NEAR, LeftOut, Region, Witness, left_out, regions
+from advisor.comparison.reporting import Comparison, Shelved, as_markdown, as_text, summary
 from advisor.comparison.sharing import beside
 from advisor.documents import Problems
 from advisor.knowledge import Knowledge
@@ -19,8 +20,10 @@ __all__ = [
     "Comparison",
     "Edit",
     "Editions",
+    "LeftOut",
     "Meaning",
     "Region",
+    "Shelved",
     "Witness",
     "as_data",
     "as_markdown",
@@ -47,7 +50,26 @@ def compare(old: Knowledge, new: Knowledge, files: Iterable[Path]) -> Comparison
         replayed = sum(point_kind_of(path) == new.point_kind.id for path in paths)
         return Comparison(old, new, (), replayed, (), (), ())
     found, told = _found(paths, editions)
-    return Comparison(old, new, editions.edits, len(found.paths), found.changed, tuple(told), found.problems)
+    return Comparison(
+        old,
+        new,
+        editions.edits,
+        len(found.paths),
+        found.changed,
+        tuple(told),
+        found.problems,
+        left_out(editions),
+        _came_and_went(editions, found.judged),
+    )
+
+
+def _came_and_went(editions: Editions, judged: Mapping[tuple[str, str], int]) -> tuple[Shelved, ...]:
+    old, new = ([each.item for each in edition.shelf] for edition in (editions.old, editions.new))
+    return tuple(
+        Shelved(item, item in new, {verdict: count for (one, verdict), count in judged.items() if one == item})
+        for item in dict.fromkeys((*old, *new))
+        if item in editions.only_one_has
+    )
 
 
 def _found(paths: list[Path], editions: Editions) -> tuple[Replayed, list[Region]]:

@@ -1,5 +1,6 @@
 """Which scenarios an edition changes, what the change means, and which edits cause it."""
 
+from collections import Counter
 from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass, field
 from functools import cached_property
@@ -9,9 +10,10 @@ from advisor.advice import Advisor
 from advisor.advice.advising import setters_of
 from advisor.answers import Saved, point_kind_of, read_case
 from advisor.bending import answers_of
-from advisor.comparison.edits import RULE, Edit, carried, with_edits
+from advisor.comparison.edits import RULE, Edit, carried, differ, with_edits
 from advisor.comparison.meaning import Meaning, Sense, Words, differing, worst
 from advisor.comparison.replays import Pair, RuleEdits, Said, say
+from advisor.comparison.standing import names_of, stands
 from advisor.documents import Problem, Problems
 from advisor.knowledge import Knowledge
 from advisor.mutation import by_rules, plain
@@ -41,15 +43,27 @@ class Editions:
         """An advisor by the old knowledge with these edits made; nothing where they do not stand without others."""
         key = frozenset(chosen)
         if key not in self.advisors:
-            whole = len(key) == len(self.edits)
-            try:
-                mixed = self.new if whole else with_edits(self.old, self.new, key)
-                base = self.advisors.get(frozenset()) if self.only_rules else None
-                self.advisors[key] = by_rules(base, mixed) if base is not None else plain(Advisor(mixed))
-            except (LookupError, TypeError, ValueError):
-                # An edit that names what another one declares cannot be made alone.
+            mixed = with_edits(self.old, self.new, key) if 0 < len(key) < len(self.edits) else None
+            whole = self.new if key else self.old
+            # An edit that names what another one declares cannot be made alone.
+            made = whole if mixed is None else mixed if stands(mixed, self.declared) else None
+            base = self.advisors.get(frozenset()) if self.only_rules else None
+            if made is None:
                 self.advisors[key] = None
+            else:
+                self.advisors[key] = by_rules(base, made) if base is not None else plain(Advisor(made))
         return self.advisors[key]
+
+    @cached_property
+    def only_one_has(self) -> frozenset[str]:
+        """The products that only one of the shelves holds."""
+        old, new = ({each.item for each in edition.shelf} for edition in (self.old, self.new))
+        return frozenset(old ^ new)
+
+    @cached_property
+    def declared(self) -> frozenset[str]:
+        """The names that either edition declares."""
+        return names_of(self.old) | names_of(self.new)
 
     @cached_property
     def only_rules(self) -> bool:
@@ -75,15 +89,25 @@ class Replayed:
     paths: tuple[Path, ...]
     changed: tuple[Changed, ...]
     problems: tuple[Problem, ...]
+    judged: Mapping[tuple[str, str], int]
+    """How often a product that only one edition has came to a verdict."""
 
     def with_more(self, other: "Replayed") -> "Replayed":
         """These and more."""
         problems = tuple(dict.fromkeys((*self.problems, *other.problems)))
-        return Replayed((*self.paths, *other.paths), (*self.changed, *other.changed), problems)
+        return Replayed(
+            (*self.paths, *other.paths),
+            (*self.changed, *other.changed),
+            problems,
+            Counter(self.judged) + Counter(other.judged),
+        )
 
 
 Found = tuple[Meaning, Mapping[tuple[str, ...], tuple[str, str]], tuple[Edit, ...]]
 """What a change means, what differs, and what causes it."""
+
+Judged = tuple[tuple[str, str], ...]
+"""Products that only one edition has, with their verdicts on one case."""
 
 
 class Replays:
@@ -91,9 +115,10 @@ class Replays:
 
     def __init__(self, editions: Editions) -> None:
         self.editions = editions
-        self.words = Words(editions.old), Words(editions.new)
-        self.known: dict[object, Found | None] = {}
+        self.words = tuple(Words(each, editions.only_one_has) for each in (editions.old, editions.new))
+        self.known: dict[object, tuple[Found | None, Judged]] = {}
         self._read: tuple[dict[Path, Saved], dict[Path, Saved]] = {}, {}
+        self._words_of: dict[int, Words] = {}
         old, new = editions.advisor(()), editions.advisor(editions.edits)
         touched = [pair for edit in editions.edits for pair in pairs(editions.old, editions.new, edit)]
         self._rules = (
@@ -104,21 +129,40 @@ class Replays:
         """These scenarios by both editions; those about another kind of point are left out."""
         changed: list[Changed] = []
         paths: list[Path] = []
+        judged = Counter[tuple[str, str]]()
         problems = Problems()
         for path in files:
             old, new = self._read_by_both(path)
             if old is not None or new is not None:
                 paths.append(path)
-                changed += [each for each in (_changed(path, old, new, self),) if each is not None]
+                each, verdicts = _changed(path, old, new, self)
+                changed += [each] if each is not None else []
+                judged.update(verdicts)
             elif point_kind_of(path) == self.editions.new.point_kind.id:
                 read_case(path, self.editions.new, problems)
-        return Replayed(tuple(paths), tuple(changed), tuple(problems))
+        return Replayed(tuple(paths), tuple(changed), tuple(problems), judged)
 
     def _read_by_both(self, path: Path) -> tuple[Saved | None, Saved | None]:
         """The case as either edition reads it; where only rules were edited, that is the same."""
         old = read_case(path, self.editions.old, Problems(), self._read[0])
         same = self.editions.only_rules
         return old, old if same else read_case(path, self.editions.new, Problems(), self._read[1])
+
+    def read_by(self, advisor: Advisor, old: Saved, new: Saved) -> Saved | None:
+        """The case as a mixture of the editions reads it, where it understands it at all."""
+        facts = advisor.knowledge.facts
+        for saved, declared in ((old, self.editions.old.facts), (new, self.editions.new.facts)):
+            if all(name in facts and not differ(facts[name], declared[name]) for name in saved.case.answers):
+                return saved
+        return read_case(old.path, advisor.knowledge, Problems())
+
+    def words_of(self, knowledge: Knowledge) -> Words:
+        """The words of an edition, or of a mixture of both; editions with other rules only have the same."""
+        if self.editions.only_rules or knowledge is self.editions.old:
+            return self.words[0]
+        if knowledge is self.editions.new:
+            return self.words[1]
+        return self._words_of.setdefault(id(knowledge), Words(knowledge, self.editions.only_one_has))
 
     def why_unread(self, path: Path, knowledge: Knowledge) -> str:
         """What keeps an edition from reading a case."""
@@ -134,17 +178,17 @@ class Replays:
         return say(old, before, self.words[0]), say(new, after, self.words[1])
 
 
-def _changed(path: Path, old: Saved | None, new: Saved | None, both: Replays) -> Changed | None:
+def _changed(path: Path, old: Saved | None, new: Saved | None, both: Replays) -> tuple[Changed | None, Judged]:
     if old is None or new is None:
         editions = both.editions
         why = f"is not understood: {both.why_unread(path, editions.old if old is None else editions.new)}"
         gone = (why, "is understood") if old is None else ("is understood", why)
-        return Changed(path.stem, path, Meaning.SAFETY, {("case",): gone}, editions.edits)
+        return Changed(path.stem, path, Meaning.SAFETY, {("case",): gone}, editions.edits), ()
     key = _key(old), _key(new)
     if key not in both.known:
         both.known[key] = _found(old, new, both)
-    found = both.known[key]
-    return Changed(path.stem, path, *found) if found is not None else None
+    found, judged = both.known[key]
+    return Changed(path.stem, path, *found) if found is not None else None, judged
 
 
 def _key(saved: Saved) -> object:
@@ -152,22 +196,22 @@ def _key(saved: Saved) -> object:
     return saved.assume_gaps, saved.only, answers_of(saved.case)
 
 
-def _found(old: Saved, new: Saved, both: Replays) -> Found | None:
+def _found(old: Saved, new: Saved, both: Replays) -> tuple[Found | None, Judged]:
     # One rule that does otherwise may change the facts that later rules see: no edit is left out beforehand.
-    edits = both.editions.edits
     said = both.said(old, new)
     if said is None:
-        return None
+        return None, ()
     before, after = said
+    judged = tuple(each for side in said if not isinstance(side, str) for each in side.judged())
     if isinstance(before, str) or isinstance(after, str):
         if before == after:
-            return None
+            return None, judged
         pair = tuple(each if isinstance(each, str) else "advice" for each in (before, after))
-        return Meaning.SAFETY, {("advice",): (pair[0], pair[1])}, edits
+        return (Meaning.SAFETY, {("advice",): (pair[0], pair[1])}, both.editions.edits), judged
     meaning = worst(before, after)
     if meaning is Meaning.SAME:
-        return None
-    return meaning, differing(before, after, meaning), _causes(old, new, after, meaning, both)
+        return None, judged
+    return (meaning, differing(before, after, meaning), _causes(old, new, after, meaning, both)), judged
 
 
 def pairs(old: Knowledge, new: Knowledge, edit: Edit) -> list[Pair]:
@@ -193,11 +237,10 @@ def _causes(old: Saved, new: Saved, after: Sense, meaning: Meaning, both: Replay
 
     def enough(chosen: Iterable[Edit]) -> bool:
         advisor = editions.advisor(chosen)
-        saved = new if advisor is not None and advisor.knowledge is editions.new else old
-        try:
-            said = say(saved, advisor, both.words[0])
-        except (LookupError, TypeError, ValueError):
+        saved = both.read_by(advisor, old, new) if advisor is not None else None
+        if advisor is None or saved is None:
             return False
+        said = say(saved, advisor, both.words_of(advisor.knowledge))
         return not isinstance(said, str) and said[meaning] == after[meaning]
 
     for edit in editions.edits:

@@ -47,8 +47,24 @@ def _unpack(revision: str, place: Path) -> None:
     archive = _git("-C", str(root), "archive", "--format=tar", revision, "--", _WITHIN)
     if archive is None:
         raise Refusal(f"Revision {revision} of {root} has no folder '{_WITHIN}'. Name a later one.")
-    with tarfile.open(fileobj=io.BytesIO(archive)) as packed:
+    try:
+        with tarfile.open(fileobj=io.BytesIO(archive)) as packed:
+            _lay_out(packed, place)
+    except tarfile.TarError as fault:
+        raise Refusal(f"Revision {revision} of {root} cannot be laid out: {fault}. Name a folder.") from None
+
+
+def _lay_out(packed: tarfile.TarFile, place: Path) -> None:
+    """Unpack into the place and nowhere else."""
+    if hasattr(tarfile, "data_filter"):
         packed.extractall(place, filter="data")
+        return
+    # Python before 3.11.4 cannot refuse by itself what leads out of the place: only plain files and folders are taken.
+    for member in packed.getmembers():
+        path = Path(member.name)
+        if not (member.isfile() or member.isdir()) or path.is_absolute() or ".." in path.parts:
+            raise tarfile.TarError(f"'{member.name}' is no file or folder within it")
+    packed.extractall(place)  # noqa: S202 - every member was looked at above
 
 
 def _git(*words: str) -> bytes | None:

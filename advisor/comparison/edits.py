@@ -8,7 +8,7 @@ from advisor.documents import Mark
 from advisor.knowledge import Instance, Knowledge
 
 RULE, TABLE = "rule", "table"
-_NAMED = {
+NAMED = {
     "facts": "fact",
     "computations": "computation",
     "properties": "property",
@@ -19,7 +19,7 @@ _NAMED = {
     "forks": "fork",
     "sources": "source",
 }
-_WHOLE = {
+WHOLE = {
     "steps": "the steps",
     "docket": "the docket",
     "usual_oils": "the usual oils",
@@ -65,26 +65,26 @@ def _parts(kind: type) -> tuple[str, ...] | None:
 def edits(old: Knowledge, new: Knowledge) -> tuple[Edit, ...]:
     """Everything that was edited: rules first."""
     found = list(_rule_edits(old, new))
-    for part, kind in _NAMED.items():
+    for part, kind in NAMED.items():
         before, after = getattr(old, part), getattr(new, part)
-        found += [Edit(kind, name, how) for name, how in _between(before, after, _differ)]
-    for part, kind in _WHOLE.items():
-        if _differ(getattr(old, part), getattr(new, part)):
+        found += [Edit(kind, name, how) for name, how in _between(before, after, differ)]
+    for part, kind in WHOLE.items():
+        if differ(getattr(old, part), getattr(new, part)):
             found.append(Edit(kind, kind, "changed"))
     return tuple(found)
 
 
-def _differ(one: object, other: object) -> bool:
+def differ(one: object, other: object) -> bool:
     """Whether two pieces mean something else; most of them are the same but for places in files, and soon told so."""
     if one is other or type(one) is not type(other):
         return one is not other and sense(one) != sense(other)
     parts = _parts(type(one))  # type: ignore[arg-type]  # every class can be hashed
     if parts is not None:
-        return any(_differ(getattr(one, name), getattr(other, name)) for name in parts)
+        return any(differ(getattr(one, name), getattr(other, name)) for name in parts)
     if isinstance(one, tuple | list) and isinstance(other, tuple | list):
-        return len(one) != len(other) or any(map(_differ, one, other))
+        return len(one) != len(other) or any(map(differ, one, other))
     if isinstance(one, Mapping) and isinstance(other, Mapping):
-        return list(one) != list(other) or any(map(_differ, one.values(), other.values()))
+        return list(one) != list(other) or any(map(differ, one.values(), other.values()))
     return one != other
 
 
@@ -115,11 +115,11 @@ def _rule_edits(old: Knowledge, new: Knowledge) -> Iterator[Edit]:
 
     def differs(one: object, other: object) -> bool:
         name = _rule_of(one) or _rule_of(other)
-        if name is None or _differ(old.rules[name], new.rules[name]):
+        if name is None or differ(old.rules[name], new.rules[name]):
             return name is not None
         rows = {each.id: each for each in before[name]}
         same_row = [(rows[each.id], each) for each in after[name] if each.id in rows]
-        return any(_means(was) != _means(now) for was, now in same_row if not _differ(was.row, now.row))
+        return any(_means(was) != _means(now) for was, now in same_row if not differ(was.row, now.row))
 
     whole = {name: (name, each) for name, each in before.items()}
     whole_after = {name: (name, each) for name, each in after.items()}
@@ -152,9 +152,9 @@ def with_edits(old: Knowledge, new: Knowledge, chosen: Iterable[Edit]) -> Knowle
     rules = {name for each in picked for name in carried(old, new, each)}
     changes: dict[str, object] = {
         part: _merged(getattr(old, part), getattr(new, part), {name for k, name in named if k == kind})
-        for part, kind in _NAMED.items()
+        for part, kind in NAMED.items()
     }
-    changes |= {part: getattr(new, part) for part, kind in _WHOLE.items() if (kind, kind) in named}
+    changes |= {part: getattr(new, part) for part, kind in WHOLE.items() if (kind, kind) in named}
     changes["rules"] = _merged(old.rules, new.rules, rules)
     changes["instances"] = _instances(old, new, rules)
     return replace(old, **changes)  # type: ignore[arg-type]  # each part is put in for its like

@@ -7,6 +7,7 @@ from advisor.explanation.seeing import rules_seen
 from advisor.explanation.words import say_demand
 from advisor.knowledge import Citation, Knowledge
 from advisor.mutation import told
+from advisor.shelf import Verdict
 from advisor.specification import Demand
 
 
@@ -27,10 +28,14 @@ _SAFETY = {"state", "withheld", "cautions", "referrals", "conflicts", "must"}
 
 
 class Words:
-    """Demands in words, each put into words once: most of them come again in case after case."""
+    """Demands in words, each put into words once: most of them come again in case after case.
 
-    def __init__(self, knowledge: Knowledge) -> None:
+    `apart` are the products that only one edition has: as long as they do not fit, they change no recommendation.
+    """
+
+    def __init__(self, knowledge: Knowledge, apart: frozenset[str] = frozenset()) -> None:
         self._knowledge = knowledge
+        self.apart = apart
         self._said: dict[object, str] = {}
 
     def say(self, demand: Demand) -> str:
@@ -59,12 +64,19 @@ class Sense:
             self._known |= found
         return self._known[meaning]
 
+    def judged(self) -> tuple[tuple[str, str], ...]:
+        """The products that only one edition has, with their verdicts."""
+        apart = self._words.apart
+        return (
+            tuple((each.item, each.verdict.value) for each in self._advice.shelf if each.item in apart) if apart else ()
+        )
+
     def _found(self, meaning: Meaning) -> dict[Meaning, Parts]:
         if meaning is Meaning.ORDER:
-            return {meaning: _order(self._advice)}
+            return {meaning: _order(self._advice, self._words.apart)}
         if meaning is Meaning.REASONS:
-            return {meaning: {**_told(self._advice, reasons=True)[meaning], **self._reasons()}}
-        told_of = _told(self._advice, reasons=False)
+            return {meaning: {**_told(self._advice, self._words.apart, reasons=True)[meaning], **self._reasons()}}
+        told_of = _told(self._advice, self._words.apart, reasons=False)
         both = (Meaning.SAFETY, Meaning.RECOMMENDATION)
         return {each: told_of[each] | self._demands(must=each is Meaning.SAFETY) for each in both}
 
@@ -91,11 +103,13 @@ class Sense:
         return found
 
 
-def _told(advice: Advice, *, reasons: bool) -> dict[Meaning, Parts]:
+def _told(advice: Advice, apart: frozenset[str], *, reasons: bool) -> dict[Meaning, Parts]:
     """What a scenario could expect of the advice, by what a change of it means; the reasons only where asked for."""
     parts: dict[Meaning, Parts] = {each: {} for each in Meaning}
     shown = {name for line in (*advice.docket, *advice.quantities) for name in line.facts}
     for part, text in told(advice, demands=False, reasons=reasons).items():
+        if part[0] == "products" and part[1] in apart and text != Verdict.FITS.value:
+            continue
         if part[0] == "facts" and part[1] not in shown:
             meaning = Meaning.REASONS
         elif part[0] in _SAFETY:
@@ -108,9 +122,10 @@ def _told(advice: Advice, *, reasons: bool) -> dict[Meaning, Parts]:
     return parts
 
 
-def _order(advice: Advice) -> Parts:
-    order: Parts = {("order",): ", ".join(each.item for each in advice.shelf)}
-    order |= {("steps", each.item): str(each.steps) for each in advice.shelf}
+def _order(advice: Advice, apart: frozenset[str]) -> Parts:
+    shelf = [each for each in advice.shelf if each.item not in apart]
+    order: Parts = {("order",): ", ".join(each.item for each in shelf)}
+    order |= {("steps", each.item): str(each.steps) for each in shelf}
     for line in advice.docket:
         order["order", line.row] = ", ".join(map(str, line.values))
     return order

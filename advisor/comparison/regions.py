@@ -10,6 +10,7 @@ from advisor.boxes import Box, uncovered
 from advisor.case import Case
 from advisor.comparison.changing import Editions, pairs
 from advisor.comparison.edits import Edit
+from advisor.comparison.standing import suits, unknown
 from advisor.conditions import ALWAYS, Coded, Every, Record, holds
 from advisor.conditions.terms import Void
 from advisor.inference import StepRules
@@ -40,6 +41,16 @@ class Region:
     how: str
     box: Box
     witness: Witness
+    knowledge: Knowledge
+    """The edition by whose words it is told."""
+
+
+@dataclass(frozen=True, slots=True)
+class LeftOut:
+    """An instance of an edited rule whose two conditions no edition understands both, and what stands in the way."""
+
+    instance: str
+    names: tuple[str, ...]
 
 
 def regions(editions: Editions, cases: Sequence[Saved]) -> list[Region]:
@@ -51,13 +62,34 @@ def regions(editions: Editions, cases: Sequence[Saved]) -> list[Region]:
     for edit in editions.edits:
         left = MOST_CASES
         for step, was, now in pairs(editions.old, editions.new, edit):
-            for how, box in differing_boxes(was, now, editions.new):
-                witness = confirmed(box, was, now, editions.new)
-                if left and bender is not None:
+            by = edition_for(was, now, editions)
+            if by is None:
+                continue
+            for how, box in differing_boxes(was, now, by):
+                witness = confirmed(box, was, now, by)
+                if left and bender is not None and by is editions.new:
                     left -= 1
                     witness = _whole(witness, box, seen, bender, (was, now))
-                found.append(Region(edit, step, (now or was).id, how, box, witness))  # type: ignore[union-attr]  # one is there
+                found.append(Region(edit, step, (now or was).id, how, box, witness, by))  # type: ignore[union-attr]  # one is there
     return found
+
+
+def edition_for(was: Instance | None, now: Instance | None, editions: Editions) -> Knowledge | None:
+    """The edition that declares everything that both conditions read, the new one first; nothing where none does."""
+    conditions = [each.when for each in (was, now) if each is not None]
+    both = (editions.new, editions.old)
+    return next((each for each in both if all(suits(condition, each) for condition in conditions)), None)
+
+
+def left_out(editions: Editions) -> tuple[LeftOut, ...]:
+    """What no region is looked for in, because a name went between the editions."""
+    found: dict[str, LeftOut] = {}
+    for edit in editions.edits:
+        for _, was, now in pairs(editions.old, editions.new, edit):
+            if was is not None and now is not None and edition_for(was, now, editions) is None:
+                lost = (*unknown(was.when, editions.new), *unknown(now.when, editions.old))
+                found[now.id] = LeftOut(now.id, tuple(dict.fromkeys(lost)))
+    return tuple(found.values())
 
 
 def _bender(editions: Editions) -> Bender | None:

@@ -1,21 +1,35 @@
-"""A comparison as text, as Markdown for a merge request, and as data for JSON."""
+"""A comparison as text, and as Markdown for a merge request."""
 
-from collections.abc import Iterable, Iterator
+from collections.abc import Iterable, Iterator, Mapping, Sequence
 from dataclasses import dataclass
-from typing import Any
 
-from advisor.boxes import Among, Box, Lacking, Side, Stretch, Ticks
 from advisor.comparison.changing import Changed
-from advisor.comparison.edits import RULE, TABLE, Edit
+from advisor.comparison.details import details, shown
+from advisor.comparison.differences import alike
+from advisor.comparison.edits import RULE, TABLE, Edit, carried
 from advisor.comparison.meaning import Meaning
-from advisor.comparison.regions import Region, Witness
-from advisor.conditions import Domain
+from advisor.comparison.regions import LeftOut, Region
+from advisor.comparison.saying import say_box, say_witness
 from advisor.documents import Problem
-from advisor.explanation.words import domain_of, say_value, title_of
 from advisor.knowledge import Knowledge
 
-FORMAT = 1
 MOST_SHOWN = 5
+
+
+@dataclass(frozen=True, slots=True)
+class Shelved:
+    """A product that only one edition has, and in how many scenarios it comes to each verdict."""
+
+    item: str
+    new: bool
+    verdicts: Mapping[str, int]
+
+    def __str__(self) -> str:
+        counts = [f"{verdict.replace('_', ' ')} in {count}" for verdict, count in self.verdicts.items()]
+        if counts:
+            counts[0] += f" scenario{'s' * (next(iter(self.verdicts.values())) != 1)}"
+        was = "is new" if self.new else "is gone"
+        return f"{self.item} {was}: {', '.join(counts) or 'no scenario judges it'}"
 
 
 @dataclass(frozen=True, slots=True)
@@ -29,6 +43,8 @@ class Comparison:
     changed: tuple[Changed, ...]
     regions: tuple[Region, ...]
     problems: tuple[Problem, ...]
+    left_out: tuple[LeftOut, ...] = ()
+    shelved: tuple[Shelved, ...] = ()
 
     def groups(self) -> list[tuple[tuple[Edit, ...], list[Changed]]]:
         """The changed scenarios by the edits that cause them, the worst group first."""
@@ -58,97 +74,69 @@ def _lines(comparison: Comparison, heading: str, bullet: str, code: str) -> Iter
         return
     yield ""
     yield f"{heading}Edited"
-    yield from (f"{bullet}{each}" for each in comparison.edits)
+    for each in comparison.edits:
+        yield f"{bullet}{each}"
+        yield from (f"  {bullet}{line}" for line in shown(details(comparison.old, comparison.new, each)))
+    yield from _shelf_lines(comparison, bullet)
     for causes, changed in comparison.groups():
         yield ""
         yield f"{heading}Changed by {_listed(causes)}"
-        for each in changed:
-            yield f"{bullet}{code}{each.name}{code}: {each.meaning}"
-            yield from (f"  {bullet}{line}" for line in _shown(_difference_lines(each)))
+        for same in alike(changed):
+            first = f"{code}{same.names}{code}" if len(same.changed) == 1 else same.names
+            yield f"{bullet}{first}: {same.changed[0].meaning}"
+            yield from (f"  {bullet}{line}" for line in _first(same.lines))
     yield from _region_lines(comparison, heading, bullet)
+    if comparison.left_out:
+        yield ""
+        yield say_left_out(comparison)
+
+
+def _shelf_lines(comparison: Comparison, bullet: str) -> Iterator[str]:
+    if comparison.shelved:
+        yield ""
+        yield from (f"{bullet}{each}" for each in comparison.shelved)
 
 
 def _listed(causes: Iterable[Edit]) -> str:
-    words = [str(each) for each in causes]
+    return _few([str(each) for each in causes])
+
+
+def _first(lines: Sequence[str]) -> list[str]:
+    rest = len(lines) - MOST_SHOWN
+    return [*lines[:MOST_SHOWN], *([f"and {rest} more"] if rest > 0 else [])]
+
+
+def say_left_out(comparison: Comparison) -> str:
+    """What no region was looked for in, in one sentence."""
+    names = list(dict.fromkeys(name for each in comparison.left_out for name in each.names))
+    rules = [each.instance for each in comparison.left_out]
+    return (
+        f"No regions were looked for in {_few(rules)}: only one edition has {_few(names)}, "
+        "or has it with the values that are asked for."
+    )
+
+
+def _few(words: list[str]) -> str:
     more = f" and {len(words) - MOST_SHOWN} more" if len(words) > MOST_SHOWN else ""
     return ", ".join(words[:MOST_SHOWN]) + more
 
 
-def _shown(lines: list[str]) -> list[str]:
-    rest = len(lines) - MOST_SHOWN
-    return [*lines[:MOST_SHOWN], f"and {rest} more"] if rest > 0 else lines
-
-
-def _difference_lines(changed: Changed) -> list[str]:
-    return [
-        f"{' '.join(part[:2])}: {was or 'nothing'} -> {now or 'nothing'}"
-        for part, (was, now) in changed.differences.items()
-    ]
-
-
 def _region_lines(comparison: Comparison, heading: str, bullet: str) -> Iterator[str]:
+    lost = {each.instance.partition("/")[0] for each in comparison.left_out}
     for edit in comparison.edits:
         own = [each for each in comparison.regions if each.edit == edit]
         if not own:
-            if edit.kind in {RULE, TABLE}:
+            if edit.kind in {RULE, TABLE} and not lost.intersection(carried(comparison.old, comparison.new, edit)):
                 yield ""
                 yield f"{heading}{edit}: no rule does otherwise on anything that its step sees"
             continue
         yield ""
         yield f"{heading}Where {edit.name} does otherwise: {len(own)} region{'s' if len(own) > 1 else ''}"
         for each in own[:MOST_SHOWN]:
-            yield f"{bullet}{each.instance} {each.how} where {say_box(each.box, comparison.new)}"
-            yield f"  {bullet}{_say_witness(each.witness, comparison.new)}"
+            yield f"{bullet}{each.instance} {each.how} where {say_box(each.box, each.knowledge)}"
+            yield f"  {bullet}{say_witness(each.witness, each.knowledge)}"
         if len(own) > MOST_SHOWN:
             yield f"{bullet}and {len(own) - MOST_SHOWN} more"
-
-
-def _say_witness(witness: Witness, knowledge: Knowledge) -> str:
-    seen = ", ".join(
-        f"{title_of(name, knowledge)} {say_value(domain_of(name, knowledge), value)}"
-        for name, value in witness.record.items()
-    )
-    if witness.answers is None:
-        return f"record: {seen or 'anything'}"
-    answers = ", ".join(f"{name}: {text}" for name, text in witness.answers.items())
-    return f"whole case: like {witness.like}{f' with {answers}' if answers else ''}; there {seen}"
-
-
-def say_box(box: Box, knowledge: Knowledge) -> str:
-    """A region in words."""
-    words = []
-    for key, side in box.sides.items():
-        if isinstance(key, tuple):
-            order = " or ".join(sorted(map(str, side.values))) if isinstance(side, Among) else ""
-            words.append(f"{title_of(key[0], knowledge)} {order} {title_of(key[1], knowledge)}")
-        else:
-            words.append(f"{title_of(key, knowledge)} {_say_side(side, key, knowledge)}")
-    return ", ".join(words) or "always"
-
-
-def _say_side(side: Side, name: str, knowledge: Knowledge) -> str:
-    domain = domain_of(name, knowledge)
-    if isinstance(side, Lacking):
-        return "without a value"
-    if isinstance(side, Ticks):
-        parts = [f"with {domain.label(tuple(sorted(side.set)))}"] if side.set else []
-        parts += [f"without {domain.label(tuple(sorted(side.clear)))}"] if side.clear else []
-        return " and ".join(parts) or "with a value"
-    if isinstance(side, Among):
-        values = sorted(side.values, key=str)
-        return f"{'' if side.wanted else 'other than '}{' or '.join(say_value(domain, each) for each in values)}"
-    return _say_stretch(side, domain)
-
-
-def _say_stretch(side: Stretch, domain: Domain) -> str:
-    if side.low == side.high:
-        return f"exactly {say_value(domain, side.low)}"
-    parts = []
-    if side.low > domain.low or side.low_open:
-        parts.append(f"{'above' if side.low_open else 'at least'} {say_value(domain, side.low)}")
-    if side.high < domain.high or side.high_open:
-        parts.append(f"{'below' if side.high_open else 'at most'} {say_value(domain, side.high)}")
-    return " and ".join(parts) or "with a value"
 
 
 def summary(comparison: Comparison) -> str:
@@ -165,56 +153,3 @@ def summary(comparison: Comparison) -> str:
         f"{comparison.old.fingerprint} -> {comparison.new.fingerprint}: {edited} edit{'s' if edited > 1 else ''}; "
         f"{len(comparison.changed)} of {comparison.replayed} scenarios change ({', '.join(counts) or 'none'})."
     )
-
-
-def as_data(comparison: Comparison) -> dict[str, Any]:
-    """The comparison for JSON."""
-    return {
-        "format": FORMAT,
-        "old": comparison.old.fingerprint,
-        "new": comparison.new.fingerprint,
-        "point_kind": comparison.new.point_kind.id,
-        "edits": [_edit_data(each) for each in comparison.edits],
-        "replayed": comparison.replayed,
-        "groups": [
-            {
-                "causes": [_edit_data(each) for each in causes],
-                "scenarios": [
-                    {
-                        "file": str(each.path),
-                        "meaning": str(each.meaning),
-                        "differences": [
-                            {"part": list(part), "old": was, "new": now}
-                            for part, (was, now) in each.differences.items()
-                        ],
-                    }
-                    for each in changed
-                ],
-            }
-            for causes, changed in comparison.groups()
-        ],
-        "regions": [
-            {
-                "edit": _edit_data(each.edit),
-                "step": each.step,
-                "instance": each.instance,
-                "how": each.how,
-                "where": say_box(each.box, comparison.new),
-                "witness": {
-                    "kind": "record" if each.witness.answers is None else "whole case",
-                    "record": {name: _plain(value) for name, value in each.witness.record.items()},
-                    "like": each.witness.like,
-                    "answers": dict(each.witness.answers or {}),
-                },
-            }
-            for each in comparison.regions
-        ],
-    }
-
-
-def _edit_data(edit: Edit) -> dict[str, str]:
-    return {"kind": edit.kind, "name": edit.name, "how": edit.how}
-
-
-def _plain(value: object) -> object:
-    return sorted(value) if isinstance(value, frozenset) else value if isinstance(value, float | str) else None

@@ -5,6 +5,7 @@ from dataclasses import dataclass
 from yaml import events
 
 from advisor.documents.problems import Mark, Problem
+from advisor.documents.slips import STRAIGHT, comma_in_braces, invisible, rest_of_text, space_after_colon, space_before
 from advisor.documents.tree import Mapping, Node, Scalar, Sequence, trail
 
 DEEPEST = 40
@@ -28,6 +29,7 @@ class _Open:
     node: Mapping | Sequence
     key: Scalar | None = None
     last_key: Scalar = _REFUSED
+    flow: bool = False
 
 
 class Builder:
@@ -88,7 +90,7 @@ class Builder:
         else:
             node = Mapping(mark) if isinstance(event, events.MappingStartEvent) else Sequence(mark)
             self._place(node)
-            self._open.append(_Open(node))
+            self._open.append(_Open(node, flow=bool(getattr(event, "flow_style", False))))
             if len(self._open) > DEEPEST:
                 raise TooBig(mark, f"The document is too big: nested deeper than {DEEPEST} levels", "Flatten it")
 
@@ -131,11 +133,30 @@ class Builder:
             inner.node.append(node)
         elif inner.key is None:
             inner.key = self._accepted_key(inner.node, node)
+        elif inner.flow and self._slipped(inner.node, inner.last_key, inner.key, node):
+            inner.key = None
         else:
             if inner.key is not _REFUSED:
                 inner.node[str(inner.key)] = node
             inner.last_key = inner.key
             inner.key = None
+
+    def _slipped(self, mapping: Mapping, before: Scalar, key: Scalar, value: Node) -> bool:
+        """Whether a key in braces is none, but what a decimal comma or an invisible space has left of an entry."""
+        number, space = comma_in_braces(mapping.get(before), key, value), space_after_colon(key, value)
+        if number:
+            written = mapping[before]
+            self._fault(written.mark, f"'{written},{key}' has a decimal comma", f"Write {number}")
+            mapping[str(before)] = Scalar(number, written.mark)
+        elif space:
+            mark = key.mark._replace(column=key.mark.column + key.index(space))
+            self._fault(mark, *invisible(space))
+        elif rest := rest_of_text(key, value):
+            self._fault(key.mark, rest, STRAIGHT)
+        else:
+            return False
+        mapping.key_marks.pop(key, None)
+        return True
 
     def _drop_repeated(self) -> None:
         """Refuse the entries of the innermost list that stood in it before."""
@@ -159,6 +180,8 @@ class Builder:
             self._fault(key.mark, "A list or mapping stands where a key should", "Write a plain word as the key")
         elif key == "<<" and not key.quoted:
             self._fault(key.mark, "The merge key '<<' is not accepted", "Write the merged keys out")
+        elif space := space_before(key):
+            self._fault(key.mark, *invisible(space))
         elif not key:
             self._fault(key.mark, "A key is missing before the colon", "Write the key, or put the text in quotes")
         elif key in mapping.key_marks:

@@ -12,8 +12,10 @@ class Unwritable(Exception):
     """A file that could not be written; the message says why and what to do."""
 
 
-def write_text_safely(path: Path, text: str) -> None:
+def write_text_safely(path: Path, text: str, *, exclusive: bool = False) -> None:
     """Replace the file by one with this text, in one step; a link is followed, the permissions are kept.
+
+    Where it is to be `exclusive`, only a new file is written and one that is there already stays as it is.
 
     Raises:
         Unwritable: the file could not be written; what stood there before still does.
@@ -24,7 +26,7 @@ def write_text_safely(path: Path, text: str) -> None:
         message = f"'{path}' was not written: the text holds half a character. Delete it and save again."
         raise Unwritable(message) from error
     try:
-        _replace(_followed(path), raw)
+        (_create if exclusive else _replace)(_followed(path), raw)
     except OSError as error:
         raise Unwritable(f"'{path}' was not written: {_why(path, error)}") from error
 
@@ -58,6 +60,17 @@ def _replace(target: Path, raw: bytes) -> None:
     _sync_folder(target.parent)
 
 
+def _create(target: Path, raw: bytes) -> None:
+    """Take the name, which only one of several writers gets, and then write as if to replace."""
+    with target.open("xb"):
+        pass
+    try:
+        _replace(target, raw)
+    except BaseException:
+        target.unlink(missing_ok=True)
+        raise
+
+
 def _mode_to_keep(target: Path) -> int | None:
     """The permissions of the file that is there, if one is and may be replaced."""
     if target.is_dir():
@@ -84,6 +97,8 @@ def _why(path: Path, error: OSError) -> str:
     match error:
         case FileNotFoundError() | NotADirectoryError():
             why, mend = f"the folder '{path.parent}' does not exist", "Create it or choose another"
+        case FileExistsError():
+            why, mend = "it exists already", "Choose another name"
         case IsADirectoryError():
             why, mend = "a folder of that name is there", "Choose another name"
         case PermissionError():

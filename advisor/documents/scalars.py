@@ -22,6 +22,9 @@ _MISREAD = tuple((re.compile(pattern, re.IGNORECASE), message) for pattern, mess
     (r"[-+]?\.[0-9]+", "'{seen}' lacks the nought before the dot. Write {padded}."),
     (r"[-+]?[0-9]+\.", "'{seen}' ends in a dot. Write {whole}."),
     (r"[\u2012\u2013\u2212].*", "'{seen}' begins with a typographic minus. Write the plain one, -."),
+    (r"[<>=\u2264\u2265].*",
+     "'{seen}' is a limit, not a number. Write the number alone, and in a rule {{at_least: 12.5}} or the like."),
+    (r"[\u201c\u201d\u201e\u201a\u2018\u2019].*", "'{seen}' begins with a curly quote. Write the number alone."),
     (r"yes|no|on|off|true|false|y|n", "'{seen}' is a yes or no, where a number is needed. Write one, such as 12.5."),
     (r"[-+]?[0-9.]+\s*[^\s0-9.,:].*", "'{seen}' is more than a number. Write the number alone: its unit is declared."),
 ))

@@ -6,6 +6,7 @@ from typing import NamedTuple
 from yaml import MarkedYAMLError, YAMLError
 
 from advisor.documents.problems import Mark, Problem
+from advisor.documents.slips import misread_sign
 
 
 class _Fault(NamedTuple):
@@ -84,6 +85,8 @@ def explained(error: YAMLError, text: str, name: str, innermost: Mark) -> tuple[
     start = Mark(name, context.line + 1, context.column + 1)
     if "node content" in str(error.problem):
         start = innermost
+    if misread := misread_sign(lines, start, end):
+        return misread, False
     scene = f"{error.context}: {error.problem} {_scene(lines, start, end)}"
     for fault in _FAULTS:
         if re.search(fault.pattern, scene):

@@ -1,4 +1,4 @@
-"""Write plain data as YAML that every reader takes for the same texts, and save files so that nothing is lost."""
+"""Write plain data as YAML that every reader takes for the same texts."""
 
 import math
 import re

@@ -9,7 +9,7 @@ from advisor.conditions.terms import Term, Void
 from advisor.explanation.data_terms import OPERATORS, in_order, number
 from advisor.explanation.seeing import hides, record_at
 from advisor.explanation.words import domain_of
-from advisor.explanation.workings import HIDDEN, how_computed, put_in
+from advisor.explanation.workings import HIDDEN, how_computed, with_numbers
 from advisor.formulas import FORMULAS
 from advisor.knowledge import Computation, Formed
 
@@ -105,6 +105,6 @@ def _how(advice: Advice, computation: Computation) -> Data:
         for each, bound in how.inputs.items()
         if isinstance(value := advice.facts[bound].value if isinstance(bound, str) else bound, float | int)
     }
-    data: Data = {"equation": formula.equation, "substituted": put_in(formula, numbers)}
+    data: Data = {"equation": formula.equation, "substituted": with_numbers(formula, numbers)}
     warnings = how_computed(advice, computation.fact).warnings if formula.outside(numbers) else ()
     return data | ({"warnings": list(warnings)} if warnings else {})

@@ -128,7 +128,8 @@ def codes_section(advice: Advice) -> Section:
         f"DIN 51825: {', '.join(codes.din) or f'none, since {codes.din_none}'}",
         f"ISO 6743-9: {', '.join(codes.iso) or f'none, since {codes.iso_none}'}",
     ]
-    after = ["These are the lowest codes that suffice; a higher letter serves as well."] if codes.din or codes.iso else []
+    given = codes.din or codes.iso
+    after = ["These are the lowest codes that suffice; a higher letter serves as well."] if given else []
     if codes.din and (letters := base_oil_letters(advice)):
         named = listed([f"{letter} for {title}" for title, letter in letters.items()])
         after.append(

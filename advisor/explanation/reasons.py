@@ -1,5 +1,6 @@
 """Why a row of the docket shows what it shows: the conclusion, its demands, their rules, and the facts behind these."""
 
+from collections import Counter
 from collections.abc import Iterator
 from dataclasses import dataclass
 
@@ -82,7 +83,8 @@ def say_line(advice: Advice, line: Line) -> str:
         return "no figure for this point" if row.section != "docket" else "does not apply"
     if row.recommends:
         domain = knowledge.properties[row.recommends].domain
-        said = " or ".join(dict.fromkeys(say_value(domain, each) for each in line.values))
+        every = len(domain.choices) > 1 and not domain.ordered and set(line.values) >= set(domain.choices)
+        said = "any" if every else " or ".join(dict.fromkeys(say_value(domain, each) for each in line.values))
         if line.differs:
             return f"{said}, {everywhere(advice)}" if said else differing(advice)
         return said or (WAITS if line.waits else "nothing is left")
@@ -90,7 +92,8 @@ def say_line(advice: Advice, line: Line) -> str:
         said = _say_facts(advice, line.facts)
         return f"{said}, where a figure is given" if line.differs else said
     musts = [demand for demand in line.demands if demand.must] or list(line.demands)
-    said = "; ".join(dict.fromkeys(_short_demand(demand, advice) for demand in musts))
+    counts = Counter(demand.property for demand in musts)
+    said = "; ".join(dict.fromkeys(_short_demand(demand, advice, counts[demand.property]) for demand in musts))
     if said and line.differs:
         said += " (the strictest of all variants)" if _variants(advice) else " (the strictest along the range)"
     return said or (WAITS if line.waits else "nothing asked")
@@ -113,8 +116,13 @@ def _variants(advice: Advice) -> bool:
     return any(set(branch.settings) - {advice.span.fact} for branch in advice.branches)
 
 
-def _short_demand(demand: Demand, advice: Advice) -> str:
-    return say_test(demand.test, advice.knowledge) + ("" if demand.must else " (wished)")
+def _short_demand(demand: Demand, advice: Advice, alike: int) -> str:
+    """A demand in a row; where it is one of several on the property, with the classes it is for."""
+    said = say_test(demand.test, advice.knowledge) + ("" if demand.must else " (wished)")
+    parts = demand.for_.parts if isinstance(demand.for_, Every) else (demand.for_,)
+    plain = ({"form"}, {demand.property})
+    narrower = Every(tuple(part for part in parts if set(names(part)) not in plain))
+    return f"{said}, where {say_condition(narrower, advice.knowledge)}" if alike > 1 and narrower.parts else said
 
 
 def _say_facts(advice: Advice, names_: tuple[str, ...]) -> str:

@@ -133,6 +133,8 @@ def _say_bound(term: Bound, domain: Domain, knowledge: Knowledge, record: Record
     if not isinstance(term.limit, FactRef):
         return sign + say_value(domain, term.limit)
     name = term.limit.name
+    if not record:
+        return f"{sign}{title_of(name, knowledge)}"
     return f"{sign}{say_value(domain, record.get(name))} ({title_of(name, knowledge)})"
 
 

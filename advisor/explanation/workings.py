@@ -1,9 +1,7 @@
 """How facts came about: formulas with the numbers put in, look-ups with their rows, rules, assumptions, answers."""
 
-import re
 from collections.abc import Mapping
 from dataclasses import dataclass, replace
-from functools import lru_cache
 
 from advisor.advice import Advice
 from advisor.case import Fact, Origin
@@ -12,7 +10,7 @@ from advisor.conditions import Record, Value
 from advisor.explanation.seeing import hides
 from advisor.explanation.words import domain_of, say_fact, say_source, say_value, title_of
 from advisor.formulas import FORMULAS, Formula
-from advisor.formulas.formula import plain
+from advisor.formulas.formula import plain, put_in
 from advisor.knowledge import Citation, Computation, Formed, LookedUp, Row, Table
 from advisor.quantities import show
 
@@ -90,7 +88,7 @@ def _formed(advice: Advice, computation: Computation) -> Working:
         computation.fact,
         computation.title,
         formula.equation,
-        put_in(formula, numbers),
+        with_numbers(formula, numbers),
         tuple(symbols),
         result,
         _sources(advice, computation.source, formula),
@@ -105,20 +103,10 @@ def _symbol(advice: Advice, symbol: str, unit: str, text: str, bound: str | floa
     return Symbol(symbol, show(bound, unit), text, "")
 
 
-def put_in(formula: Formula, numbers: Mapping[str, float]) -> str:
+def with_numbers(formula: Formula, numbers: Mapping[str, float]) -> str:
     """The equation with every known input symbol replaced by its number."""
     known = {each.symbol: _number(numbers[each.name]) for each in formula.inputs if each.name in numbers}
-    pieces = _pieces(formula.equation, tuple(known))
-    return "".join([known[piece] if place % 2 else piece for place, piece in enumerate(pieces)])
-
-
-@lru_cache(maxsize=1024)
-def _pieces(equation: str, symbols: tuple[str, ...]) -> tuple[str, ...]:
-    """The equation cut before and after every one of these symbols: text and symbol by turns."""
-    if not symbols:
-        return (equation,)
-    longest_first = "|".join(sorted(map(re.escape, symbols), key=len, reverse=True))
-    return tuple(re.split(rf"(?<!\w)({longest_first})(?!\w)", equation))
+    return put_in(formula.equation, known)
 
 
 def _number(value: float) -> str:

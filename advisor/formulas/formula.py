@@ -6,8 +6,10 @@ from a list beside its numbers, or answers with names.
 
 from __future__ import annotations
 
+import re
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
+from functools import lru_cache
 from math import inf, isfinite
 from typing import Literal, NamedTuple
 
@@ -152,6 +154,26 @@ class Lookup:
         """One sentence for each number outside the inclusive range of its input."""
         numbers = [each for each in self.inputs if isinstance(each, Input)]
         return tuple(each.outside(values[each.name]) for each in numbers if each.misses(values))
+
+
+def put_in(equation: str, numbers: Mapping[str, str]) -> str:
+    """The equation with every one of these symbols replaced by its number; a power may follow a symbol.
+
+    >>> put_in("a = π·d²/4 + d₁", {"d": "20"})
+    'a = π·20²/4 + d₁'
+    """
+    pieces = _pieces(equation, tuple(numbers))
+    return "".join([numbers[piece] if place % 2 else piece for place, piece in enumerate(pieces)])
+
+
+@lru_cache(maxsize=1024)
+def _pieces(equation: str, symbols: tuple[str, ...]) -> tuple[str, ...]:
+    """The equation cut before and after every one of these symbols: text and symbol by turns."""
+    if not symbols:
+        return (equation,)
+    longest_first = "|".join(sorted(map(re.escape, symbols), key=len, reverse=True))
+    # A letter or an index after the symbol makes another symbol of it.
+    return tuple(re.split(rf"(?<!\w)({longest_first})(?!(?![²³])\w)", equation))
 
 
 def no_finite_value(title: str, inputs: tuple[Input | Choice, ...]) -> str:

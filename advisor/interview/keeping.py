@@ -1,10 +1,8 @@
-"""Keeping interviews: one file per point, saved after every answer, open for writing in one place at a time."""
+"""Keeping interviews: one file per point, begun, listed, and opened again."""
 
 import contextlib
-import os
 import re
 import secrets
-import socket
 import time
 import unicodedata
 from collections.abc import Sequence
@@ -17,9 +15,11 @@ from advisor import places
 from advisor.advice import Advice, Advisor, TooOpen
 from advisor.answers import Unsuitable, answer, read_case
 from advisor.case import Answer, Case
-from advisor.documents import Mapping, Node, Problems, Scalar, read_document, to_yaml, write_text_safely
+from advisor.documents import Mapping, Node, Problems, Scalar, read_document
 from advisor.documents import Sequence as Listed
 from advisor.documents.writing import Plain
+from advisor.interview.keeper import Keeper
+from advisor.interview.typed import writable
 from advisor.interview.wording import rows_shown
 from advisor.knowledge import Knowledge
 
@@ -46,87 +46,6 @@ class Kept:
         return f"{datetime.fromtimestamp(self.when):%Y-%m-%d %H:%M}"
 
 
-class Keeper:
-    """The file of one interview, and the lock beside it that lets only one process write."""
-
-    def __init__(self, path: Path) -> None:
-        self.path = path
-        self.holds = False
-        self.holder = ""
-
-    @property
-    def lock(self) -> Path:
-        """The file whose existence says that someone writes."""
-        return self.path.with_name(self.path.name + ".lock")
-
-    def take(self) -> bool:
-        """Take the lock, also from a process that is no more; False if another holds it."""
-        with contextlib.suppress(OSError):
-            self.path.parent.mkdir(parents=True, exist_ok=True)
-        try:
-            self.holds = self._create() or (self._abandoned() and self._create())
-        except OSError:
-            self.holds = True  # no lock can be made here; saving will say what is wrong with the folder
-        return self.holds
-
-    def _create(self) -> bool:
-        try:
-            with self.lock.open("x", encoding="utf-8") as file:
-                file.write(f"{os.getpid()} {socket.gethostname()}")
-        except FileExistsError:
-            return False
-        return True
-
-    def _abandoned(self) -> bool:
-        """Whether the lock was left by a process that is no more; it is then moved out of the way."""
-        with contextlib.suppress(FileNotFoundError):
-            if not self._stale(self.lock):
-                return False
-            aside = self.lock.with_name(f"{self.lock.name}.{secrets.token_hex(4)}")
-            self.lock.rename(aside)
-            # Another process may have taken it over in between: then it gets it back.
-            if not self._stale(aside):
-                with contextlib.suppress(FileExistsError):
-                    os.link(aside, self.lock)
-            aside.unlink(missing_ok=True)
-        return True
-
-    def _stale(self, lock: Path) -> bool:
-        pid, _, host = lock.read_text(encoding="utf-8", errors="replace").partition(" ")
-        self.holder = pid
-        if not pid.isdigit() or host != socket.gethostname():
-            return False
-        return int(pid) != os.getpid() and not _runs(int(pid))
-
-    def write(self, data: Plain) -> None:
-        """Replace the file in one step.
-
-        Raises:
-            Unwritable: with the reason and the mend.
-        """
-        with contextlib.suppress(OSError):
-            self.path.parent.mkdir(parents=True, exist_ok=True)
-        write_text_safely(self.path, to_yaml(data))
-
-    def release(self) -> None:
-        """Let others write."""
-        if self.holds:
-            with contextlib.suppress(OSError):
-                if self.lock.read_text(encoding="utf-8").startswith(f"{os.getpid()} "):
-                    self.lock.unlink()
-        self.holds = False
-
-
-def _runs(pid: int) -> bool:
-    try:
-        os.kill(pid, 0)
-    except ProcessLookupError:
-        return False
-    except OSError:
-        return True
-    return True
-
-
 # ---- what stands in the file -----------------------------------------------------------------------------------
 
 
@@ -144,16 +63,12 @@ def document(case: Case, advice: Advice, history: Sequence[str]) -> dict[str, Pl
     docket: dict[str, Plain] = {} if advice.withheld else {each.id: each.full for each in rows_shown(advice)}
     return {
         "format": 1,
-        "title": _writable(case.title),
+        "title": writable(case.title),
         "point_kind": case.point_kind,
         "answers": as_plain(case, advice.knowledge),
         "knowledge": {"fingerprint": advice.knowledge.fingerprint, "docket": docket},
-        "history": [_writable(each) for each in history],
+        "history": [writable(each) for each in history],
     }
-
-
-def _writable(text: str) -> str:
-    return text.encode("utf-8", "replace").decode("utf-8")
 
 
 # ---- starting, resuming ----------------------------------------------------------------------------------------
@@ -163,9 +78,11 @@ def new_interview(advisor: Advisor, title: str, path: Path | None = None) -> "Se
     """A fresh interview, kept in the usual folder unless a file is named."""
     from advisor.interview.session import Session
 
-    title = " ".join(title.split()) or "Point without a name"
+    title = " ".join(writable(title).split()) or "Point without a name"
     keeper = Keeper(path or _new_path(title))
-    keeper.take()
+    if keeper.take() and keeper.path.exists():  # another process has begun and left it in between
+        keeper.release()
+        return open_interview(advisor, keeper.path)
     session = Session(advisor, keeper, Case(advisor.knowledge.point_kind.id, title), notices=_held(keeper))
     session.save()
     return session
@@ -198,12 +115,25 @@ def open_interview(advisor: Advisor, path: Path) -> "Session":
     Raises:
         Damaged: it cannot be read. One of the usual folder has then been moved aside.
     """
+    keeper = Keeper(path)
+    keeper.take()  # before the file is read, so that no answer given elsewhere in between is written over
+    try:
+        session = _opened(advisor, keeper)
+    except BaseException:
+        keeper.release()
+        raise
+    if session.keeper is not keeper:
+        keeper.release()
+    return session
+
+
+def _opened(advisor: Advisor, keeper: Keeper) -> "Session":
     from advisor.interview.session import Session
 
-    problems = Problems()
+    path, problems = keeper.path, Problems()
     tree = read_document(path, problems)
     if not isinstance(tree, Mapping) or problems.errors or str(tree.get("format", "")) != "1":
-        raise Damaged(_moved_aside(path, problems))
+        raise Damaged(_moved_aside(keeper, problems))
     case, notices = _not_too_open(*_case(path, tree, advisor.knowledge), advisor)
     if "expect" in tree or "like" in tree:
         return copy_of(
@@ -211,8 +141,6 @@ def open_interview(advisor: Advisor, path: Path) -> "Session":
             case,
             (f"'{path.name}' is a scenario and stays as it is; this interview is kept beside the others.", *notices),
         )
-    keeper = Keeper(path)
-    keeper.take()
     session = Session(advisor, keeper, case, history=_texts(tree.get("history")), notices=(*_held(keeper), *notices))
     session.notices += _changed_since(tree.get("knowledge"), session.advice)
     return session
@@ -270,10 +198,12 @@ def _held(keeper: Keeper) -> tuple[str, ...]:
     return (f"{told} If no other gudgeon runs, delete '{keeper.lock}'.",)
 
 
-def _moved_aside(path: Path, problems: Problems) -> str:
+def _moved_aside(keeper: Keeper, problems: Problems) -> str:
+    path = keeper.path
     first = next(iter(problems), None)
     why = f"{first}" if first else f"'{path}' is no kept interview."
-    if not path.is_file() or path.resolve().parent != places.kept_interviews().resolve():
+    ours = keeper.holds and path.is_file() and path.resolve().parent == places.kept_interviews().resolve()
+    if not ours:
         return f"{why} Nothing was changed."
     aside = path.with_name(f"{path.name}.broken-{time.strftime('%Y-%m-%d')}")
     count = 1

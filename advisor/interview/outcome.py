@@ -153,6 +153,11 @@ def referrals_told(advice: Advice) -> list[tuple[str, str]]:
 
 def care_text(advice: Advice) -> str:
     """How much there is to mind, in one line."""
-    parts = [f"goes to {to}" for to, _ in referrals_told(advice)]
-    parts += [f"! {len(advice.cautions)} cautions, F3 lists them"] if advice.cautions else []
-    return "; ".join(parts) or "nothing special so far"
+    count = len(advice.cautions)
+    return f"! {count} {'caution' if count == 1 else 'cautions'}, F3 lists them" if count else "nothing special so far"
+
+
+def referrals_added(before: Advice | None, advice: Advice) -> list[str]:
+    """The referrals that were not there before, in full sentences; all of them where nothing was before."""
+    known = referrals_told(before) if before is not None else []
+    return [f"This goes to {to}. {text}" for to, text in referrals_told(advice) if (to, text) not in known]

@@ -11,7 +11,9 @@ from advisor.case import Answer, Case, Origin
 from advisor.conditions import holds
 from advisor.documents import Unwritable, to_yaml, write_text_safely
 from advisor.documents.writing import Plain
-from advisor.interview.keeping import Keeper, as_plain, document
+from advisor.interview.keeper import Keeper
+from advisor.interview.keeping import as_plain, document
+from advisor.interview.typed import unbroken, writable
 from advisor.interview.wording import rows_shown
 from advisor.knowledge import Declaration
 
@@ -129,7 +131,7 @@ class Session:
         Raises:
             Unsuitable: in one plain sentence.
         """
-        word = "_".join(text.casefold().split())
+        word = "_".join(unbroken(text).casefold().split())
         return answer(declaration, word if word in declaration.domain.named else text)
 
     def dont_know(self) -> None:
@@ -245,22 +247,20 @@ class Session:
         Raises:
             Unwritable: with the reason and the mend; a file that exists already is never replaced.
         """
-        if path.exists():
-            raise Unwritable(f"'{path}' exists already. Choose another name.")
         expect: dict[str, Plain] = {"state": self.advice.state.value}
         if self.advice.withheld:
             expect["withheld"] = "yes"
         scenario: dict[str, Plain] = {
             "format": 1,
-            "title": title,
+            "title": writable(title),
             "point_kind": self.case.point_kind,
-            "guards": guards,
+            "guards": writable(guards),
             "status": "draft",
             "answers": as_plain(self.case, self.knowledge),
             "gaps": "open",
             "expect": expect,
         }
-        write_text_safely(path, to_yaml(scenario))
+        write_text_safely(path, to_yaml(scenario), exclusive=True)
 
     def close(self) -> None:
         """Let others open the kept file."""

@@ -231,6 +231,14 @@ def answer_shown(declaration: Declaration, given: Answer) -> str:
     return text
 
 
+def if_unknown(declaration: Declaration) -> str:
+    """What a don't know to this question does."""
+    if declaration.assume is None:
+        return "don't know: this stays open"
+    stays = "; the case stays open" if declaration.assume.keeps_open else ""
+    return f"don't know: taken as {shown_value(declaration, declaration.assume.value)}{stays}"
+
+
 def shown_value(declaration: Declaration, value: Value) -> str:
     """A value of a question as people read it."""
     return exactly(value, declaration.domain.unit) if isinstance(value, float) else declaration.domain.label(value)

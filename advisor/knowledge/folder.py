@@ -34,6 +34,8 @@ from advisor.knowledge.schema import (
 
 T = TypeVar("T", bound=Shape)
 Filed = TypeVar("Filed", bound=File)
+DEMO = "demo.yaml"
+"""The shelf that is read where no other is named."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -101,10 +103,20 @@ def read_folder(root: Path, point_kind: str, shelf: Path | None, problems: Probl
     _read_properties(folder)
     _read_facts(folder, "facts.yaml")
     _read_kind(folder, point_kind)
-    folder.shelf = read_file(shelf or root / "shelf" / "demo.yaml", ShelfFile, problems, folder.lost, folder.trees)
+    folder.shelf = read_file(shelf or root / "shelf" / DEMO, ShelfFile, problems, folder.lost, folder.trees)
     if folder.shelf is None:
         folder.lost.lose_whole("items")
+    if shelf is None:
+        _unread_shelves(folder)
     return folder
+
+
+def _unread_shelves(folder: Folder) -> None:
+    """Tell the shelves beside the one that is read; a site may keep several and name one."""
+    for path in sorted((folder.root / "shelf").glob("*.yaml")):
+        if path.name != DEMO:
+            message, hint = f"this file is not read: the shelf is {DEMO}", "name another with --shelf, or take it out"
+            folder.problems.add(Problem(str(path), 1, 1, (), message, hint, "finding"))
 
 
 def _read_kind(folder: Folder, point_kind: str) -> None:
@@ -190,7 +202,7 @@ def _listed(shapes: list[T], tree: Mapping, section: str, step: str, kind: str) 
 def _strays(folder: Folder) -> None:
     """Files that nothing reads: a misspelt name would otherwise drop its rules silently."""
     places = {"common", *(kind.folder for kind in folder.kinds.values())}
-    stems, misspelt = [*folder.steps, "facts"], dict[str, Path]()
+    stems, misspelt, asked = [*folder.steps, "facts"], dict[str, Path](), set[str]()
     for path in sorted(folder.root.rglob("*")):
         parts = path.relative_to(folder.root).parts
         if not path.is_file() or path.name == "README.md" or any(part.startswith(".") for part in parts):
@@ -208,12 +220,25 @@ def _strays(folder: Folder) -> None:
             if step := _misspelt_step(folder, path.stem, near, places):
                 misspelt.setdefault(step, path)
                 continue
+            asked.add(near)
             hint = f"Did you mean '{near}'?" if near else "rename it, or take it out"
             folder.problems.add(Problem(str(path), 1, 1, (), "nothing reads this file", hint))
     for step, path in misspelt.items():
         mark = mapping_in(folder.files["steps.yaml"][1], "steps").key_marks[step]
         message = f"no file holds the step '{step}', while nothing reads {path}"
         folder.problems.add(Problem.at(mark, message, f"Is '{path.stem}' meant here?", ("steps",)))
+    _empty_steps(folder, places, {*misspelt, *asked})
+
+
+def _empty_steps(folder: Folder, places: Collection[str], told: Collection[str]) -> None:
+    """Steps of which no folder has a file: their rules are gone, and what only they use would be told instead."""
+    for step in folder.steps:
+        if step not in told and not any((folder.root / place / f"{step}.yaml").exists() for place in places):
+            mark = mapping_in(folder.files["steps.yaml"][1], "steps").key_marks[step]
+            files = " or ".join(f"{place}/{step}.yaml" for place in sorted(places, key=lambda each: each == "common"))
+            hint = f"put {files} back, with 'rules: []' if it has none, or take the step out"
+            folder.problems.add(Problem.at(mark, f"no file holds the step '{step}'", hint, ("steps",)))
+            folder.lost.lose_whole("names", "rules")
 
 
 def _misspelt_step(folder: Folder, stem: str, near: str, places: Collection[str]) -> str:

@@ -166,7 +166,10 @@ HINTS: Mapping[str, Mapping[str, str]] = {
         "title": "What the table holds.",
         "key": "The column that names a row; id unless said.",
         "policy": "unique: one row at most applies; complete: exactly one; all: every row that applies counts.",
-        "columns": "The columns: {name: kind of value}, with unit and limits for numbers.",
+        "columns": (
+            "The columns: {name: {kind: ...}}, with unit and limits for numbers; needed: yes where every row must have "
+            "a cell; at_most: another column that is never exceeded."
+        ),
         "matrix": "symmetric: the table compares every entry with every other.",
         "of": "What the two sides of a matrix are.",
         "values": "The kind of value in the cells of a matrix.",

@@ -101,7 +101,7 @@ def emptied(tree: Node, strange: set[Loc]) -> list[Loc]:
     return [
         above
         for (_, above), (_, below) in pairwise(sorted(places))
-        if below in strange and not child_at(tree, above) and isinstance(child_at(tree, above), Scalar)
+        if below in strange and isinstance(empty := child_at(tree, above), Scalar) and not empty and not empty.quoted
     ]
 
 

@@ -275,6 +275,8 @@ class Rule:
     fires: Mapping[str, Value]
     silent: Mapping[str, Value]
     mark: Mark
+    matched: tuple[str, ...] = field(default=(), repr=False, compare=False)
+    """The columns of its table that it compares."""
 
 
 @dataclass(frozen=True, slots=True)

@@ -22,6 +22,7 @@ from advisor.knowledge.model import Band, Row, Table
 from advisor.knowledge.values import Blank, Mistyped, Scope, value
 
 _THRESHOLDS = {"above": ">", "at_least": ">=", "below": "<", "at_most": "<="}
+_SIGNS = {**{sign: word for word, sign in _THRESHOLDS.items()}, "\u2265": "at_least", "\u2264": "at_most"}
 _OPERATORS = (*_THRESHOLDS, "any_of", "none_of", "fact", "row")
 
 
@@ -74,7 +75,9 @@ def _test(name: str, test: Node, domain: Domain, scope: Scope) -> Condition:
             scope.problem(
                 test.key_marks[key],
                 f"'{key}' is no operator",
-                nearest(key, _OPERATORS).strip() or "known: " + ", ".join(_OPERATORS[:6]),
+                f"write {_SIGNS[key]}"
+                if key in _SIGNS
+                else nearest(key, _OPERATORS).strip() or "known: " + ", ".join(_OPERATORS[:6]),
             )
         if unknown or not test:
             raise Mistyped if unknown else scope.fault(test, "a test is missing here", "{at_least: 1}")

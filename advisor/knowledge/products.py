@@ -5,7 +5,9 @@ from contextlib import suppress
 from dataclasses import replace
 
 from advisor.conditions import Domain, Value
-from advisor.documents import Mapping, Scalar
+from advisor.documents import Mapping, Problem, Scalar
+from advisor.formulas import FORMULAS
+from advisor.formulas.formula import OutOfRange
 from advisor.knowledge.model import Product, Property
 from advisor.knowledge.reading import list_in
 from advisor.knowledge.values import Mistyped, Scope, value
@@ -47,4 +49,23 @@ def _product(node: Mapping, scope: Scope) -> Product:
             continue
         with suppress(Mistyped):
             values[name] = value(child, scope.domain(name, node.key_marks[name]), scope.at(name))
+    _viscosities(node, values, scope)
     return Product(str(node["item"]), str(node.get("title", node["item"])), values, node.mark)
+
+
+def _viscosities(node: Mapping, values: Map[str, Value], scope: Scope) -> None:
+    """Tell viscosities that no oil has together."""
+    grade, at_40, at_100 = (values.get(each) for each in ("vg", "viscosity_40", "viscosity_100"))
+    if not isinstance(at_40, float | int):
+        return
+    if isinstance(at_100, float | int) and at_100 >= at_40:
+        message = f"an oil is thinner at 100 °C than at 40 °C, and here it has {at_100:g} and {at_40:g} mm²/s"
+        scope.problem(node["viscosity_100"].mark, message, "check the decimal points")
+    if isinstance(grade, float | int):
+        with suppress(OutOfRange):
+            low, high = (float(FORMULAS[f"grade_{end}_limit"].function(grade)) for end in ("lower", "upper"))
+            if not low <= at_40 <= high:
+                message = f"ISO VG {grade:g} goes from {low:g} to {high:g} mm²/s at 40 °C, and here it has {at_40:g}"
+                hint = "check the two figures; a grade that the sheet does not state is left out"
+                mark = node["viscosity_40"].mark
+                scope.problems.add(Problem.at(mark, message, hint, scope.trail, "finding"))

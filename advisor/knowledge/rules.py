@@ -10,6 +10,7 @@ from advisor.conditions.terms import names as names_in
 from advisor.documents import Mapping, Mark, Node
 from advisor.knowledge.citations import Citations
 from advisor.knowledge.lost import Space
+from advisor.knowledge.matched import matched_columns
 from advisor.knowledge.model import Asks, Band, Conclusion, Instance, Refers, Row, Rule, Sets, Table, Warns
 from advisor.knowledge.parsing import condition, operand
 from advisor.knowledge.reading import list_in, mapping_in
@@ -123,6 +124,7 @@ class RuleReader:
             self._example(tree, "fires", scope),
             self._example(tree, "silent", scope),
             tree.mark,
+            matched_columns(tree) if table else (),
         )
 
     def _placeholders(self, because: str, tree: Mapping, table: Table | None, scope: Scope) -> None:

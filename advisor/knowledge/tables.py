@@ -6,6 +6,7 @@ from contextlib import suppress
 from advisor.conditions import Domain, Value
 from advisor.documents import Mapping, Mark, Node, Scalar, Sequence, closest
 from advisor.knowledge.citations import Citations
+from advisor.knowledge.claims import ColumnShape, check_claims, keep_claims
 from advisor.knowledge.folder import Placed
 from advisor.knowledge.matrix import Unusable, read_matrix
 from advisor.knowledge.model import Band, Row, Table
@@ -126,17 +127,20 @@ def _table(
     before = len(scope.problems)
     columns: dict[str, Domain] = {}
     bands: set[str] = set()
+    claims: dict[str, ColumnShape] = {}
     for column, node in mapping_in(tree, "columns").items():
         mark = mapping_in(tree, "columns").key_marks[column]
-        domain, band = _column(node, mark, labels, scope.at("columns", column))
-        columns[column] = domain
-        if band:
+        shape_read, columns[column] = _column(node, mark, labels, scope.at("columns", column))
+        if _is_band(node):
             bands.add(column)
+        if shape_read:
+            claims[column] = shape_read
     if not columns:
         scope.problem(placed.parent.key_marks[name], "the table has no columns", "declare them under 'columns:'")
     key = shape.key or ""
     if key and key not in columns:
         scope.stranger(tree["key"].mark, key, f"the key '{key}' is no column", columns)
+    check_claims(tree, claims, columns, scope)
     if not isinstance(tree.get("rows"), Sequence):
         scope.problem(tree["rows"].mark, "rows are a list of mappings", "- {column: value, ...}")
     if len(scope.problems) > before or any(each not in labels for each in _borrowed(tree)):
@@ -144,6 +148,7 @@ def _table(
     _undeclared(tree, columns, scope)
     source = citations.read(shape.source, tree, scope)
     rows = tuple(_rows(tree, columns, frozenset(bands), key, citations, scope))
+    keep_claims(tree, rows, claims, scope)
     return Table(name, shape.title, columns, frozenset(bands), rows, key, shape.policy or "unique", tree.mark, source)
 
 
@@ -153,17 +158,21 @@ def _borrowed(tree: Mapping) -> list[str]:
     return [str(table) for column in columns if (table := mapping_in(columns, column).get("choices_of")) is not None]
 
 
-def _column(node: Node, mark: Mark, labels: Map[str, Map[str, str]], scope: Scope) -> tuple[Domain, bool]:
+def _is_band(node: Node) -> bool:
+    return str(mapping_in(node).get("kind", "")) == "band"
+
+
+def _column(
+    node: Node, mark: Mark, labels: Map[str, Map[str, str]], scope: Scope
+) -> tuple[ColumnShape | None, Domain]:
     if not isinstance(node, Mapping):
         scope.problem(mark, "a column is declared by its kind, as a mapping", "write {kind: number, unit: mm}")
-        return Domain("choice", open_choices=True), False
-    band = str(node.get("kind", "")) == "band"
-    if band:
-        node = _as_number(node)
-    shape = shaped(node, DomainShape, scope.problems)
+        return None, Domain("choice", open_choices=True)
+    node = _as_number(node) if _is_band(node) else node
+    shape = shaped(node, ColumnShape, scope.problems)
     if shape is None:
-        return Domain("choice", open_choices=True), False
-    return column_domain(shape, node, mark, labels, scope), band
+        return None, Domain("choice", open_choices=True)
+    return shape, column_domain(shape, node, mark, labels, scope)
 
 
 def _as_number(node: Mapping) -> Mapping:

@@ -5,7 +5,7 @@ from collections.abc import Mapping as Map
 from dataclasses import dataclass, field, replace
 
 from advisor.conditions import Domain, Value
-from advisor.documents import Mapping, Mark, Node, Problem, Problems, Scalar, Sequence, as_number, closest
+from advisor.documents import CURLY, Mapping, Mark, Node, Problem, Problems, Scalar, Sequence, as_number, closest
 from advisor.knowledge.lost import Lost, Space
 from advisor.knowledge.model import Band, Cell, Row, Table
 
@@ -122,6 +122,8 @@ def value(node: Node, domain: Domain, scope: Scope) -> Value:
         text = {"true": "yes", "false": "no"}.get(text, text)
     if domain.kind == "text" or domain.accepts(text):
         return text
+    if text[:1] in set(CURLY) and domain.accepts(text.strip(CURLY)):
+        raise scope.fault(node, f"'{text}' stands in curly quotes", f'use straight quotes: "{text.strip(CURLY)}"')
     known = list(domain.choices)
     hint = f"known here: {', '.join(known[:12])}{' ...' if len(known) > 12 else ''}"
     raise scope.stranger(node.mark, text, f"'{text}' is not one of the choices", known, hint)

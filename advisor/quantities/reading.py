@@ -2,7 +2,7 @@
 
 import math
 import re
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 
 from advisor.quantities.showing import show
 from advisor.quantities.units import ALIKE, KINDS, SPELLINGS, nine_digits, unit_meant, units_for
@@ -14,11 +14,12 @@ class Unreadable(ValueError):
 
 @dataclass(frozen=True, slots=True)
 class Quantity:
-    """A number in its canonical unit, with the text that it was read from."""
+    """A number in its canonical unit, with the text that it was read from and the unit in it, if it has one."""
 
     value: float
     unit: str
     typed: str
+    typed_unit: str = field(default="", compare=False)
 
 
 _NUMBER = re.compile(r"""
@@ -64,7 +65,7 @@ def parse(text: str, unit: str, *, strict: bool = True) -> Quantity:
         raise Unreadable(f"{_quoted(text)} is too large a number. Write a smaller one.")
     if unit == "°C" and value < -273.15:
         raise Unreadable(f"{_quoted(text)} lies below absolute zero, -273.15 °C. Check the sign and the unit.")
-    return Quantity(value, unit, text)
+    return Quantity(value, unit, text, rest)
 
 
 def _value(found: re.Match[str], text: str, *, strict: bool) -> float:

@@ -3,7 +3,7 @@
 from advisor.replay.comparing import differences
 from advisor.replay.differing import Difference
 from advisor.replay.expectations import Expectation
-from advisor.replay.markdown import as_markdown
+from advisor.replay.markdown import as_markdown, plain
 from advisor.replay.reading import read_expectations
 from advisor.replay.reporting import as_data, as_junit, as_text
 from advisor.replay.running import (
@@ -34,6 +34,7 @@ __all__ = [
     "differences",
     "find",
     "kinds_of",
+    "plain",
     "play",
     "read_expectations",
     "read_scenario",

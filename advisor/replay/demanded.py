@@ -1,7 +1,7 @@
 """What one rule demands of everything that is recommended, read from a scenario and compared with an advice."""
 
 from advisor.advice import Advice
-from advisor.conditions import Condition, Domain
+from advisor.conditions import Domain
 from advisor.documents import Mapping, Node, Scalar, Sequence
 from advisor.explanation.falling import falling
 from advisor.explanation.words import LEVELS, say_test
@@ -10,12 +10,10 @@ from advisor.replay import reasons
 from advisor.replay.checking import Checker
 from advisor.replay.differing import Difference
 from advisor.replay.expectations import DemandedBy
-
-Told = tuple[str, Condition, int]
-"""A property, the test on it, and the level."""
+from advisor.replay.written_demands import Told
 
 _LEVELS = {"1": 1, "2": 2, "3": 3, "4": 4}
-_HINT = "Write it as the rule does: [{should: {nlgi: {any_of: [\"1\"]}}, level: 2}], or none"
+_HINT = 'Write it as the rule does: [{should: {nlgi: {any_of: ["1"]}}, level: 2}], or none'
 
 
 def read_demanded(name: Scalar, node: Node, checker: Checker) -> DemandedBy:

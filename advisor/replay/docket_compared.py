@@ -96,7 +96,7 @@ def _of_value(advice: Advice, name: str, value: Value) -> tuple[str, ...]:
         return (f"{_word(value)} is barred by {', '.join(line.barred[value])}.",)
     steps = [each.steps for each in line.candidates if each.value == value]
     if not steps:
-        return (f"{_word(value)} was no candidate.",)
+        return reasons.of_value(advice, name, value, _word(value))
     return (f"{_word(value)} is {', '.join(map(str, min(steps)))} steps short, level by level.",)
 
 
@@ -129,7 +129,7 @@ def _barring(advice: Advice, name: str, value: Value) -> list[str]:
 
 def asks_for(expected: AsksFor, advice: Advice) -> Difference | None:
     """Whether a must or a should asks for the value, turns against it, or leaves it free."""
-    found = _strengths(advice, expected.property, expected.value)
+    found = strengths(advice, expected.property, expected.value)
     if expected.strength in found or _at_level(expected, advice):
         return None
     about = f" {_word(expected.value)}" if expected.value is not None else ""
@@ -154,7 +154,7 @@ def _at_level(expected: AsksFor, advice: Advice) -> bool:
     )
 
 
-def _strengths(advice: Advice, name: str, value: Value | None) -> list[str]:
+def strengths(advice: Advice, name: str, value: Value | None) -> list[str]:
     """How the demands on all that is recommended stand to a value; without one: to more than nothing of it."""
     if advice.withheld:
         return [_WITHHELD]

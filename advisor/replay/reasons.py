@@ -4,10 +4,10 @@ from collections.abc import Callable, Iterator
 
 from advisor.advice import Advice
 from advisor.case import Fact
-from advisor.conditions import Value
+from advisor.conditions import ALWAYS, Bound, Coded, Condition, Member, Value, leaves
 from advisor.explanation.ruling import verdict_of
 from advisor.explanation.seeing import rules_seen
-from advisor.explanation.words import say_demand, say_fact, say_value, title_of
+from advisor.explanation.words import say_condition, say_demand, say_fact, say_value, title_of
 from advisor.knowledge import Asks, Formed, Instance, Knowledge, Sets
 from advisor.quantities import show
 from advisor.shelf import Judgement
@@ -103,6 +103,44 @@ def of_property(advice: Advice, name: str) -> tuple[str, ...]:
     found = tuple(f"{demand.rule}: {say_demand(demand, knowledge)}." for demand in demands)
     return found or of_rules(
         advice, lambda rule: any(isinstance(each, Asks) and each.property == name for each in rule.then)
+    )
+
+
+def of_value(advice: Advice, name: str, value: Value, word: str) -> tuple[str, ...]:
+    """Which rules ask for a value that nothing to choose from has, and what they did; or that none does."""
+    domain = advice.knowledge.properties[name].domain
+    coded = domain.code(value)
+
+    def asking(rule: Instance) -> Condition | None:
+        """For which lubricants the rule asks for it."""
+        for each in rule.then:
+            if isinstance(each, Sets) and each.name == name and each.value == coded:
+                return each.for_
+            if isinstance(each, Asks) and each.property == name and _names(each.test, coded):
+                return each.for_
+        return None
+
+    words = []
+    for step, rule, outcome in rules_seen(advice):
+        for_ = asking(rule)
+        if for_ is None:
+            continue
+        if outcome:
+            where = "" if for_ == ALWAYS else f" where this holds: {say_condition(for_, advice.knowledge)}"
+            words.append((0, f"{rule.id} asks for {word}{where}."))
+        else:
+            words.append((1, of_instance(advice, step, rule, outcome)))
+    told = [text for _, text in sorted(words, key=lambda each: each[0])]
+    more = [f"{len(told) - MOST} more rules that ask for {word} are in the trace."] if len(told) > MOST else []
+    return (*told[:MOST], *more) or (f"No rule asks for {word}.",)
+
+
+def _names(test: Condition, coded: Coded) -> bool:
+    """Whether a test asks for this value by name."""
+    return any(
+        (isinstance(term, Member) and term.wanted and coded in term.among)
+        or (isinstance(term, Bound) and term.sign == "=" and term.limit == coded)
+        for term in leaves(test)
     )
 
 

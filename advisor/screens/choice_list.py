@@ -8,6 +8,7 @@ from textual.content import Content
 from textual.widgets import OptionList
 from textual.widgets.option_list import Option
 
+from advisor.interview.typed import list_number, whole_number
 from advisor.screens.given import DontKnow, Given
 from advisor.screens.hanging import hanging
 
@@ -53,8 +54,8 @@ class ChoiceList(OptionList):
     def on_key(self, event: events.Key) -> None:
         """A digit goes to the choice of that number, a letter to the next one that begins with it."""
         sign = event.character or ""
-        if sign.isdigit():
-            self.digits = next((each for each in (self.digits + sign, sign) if 0 < int(each) <= len(self.ids)), "")
+        if whole_number(sign) is not None:
+            self.digits = next((each for each in (self.digits + sign, sign) if list_number(each, len(self.ids))), "")
             if self.digits:
                 self.highlighted = int(self.digits) - 1
         elif sign.isalpha():

@@ -5,7 +5,16 @@ from textual.containers import Vertical
 from textual.content import Content
 
 from advisor.advice import State
-from advisor.interview import RowShown, Session, care_text, codes_text, quantities_text, rows_shown, variant_text
+from advisor.interview import (
+    RowShown,
+    Session,
+    care_text,
+    codes_text,
+    quantities_text,
+    referrals_told,
+    rows_shown,
+    variant_text,
+)
 from advisor.screens.glyphs import Glyphs
 from advisor.screens.row import Row
 
@@ -33,6 +42,7 @@ class Docket(Vertical):
             yield Row(id=f"row_{row}", classes="line")
         yield Row(id="codes", classes="line")
         yield Row(id="quantities", classes="line")
+        yield Row(id="referral", classes="line")
         yield Row(id="care", classes="line")
 
     def show(self) -> None:
@@ -54,6 +64,9 @@ class Docket(Vertical):
         self.query_one("#quantities", Row).show(
             self._plain("Quantities", "" if advice.withheld else quantities_text(advice))
         )
+        told = " ".join(f"{text} Goes to {to}." for to, text in referrals_told(advice))
+        self.query_one("#referral", Row).display = bool(told)
+        self.query_one("#referral", Row).show(self._plain("Referral", told))
         self.query_one("#care", Row).show(self._plain("Care", care_text(advice)))
 
     def _line(self, row: RowShown, *, changed: bool) -> Content:

@@ -10,6 +10,7 @@ from textual.widgets import OptionList
 from textual.widgets.option_list import Option
 
 from advisor.interview import Session, cautions_told, codes_text, outcome_text, quantities_text, referrals_told
+from advisor.interview.typed import list_number
 from advisor.screens.given import Chosen
 from advisor.screens.row import Row
 
@@ -74,8 +75,8 @@ class Ending(Vertical):
         """A digit picks."""
         sign = getattr(event, "character", None) or ""
         options = self.query_one(OptionList)
-        if sign.isdigit() and 0 < int(sign) <= options.option_count:
-            options.highlighted = int(sign) - 1
+        if (number := list_number(sign, options.option_count)) is not None:
+            options.highlighted = number - 1
 
     def on_option_list_option_selected(self, event: OptionList.OptionSelected) -> None:
         """Tell the sheet."""

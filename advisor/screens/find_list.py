@@ -10,6 +10,7 @@ from textual.content import Content
 from textual.widgets import Input, OptionList
 from textual.widgets.option_list import Option
 
+from advisor.interview.typed import holding, own_choices
 from advisor.screens.field import Field
 from advisor.screens.given import DontKnow, Given
 from advisor.screens.hanging import hanging
@@ -42,8 +43,7 @@ class FindList(Vertical):
 
     def load(self, choices: Mapping[str, str], unknown: str, chosen: str, width: int) -> None:
         """Show these choices, those that are no products first; the one chosen before is highlighted."""
-        own = {name: label for name, label in choices.items() if not label.startswith(name)}
-        self.choices, self.width = {**own, **choices, _UNKNOWN: unknown}, width
+        self.choices, self.width = {**own_choices(choices), **choices, _UNKNOWN: unknown}, width
         field = self.query_one(Input)
         field.placeholder = f"type a part of the name; {len(choices)} entries"
         with field.prevent(Input.Changed):
@@ -63,13 +63,13 @@ class FindList(Vertical):
         return self.query_one(Input)
 
     def on_input_changed(self, event: Input.Changed) -> None:
-        """Narrow the list to the entries that hold every word typed."""
+        """Narrow the list to the entries that hold every word typed, in what is shown or in their own name."""
         event.stop()
         self._list(event.value)
 
     def _list(self, typed: str) -> None:
         words = typed.casefold().split()
-        held = [name for name, label in self.choices.items() if all(word in label.casefold() for word in words)]
+        held = holding(self.choices, typed)
         begun = [name for name in held if words and self.choices[name].casefold().startswith(words[0])]
         found = list(dict.fromkeys((*begun, *held)))
         shown = found if len(found) <= _SHOWN else [*found[:_SHOWN], _UNKNOWN]

@@ -50,16 +50,19 @@ class Opening:
             self.begin(self.wanted)
 
     def begin(self, title: str) -> None:
-        """A new point; it waits until the knowledge is there."""
+        """A new point; it waits until the knowledge is there. Enter pressed again changes nothing."""
         from advisor.interview import new_interview
 
+        if self.app.session is not None:
+            return
         self.wanted = title
         if self.advisor is not None:
             self.show(new_interview(self.advisor, title))
 
     def resume(self, number: int) -> None:
-        """Go on with a kept interview."""
-        self.open(self.kept[number].path)
+        """Go on with a kept interview, unless one is open already."""
+        if self.app.session is None:
+            self.open(self.kept[number].path)
 
     def open(self, path: Path) -> None:
         """Open the interview in a file, or begin one there."""
@@ -82,5 +85,7 @@ class Opening:
         """Put the sheet in place of the first screen."""
         from advisor.screens.sheet import Sheet
 
+        if self.app.session is not None:
+            self.app.session.close()
         self.app.session = session
         self.app.switch_screen(Sheet(session, self.app.glyphs))

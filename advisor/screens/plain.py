@@ -6,6 +6,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING, TextIO
 
 from advisor.mishaps import DONE, Refusal
+from advisor.screens.talk import Talk
 
 if TYPE_CHECKING:
     from advisor.advice import Advisor
@@ -25,12 +26,14 @@ def run(
     """Ask until nothing is left to ask, or the user leaves."""
     from advisor.advice import Advisor
 
-    talk = _Talk(source or sys.stdin, sink or sys.stdout)
+    talk = Talk(source or sys.stdin, sink or sys.stdout)
     session = _session(Advisor(load()), file, talk)
     if session is None:
         return DONE
     try:
-        _ask_all(session, talk)
+        for line in (*session.notices, _HELP):
+            talk.say(line)
+        _talk_over(session, talk)
         for line in _parting(session):
             talk.say(line)
     finally:
@@ -38,26 +41,23 @@ def run(
     return DONE
 
 
-class _Talk:
-    """Lines out, lines in."""
+def _talk_over(session: "Session", talk: Talk) -> None:
+    """Ask, show what came out, offer what is next; a changed answer begins this again."""
+    from advisor import explanation
+    from advisor.screens.plain_ending import goes_on
 
-    def __init__(self, source: TextIO, sink: TextIO) -> None:
-        self.source, self.sink = source, sink
-
-    def say(self, text: str = "") -> None:
-        """One line out; signs that the terminal cannot show are replaced."""
-        encoding = getattr(self.sink, "encoding", None) or "utf-8"
-        self.sink.write(text.encode(encoding, "replace").decode(encoding) + "\n")
-
-    def ask(self, prompt: str) -> str | None:
-        """One line in; None at the end of the input."""
-        self.sink.write(prompt)
-        self.sink.flush()
-        line = self.source.readline()
-        return line.strip() if line else None
+    shown = None
+    while True:
+        left = _ask_all(session, talk)
+        if (session.finished or session.only_quantities_left) and session.advice is not shown:
+            shown = session.advice
+            talk.say()
+            talk.say(explanation.text(shown))
+        if left or not goes_on(session, talk):
+            return
 
 
-def _session(advisor: "Advisor", file: Path | None, talk: _Talk) -> "Session | None":
+def _session(advisor: "Advisor", file: Path | None, talk: Talk) -> "Session | None":
     from advisor.interview import Damaged, new_interview, open_interview
 
     if file is None:
@@ -69,10 +69,8 @@ def _session(advisor: "Advisor", file: Path | None, talk: _Talk) -> "Session | N
         raise Refusal(str(fault)) from None
 
 
-def _ask_all(session: "Session", talk: _Talk) -> None:
-    for notice in session.notices:
-        talk.say(notice)
-    talk.say(_HELP)
+def _ask_all(session: "Session", talk: Talk) -> bool:
+    """Ask until nothing is left to ask; whether the user has left before that."""
     told_enough = False
     while (question := session.question) is not None:
         if session.only_quantities_left and not told_enough:
@@ -84,12 +82,13 @@ def _ask_all(session: "Session", talk: _Talk) -> None:
             talk.say(line)
         typed = talk.ask("> ")
         if typed is None or typed.casefold() in {"quit", "exit"}:
-            return
+            return typed is None or not session.only_quantities_left
         _take(session, question, typed, talk)
+    return False
 
 
 def _asked(session: "Session", question: "Declaration") -> Iterator[str]:
-    from advisor.interview import answer_shown, shown_value
+    from advisor.interview import answer_shown, if_unknown, own_choices
 
     assert question.question is not None  # noqa: S101 - asked facts only
     asked = session.answered
@@ -101,18 +100,18 @@ def _asked(session: "Session", question: "Declaration") -> Iterator[str]:
     if 0 < len(domain.choices) <= _MANY:
         yield from (f"  {place}  {label}" for place, label in enumerate(domain.choices.values(), start=1))
     elif domain.choices:
-        yield f"  Type a part of the name; {len(domain.choices)} entries."
+        own = "; ".join(own_choices(domain.choices).values())
+        yield f"  Type a part of the name; {len(domain.choices)} entries{f', among them: {own}' if own else ''}."
     if domain.kind == "several":
         yield "  Several numbers apart by commas; an empty line for none."
     if domain.named:
         yield f"  A word will do: {', '.join(word.replace('_', ' ') for word in domain.named)}."
-    if question.assume is not None:
-        yield f"  ?  don't know: taken as {shown_value(question, question.assume.value)}"
+    yield f"  ?  {if_unknown(question)}"
     if question.name in session.case.answers:
         yield f"  Answered: {answer_shown(question, session.case.answers[question.name])}. An empty line leaves it so."
 
 
-def _take(session: "Session", question: "Declaration", typed: str, talk: _Talk) -> None:
+def _take(session: "Session", question: "Declaration", typed: str, talk: Talk) -> None:
     from advisor.answers import Unsuitable
     from advisor.interview import answer_shown
 
@@ -123,7 +122,7 @@ def _take(session: "Session", question: "Declaration", typed: str, talk: _Talk) 
     elif word in {"<", ">"}:
         (session.back if word == "<" else session.later)()
     elif not typed and question.name in session.case.answers:
-        session.later()
+        (session.go_on if session.finished else session.later)()
     else:
         try:
             session.answer(_meant(question, typed))
@@ -134,12 +133,14 @@ def _take(session: "Session", question: "Declaration", typed: str, talk: _Talk) 
         _changes(session, talk)
 
 
-def _changes(session: "Session", talk: _Talk) -> None:
-    from advisor.interview import count_text
+def _changes(session: "Session", talk: Talk) -> None:
+    from advisor.interview import count_text, referrals_added
 
     settled = session.settled_rows()
     if settled:
         talk.say(f"  Settled now: {', '.join(settled)}. {count_text(session.advice)}.")
+    for told in referrals_added(session.before, session.advice):
+        talk.say(f"! {told}")
     if session.trouble:
         talk.say(f"! {session.trouble}")
 
@@ -147,6 +148,7 @@ def _changes(session: "Session", talk: _Talk) -> None:
 def _meant(question: "Declaration", typed: str) -> str:
     """The ids that numbers or parts of names stand for."""
     from advisor.answers import Unsuitable
+    from advisor.interview import holding
 
     choices, kind = question.domain.choices, question.domain.kind
     if not choices or typed == "?":
@@ -155,11 +157,8 @@ def _meant(question: "Declaration", typed: str) -> str:
         return ", ".join(_numbered(list(choices), part.strip()) for part in typed.split(",") if part.strip())
     if len(choices) <= _MANY:
         return _numbered(list(choices), typed)
-    found = [name for name, label in choices.items() if typed.casefold() in {name.casefold(), label.casefold()}] or [
-        name
-        for name, label in choices.items()
-        if typed and all(word in label.casefold() for word in typed.casefold().split())
-    ]
+    found = [name for name, label in choices.items() if typed.casefold() in {name.casefold(), label.casefold()}]
+    found = found or (holding(choices, typed) if typed else [])
     if len(found) == 1:
         return found[0]
     if not found:
@@ -172,15 +171,14 @@ def _meant(question: "Declaration", typed: str) -> str:
 
 
 def _numbered(names: list[str], typed: str) -> str:
-    return names[int(typed) - 1] if typed.isdigit() and 0 < int(typed) <= len(names) else typed
+    from advisor.interview import list_number
+
+    number = list_number(typed, len(names))
+    return typed if number is None else names[number - 1]
 
 
 def _parting(session: "Session") -> Iterator[str]:
-    from advisor import explanation
-
     yield ""
-    if session.finished or session.only_quantities_left:
-        yield explanation.text(session.advice)
     if session.keeper is not None and session.keeper.holds and not session.trouble:
         yield f"Kept in {session.keeper.path}"
         yield f"Go on with: gudgeon interview --plain '{session.keeper.path}'"

@@ -9,7 +9,7 @@ from textual.widgets import OptionList
 
 from advisor.answers import DONT_KNOW, Unsuitable
 from advisor.case import Answer
-from advisor.interview import Session, exactly, shown_value
+from advisor.interview import Session, exactly, if_unknown
 from advisor.knowledge import Declaration
 from advisor.screens.choice_list import ChoiceList
 from advisor.screens.ending import Ending
@@ -116,7 +116,7 @@ class QuestionPanel(Vertical):
         return Content.assemble((keys + what, "$quiet"), self.glyphs.words(", ".join(named)), (more, "$quiet"))
 
     def _loaded(self, question: Declaration, given: Answer | None, width: int) -> "Editor":
-        domain, unknown = question.domain, _unknown(question)
+        domain, unknown = question.domain, if_unknown(question)
         value = given.value if given else None
         if domain.kind == "number":
             self.number.load(
@@ -148,10 +148,3 @@ class QuestionPanel(Vertical):
         if not isinstance(value, float):
             return ""
         return f"reads as {exactly(value, question.domain.unit)}{', an estimate' if given.estimate else ''}"
-
-
-def _unknown(question: Declaration) -> str:
-    if question.assume is None:
-        return "don't know: this stays open"
-    stays = "; the case stays open" if question.assume.keeps_open else ""
-    return f"don't know: taken as {shown_value(question, question.assume.value)}{stays}"

@@ -4,7 +4,7 @@ import re
 from pathlib import Path
 
 from advisor.advice import Advice
-from advisor.documents import Unwritable, write_text_safely
+from advisor.documents import write_text_safely
 
 
 def file_stem(title: str) -> str:
@@ -24,6 +24,5 @@ def write(advice: Advice, kind: str, path: Path) -> None:
     """
     from advisor import explanation
 
-    if path.exists():
-        raise Unwritable(f"'{path}' exists already. Choose another name.")
-    write_text_safely(path, explanation.markdown(advice) if kind == "markdown" else explanation.html(advice))
+    text = explanation.markdown(advice) if kind == "markdown" else explanation.html(advice)
+    write_text_safely(path, text, exclusive=True)

@@ -8,9 +8,10 @@ from textual.binding import Binding, BindingType
 from textual.containers import Horizontal, Vertical, VerticalScroll
 from textual.screen import Screen
 
+from advisor.advice import Advice
 from advisor.answers import Unsuitable
 from advisor.documents import Unwritable
-from advisor.interview import Session
+from advisor.interview import Session, referrals_added
 from advisor.screens import reports
 from advisor.screens.answered import Answered
 from advisor.screens.chart import Chart
@@ -80,7 +81,7 @@ class Sheet(Screen[None]):
 
     async def on_mount(self) -> None:
         """Show what the session holds, and what it has to say."""
-        self.query_one(Notice).say(*self.session.notices)
+        self.query_one(Notice).say(*self.session.notices, *self._referred(None))
         self.show()
 
     def show(self) -> None:
@@ -165,8 +166,13 @@ class Sheet(Screen[None]):
             self.app.bell()
 
     async def _changed(self) -> None:
-        self.query_one(Notice).say(*([f"! {self.session.trouble}"] if self.session.trouble else []))
+        trouble = [f"! {self.session.trouble}"] if self.session.trouble else []
+        self.query_one(Notice).say(*trouble, *self._referred(self.session.before))
         self.show()
+
+    def _referred(self, before: Advice | None) -> list[str]:
+        """Why the case now goes to a person; at the end of the interview this stands there anyway."""
+        return [] if self.session.finished else referrals_added(before, self.session.advice)
 
     # ---- moving about ------------------------------------------------------------------------------------------
 

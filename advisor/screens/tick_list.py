@@ -9,6 +9,7 @@ from textual.content import Content
 from textual.widgets import OptionList
 from textual.widgets.option_list import Option
 
+from advisor.interview.typed import list_number, whole_number
 from advisor.screens.given import DontKnow, Given
 from advisor.screens.hanging import hanging
 
@@ -17,7 +18,10 @@ if TYPE_CHECKING:
 
 
 class TickList(OptionList):
-    """The choices with a box each. Space or a digit ticks, Enter accepts all ticks together."""
+    """The choices with a box each. Space or a digit ticks, Enter accepts all ticks together.
+
+    That none of them applies must be meant: Enter leads to that entry first, so that one key too many says nothing.
+    """
 
     BINDINGS: ClassVar[list[BindingType]] = [Binding("space", "tick", "Tick", show=False)]
 
@@ -53,7 +57,8 @@ class TickList(OptionList):
             (f" {self._box(each)} {place:>{wide}}  ", label)
             for place, (each, label) in enumerate(zip(self.ids, self.labels, strict=True), start=1)
         ]
-        entries += [(f"   {'':>{wide}}  ", self._accepts()), (f"   {'?':>{wide}}  ", self.unknown)]
+        none = "" if self.ticked else "0"
+        entries += [(f"   {none:>{wide}}  ", self._accepts()), (f"   {'?':>{wide}}  ", self.unknown)]
         return [
             Option(Content(self.glyphs.words(hanging(*entry, self.width))), id=str(place))
             for place, entry in enumerate(entries)
@@ -72,17 +77,19 @@ class TickList(OptionList):
     def on_key(self, event: events.Key) -> None:
         """A digit ticks the choice of that number; a second digit corrects it to a two-digit number."""
         sign = event.character or ""
-        if not sign.isdigit():
+        if whole_number(sign) is None:
             self.digits = ""
             return
         longer = self.digits + sign
-        if self.digits and int(longer) <= len(self.ids):
+        if self.digits and list_number(longer, len(self.ids)):
             self._turn(int(self.digits) - 1)
             self.digits = longer
         else:
-            self.digits = sign if 0 < int(sign) <= len(self.ids) else ""
+            self.digits = sign if list_number(sign, len(self.ids)) else ""
         if self.digits:
             self._turn(int(self.digits) - 1)
+        elif sign == "0" and not self.ticked:
+            self.highlighted = len(self.ids)
 
     def action_tick(self) -> None:
         """Tick or untick the highlighted choice."""
@@ -105,7 +112,10 @@ class TickList(OptionList):
             self._turn(place)
 
     def on_option_list_option_selected(self, event: OptionList.OptionSelected) -> None:
-        """Enter accepts the ticks, unless it stands on the last entry."""
+        """Enter accepts the ticks, unless it stands on the last entry; without ticks it leads to 'none of these'."""
         event.stop()
+        if not self.ticked and event.option_index < len(self.ids):
+            self.highlighted = len(self.ids)
+            return
         unknown = event.option_index == len(self.ids) + 1
         self.post_message(DontKnow() if unknown else Given(", ".join(each for each in self.ids if each in self.ticked)))

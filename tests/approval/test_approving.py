@@ -44,8 +44,9 @@ def test_a_signed_group_is_written_and_differs_no_more(desk: Desk, knowledge: Kn
     assert not any("#" in line for line in changed), "comments stay"
     assert sum(line.startswith("+ approved: entry ") for line in changed) == 1
     assert entry.by == "Anna Example"
-    assert desk.review().standing.log is not None
-    assert desk.review().standing.log.entries[1].knowledge_before == knowledge.fingerprint  # type: ignore[union-attr]
+    log = desk.review().standing.log
+    assert log is not None
+    assert log.entries[1].knowledge_before == knowledge.fingerprint
     assert entry.knowledge == "e" * 16
 
 
@@ -56,7 +57,7 @@ def test_an_entry_is_plain_text_that_says_everything(desk: Desk, knowledge: Know
     text = desk.log.read_text(encoding="utf-8")
     block = text.split("\n\n")[-1].removesuffix("\n").splitlines()
     assert block[0] == f"entry 2, {DAY}, signed by Anna Example"
-    assert block[1] == "  accepts: what rule thickener_steady changes"
+    assert block[1] == "  accepts: differences that name rule thickener_steady"
     assert block[2] == "  because: The limit was agreed after the oven tests"
     assert block[3] == f"  knowledge: before {knowledge.fingerprint}, after {'e' * 16}"
     assert block[4] == f"  scenario: hot.yaml, before {old}, after {print_of(hot)}"
@@ -153,5 +154,5 @@ def begun(desk: Desk) -> None:
 
     signed = tuple(Signed(path.name, NOTHING, print_of(path)) for path in find([desk.root]))
     entry = Entry(1, DAY, "Anna Example", BEGIN, "As it was agreed", NOTHING, "0" * 16, signed, NOTHING)
-    desk.log.write_text(f"{HEAD}\n\n{entry.text()}\n", encoding="utf-8")
+    desk.log.write_text(f"{HEAD}\n\n{entry.sealed()}\n", encoding="utf-8")
     assert read_log(desk.root / NAME, Problems()) is not None

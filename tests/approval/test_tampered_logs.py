@@ -84,7 +84,7 @@ def sealed_anew(blocks: Blocks, rng: random.Random) -> Blocks:
     at = rng.randrange(len(blocks))
     entry = parsed(blocks[at])
     assert entry is not None
-    blocks[at] = replace(entry, by="Otto Example").text()
+    blocks[at] = replace(entry, by="Otto Example").sealed()
     return blocks
 
 
@@ -95,7 +95,7 @@ def all_sealed_anew(blocks: Blocks, rng: random.Random) -> Blocks:
     found[at] = replace(found[at], because="Something else was the reason")
     for place in range(at + 1, len(found)):
         found[place] = replace(found[place], follows=found[place - 1].seal)
-    return [entry.text() for entry in found]
+    return [entry.sealed() for entry in found]
 
 
 WAYS = [

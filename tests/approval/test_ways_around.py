@@ -2,6 +2,10 @@
 
 import os
 import shutil
+import signal
+import socket
+import subprocess
+import sys
 from collections.abc import Callable
 from dataclasses import replace
 from pathlib import Path
@@ -164,7 +168,7 @@ def test_a_log_that_was_tampered_with_is_told_and_signs_nothing(how: str, desk: 
 
 def test_a_log_with_other_line_ends_is_told(desk: Desk) -> None:
     desk.log.write_bytes(desk.log.read_bytes().replace(b"\n", b"\r\n"))
-    with pytest.raises(Refusal, match=r"APPROVALS\.log:1:1"):
+    with pytest.raises(Refusal, match=r"APPROVALS\.log:1:1: the log has other line ends .*Windows"):
         desk.review()
 
 
@@ -263,6 +267,47 @@ def test_two_at_once(desk: Desk) -> None:
         desk.sign(seen)
 
 
+def test_one_that_still_runs_is_named_and_left_alone(desk: Desk) -> None:
+    lock = desk.root / ".APPROVALS.lock"
+    lock.write_text(f"{os.getppid()} {socket.gethostname()}", encoding="utf-8")
+    seen, kept = desk.the("thickener_steady"), desk.everything()
+    with pytest.raises(Refusal, match=rf"going on here \(process {os.getppid()}\)"):
+        desk.sign(seen)
+    assert desk.everything() == kept
+
+
+KILLED = """
+import os, signal, sys
+from pathlib import Path
+from advisor.approval import approving, signature
+approving.review = lambda *_: os.kill(os.getpid(), signal.SIGKILL)
+approving.approve(Path(sys.argv[1]), "any@0", signature("Otto Example", "It was a long day"), "2026-03-02", dict)
+"""
+
+
+@pytest.mark.skipif(sys.platform == "win32", reason="there nobody can tell whether a process runs without harm")
+def test_one_that_was_killed_is_not_in_the_way(desk: Desk) -> None:
+    seen = desk.the("thickener_steady")
+    code = [sys.executable, "-c", KILLED, str(desk.root)]
+    killed = subprocess.run(code, check=False, env={**os.environ, "PYTHONPATH": str(ROOT)})
+    assert killed.returncode == -signal.SIGKILL
+    assert (desk.root / ".APPROVALS.lock").exists()
+    desk.sign(seen)
+    assert not (desk.root / ".APPROVALS.lock").exists()
+
+
+@pytest.mark.skipif(not hasattr(os, "geteuid") or os.geteuid() == 0, reason="the superuser may write everything")
+def test_a_folder_that_cannot_be_written(desk: Desk) -> None:
+    seen, kept = desk.the("thickener_steady"), desk.everything()
+    desk.root.chmod(0o555)
+    try:
+        with pytest.raises(Refusal, match="cannot be written"):
+            desk.sign(seen)
+    finally:
+        desk.root.chmod(0o755)
+    assert desk.everything() == kept
+
+
 @pytest.mark.skipif(not hasattr(os, "geteuid") or os.geteuid() == 0, reason="the superuser may write everything")
 def test_a_write_protected_log(desk: Desk) -> None:
     seen = desk.the("thickener_steady")
@@ -311,9 +356,7 @@ def test_nothing_comes_from_the_environment(desk: Desk, tmp_path: Path) -> None:
     assert desk.everything() == kept
 
 
-@pytest.mark.parametrize(
-    "words", [["--all"], ["--yes"], ["-y"], ["--force"], ["a@1", "b@2"], ["--shelf", "x.yaml"]]
-)
+@pytest.mark.parametrize("words", [["--all"], ["--yes"], ["-y"], ["--force"], ["a@1", "b@2"], ["--shelf", "x.yaml"]])
 def test_no_option_approves_everything(words: list[str], desk: Desk) -> None:
     kept = desk.everything()
     assert run(*words, "--scenarios", str(desk.root)).exit_code == 2

@@ -1,6 +1,7 @@
 """Edited copies of the shipped knowledge, and random records of what a step sees."""
 
 import random
+import re
 import shutil
 from pathlib import Path
 
@@ -23,6 +24,15 @@ def edited(place: Path, file: str, *changes: tuple[str, str]) -> Knowledge:
         assert text.count(before) == 1, before
         text = text.replace(before, after)
     path.write_text(text, encoding="utf-8")
+    return load(place)
+
+
+def renamed(place: Path, name: str) -> Knowledge:
+    """The shipped knowledge with a fact or a property of another name, wherever it stands."""
+    shutil.copytree(knowledge_folder(), place)
+    for path in place.rglob("*.yaml"):
+        text = path.read_text(encoding="utf-8")
+        path.write_text(re.sub(rf"\b{name}\b", f"{name}_renamed", text), encoding="utf-8")
     return load(place)
 
 

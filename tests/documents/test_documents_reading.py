@@ -234,3 +234,18 @@ def test_any_text_is_read_or_told_in_one_line_each(text: str) -> None:
         assert problem.line >= 1
         assert problem.column >= 1
         assert not problem.message.startswith("YAML cannot read this")
+
+
+def test_signs_that_only_look_odd_are_left_alone_where_a_text_holds_them() -> None:
+    text = "a: \u201cHot\u201d bearings\nb: 10\u00a0000 h\nc: 'x:\u00a0y'\nd: [{e: 1, f: 2}]\ng: \"2\u00a0>= 1\"\n"
+    assert read(text) == {
+        "a": "\u201cHot\u201d bearings", "b": "10\u00a0000 h", "c": "x:\u00a0y", "d": [{"e": "1", "f": "2"}],
+        "g": "2\u00a0>= 1",
+    }  # fmt: skip
+
+
+def test_a_number_parted_by_a_comma_is_read_on_as_it_was_meant() -> None:
+    problems = Problems()
+    tree = read_text("row: {factor: 0,8, lenient: 1.0}\n", "it.yaml", problems)
+    assert tree == {"row": {"factor": "0.8", "lenient": "1.0"}}
+    assert [str(each) for each in problems] == ["it.yaml:1:15: at row: '0,8' has a decimal comma. Write 0.8."]

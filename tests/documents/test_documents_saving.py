@@ -124,3 +124,26 @@ def test_half_a_character_is_told_before_anything_is_touched(tmp_path: Path) -> 
     with pytest.raises(Unwritable, match="half a character"):
         write_text_safely(tmp_path / "x", "\ud83d")
     assert list(tmp_path.iterdir()) == []
+
+
+def test_where_only_a_new_file_is_wanted_one_that_is_there_stays_however_late_it_came(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    path = tmp_path / "x"
+    path.write_text("theirs")
+    monkeypatch.setattr(Path, "exists", lambda _: False)  # as if it had been made just after the look
+    with pytest.raises(Unwritable, match=r"it exists already\. Choose another name\."):
+        write_text_safely(path, "ours", exclusive=True)
+    assert path.read_text() == "theirs"
+    assert [each.name for each in tmp_path.iterdir()] == ["x"]
+
+
+def test_a_new_file_wanted_alone_is_written_whole_or_leaves_nothing(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    write_text_safely(tmp_path / "x", "a", exclusive=True)
+    assert (tmp_path / "x").read_text() == "a"
+    monkeypatch.setattr(os, "fsync", failing(errno.ENOSPC))
+    with pytest.raises(Unwritable, match="the disk is full"):
+        write_text_safely(tmp_path / "y", "b", exclusive=True)
+    assert [each.name for each in tmp_path.iterdir()] == ["x"]

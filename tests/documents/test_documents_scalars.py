@@ -21,6 +21,9 @@ def test_reads_decimal_numbers(text: str, number: float) -> None:
 @pytest.mark.parametrize(("text", "part"), [
     ("1,5", "has a decimal comma. Write 1.5."),
     ("1,450", "can be read in two ways. Write 1450 or 1.450"),
+    (">= 0.15", "is a limit, not a number. Write the number alone, and in a rule {at_least: 12.5}"),
+    ("≤5", "is a limit, not a number"),
+    ("\u201c2\u201d", "begins with a curly quote. Write the number alone."),
     ("12:30", "looks like a time of day"),
     ("1:02:03", "looks like a time of day"),
     ("2024-01-31", "looks like a date"),

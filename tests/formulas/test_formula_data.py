@@ -149,7 +149,7 @@ def test_no_number_at_all_brings_another_fault_than_a_refusal(lookup: Lookup, va
 
 def test_the_list_cannot_be_changed() -> None:
     with pytest.raises(TypeError):
-        formulas.FORMULAS["mean_diameter"] = FORMULAS["total"]  # type: ignore[index]
+        formulas.FORMULAS["mean_diameter"] = FORMULAS["total"]  # type: ignore[index]  # that is what is tried
 
 
 def test_a_value_outside_its_range_is_told_with_the_range_and_the_value() -> None:

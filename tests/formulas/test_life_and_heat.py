@@ -1,5 +1,6 @@
 """Life, films, friction, heat and cold: claims that hold whatever the figures."""
 
+from collections.abc import Callable
 from math import isfinite, log
 
 import pytest
@@ -62,8 +63,10 @@ SMALL = (10_000, 30, 62, 16, 68, 8.7, 1000, 2, 0.0002, 20, 0)  # a deep groove b
 @pytest.mark.parametrize("family", FAMILIES)
 @pytest.mark.parametrize("joint", [0.4, 1])
 @given(share=st.floats(0.001, 1))
-def test_the_life_factor_is_continuous_where_its_curves_meet(family: object, joint: float, share: float) -> None:
-    below, at = (family(joint - step, share, 100, 1000) for step in (1e-9, 0))  # type: ignore[operator]
+def test_the_life_factor_is_continuous_where_its_curves_meet(
+    family: Callable[..., float], joint: float, share: float
+) -> None:
+    below, at = (family(joint - step, share, 100, 1000) for step in (1e-9, 0))
     assert below == pytest.approx(at, rel=0.002)
 
 
@@ -78,16 +81,16 @@ def test_the_misprinted_exponent_would_tear_the_curve() -> None:
 @pytest.mark.parametrize("family", FAMILIES)
 @given(kappa=st.floats(0.1, 100), share=st.floats(0, 1), limit=st.floats(1, 1e6), load=st.floats(1, 1e6))
 def test_the_life_factor_stays_between_a_tenth_and_fifty(
-    family: object, kappa: float, share: float, limit: float, load: float
+    family: Callable[..., float], kappa: float, share: float, limit: float, load: float
 ) -> None:
-    assert 0.1 * (1 - 1e-9) <= family(kappa, share, limit, load) <= 50  # type: ignore[operator]
+    assert 0.1 * (1 - 1e-9) <= family(kappa, share, limit, load) <= 50
 
 
 @pytest.mark.parametrize("family", FAMILIES)
-def test_a_film_above_four_gains_nothing_and_one_below_a_tenth_is_outside(family: object) -> None:
-    assert family(4, 0.5, 200, 1000) == family(9, 0.5, 200, 1000)  # type: ignore[operator]
+def test_a_film_above_four_gains_nothing_and_one_below_a_tenth_is_outside(family: Callable[..., float]) -> None:
+    assert family(4, 0.5, 200, 1000) == family(9, 0.5, 200, 1000)
     with pytest.raises(OutOfRange, match=r"0\.1 and above"):
-        family(0.099, 0.5, 200, 1000)  # type: ignore[operator]
+        family(0.099, 0.5, 200, 1000)
 
 
 # Rows of ISO 281:2007 curves at e_C·C_u/P = 0.1, worked apart from the formula: κ 0.2, 0.5, 1, 2 and 4.
@@ -97,8 +100,8 @@ def test_a_film_above_four_gains_nothing_and_one_below_a_tenth_is_outside(family
     (life_factor_thrust_ball, (0.154, 0.307, 0.809, 1.13, 1.56)),
     (life_factor_thrust_roller, (0.116, 0.158, 0.255, 0.302, 0.356)),
 ])
-def test_the_four_families_at_a_tenth(family: object, expected: tuple[float, ...]) -> None:
-    found = [family(kappa, 0.1, 1000, 1000) for kappa in (0.2, 0.5, 1, 2, 4)]  # type: ignore[operator]
+def test_the_four_families_at_a_tenth(family: Callable[..., float], expected: tuple[float, ...]) -> None:
+    found = [family(kappa, 0.1, 1000, 1000) for kappa in (0.2, 0.5, 1, 2, 4)]
     assert found == pytest.approx(expected, rel=0.005)
 
 

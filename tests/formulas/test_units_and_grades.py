@@ -1,5 +1,6 @@
 """Conventional units, blends and grade systems, judged by the open library `chemicals` and the facts of the trade."""
 
+from collections.abc import Callable
 from itertools import pairwise
 
 import pytest
@@ -97,9 +98,9 @@ def test_a_scale_is_bound_to_its_temperature() -> None:
     lambda: saybolt_universal(1.7, F_100), lambda: viscosity_from_saybolt(30, F_100), lambda: saybolt_furol_122(40),
     lambda: viscosity_from_furol_210(10), lambda: viscosity_from_engler(0.9), lambda: viscosity_from_redwood(30),
 ])
-def test_a_scale_refuses_what_lies_before_its_beginning(thin: object) -> None:
+def test_a_scale_refuses_what_lies_before_its_beginning(thin: Callable[[], float]) -> None:
     with pytest.raises(OutOfRange, match="must lie between"):
-        thin()  # type: ignore[operator]
+        thin()
 
 
 OILS = st.floats(2, 5000)
@@ -136,9 +137,9 @@ def test_both_blending_rules_give_the_published_example_alike() -> None:
     (lambda: share_for_viscosity(32, 68, 100), "between those of two different oils"),
     (lambda: share_for_viscosity(68, 68, 68), "between those of two different oils"),
 ])
-def test_an_impossible_blend_is_refused(refused: object, why: str) -> None:
+def test_an_impossible_blend_is_refused(refused: Callable[[], float], why: str) -> None:
     with pytest.raises(OutOfRange, match=why):
-        refused()  # type: ignore[operator]
+        refused()
 
 
 def test_of_two_oils_of_one_grade_the_one_of_higher_index_is_thicker_when_hot() -> None:

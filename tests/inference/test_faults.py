@@ -7,7 +7,7 @@ import subprocess
 import sys
 import threading
 from collections.abc import Callable, Iterator
-from contextlib import closing, suppress
+from contextlib import closing
 from pathlib import Path
 
 import pytest
@@ -272,7 +272,7 @@ def test_a_matcher_that_is_dropped_gives_its_memory_back(monkeypatch: pytest.Mon
 def test_a_matcher_closes_after_an_interruption(monkeypatch: pytest.MonkeyPatch, matcher: Matcher) -> None:
     # Forgetting a session in which nothing fired, or which was left halfway, would end the process.
     interrupting(monkeypatch, "complete_and_start_action", 1, KeyboardInterrupt())
-    with suppress(KeyboardInterrupt):
+    with pytest.raises(KeyboardInterrupt):
         matcher.fired(FAST)
     matcher.close()
 

@@ -1,6 +1,7 @@
 """Nothing answered is lost: saved after every answer, locked, readable as a case, and never deleted."""
 
 import os
+import socket
 import subprocess
 import sys
 from pathlib import Path
@@ -8,10 +9,10 @@ from pathlib import Path
 import pytest
 
 from advisor.advice import Advisor
-from advisor.answers import read_case
+from advisor.answers import Unsuitable, read_case
 from advisor.case import Case
 from advisor.documents import Problems, Unwritable, read_document
-from advisor.interview import Damaged, Keeper, kept_interviews, new_interview, open_interview
+from advisor.interview import Damaged, Keeper, Session, kept_interviews, new_interview, open_interview
 from advisor.places import scenario_folder
 
 HOSTILE = "Fan [b]3[/b] 'drive' \"end\" # : [$accent] \u202e ü"
@@ -239,3 +240,120 @@ def test_a_file_that_leaves_too_much_open_is_opened_without_its_last_range(advis
     assert list(session.case.answers) == ["running_temperature_c"]
     assert any("load_ratio was left out. Too much is left open at once" in each for each in session.notices)
     session.close()
+
+
+def test_what_another_answers_just_before_the_lock_is_taken_is_not_written_over(
+    advisor: Advisor, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    session = new_interview(advisor, "Fan")
+    session.close()
+    assert session.keeper is not None
+    path, take = session.keeper.path, Keeper.take
+
+    def take_after_another(keeper: Keeper) -> bool:
+        monkeypatch.setattr(Keeper, "take", take)
+        other = open_interview(advisor, path)
+        other.revise("bore_mm")
+        other.answer("65")
+        other.close()
+        return keeper.take()
+
+    monkeypatch.setattr(Keeper, "take", take_after_another)
+    late = open_interview(advisor, path)
+    late.revise("outside_mm")
+    late.answer("140")
+    late.close()
+    again = open_interview(advisor, path)
+    assert {name: each.typed for name, each in again.case.answers.items()} == {"bore_mm": "65", "outside_mm": "140"}
+    again.close()
+
+
+def test_an_interview_begun_in_a_file_that_another_has_just_begun_goes_on_with_its_answers(
+    advisor: Advisor, tmp_path: Path
+) -> None:
+    path = tmp_path / "fan.yaml"
+    other = new_interview(advisor, "Fan", path)
+    other.revise("bore_mm")
+    other.answer("65")
+    other.close()
+    session = new_interview(advisor, "Fan", path)
+    assert list(session.case.answers) == ["bore_mm"]
+    session.close()
+
+
+def test_a_damaged_file_and_a_scenario_are_left_without_a_lock(advisor: Advisor, tmp_path: Path) -> None:
+    path = tmp_path / "mine.yaml"
+    path.write_text("answers: [", encoding="utf-8")
+    with pytest.raises(Damaged):
+        open_interview(advisor, path)
+    path.write_text("format: 1\ntitle: a\npoint_kind: rolling_bearing\nexpect: {state: open}\n", encoding="utf-8")
+    session = open_interview(advisor, path)
+    assert [each.name for each in tmp_path.glob("mine*")] == ["mine.yaml"]
+    session.close()
+
+
+def test_a_damaged_file_that_another_process_holds_is_not_moved_from_under_it(advisor: Advisor, kept: Path) -> None:
+    kept.mkdir(parents=True)
+    path = kept / "fan-1.yaml"
+    path.write_text("answers: [", encoding="utf-8")
+    Keeper(path).lock.write_text("1 some-other-host", encoding="utf-8")
+    with pytest.raises(Damaged, match="Nothing was changed"):
+        open_interview(advisor, path)
+    assert path.exists()
+    assert Keeper(path).lock.exists()
+
+
+@pytest.mark.parametrize("number", ["²", "9" * 5000, "99999999999", ""])
+def test_a_lock_that_names_no_process_is_respected(tmp_path: Path, number: str) -> None:
+    keeper = Keeper(tmp_path / "fan.yaml")
+    keeper.lock.write_text(f"{number} {socket.gethostname()}", encoding="utf-8")
+    assert not keeper.take()
+    assert keeper.lock.exists()
+
+
+def test_on_windows_no_process_is_sent_a_signal_and_its_lock_is_respected(
+    tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    sent: list[int] = []
+    monkeypatch.setattr(os, "kill", lambda pid, _: sent.append(pid))
+    monkeypatch.setattr(sys, "platform", "win32")
+    keeper = Keeper(tmp_path / "fan.yaml")
+    keeper.lock.write_text(f"{os.getppid()} {socket.gethostname()}", encoding="utf-8")
+    assert not keeper.take()
+    assert not sent
+
+
+def test_half_a_character_in_an_answer_is_refused_and_what_was_answered_stays_kept(advisor: Advisor) -> None:
+    session = new_interview(advisor, "Fan \udcff")
+    session.revise("bore_mm")
+    session.answer("65")
+    told = r"^'6208 \?' holds half a character\. Type the answer again without it\.$"
+    for name in ("designation", "bearing_type", "speed_rpm", "dangers"):
+        session.revise(name)
+        with pytest.raises(Unsuitable, match=told):
+            session.answer("6208 \udcff")
+    session.close()
+    assert session.keeper is not None
+    again = open_interview(advisor, session.keeper.path)
+    assert list(again.case.answers) == ["bore_mm"]
+    assert again.case.title == session.case.title == "Fan ?"
+    again.close()
+
+
+def test_a_scenario_with_half_a_character_in_its_words_is_written(advisor: Advisor, tmp_path: Path) -> None:
+    Session(advisor).save_scenario(tmp_path / "fan.yaml", "Fan \ud83d", "why \ud83d")
+    saved = read_case(tmp_path / "fan.yaml", advisor.knowledge, Problems())
+    assert saved is not None
+    assert saved.case.title == "Fan ?"
+
+
+def test_a_scenario_replaces_no_file_however_late_that_came(
+    advisor: Advisor, tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    path = tmp_path / "fan.yaml"
+    path.write_text("theirs", encoding="utf-8")
+    session = Session(advisor)
+    monkeypatch.setattr(Path, "exists", lambda _: False)  # as if it had been made just after the look
+    with pytest.raises(Unwritable, match="exists already"):
+        session.save_scenario(path, "Fan", "ours")
+    assert path.read_text(encoding="utf-8") == "theirs"

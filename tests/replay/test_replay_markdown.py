@@ -15,7 +15,7 @@ def outcome(advisor: Advisor, *names: str) -> Outcome:
 def test_a_differing_scenario_is_a_table(advisor: Advisor) -> None:
     text = as_markdown(outcome(advisor, "ordinary", "state"))
     assert text.startswith("## Replay of the scenarios\n\n2 scenarios replayed, 1 of them differs (1 difference).\n")
-    assert "| line | what | expected | got |\n|---:|---|---|---|\n" in text
+    assert "| line | what | expected | got | why |\n|---:|---|---|---|---|\n" in text
     assert "| state | referred | settled |" in text
 
 
@@ -32,3 +32,8 @@ def test_what_no_scenario_fires_is_listed(advisor: Advisor) -> None:
     text = as_markdown(found, coverage(found, [advisor.knowledge]))
     assert "### Fired by no scenario" in text
     assert "- `oxidiser_is_referred`" in text
+
+
+def test_why_it_differs_stands_beside_it(advisor: Advisor) -> None:
+    line = next(each for each in as_markdown(outcome(advisor, "product_by")).splitlines() if "GR-161" in each)
+    assert r"thickener\_steady" in line.split(" | ")[4]

@@ -29,7 +29,7 @@ _NAMES = {
 KEYS = {
     "designation": "6313",
     "bearing_type": "1",
-    "dangers": "",
+    "dangers": "0",
     "site": "1",
     "supply": "4",
     "incumbent": "GR-301",
@@ -46,13 +46,15 @@ KEYS = {
     "shock": "1",
     "water_exposure": "2",
     "dust": "1",
-    "seal": "",
+    "seal": "0",
     "width_mm": "33",
 }
 """An ordinary motor bearing: the keys for each question, each ended by Enter."""
 VALUES = {
     **KEYS,
     "bearing_type": "deep_groove_ball",
+    "dangers": "",
+    "seal": "",
     "site": "converter_fed",
     "supply": "nipple_through",
     "motion": "turning",

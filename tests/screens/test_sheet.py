@@ -6,11 +6,18 @@ import pytest
 from textual.pilot import Pilot
 from textual.widgets import OptionList
 
+from advisor.advice import Advisor
+from advisor.documents import Unwritable
+from advisor.interview import Session, new_interview
 from advisor.knowledge import Knowledge
+from advisor.screens import reports
 from advisor.screens.app import Gudgeon
+from advisor.screens.ending import Ending
 from advisor.screens.glyphs import ASCII, ONE_FOR_ONE, Glyphs
+from advisor.screens.notice import Notice
 from advisor.screens.row import Row
 from advisor.screens.sheet import Sheet
+from advisor.screens.start import Start
 from advisor.screens.themes import NIGHT, PAPER
 
 from .driving import KEYS, NARROW, WIDE, ask, begin, drive, fill, lines, text, type_in, until
@@ -301,12 +308,26 @@ def test_reports_are_written_from_the_end(knowledge: Knowledge, tmp_path: Path) 
     assert "<html" in (tmp_path / "fan_3_drive_end.html").read_text(encoding="utf-8")
 
 
+def test_one_enter_too_many_does_not_say_that_no_danger_applies(knowledge: Knowledge) -> None:
+    async def script(app: Gudgeon, pilot: Pilot[None]) -> None:
+        session = await begin(app, pilot)
+        await fill(app, pilot, until="dangers")
+        await pilot.press("enter")
+        await pilot.pause()
+        assert "dangers" not in session.case.answers
+        await pilot.press("enter")
+        await pilot.pause()
+        assert session.case.answers["dangers"].value == ()
+
+    drive(knowledge, NARROW, script)
+
+
 def test_one_may_stop_before_the_questions_about_quantity(knowledge: Knowledge) -> None:
     async def script(app: Gudgeon, pilot: Pilot[None]) -> None:
         session = await begin(app, pilot)
         await fill(app, pilot, until="seal", designation="other")
         assert "F8 Stop" not in text(app)
-        await type_in(pilot, "")
+        await type_in(pilot, "0")
         assert session.only_quantities_left
         assert "F8 Stop" in lines(app)[-1]
         await pilot.press("f8")
@@ -452,3 +473,109 @@ def test_the_variant_key_does_nothing_where_nothing_was_left_open(knowledge: Kno
         assert session.variant == 0
 
     drive(knowledge, NARROW, script)
+
+
+@pytest.mark.parametrize("name", ["bearing_type", "site", "incumbent", "bore_mm"])
+def test_a_raised_two_is_no_number_of_a_list(knowledge: Knowledge, name: str) -> None:
+    async def script(app: Gudgeon, pilot: Pilot[None]) -> None:
+        session = await begin(app, pilot)
+        await ask(app, pilot, name)
+        await pilot.press("²", "²")
+        await pilot.pause()
+        assert isinstance(app.screen, Sheet)
+        assert not session.answered
+
+    drive(knowledge, NARROW, script)
+
+
+def test_a_raised_two_picks_nothing_at_the_end(knowledge: Knowledge) -> None:
+    async def script(app: Gudgeon, pilot: Pilot[None]) -> None:
+        await begin(app, pilot)
+        await fill(app, pilot)
+        await pilot.press("²")
+        await pilot.pause()
+        assert app.screen.query_one(Ending).query_one(OptionList).highlighted == 0
+
+    drive(knowledge, NARROW, script)
+
+
+def test_enter_pressed_twice_on_the_first_screen_begins_one_interview(knowledge: Knowledge, kept: Path) -> None:
+    async def script(app: Gudgeon, pilot: Pilot[None]) -> None:
+        app.post_message(Start.Named("Fan"))
+        app.post_message(Start.Named("Fan"))
+        await until(pilot, lambda: isinstance(app.screen, Sheet))
+        await pilot.pause()
+        assert app.session is not None
+        assert app.session.keeper is not None
+        assert list(kept.glob("*.yaml")) == [app.session.keeper.path]
+        assert len(list(kept.glob("*.lock"))) == 1
+
+    drive(knowledge, NARROW, script)
+    assert not list(kept.glob("*.lock"))
+
+
+def test_a_session_shown_in_place_of_another_closes_that(knowledge: Knowledge, kept: Path) -> None:
+    async def script(app: Gudgeon, pilot: Pilot[None]) -> None:
+        first = await begin(app, pilot)
+        assert app.opening.advisor is not None
+        app.opening.show(new_interview(app.opening.advisor, "Fan 4"))
+        await pilot.pause()
+        assert first.keeper is not None
+        assert not first.keeper.lock.exists()
+        assert app.session is not first
+
+    drive(knowledge, NARROW, script)
+    assert not list(kept.glob("*.lock"))
+
+
+def test_a_part_of_the_own_name_of_an_entry_finds_it(knowledge: Knowledge) -> None:
+    async def script(app: Gudgeon, pilot: Pilot[None]) -> None:
+        session = await begin(app, pilot)
+        await ask(app, pilot, "incumbent")
+        await pilot.press(*"unlab")
+        await pilot.pause()
+        assert "something without a label" in text(app)
+        assert "Enter takes it as typed" not in text(app)
+        await pilot.press("enter")
+        await pilot.pause()
+        assert session.case.answers["incumbent"].value == "unlabelled"
+
+    drive(knowledge, NARROW, script)
+
+
+@both_sizes
+def test_the_reason_of_a_referral_is_shown_when_it_arises_and_stays_on_the_docket(
+    knowledge: Knowledge, size: tuple[int, int]
+) -> None:
+    """A bore of 110 mm does not fit into an outside diameter of 50 mm."""
+
+    async def script(app: Gudgeon, pilot: Pilot[None]) -> None:
+        await begin(app, pilot)
+        for name, typed in (("bore_mm", "110"), ("outside_mm", "50")):
+            await ask(app, pilot, name)
+            assert "Referral" not in text(app)
+            await type_in(pilot, typed)
+        notice = app.screen.query_one(Notice)
+        assert notice.display
+        assert notice.shown is not None
+        assert knowledge.referrals["look_again"].text in notice.shown.plain
+        await ask(app, pilot, "speed_rpm")
+        await type_in(pilot, "1480")
+        assert not notice.display
+        await pilot.press("f2")
+        await pilot.pause()
+        assert any(" Referral " in line and "Two answers do not go together" in line for line in lines(app))
+
+    drive(knowledge, size, script)
+
+
+def test_a_report_replaces_no_file_however_late_that_came(
+    knowledge: Knowledge, tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    path = tmp_path / "fan.md"
+    path.write_text("theirs", encoding="utf-8")
+    advice = Session(Advisor(knowledge)).advice
+    monkeypatch.setattr(Path, "exists", lambda _: False)  # as if it had been made just after the look
+    with pytest.raises(Unwritable, match="exists already"):
+        reports.write(advice, "markdown", path)
+    assert path.read_text(encoding="utf-8") == "theirs"
