@@ -43,6 +43,7 @@ def test_an_interruption_is_no_outcome(surroundings: dict[str, str]) -> None:
         stdout=subprocess.PIPE,
         stderr=subprocess.PIPE,
         env=surroundings,
+        preexec_fn=_listen,  # noqa: PLW1509 - no thread is running here
     )
     assert talk.stdout is not None
     prompt = b"What is the point called? "
@@ -53,9 +54,16 @@ def test_an_interruption_is_no_outcome(surroundings: dict[str, str]) -> None:
     assert said.decode().strip() == "Interrupted."
 
 
+def _listen() -> None:
+    """Hear an interruption even where the tests run in the background, which ignores it."""
+    signal.signal(signal.SIGINT, signal.SIG_DFL)
+
+
 @pytest.mark.parametrize("command", ["replay", "facts"])
 def test_an_interrupted_command_has_found_nothing(command: str, surroundings: dict[str, str]) -> None:
-    interrupted = f"import signal\nfrom advisor import commands\ncommands.{command} = "
+    # Where tests run in the background, Ctrl-C is ignored from the start.
+    interrupted = "import signal\nsignal.signal(signal.SIGINT, signal.default_int_handler)\n"
+    interrupted += f"from advisor import commands\ncommands.{command} = "
     interrupted += "lambda **_: signal.raise_signal(signal.SIGINT)"
     done = run(command, env=surroundings, before=interrupted)
     assert done.returncode == INTERRUPTED
