@@ -139,8 +139,7 @@ class Advisor:
         specification = combine(run.demands(), domains)
         raises = run.raises()
         run.note_waiting(self.read_by)
-        of_cautions = (name for _, warns in run.drawn.warns for name in mentions(warns.for_))
-        needed = catalogue.looked_at(specification.demands, raises, (*self.always_needed, *of_cautions))
+        needed = catalogue.looked_at(specification.demands, raises, self.always_needed)
         incumbent = str(facts["incumbent"].value) if "incumbent" in facts else ""
         found = self.recommender(incumbent).recommend(specification, run.judgements, raises, run.waiting, needed)
         judgement = run.judgements.of(catalogue, specification.demands, domains, raises, needed=needed)

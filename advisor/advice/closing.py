@@ -42,7 +42,7 @@ def cautions(run: Run, recommendation: Recommendation | None, judgement: Judgeme
             general.add(each.caution)
         else:
             for_, waits, void = with_limits(each.for_, run.facts.record)
-            if waits or void or not (concerns := _concerned(for_, recommendation, judgement)):
+            if waits or void or not (concerns := _concerned(for_, run, recommendation, judgement)):
                 continue
             concerned.setdefault(each.caution, []).extend(concerns)
         rules.setdefault(each.caution, []).append(instance.id)
@@ -57,7 +57,9 @@ def cautions(run: Run, recommendation: Recommendation | None, judgement: Judgeme
     )
 
 
-def _concerned(for_: Condition, recommendation: Recommendation | None, judgement: Judgement | None) -> list[str]:
+def _concerned(
+    for_: Condition, run: Run, recommendation: Recommendation | None, judgement: Judgement | None
+) -> list[str]:
     """The recommended classes, and the products with no must against them, that meet the caution's `for`."""
     if recommendation is None or judgement is None:
         return []
@@ -66,20 +68,24 @@ def _concerned(for_: Condition, recommendation: Recommendation | None, judgement
     winners = [place for places_ in recommendation.winners.values() for place in places_]
     for one, chosen in ((recommendation.oils, recommendation.oil_winners), (recommendation.choices, winners)):
         if one is not None:
-            meeting = _meeting(for_, told_by, one)
+            meeting = _meeting(for_, told_by, run, one, sum(1 << place for place in set(chosen)))
             found += [one.catalogue.items[place].title for place in chosen if meeting >> place & 1]
-    meeting = _meeting(for_, told_by, judgement) & judgement.passing
+    meeting = _meeting(for_, told_by, run, judgement, judgement.passing)
     return found + [judgement.catalogue.items[place].code for place in places(meeting)]
 
 
-def _meeting(for_: Condition, told_by: AbstractSet[str], judgement: Judgement) -> int:
-    """The items that do not fail the condition and have at least one of the properties it names."""
-    _, failing = judge(for_, judgement.columns, judgement.catalogue.everything)
+def _meeting(for_: Condition, told_by: AbstractSet[str], run: Run, judgement: Judgement, among: int) -> int:
+    """Those of these items that do not fail the condition and have at least one of the properties it names."""
+    if not among:
+        return 0
+    catalogue = judgement.catalogue
+    columns = catalogue.with_more(judgement.columns, told_by, run.facts.facts, among)
+    _, failing = judge(for_, columns, catalogue.everything)
     told = 0
     for name in told_by:
-        column = judgement.columns.get(name)
+        column = columns.get(name)
         told |= column.present if column else 0
-    return told & ~failing
+    return told & ~failing & among
 
 
 def musts_at_limit(run: Run, recommendation: Recommendation, judgement: Judgement) -> tuple[AtLimit, ...]:

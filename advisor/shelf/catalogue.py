@@ -8,7 +8,7 @@ from advisor.computations import looked_up
 from advisor.conditions import Coded, Condition, Value
 from advisor.formulas import FORMULAS, OutOfRange
 from advisor.knowledge import Formed, Knowledge, LookedUp, Property, WorstOf
-from advisor.shelf.columns import Column, judge
+from advisor.shelf.columns import Column, judge, places
 from advisor.specification import Demand, mentions
 
 
@@ -95,6 +95,19 @@ class Catalogue:
                 columns[prop.name] = column
         return columns
 
+    def with_more(
+        self, columns: Mapping[str, Column], names: Iterable[str], facts: Mapping[str, Fact], among: int
+    ) -> Mapping[str, Column]:
+        """The columns of a case with those of these properties too, which are found for these items only."""
+        unknown = [name for name in names if name not in columns]
+        wanted = frozenset().union(*(self._behind[name] for name in unknown if name in self._behind))
+        more = dict(columns) if wanted else columns
+        for prop in self._changing if wanted else ():
+            if prop.name in wanted and prop.name not in more and prop.concluded is None:
+                column = self._column(prop, more, facts, among)
+                more = {**more, prop.name: column} if column.present or column.waiting else more
+        return more
+
     def looked_at(
         self, demands: Iterable[Demand], raises: Iterable[Raise], also: Iterable[str] = ()
     ) -> frozenset[str]:
@@ -130,7 +143,9 @@ class Catalogue:
                     at[each.value] = at.get(each.value, 0) | moved
         return Column(at, len(self.items))
 
-    def _column(self, prop: Property, columns: Mapping[str, Column], facts: Mapping[str, Fact]) -> Column:
+    def _column(
+        self, prop: Property, columns: Mapping[str, Column], facts: Mapping[str, Fact], among: int | None = None
+    ) -> Column:
         how = prop.how
         if how is None:
             code = prop.domain.code
@@ -140,7 +155,7 @@ class Catalogue:
         if _waits(prop, self.knowledge, facts):
             return Column({}, len(self.items), waiting=True)
         if isinstance(how, Formed):
-            return Column.of(self._formed(how, columns, facts))
+            return Column.of(self._formed(how, columns, facts, among))
         parts = (how,) if isinstance(how, LookedUp) else how.parts
         found = self._looked_up(parts, prop, columns, facts)
         place = self.place.get(str(facts[prop.same_item].value)) if prop.same_item else None
@@ -150,7 +165,9 @@ class Catalogue:
             found[same] = found.get(same, 0) | 1 << place
         return Column(found, len(self.items))
 
-    def _formed(self, how: Formed, columns: Mapping[str, Column], facts: Mapping[str, Fact]) -> list[Coded | None]:
+    def _formed(
+        self, how: Formed, columns: Mapping[str, Column], facts: Mapping[str, Fact], among: int | None
+    ) -> list[Coded | None]:
         function = FORMULAS[how.formula].function
         names = list(how.inputs)
         parts: list[Sequence[Coded | None]] = []
@@ -169,7 +186,12 @@ class Catalogue:
             except (OutOfRange, ArithmeticError):
                 return None
 
-        return list(map(result, *ordered))
+        if among is None:
+            return list(map(result, *ordered))
+        found: list[Coded | None] = [None] * len(self.items)
+        for place in places(among):
+            found[place] = result(*(part[place] for part in ordered))
+        return found
 
     def _looked_up(
         self, parts: Sequence[LookedUp], prop: Property, columns: Mapping[str, Column], facts: Mapping[str, Fact]
