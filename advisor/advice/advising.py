@@ -13,7 +13,7 @@ from advisor.case import Case
 from advisor.conditions import holds
 from advisor.designations import CodesFound, Designer
 from advisor.inference import StepRules
-from advisor.knowledge import CLOSING_FACTS, Knowledge, Sets
+from advisor.knowledge import CLOSING_FACTS, Knowledge, Property, Sets
 from advisor.shelf import Catalogue, Item, choices, facts_read, products, usual_oils
 from advisor.specification import Conflict, Specification, combine, mentions
 
@@ -189,7 +189,7 @@ class Advisor:
             if row.id in found.lines:
                 lines.append(found.lines[row.id])
                 continue
-            asked = [name for name in row.demands if self.knowledge.properties[name].of in {"", found.form or ""}]
+            asked = [name for name in row.demands if _may_have(self.knowledge.properties[name], found.form)]
             if row.demands and not asked:
                 lines.append(Line(row.id, row.title, skipped=True))
                 continue
@@ -226,6 +226,11 @@ def setters_of(knowledge: Knowledge) -> dict[str, list[str]]:
         if declaration.concluded is not None:
             found.setdefault(last.get(name, knowledge.steps[0].id), []).append(name)
     return found
+
+
+def _may_have(prop: Property, form: str) -> bool:
+    """Whether what is recommended may have the property: it is of the recommended form, or none is settled yet."""
+    return not form or prop.of in {"", form}
 
 
 def _conflicts(specification: Specification, found: Recommendation, run: Run) -> tuple[Conflict, ...]:

@@ -91,6 +91,16 @@ def test_the_unit_of_the_end_serves_for_both_ends(
     assert answer(knowledge.facts[name], typed).span == span
 
 
+def test_what_is_asked_of_grease_is_shown_while_the_form_is_open(
+    advisor: Advisor, saved: Callable[[str], Case]
+) -> None:
+    # Without the type of bearing grease and oil are both open; the heat asks its margin of any grease all the same.
+    advice = advisor.advise(saved("designation_that_is_in_no_table"))
+    assert set(advice.line("form").values) == {"grease", "oil"}
+    assert {each.property for each in advice.line("hot").demands} >= {"upper_service_c", "dropping_point_c"}
+    assert {each.property for each in advice.line("cold").demands} == {"lower_service_c"}
+
+
 def test_grease_only_rows_do_not_apply_to_oil(advisor: Advisor, make_case: Callable[..., Case]) -> None:
     advice = advisor.advise(make_case(supply="oil_system", incumbent="none"))
     assert advice.line("solids").skipped
