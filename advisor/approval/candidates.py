@@ -9,6 +9,7 @@ from advisor.case import Origin
 from advisor.conditions import Bound, Value, leaves
 from advisor.documents import Mapping, Node
 from advisor.explanation.falling import nothing
+from advisor.explanation.written_demands import write_demands, write_list, write_test, write_value
 from advisor.replay.demanded import told_by
 from advisor.replay.docket_compared import bars, strengths
 from advisor.replay.expectations import (
@@ -31,7 +32,6 @@ from advisor.replay.expectations import (
     WithheldIs,
     fill_row,
 )
-from advisor.replay.written_demands import write_demands, write_list, write_test, write_value
 from advisor.shelf import Verdict
 
 Candidate = tuple[tuple[str, ...], str]

@@ -4,17 +4,14 @@ from collections.abc import Iterator
 
 from advisor.advice import Advice
 from advisor.case import Origin
-from advisor.conditions import Bound, Condition, FactRef, Member, Ticked, Value, leaves
-from advisor.conditions.terms import Term
+from advisor.conditions import Value
 from advisor.explanation.falling import falling
 from advisor.explanation.seeing import deciding_run
-from advisor.knowledge import Knowledge
+from advisor.explanation.written_demands import write_demand
 from advisor.shelf import Judgement, Ranked, Verdict
 
 Part = tuple[str, ...]
 """A part of an expectation: its key, and the names below it."""
-
-_WORDS = {"<": "below", "<=": "at_most", ">": "above", ">=": "at_least"}
 
 
 def told(advice: Advice, *, demands: bool = True, reasons: bool = True) -> dict[Part, str]:
@@ -94,42 +91,8 @@ def _demanded(advice: Advice) -> dict[Part, str]:
             for demands in falling(advice, name)
         ]
         for rule, test, level in set.intersection(*kept):
-            found.setdefault(rule, set()).add(_demand(name, test, level, advice.knowledge))
+            found.setdefault(rule, set()).add(write_demand(name, test, level, advice.knowledge))
     return {("demanded_by", rule): f"[{', '.join(sorted(texts))}]" for rule, texts in found.items()}
-
-
-def _demand(name: str, test: Condition, level: int, knowledge: Knowledge) -> str:
-    """A demand as a rule writes it."""
-    written_test = f"{{{name}: {_test(test, knowledge)}}}"
-    return f"{{should: {written_test}, level: {level}}}" if level else f"{{must: {written_test}}}"
-
-
-def _test(test: Condition, knowledge: Knowledge) -> str:
-    terms = list(leaves(test))
-    if len(terms) == 1 and isinstance(terms[0], Bound) and terms[0].sign == "=":
-        return _operand(terms[0].limit, terms[0].name, knowledge)
-    return f"{{{', '.join(_operation(each, knowledge) for each in terms)}}}"
-
-
-def _operation(term: Term, knowledge: Knowledge) -> str:
-    if isinstance(term, Bound):
-        return f"{_WORDS.get(term.sign, term.sign)}: {_operand(term.limit, term.name, knowledge)}"
-    if isinstance(term, Member | Ticked):
-        values = sorted(term.among, key=_place)
-        listed = ", ".join(_operand(each, term.name, knowledge) for each in values)
-        return f"{'any_of' if term.wanted else 'none_of'}: [{listed}]"
-    return "stated" if term.wanted else "not_stated"
-
-
-def _place(value: float | str) -> tuple[float, str]:
-    return (value, "") if isinstance(value, float) else (0.0, value)
-
-
-def _operand(value: float | str | FactRef, name: str, knowledge: Knowledge) -> str:
-    if isinstance(value, FactRef):
-        return f"{{fact: {value.name}}}"
-    meant = knowledge.properties[name].domain.decode(value)
-    return f'"{meant}"' if isinstance(meant, str) and meant.isdigit() else written(meant)
 
 
 def _listed(values: tuple[Value, ...]) -> str:

@@ -5,12 +5,12 @@ from advisor.conditions import Domain
 from advisor.documents import Mapping, Node, Scalar, Sequence
 from advisor.explanation.falling import falling
 from advisor.explanation.words import LEVELS, say_test
+from advisor.explanation.written_demands import Told
 from advisor.knowledge import Knowledge, Mistyped, condition
 from advisor.replay import reasons
 from advisor.replay.checking import Checker
 from advisor.replay.differing import Difference
 from advisor.replay.expectations import DemandedBy
-from advisor.replay.written_demands import Told
 
 _LEVELS = {"1": 1, "2": 2, "3": 3, "4": 4}
 _HINT = 'Write it as the rule does: [{should: {nlgi: {any_of: ["1"]}}, level: 2}], or none'

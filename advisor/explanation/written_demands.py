@@ -4,20 +4,20 @@ from collections.abc import Iterable, Sequence
 
 from advisor.conditions import Bound, Condition, FactRef, Member, Ticked, Value, leaves
 from advisor.conditions.terms import Term
+from advisor.explanation.data_terms import OPERATORS
 from advisor.knowledge import Knowledge
 
 Told = tuple[str, Condition, int]
 """A property, the test on it, and the level."""
 
-_WORDS = {"<": "below", "<=": "at_most", ">": "above", ">=": "at_least"}
-
 
 def write_demands(told: Sequence[Told], knowledge: Knowledge) -> str:
     """The demands as a list on one line; `none` where there are none."""
-    return ", ".join(_demand(*each, knowledge) for each in told).join("[]") if told else "none"
+    return ", ".join(write_demand(*each, knowledge) for each in told).join("[]") if told else "none"
 
 
-def _demand(name: str, test: Condition, level: int, knowledge: Knowledge) -> str:
+def write_demand(name: str, test: Condition, level: int, knowledge: Knowledge) -> str:
+    """One demand: a must, or a should with its level."""
     said = f"{{{name}: {write_test(test, knowledge)}}}"
     return f"{{should: {said}, level: {level}}}" if level else f"{{must: {said}}}"
 
@@ -32,7 +32,7 @@ def write_test(test: Condition, knowledge: Knowledge) -> str:
 
 def _operation(term: Term, knowledge: Knowledge) -> str:
     if isinstance(term, Bound):
-        return f"{_WORDS.get(term.sign, term.sign)}: {_operand(term.limit, term.name, knowledge)}"
+        return f"{OPERATORS[term.sign]}: {_operand(term.limit, term.name, knowledge)}"
     if isinstance(term, Member | Ticked):
         values = sorted(term.among, key=_place)
         listed = ", ".join(_operand(each, term.name, knowledge) for each in values)
