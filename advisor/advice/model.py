@@ -9,7 +9,7 @@ from advisor.case import Case, Fact
 from advisor.conditions import Record, Value
 from advisor.designations import CodesFound
 from advisor.knowledge import Instance, Knowledge
-from advisor.shelf import Judgement, Ranked, Verdict
+from advisor.shelf import USABLE, Judgement, Ranked
 from advisor.specification import Conflict, Demand, Specification
 
 FORMAT = 1
@@ -212,7 +212,7 @@ class Advice:
     @property
     def fits(self) -> bool:
         """Whether a product of the shelf fits, if only as second best."""
-        return any(each.verdict in {Verdict.FITS, Verdict.SECOND_BEST, Verdict.STILL_IN} for each in self.shelf)
+        return any(each.verdict in USABLE for each in self.shelf)
 
     def line(self, row: str) -> Line:
         """The docket row of that id."""

@@ -3,12 +3,11 @@
 from collections.abc import Mapping
 
 from advisor.advice.model import Advice, Line, Reading
-from advisor.shelf import Verdict
+from advisor.shelf import USABLE
 
 Name = tuple[str, str]
 """What kind of thing, and which: `("row", "vg")`, `("product", "GR-101")`."""
 
-USABLE = frozenset({Verdict.FITS, Verdict.SECOND_BEST, Verdict.STILL_IN})
 FIRST: Name = ("first", "")
 STANDING = frozenset({"state", "withheld", "referral", "conflict", "question"})
 LEVELS = 4

@@ -11,7 +11,7 @@ from advisor.documents import Mapping, Node
 from advisor.explanation.falling import nothing
 from advisor.explanation.written_demands import write_demands, write_list, write_test, write_value
 from advisor.replay.demanded import told_by
-from advisor.replay.docket_compared import bars, strengths
+from advisor.replay.docket_compared import bars, recommended, strengths
 from advisor.replay.expectations import (
     ASKING,
     INTERVAL_ROW,
@@ -96,19 +96,14 @@ def _fact_within(expected: FactWithin, advice: Advice, node: Node) -> Iterator[C
 
 @candidates.register
 def _recommends(expected: Recommends, advice: Advice, node: Node) -> Iterator[Candidate]:
-    shown = _recommended(advice, expected.property)
+    shown = recommended(advice, expected.property)
     if shown:
         yield ("expected",) if isinstance(node, Mapping) else (), write_list(shown)
 
 
-def _recommended(advice: Advice, name: str) -> tuple[Value, ...]:
-    rows = {row.id for row in advice.knowledge.docket if row.recommends == name}
-    return tuple(value for line in advice.docket if line.row in rows and not line.skipped for value in line.values)
-
-
 @candidates.register
 def _keeps_from(expected: KeepsFrom, advice: Advice, _node: Node) -> Iterator[Candidate]:
-    shown = _recommended(advice, expected.property)
+    shown = recommended(advice, expected.property)
     left = [value for value in expected.values if value not in shown]
     return _whole([write_list(left)] if left else [])
 

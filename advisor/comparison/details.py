@@ -6,6 +6,7 @@ from itertools import zip_longest
 from math import isinf
 from typing import TypeVar
 
+from advisor.comparison.differences import alike_at_the_ends
 from advisor.comparison.edits import NAMED, RULE, TABLE, WHOLE, Edit, differ, written
 from advisor.conditions import Bound, Condition, Domain, Either, Every, FactRef, Member, Stated, Ticked, Valueless
 from advisor.conditions.terms import names
@@ -273,9 +274,7 @@ def _apart(was: str, now: str) -> tuple[str, str]:
     if max(len(was), len(now)) <= _LONG or not was or not now:
         return was, now
     one, other = was.split(), now.split()
-    least = min(len(one), len(other))
-    head = next((place for place in range(least) if one[place] != other[place]), least)
-    tail = next((place for place in range(least - head) if one[-1 - place] != other[-1 - place]), least - head)
+    head, tail = alike_at_the_ends(one, other)
     begin, end = max(0, head - _NEAR), max(0, tail - _NEAR)
     return _cut(one, begin, end), _cut(other, begin, end)
 

@@ -1,6 +1,6 @@
 """What differs in a changed scenario, line by line: of lists only what came and went, of reasons only the rule."""
 
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable, Mapping, Sequence
 from dataclasses import dataclass, field
 
 from advisor.comparison.changing import Changed
@@ -146,10 +146,19 @@ def _line(part: tuple[str, ...], was: str, now: str) -> str:
     return f"{name}: {was or 'nothing'} -> {now or 'nothing'}"
 
 
-def _moved(name: str, was: list[str], now: list[str]) -> str:
-    """Two orders without what stands alike at their beginning and their end."""
+def alike_at_the_ends(was: Sequence[str], now: Sequence[str]) -> tuple[int, int]:
+    """How many members two lists have alike at their beginning, and how many more at their end.
+
+    >>> alike_at_the_ends(["a", "b", "c"], ["a", "x", "y", "c"])
+    (1, 1)
+    """
     least = min(len(was), len(now))
     head = next((place for place in range(least) if was[place] != now[place]), least)
-    tail = next((place for place in range(least - head) if was[-1 - place] != now[-1 - place]), least - head)
+    return head, next((place for place in range(least - head) if was[-1 - place] != now[-1 - place]), least - head)
+
+
+def _moved(name: str, was: list[str], now: list[str]) -> str:
+    """Two orders without what stands alike at their beginning and their end."""
+    head, tail = alike_at_the_ends(was, now)
     gone, come = (", ".join(each[head : len(each) - tail]) or "nothing" for each in (was, now))
     return f"{name} from place {head + 1}: {gone} -> {come}"

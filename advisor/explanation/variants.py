@@ -11,9 +11,8 @@ from advisor.explanation.reasons import say_line
 from advisor.explanation.seeing import say_known
 from advisor.explanation.words import listed, say_source, say_value, title_of
 from advisor.formulas.formula import plain, with_unit
-from advisor.shelf import Verdict
+from advisor.shelf import USABLE, Verdict
 
-USABLE = frozenset({Verdict.FITS, Verdict.SECOND_BEST, Verdict.STILL_IN})
 _USABLE_WORDS = frozenset(each.value for each in USABLE)
 _FEW = 12
 _SHORT_CAUTION = 60

@@ -12,7 +12,7 @@ from advisor.explanation.words import fill_in, say_value
 from advisor.interview.wording import asked, short_title
 from advisor.knowledge import Instance
 from advisor.quantities import show
-from advisor.shelf import Ranked, Shortfall, Verdict
+from advisor.shelf import USABLE, Ranked, Shortfall, Verdict
 from advisor.specification import STRONG
 
 Known = Mapping[str, tuple[str, Instance, bool | None]]
@@ -82,7 +82,7 @@ def _because(advice: Advice, rule: str, known: Known) -> str:
 
 def count_text(advice: Advice) -> str:
     """How many products of the shelf fit, or are still in."""
-    alive = sum(each.verdict in {Verdict.FITS, Verdict.SECOND_BEST, Verdict.STILL_IN} for each in advice.shelf)
+    alive = sum(each.verdict in USABLE for each in advice.shelf)
     still = any(each.verdict is Verdict.STILL_IN for each in advice.shelf)
     return f"{alive} of {len(advice.shelf)} {'still in' if still else 'fit'}"
 

@@ -28,7 +28,7 @@ _WITHHELD = "withheld"
 
 def recommends(expected: Recommends, advice: Advice) -> Difference | None:
     """Whether the docket recommends something expected, and nothing beyond what is accepted."""
-    values = _recommended(advice, expected.property)
+    values = recommended(advice, expected.property)
     if set(values) & set(expected.expected) and set(values) <= {*expected.expected, *expected.accept}:
         return None
     wanted = _listed(expected.expected) + (f" (accepted: {_listed(expected.accept)})" if expected.accept else "")
@@ -47,7 +47,7 @@ def recommends(expected: Recommends, advice: Advice) -> Difference | None:
 
 def keeps_from(expected: KeepsFrom, advice: Advice) -> Difference | None:
     """Whether none of the values is recommended."""
-    found = [each for each in _recommended(advice, expected.property) if each in expected.values]
+    found = [each for each in recommended(advice, expected.property) if each in expected.values]
     if not found:
         return None
     because = tuple(word for each in found for word in _of_value(advice, expected.property, each))
@@ -67,7 +67,8 @@ def _line(advice: Advice, name: str) -> Line | None:
     return next((line for line in advice.docket if line.row in rows), None)
 
 
-def _recommended(advice: Advice, name: str) -> tuple[Value, ...]:
+def recommended(advice: Advice, name: str) -> tuple[Value, ...]:
+    """What the docket recommends of a property; nothing where its row does not apply."""
     line = _line(advice, name)
     return () if line is None or line.skipped else line.values
 

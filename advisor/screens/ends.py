@@ -20,6 +20,7 @@ def end_on_signals(app: "Gudgeon") -> None:
     for name in ("SIGTERM", "SIGHUP"):
         number = getattr(signal, name, None)
         if number is not None:
+            # Windows has no such handlers, and only the main thread may set them: there the system's own end serves.
             with contextlib.suppress(NotImplementedError, RuntimeError, ValueError):
                 loop.add_signal_handler(number, _end, app, int(number))
 

@@ -8,7 +8,7 @@ from advisor.advice import Advice
 from advisor.interview import VERDICTS, count_text, product_reasons
 from advisor.screens.glyphs import Glyphs
 from advisor.screens.row import Row
-from advisor.shelf import Ranked, Verdict
+from advisor.shelf import USABLE, Ranked, Verdict
 
 _BAR = 10
 
@@ -56,6 +56,6 @@ def _sign(verdict: Verdict, glyphs: Glyphs) -> tuple[str, str]:
 
 def bar(advice: Advice, glyphs: Glyphs) -> str:
     """The count as a bar of ten signs."""
-    alive = sum(each.verdict in {Verdict.FITS, Verdict.SECOND_BEST, Verdict.STILL_IN} for each in advice.shelf)
+    alive = sum(each.verdict in USABLE for each in advice.shelf)
     full = -(-alive * _BAR // len(advice.shelf)) if advice.shelf else 0
     return glyphs.full * full + glyphs.empty * (_BAR - full) if advice.shelf else ""

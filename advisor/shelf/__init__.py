@@ -3,10 +3,11 @@
 from advisor.shelf.catalogue import Catalogue, Item, Raise, all_reads, facts_read
 from advisor.shelf.columns import Column, judge, places
 from advisor.shelf.judgements import Judgements
-from advisor.shelf.judging import Judgement, Ranked, Shortfall, Verdict, at_limit, shortness, steps_short
+from advisor.shelf.judging import USABLE, Judgement, Ranked, Shortfall, Verdict, at_limit, shortness, steps_short
 from advisor.shelf.stocking import choices, products, usual_oils
 
 __all__ = [
+    "USABLE",
     "Catalogue",
     "Column",
     "Item",

@@ -101,11 +101,14 @@ class Catalogue:
         """The columns of a case with those of these properties too, which are found for these items only."""
         unknown = [name for name in names if name not in columns]
         wanted = frozenset().union(*(self._behind[name] for name in unknown if name in self._behind))
-        more = dict(columns) if wanted else columns
-        for prop in self._changing if wanted else ():
+        if not wanted:
+            return columns
+        more = dict(columns)
+        for prop in self._changing:
             if prop.name in wanted and prop.name not in more and prop.concluded is None:
                 column = self._column(prop, more, facts, among)
-                more = {**more, prop.name: column} if column.present or column.waiting else more
+                if column.present or column.waiting:
+                    more[prop.name] = column
         return more
 
     def looked_at(

@@ -22,6 +22,9 @@ class Verdict(StrEnum):
     FALLS_SHORT = "falls_short"
 
 
+USABLE = frozenset({Verdict.FITS, Verdict.SECOND_BEST, Verdict.STILL_IN})
+"""Verdicts of products that may be used."""
+
 Steps = tuple[int, int, int, int]
 """Whole steps short of the shoulds, level by level."""
 _NOT_COUNTED: Steps = (0, 0, 0, 0)
